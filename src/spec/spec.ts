@@ -1,0 +1,239 @@
+/** A place in a text file; line and column count from 1. */
+export interface Place {
+  file: string;
+  line: number;
+  column: number;
+}
+
+/**
+ * Exponents of m, kg, s, A, K, mol, cd and cycle, in this order. An angle in radians is a plain number (SI Brochure,
+ * 2019); a cycle is kept apart so that Hz and rad/s cannot be added by mistake.
+ */
+export type Dimension = readonly number[];
+
+/** A unit as written in a spec. `scale` is the SI value of one unit (rad/s for rpm, cycle/s for Hz). */
+export interface Unit {
+  text: string;
+  dimension: Dimension;
+  scale: number;
+}
+
+/** A number with a unit, in SI. */
+export interface Quantity {
+  value: number;
+  unit: Unit;
+  place: Place;
+}
+
+/** What a name in an expression stands for. Constants are already replaced by their numbers. */
+export type NameRole = 'signal' | 'sensor' | 'actuator' | 'input' | 'parameter' | 'coefficient';
+
+/** Operators of two operands. Comparisons give 1 or 0. */
+export type Operator = '+' | '-' | '*' | '/' | '^' | '<' | '<=' | '>' | '>=' | '==' | '!=';
+
+/**
+ * A checked expression. Plant expressions are in SI. Controller expressions are in the declared units of their signals:
+ * every conversion that the units ask for is already there as a multiplication by a number.
+ */
+export type Expression =
+  | { kind: 'number'; value: number; place: Place }
+  | { kind: 'name'; role: NameRole; name: string; index: number | undefined; place: Place }
+  | { kind: 'negate'; of: Expression; place: Place }
+  | { kind: 'operation'; operator: Operator; left: Expression; right: Expression; place: Place }
+  | { kind: 'call'; name: string; arguments: Expression[]; place: Place }
+  | { kind: 'before'; of: Expression; place: Place };
+
+/** The value of one setting of a block, as its description asks for it. */
+export type Setting =
+  | { kind: 'expression'; expression: Expression }
+  | { kind: 'coefficients'; name: string; place: Place }
+  | { kind: 'word'; word: string; place: Place };
+
+/** Two bounds of a signal, each an expression in the signal's own unit (SI in the plant). */
+export interface Range {
+  low: Expression;
+  high: Expression;
+}
+
+/** A signal of the plant or of a controller: one block with its settings. */
+export interface SignalDefinition {
+  name: string;
+  place: Place;
+  /** The defining key: the name of the block. */
+  block: string;
+  /** By setting name; the value of the defining key itself, where it is not a mapping, is under the block's own name. */
+  settings: Record<string, Setting>;
+  of: Expression | undefined;
+  unit: Unit;
+  gain: Expression | undefined;
+  range: Range | undefined;
+  /** Largest rate in either direction, in the signal's unit a second. */
+  slew: Expression | undefined;
+  /** The state at the start (SI in the plant, the declared unit in a controller), where the spec gives one. */
+  start: number | undefined;
+}
+
+/** A sensor: gain and offset, continuous filter, dead time, sample, noise, range, quantum, in this order. */
+export interface SensorDefinition {
+  name: string;
+  place: Place;
+  of: Expression;
+  unit: Unit;
+  gain: Expression | undefined;
+  offset: Expression | undefined;
+  /** Time constant of the first-order filter in s (a corner frequency is already turned into one). */
+  filter: Expression | undefined;
+  /** Standard deviation of white Gaussian noise, SI. */
+  noise: Expression | undefined;
+  range: Range | undefined;
+  /** Size of one step of the reading, SI. */
+  quantum: Expression | undefined;
+}
+
+/** How the target computes. */
+export type Arithmetic = 'float64' | 'float32';
+
+/** A controller: signals computed at its sampling instants. */
+export interface ControllerDefinition {
+  name: string;
+  place: Place;
+  /** Sampling period in s. */
+  every: Expression;
+  /** First sampling instant after 0, in s. */
+  phase: Expression | undefined;
+  /** From the sampling instant to when the outputs take effect, in s. */
+  delay: Expression | undefined;
+  arithmetic: Arithmetic;
+  signals: SignalDefinition[];
+}
+
+/** An actuator: takes a controller's signal and holds it for the plant. Settings in SI. */
+export interface ActuatorDefinition {
+  name: string;
+  place: Place;
+  /** The controller signal it takes. */
+  of: string;
+  ofPlace: Place;
+  unit: Unit;
+  resolution: Expression | undefined;
+  range: Range | undefined;
+}
+
+/** Something that an input does in a scenario. Amounts in SI, added to the input's rest value; times in s. */
+export type InputEvent =
+  | { kind: 'step'; amount: Expression; at: Expression; place: Place }
+  | { kind: 'pulse'; amount: Expression; at: Expression; lasts: Expression; place: Place };
+
+/** Inputs over time, from t = 0 to `lasts` (s). */
+export interface Scenario {
+  name: string;
+  place: Place;
+  lasts: number;
+  inputs: Record<string, InputEvent[]>;
+  /** `rest`: from the point of rest; `zero`: every state zero, as after power-up. */
+  start: 'rest' | 'zero';
+}
+
+/** A number read from the build. `unit` is undefined where the spec gives none: the slot's unit, or a plain number. */
+export interface CoefficientDefinition {
+  name: string;
+  place: Place;
+  /** Where in the build: symbol, members, indices. */
+  at: string;
+  atPlace: Place;
+  format: string | undefined;
+  unit: Unit | undefined;
+}
+
+/** An uncertain quantity, uniformly spread between its bounds (SI). */
+export interface ParameterDefinition {
+  name: string;
+  place: Place;
+  unit: Unit;
+  nominal: number;
+  low: number;
+  high: number;
+}
+
+export interface InputDefinition {
+  name: string;
+  place: Place;
+  unit: Unit;
+  /** Value before anything happens, SI. */
+  rest: number;
+}
+
+/** A limit in SI. */
+export type Limit = { at_most: number } | { at_least: number } | { between: [number, number] };
+
+/** For which plants a requirement must hold: a share is a number above 0 and below 1. */
+export type HoldsFor = 'nominal' | 'all' | number;
+
+/** One measure with one limit. */
+export interface Requirement {
+  name: string;
+  place: Place;
+  measure: string;
+  /** Signal names by key (`of`, `to`, `at` …), as the measure's description asks for them. */
+  signals: Record<string, string>;
+  /** Scenario name, for measures of a trace. */
+  in: string | undefined;
+  /** Numbers by key (`band` …) in SI. */
+  quantities: Record<string, number>;
+  /** Signal values (SI) at which the loop is linearised, if not at rest. */
+  around: { name: string; value: number; place: Place }[];
+  limit: Limit;
+  limitPlace: Place;
+  /** The unit in which the limit was written; reports use it. */
+  unit: Unit;
+  /** True where the limit was written in dB. */
+  inDecibels: boolean;
+  holdsFor: HoldsFor;
+  /** Stands for |limit| in the headroom where the limit is zero, SI. */
+  scale: number | undefined;
+  reason: string | undefined;
+}
+
+export interface Firmware {
+  place: Place;
+  /** Argument list, run without a shell in the spec file's folder. */
+  build: string[] | undefined;
+  /** Path relative to the spec file. */
+  image: string;
+  imagePlace: Place;
+  coefficients: CoefficientDefinition[];
+}
+
+export interface Perturbation {
+  plants: number;
+  seed: number;
+  /** As a share, e.g. 0.95. */
+  confidence: number;
+}
+
+/** One loop, its firmware, plant, scenarios and requirements, checked; every value in SI unless said otherwise. */
+export interface Spec {
+  file: string;
+  loop: string;
+  firmware: Firmware | undefined;
+  parameters: ParameterDefinition[];
+  inputs: InputDefinition[];
+  plant: SignalDefinition[];
+  sensors: SensorDefinition[];
+  controllers: ControllerDefinition[];
+  actuators: ActuatorDefinition[];
+  scenarios: Scenario[];
+  requirements: Requirement[];
+  perturbation: Perturbation;
+  /** The latched reference's path relative to the spec, and the headroom a change may cost (a share). */
+  merge: { reference: string; maySlip: number; place: Place } | undefined;
+}
+
+/** Something wrong in a spec: one line for people, at its place. */
+export interface SpecError {
+  place: Place;
+  message: string;
+}
+
+/** A spec, or all its errors: half a spec cannot be used by forgetting to look. */
+export type LoadedSpec = { kind: 'spec'; spec: Spec } | { kind: 'errors'; errors: SpecError[] };
