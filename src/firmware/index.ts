@@ -1,0 +1,13 @@
+/**
+ * Reads coefficients out of a firmware build.
+ *
+ * `openImage` opens an image, `readCoefficient` and `readCoefficients` read values out of it, `describeImage` says where they come
+ * from, `runBuild` makes the image first. Nothing here guesses: there is an exact value or a `FirmwareError`.
+ */
+export { type BuildRecord, type BuildRequest, runBuild } from './build.js';
+export type { Coefficient, DeclaredAt, NumberFormat, StoredElement } from './coefficient.js';
+export { describeImage, type ImageDescription } from './describe_image.js';
+export { FirmwareError, type FirmwareErrorCode } from './failure.js';
+export { type FirmwareImage, openImage } from './image.js';
+export { formatText, parseFormat } from './number_format.js';
+export { type CoefficientRequest, readCoefficient, readCoefficients } from './read_coefficient.js';

@@ -1,0 +1,38 @@
+import { qualifiedName, variablesOf } from './dwarf/variables.js';
+import { allSymbols, hasSymbols, isData } from './elf/symbols.js';
+import { FirmwareError, quoted } from './failure.js';
+import type { ElfImage } from './image.js';
+import { nearestNames } from './nearest.js';
+import type { CoefficientPath } from './path.js';
+
+/** Enough names to offer a near one; an error must not take long. */
+const mostNames = 50_000;
+
+/** The error for a name that the image does not have, with the names that may have been meant and the cure. */
+export function noSuchSymbol(image: ElfImage, path: CoefficientPath): FirmwareError {
+  const wanted = [...path.scopes, path.name].join('::');
+  if (!image.debug.present && !hasSymbols(image.elf)) {
+    return new FirmwareError(
+      'no_debug_information',
+      `no variable ${quoted(wanted)} can be found in ${quoted(image.name)}: it has neither symbols nor debug information; build with -g and do not strip`,
+    );
+  }
+  const near = nearestNames(wanted, knownNames(image));
+  const offered = near.length > 0 ? `; nearest: ${near.map(quoted).join(', ')}` : '';
+  const where = path.file === undefined ? '' : ` of ${quoted(path.file)}`;
+  return new FirmwareError(
+    'no_such_symbol',
+    `${quoted(image.name)} has no variable ${quoted(wanted)}${where}${offered}`,
+  );
+}
+
+function* knownNames(image: ElfImage): Generator<string> {
+  for (const symbol of allSymbols(image.elf)) if (isData(symbol) && symbol.name !== '') yield symbol.name;
+  let count = 0;
+  for (const unit of image.debug.units()) {
+    for (const variable of variablesOf(unit)) {
+      yield qualifiedName(variable);
+      if (++count > mostNames) return;
+    }
+  }
+}
