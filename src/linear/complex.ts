@@ -1,0 +1,15 @@
+/** A complex number. */
+export interface Complex {
+  real: number;
+  imaginary: number;
+}
+
+/** The absolute value, without overflow on the way. */
+export function magnitude(z: Complex): number {
+  return Math.hypot(z.real, z.imaginary);
+}
+
+/** The angle in rad, in (−π, π]. */
+export function phase(z: Complex): number {
+  return Math.atan2(z.imaginary, z.real);
+}
