@@ -1,0 +1,109 @@
+import type { FrequencySweep } from './frequency_sweep.js';
+import { dipBelowZero, rootBetween } from './root_finding.js';
+
+/** A frequency at which the loop gain is one. */
+export interface GainCrossing {
+  /** rad/s */
+  frequency: number;
+  /** Angle of L above −180° there, in rad, in (−π, π]: by so much the phase may fall (or, when negative, rise). */
+  phaseMargin: number;
+}
+
+/** A frequency at which L is real and negative. */
+export interface PhaseCrossing {
+  /** rad/s; 0, half the sampling frequency and Infinity may be among them. */
+  frequency: number;
+  /** The gain factor 1/|L| which puts a closed-loop pole there. */
+  factor: number;
+}
+
+/** Where |L| or 1/|L| is beyond this, the sign of L's small part is rounding and nothing is counted as a crossing. */
+const LARGEST_GAIN = 1e8;
+
+/**
+ * All frequencies inside the swept range at which |L| is one, ascending. They are changes of sign on a grid that follows
+ * the poles and zeros, found to double precision; pairs that lie between two grid points are sought at near misses.
+ */
+export function gainCrossings(sweep: FrequencySweep): GainCrossing[] {
+  const parts = new Float64Array(4);
+  return zerosOver(sweep, gainExcess, 0, sweep.frequencies.length - 1).map((frequency) => {
+    sweep.transfer.evaluate(frequency, parts);
+    const [dr, di, nr, ni] = parts;
+    // The angle of −L is the angle of L above −180°.
+    return { frequency, phaseMargin: Math.atan2(-(ni * dr - nr * di), -(nr * dr + ni * di)) };
+  });
+}
+
+/** All frequencies inside the swept range at which L is real and negative, ascending; found as `gainCrossings` are. */
+export function phaseCrossings(sweep: FrequencySweep): PhaseCrossing[] {
+  const parts = new Float64Array(4);
+  const result: PhaseCrossing[] = [];
+  for (const frequency of zerosOver(sweep, quadrature, 1, sweep.lastInner)) {
+    sweep.transfer.evaluate(frequency, parts);
+    const crossing = phaseCrossingAt(frequency, parts);
+    if (crossing) result.push(crossing);
+  }
+  return result;
+}
+
+/**
+ * The phase crossing at a frequency where L is known to be real, or undefined where it is positive or beyond counting.
+ * @param parts denominator and numerator of L: real, imaginary, real, imaginary.
+ */
+export function phaseCrossingAt(frequency: number, parts: Float64Array): PhaseCrossing | undefined {
+  const [dr, di, nr, ni] = parts;
+  const factor = Math.hypot(dr, di) / Math.hypot(nr, ni);
+  const negative = nr * dr + ni * di < 0;
+  return negative && factor < LARGEST_GAIN && factor > 1 / LARGEST_GAIN ? { frequency, factor } : undefined;
+}
+
+type OfParts = (parts: Float64Array, at: number) => number;
+
+/** (|L|² − 1)/(|L|² + 1). */
+function gainExcess(p: Float64Array, at: number): number {
+  const below = p[at] * p[at] + p[at + 1] * p[at + 1];
+  const above = p[at + 2] * p[at + 2] + p[at + 3] * p[at + 3];
+  return above + below === 0 ? 0 : (above - below) / (above + below);
+}
+
+/** The sine of L's angle. */
+function quadrature(p: Float64Array, at: number): number {
+  const below = p[at] * p[at] + p[at + 1] * p[at + 1];
+  const above = p[at + 2] * p[at + 2] + p[at + 3] * p[at + 3];
+  const product = Math.sqrt(below) * Math.sqrt(above);
+  return product === 0 ? 0 : (p[at + 3] * p[at] - p[at + 2] * p[at + 1]) / product;
+}
+
+/** The zeros of a function of the response between two indices of the sweep, ascending. */
+function zerosOver(sweep: FrequencySweep, of: OfParts, first: number, last: number): number[] {
+  const { frequencies, parts, transfer } = sweep;
+  const scratch = new Float64Array(4);
+  const f = (frequency: number): number => {
+    transfer.evaluate(frequency, scratch);
+    return of(scratch, 0);
+  };
+  const values = new Float64Array(frequencies.length);
+  for (let i = first; i <= last; i++) values[i] = of(parts, 4 * i);
+  const result: number[] = [];
+  for (let i = first; i < last; i++) {
+    if (i > first && values[i] === 0 && values[i - 1] * values[i + 1] !== 0) result.push(frequencies[i]);
+    if (values[i] * values[i + 1] < 0) result.push(rootBetween(f, frequencies[i], frequencies[i + 1]));
+    if (i > first && isNearMiss(values, i)) {
+      result.push(...pairBetween(f, frequencies[i - 1], frequencies[i + 1], Math.sign(values[i])));
+    }
+  }
+  return result.sort((a, b) => a - b);
+}
+
+/** Whether the value at i is the nearest to zero among its neighbours, all of one sign, and near enough to deserve a search. */
+function isNearMiss(values: Float64Array, i: number): boolean {
+  const here = Math.abs(values[i]);
+  if (!(here < 0.5) || here === 0) return false;
+  if (values[i - 1] * values[i] <= 0 || values[i] * values[i + 1] <= 0) return false;
+  return here <= Math.abs(values[i - 1]) && here <= Math.abs(values[i + 1]);
+}
+
+function pairBetween(f: (x: number) => number, a: number, b: number, sign: number): number[] {
+  const turn = dipBelowZero((x) => sign * f(x), a, b);
+  return turn === undefined ? [] : [rootBetween(f, a, turn), rootBetween(f, turn, b)];
+}

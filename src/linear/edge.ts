@@ -1,0 +1,53 @@
+import type { Evaluation } from '../loop/evaluate.js';
+import type { Node } from '../loop/graph.js';
+
+/**
+ * Where an expression has no derivative at a point: at the end of a range, in a relay, at the tip of an absolute value or
+ * at the change from one branch to another. Only what counts at the point is looked at.
+ * @returns words for the edge, or undefined where the expression is smooth.
+ */
+export function edgeOf(root: Node, evaluation: Evaluation): string | undefined {
+  const seen = new Set<Node>();
+  const visit = (node: Node): string | undefined => {
+    if (node.kind !== 'operation' || seen.has(node)) return undefined;
+    seen.add(node);
+    const own = ownEdge(node, evaluation);
+    if (own) return own;
+    for (const argument of counting(node, evaluation)) {
+      const found = visit(argument);
+      if (found) return found;
+    }
+    return undefined;
+  };
+  return visit(root);
+}
+
+/** The arguments whose values count: the condition and the chosen branch only. */
+function counting(node: Extract<Node, { kind: 'operation' }>, evaluation: Evaluation): readonly Node[] {
+  if (node.name !== 'choose') return node.of;
+  return [node.of[0], evaluation.of(node.of[0]) !== 0 ? node.of[1] : node.of[2]];
+}
+
+function ownEdge(node: Extract<Node, { kind: 'operation' }>, evaluation: Evaluation): string | undefined {
+  const [a, b, c] = node.of.map((argument) => (node.name === 'choose' ? 0 : evaluation.of(argument)));
+  switch (node.name) {
+    case 'limit':
+      return a <= b || a >= c ? `the end of a range (${a} in ${b} … ${c})` : undefined;
+    case 'less':
+    case 'less_or_equal':
+    case 'equal':
+    case 'unequal':
+    case 'min':
+    case 'max':
+      return a === b ? `the change between two branches (both sides are ${a})` : undefined;
+    case 'abs':
+    case 'sign':
+      return a === 0 ? 'a relay or an absolute value at zero' : undefined;
+    case 'floor':
+    case 'ceil':
+    case 'round':
+      return 'a step of rounding, which has no slope';
+    default:
+      return undefined;
+  }
+}

@@ -1,0 +1,129 @@
+import { Matrix as LibraryMatrix, SingularValueDecomposition } from 'ml-matrix';
+import { Evaluation, type LeafValues } from '../loop/evaluate.js';
+import type { Loop } from '../loop/loop.js';
+import { type Linearisation, type RowGroup, withReadings } from './linearise.js';
+import { add, blockOf, identity, type Matrix, multiply, place, toRows, zeros } from './matrix.js';
+
+/** Everything in a loop that keeps a value, where nothing changes any more. */
+export interface PointOfRest {
+  state: number[];
+  memory: number[];
+  held: number[];
+}
+
+/** The point of rest, or why there is none. */
+export type RestResult = { kind: 'rest'; point: PointOfRest } | { kind: 'none'; why: string };
+
+const mostRounds = 60;
+
+/**
+ * Solves for the point where every rate is zero and every sampled value repeats, with quanta and noise off, by Newton's
+ * method with the least move (pseudo-inverse), so that free integrators stay where they start.
+ * @param inputs SI values of the inputs, constant.
+ */
+export function pointOfRest(
+  linearisation: Linearisation,
+  parameters: ArrayLike<number>,
+  inputs: ArrayLike<number>,
+): RestResult {
+  const { loop } = linearisation;
+  let unknowns = [
+    ...loop.states.map(({ start }) => start),
+    ...loop.memories.map(({ start }) => start),
+    ...loop.held.map(() => 0),
+  ];
+  let residual: number[] = [];
+  for (let round = 0; round < mostRounds; round++) {
+    const point = split(loop, unknowns);
+    const leaves = withReadings(loop, { parameter: parameters, input: inputs, ...point });
+    const evaluation = new Evaluation(leaves, 'off');
+    residual = residuals(linearisation, evaluation, point);
+    if (!residual.every(Number.isFinite)) break;
+    if (residual.every((value) => value === 0)) return { kind: 'rest', point };
+    const slopes = slopesOfResiduals(linearisation, evaluation);
+    if (isSmall(residual, slopes, unknowns)) return { kind: 'rest', point };
+    const move = leastSquares(slopes, residual);
+    unknowns = unknowns.map((value, i) => value - move[i]);
+  }
+  return { kind: 'none', why: whyNone(loop, residual) };
+}
+
+function split(loop: Loop, unknowns: number[]): PointOfRest {
+  const memoryAt = loop.states.length;
+  const heldAt = memoryAt + loop.memories.length;
+  return {
+    state: unknowns.slice(0, memoryAt),
+    memory: unknowns.slice(memoryAt, heldAt),
+    held: unknowns.slice(heldAt),
+  };
+}
+
+function residuals({ roots }: Linearisation, evaluation: Evaluation, point: PointOfRest): number[] {
+  return [
+    ...roots.derivative.map((node) => evaluation.of(node)),
+    ...roots.memory.map((node, i) => evaluation.of(node) - point.memory[i]),
+    ...roots.held.map((node, i) => evaluation.of(node) - point.held[i]),
+  ];
+}
+
+/** Slopes of the residuals in states, memories and held values, with the readings eliminated. */
+function slopesOfResiduals(linearisation: Linearisation, evaluation: Evaluation): Matrix {
+  const { loop } = linearisation;
+  const [n, m, h] = [loop.states.length, loop.memories.length, loop.held.length];
+  const total = n + m + h;
+  const slopes = (rows: RowGroup): Matrix => {
+    const direct = zeros(linearisation.roots[rows].length, total);
+    place(direct, linearisation.slopes(rows, 'state', evaluation), 0, 0);
+    place(direct, linearisation.slopes(rows, 'memory', evaluation), 0, n);
+    place(direct, linearisation.slopes(rows, 'held', evaluation), 0, n + m);
+    if (rows === 'reading') return direct;
+    return add(direct, multiply(linearisation.slopes(rows, 'reading', evaluation), slopes('reading')));
+  };
+  const result = zeros(total, total);
+  place(result, slopes('derivative'), 0, 0);
+  place(result, slopes('memory'), n, 0);
+  place(result, slopes('held'), n + m, 0);
+  place(result, add(blockOf(result, n, n, m + h, m + h), identity(m + h), -1), n, n);
+  return result;
+}
+
+/** Small against the rounding of the terms that make up each residual. */
+function isSmall(residual: number[], slopes: Matrix, unknowns: number[]): boolean {
+  return residual.every((value, i) => {
+    let size = 0;
+    for (let j = 0; j < unknowns.length; j++)
+      size += Math.abs(slopes.data[i * slopes.columns + j] * unknowns[j]);
+    return Math.abs(value) <= 1e-12 * size;
+  });
+}
+
+function leastSquares(slopes: Matrix, residual: number[]): number[] {
+  const decomposition = new SingularValueDecomposition(new LibraryMatrix(toRows(slopes)), {
+    autoTranspose: true,
+  });
+  return decomposition.solve(LibraryMatrix.columnVector(residual)).to1DArray();
+}
+
+function whyNone(loop: Loop, residual: number[]): string {
+  const names = [
+    ...loop.states.map(({ name }) => `the rate of '${name}'`),
+    ...loop.memories.map(({ name }) => `'${name}'`),
+    ...loop.held.map(({ name }) => `'${name}'`),
+  ];
+  const worst = residual.reduce(
+    (best, value, i) => (Math.abs(value) > Math.abs(residual[best]) ? i : best),
+    0,
+  );
+  const value = residual[worst];
+  return `no point of rest was found in ${mostRounds} rounds: ${names[worst]} still changes by ${value.toPrecision(3)}`;
+}
+
+/** The values at rest as leaves for an evaluation. */
+export function leavesAt(
+  loop: Loop,
+  parameters: ArrayLike<number>,
+  inputs: ArrayLike<number>,
+  point: PointOfRest,
+): LeafValues {
+  return withReadings(loop, { parameter: parameters, input: inputs, ...point });
+}
