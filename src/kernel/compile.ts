@@ -1,0 +1,136 @@
+import { Derivative } from '../loop/derivative.js';
+import { type Node, roundHalfAway } from '../loop/graph.js';
+import type { Loop, TracedSignal } from '../loop/loop.js';
+import { type Layout, layOut } from './layout.js';
+import { inArray, statements } from './source.js';
+
+/** A loop's equations as compiled functions over the array `m` which `layout` describes. */
+export interface CompiledLoop {
+  loop: Loop;
+  layout: Layout;
+  /** Moves the continuous states by one step of the classical fourth-order method (Kutta 1901), all else constant. */
+  step: (m: Float64Array, h: number) => void;
+  /** For each task: samples its sensors. */
+  sample: ((m: Float64Array) => void)[];
+  /** For each task: computes its signals, its results into `pending`, and its memories. */
+  compute: ((m: Float64Array) => void)[];
+  /** Writes value and rate of each traced signal at places `at` and `at + 1` of its record. */
+  record: (m: Float64Array, records: Float64Array[], at: number) => void;
+}
+
+/** Compiles a loop with traces of the named signals, in this order. */
+export function compileLoop(loop: Loop, traced: readonly string[]): CompiledLoop {
+  const signals = traced.map((name) => loop.signals.get(name)!);
+  const sampled = signals.filter((signal) => signal.kind === 'sampled');
+  const layout = layOut(loop, sampled.length);
+  const tasks = loop.tasks.map((_, task) => task);
+  return {
+    loop,
+    layout,
+    step: makeFunction('m, h', stepText(loop, layout)),
+    sample: tasks.map((task) => makeFunction('m', sampleText(loop, layout, task))),
+    compute: tasks.map((task) => makeFunction('m', computeText(loop, layout, task, sampled))),
+    record: makeFunction('m, records, at', recordText(loop, layout, signals, sampled)),
+  };
+}
+
+/** The only place where source text becomes a function; the text is written from the graph's own nodes. */
+// biome-ignore lint/suspicious/noExplicitAny: a compiled function has whatever arguments its text says
+function makeFunction(parameters: string, body: string[]): any {
+  return new Function('round', `'use strict'; return (${parameters}) => {\n${body.join('\n')}\n};`)(
+    roundHalfAway,
+  );
+}
+
+/** Four stages; stage k sees the states moved along the rates of the stage before. */
+function stepText(loop: Loop, layout: Layout): string[] {
+  const rates = loop.states.map(({ derivative }) => derivative);
+  const lines = loop.states.map((_, i) => `const x${i} = m[${layout.state + i}];`);
+  const stage = (name: string, state: (i: number) => string): void => {
+    const fromArray = inArray(layout);
+    const { lines: stageLines, results } = statements(
+      rates,
+      (leaf) => (leaf.leaf === 'state' ? state(leaf.index) : fromArray(leaf)),
+      `${name}v`,
+    );
+    lines.push(...stageLines, ...results.map((result, i) => `const ${name}${i} = ${result};`));
+  };
+  stage('a', (i) => `x${i}`);
+  stage('b', (i) => `x${i} + 0.5 * h * a${i}`);
+  stage('c', (i) => `x${i} + 0.5 * h * b${i}`);
+  stage('d', (i) => `x${i} + h * c${i}`);
+  loop.states.forEach((_, i) => {
+    lines.push(`m[${layout.state + i}] = x${i} + h / 6 * (a${i} + 2 * (b${i} + c${i}) + d${i});`);
+  });
+  return lines;
+}
+
+function sampleText(loop: Loop, layout: Layout, task: number): string[] {
+  const own = loop.readings
+    .map((reading, index) => ({ ...reading, index }))
+    .filter((reading) => reading.task === task);
+  const { lines, results } = statements(
+    own.map(({ sampled }) => sampled),
+    inArray(layout),
+    'v',
+  );
+  return [...lines, ...own.map(({ index }, at) => `m[${layout.reading + index}] = ${results[at]};`)];
+}
+
+function computeText(
+  loop: Loop,
+  layout: Layout,
+  task: number,
+  sampled: Extract<TracedSignal, { kind: 'sampled' }>[],
+): string[] {
+  const targets: { place: number; node: Node }[] = [];
+  loop.held.forEach((held, i) => {
+    if (held.task === task) targets.push({ place: layout.pending + i, node: held.value });
+  });
+  loop.memories.forEach((memory, i) => {
+    if (memory.task === task) targets.push({ place: layout.memory + i, node: memory.next });
+  });
+  sampled.forEach((signal, i) => {
+    if (signal.task === task) targets.push({ place: layout.latest + i, node: signal.value });
+  });
+  const { lines, results } = statements(
+    targets.map(({ node }) => node),
+    inArray(layout),
+    'v',
+  );
+  return [...lines, ...targets.map(({ place }, at) => `m[${place}] = ${results[at]};`)];
+}
+
+function recordText(
+  loop: Loop,
+  layout: Layout,
+  signals: TracedSignal[],
+  sampled: Extract<TracedSignal, { kind: 'sampled' }>[],
+): string[] {
+  const zero = loop.graph.number(0);
+  const roots = signals.flatMap((signal) =>
+    signal.kind === 'sampled' ? [zero, zero] : [signal.value, rateOf(loop, signal.value)],
+  );
+  const { lines, results } = statements(roots, inArray(layout), 'v');
+  signals.forEach((signal, i) => {
+    const value =
+      signal.kind === 'sampled' ? `m[${layout.latest + sampled.indexOf(signal)}]` : results[2 * i];
+    lines.push(`const r${i} = records[${i}]; r${i}[at] = ${value}; r${i}[at + 1] = ${results[2 * i + 1]};`);
+  });
+  return lines;
+}
+
+/** Rate of an expression along the motion of the states. */
+export function rateOf(loop: Loop, value: Node): Node {
+  const derivative = new Derivative(loop.graph);
+  const zero = loop.graph.number(0);
+  return loop.states.reduce((sum, state, i) => {
+    const slope = derivative.of(value, loop.graph.leaf('state', i));
+    if (slope === zero) return sum;
+    const part =
+      slope.kind === 'number' && slope.value === 1
+        ? state.derivative
+        : loop.graph.apply('multiply', slope, state.derivative);
+    return sum === zero ? part : loop.graph.apply('add', sum, part);
+  }, zero);
+}

@@ -1,0 +1,78 @@
+import { instantsBetween, type Schedule } from '../loop/schedule.js';
+
+/** A change of an input: from `time` (s) on it is `value` (SI). */
+export interface InputChange {
+  input: number;
+  time: number;
+  value: number;
+}
+
+/** What happens together at one time, in the order of the fields. */
+export interface Action {
+  inputs: { input: number; value: number }[];
+  deliver: number[];
+  compute: number[];
+}
+
+/** A scenario cut into segments between which nothing happens. */
+export interface Timeline {
+  /** Times of the actions and of the end, s; one more than segments. */
+  times: Float64Array;
+  /** What happens at `times[i]`, before segment i; an index into `actions`. */
+  action: Int32Array;
+  actions: Action[];
+  /** Length of segment i, an index into `durations` (s); few are different. */
+  duration: Int32Array;
+  durations: number[];
+}
+
+/** Two times closer than this share of a tick are the same instant. */
+const sameInstant = 1e-6;
+
+/** Cuts the time from 0 to `lasts` (s) at every instant of the schedule and every change of an input. */
+export function timelineOf(schedule: Schedule, changes: readonly InputChange[], lasts: number): Timeline {
+  const rate = schedule.ticksPerSecond;
+  const end = lasts * rate;
+  const byTick = new Map<number, Action>();
+  const at = (tick: number): Action => {
+    const action = byTick.get(tick) ?? { inputs: [], deliver: [], compute: [] };
+    byTick.set(tick, action);
+    return action;
+  };
+  at(0);
+  for (const { tick, deliver, compute } of instantsBetween(schedule, 0, end))
+    Object.assign(at(tick), { deliver, compute });
+  for (const { input, time, value } of changes) {
+    if (time >= lasts) continue;
+    const tick = time * rate;
+    const whole = Math.round(tick);
+    at(Math.abs(tick - whole) < sameInstant ? whole : tick).inputs.push({ input, value });
+  }
+  const ticks = [...byTick.keys()].sort((a, b) => a - b);
+  const actions = new Indexed<Action>((action) => JSON.stringify(action));
+  const durations = new Indexed<number>(String);
+  const following = [...ticks.slice(1), end];
+  return {
+    times: Float64Array.from([...ticks.map((tick) => tick / rate), lasts]),
+    action: Int32Array.from(ticks, (tick) => actions.indexOf(byTick.get(tick)!)),
+    actions: actions.items,
+    duration: Int32Array.from(ticks, (tick, i) => durations.indexOf((following[i] - tick) / rate)),
+    durations: durations.items,
+  };
+}
+
+/** Numbers equal items by their first appearance. */
+class Indexed<T> {
+  readonly items: T[] = [];
+  private readonly known = new Map<string, number>();
+
+  constructor(private readonly keyOf: (item: T) => string) {}
+
+  indexOf(item: T): number {
+    const key = this.keyOf(item);
+    const found = this.known.get(key);
+    if (found !== undefined) return found;
+    this.known.set(key, this.items.length);
+    return this.items.push(item) - 1;
+  }
+}

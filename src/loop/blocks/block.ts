@@ -1,0 +1,40 @@
+import type { Place } from '../../spec/spec.js';
+import type { BlockDescription } from '../../spec/vocabulary.js';
+import type { TargetArithmetic } from '../arithmetic.js';
+import type { Node } from '../graph.js';
+
+/** One use of a block in a spec, with every name already turned into an expression. */
+export interface BlockUse {
+  name: string;
+  place: Place;
+  /** The signal taken by `of:`. May only be called from the deferred functions, or when the output needs it at once. */
+  input: () => Node;
+  /** The gain beside the block; one where none is given. */
+  gain: () => Node;
+  /** A setting's expression, or undefined where the spec leaves it out. */
+  setting: (name: string) => Node | undefined;
+  word: (name: string) => string | undefined;
+  coefficients: (name: string) => Node[];
+  range: { low: Node; high: Node } | undefined;
+}
+
+/** What a block can add to the loop. Rates and next values are deferred, so that signals may refer to each other. */
+export interface Workshop {
+  /** Builds expressions; in a controller as the target computes them. */
+  arithmetic: TargetArithmetic;
+  /** Adds a continuous state and returns it. */
+  addState: (name: string, derivative: () => Node) => Node;
+  /** Adds a number kept between sampling instants and returns its value at the last one. */
+  addMemory: (name: string, next: () => Node) => Node;
+  /** The controller's sampling period in s, in the target's format. */
+  period: () => Node;
+}
+
+/** A block: what the spec reader must know of it, and how it expands into equations. */
+export interface Block {
+  description: BlockDescription;
+  /** Whether the block itself keeps its output in the range. */
+  keepsRange: boolean;
+  /** Adds states and memories, and returns the signal's value. */
+  expand: (use: BlockUse, workshop: Workshop) => Node;
+}

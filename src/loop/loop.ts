@@ -1,0 +1,99 @@
+import type { Place } from '../spec/spec.js';
+import type { Graph, Node } from './graph.js';
+
+/** A continuous state: SI value, rate of change, and where it starts when rest leaves it free. */
+export interface ContinuousState {
+  name: string;
+  derivative: Node;
+  start: number;
+}
+
+/** A number that a controller keeps from one sampling instant to the next. */
+export interface Memory {
+  name: string;
+  task: number;
+  next: Node;
+  start: number;
+}
+
+/** A sensor's value at the sampling instants of one task, in the sensor's declared unit. */
+export interface Reading {
+  sensor: string;
+  task: number;
+  sampled: Node;
+}
+
+/** A value that stays as it is between deliveries: an actuator's output, or a signal on its way to another controller. */
+export interface Held {
+  name: string;
+  task: number;
+  /** Computed at the sampling instant, delivered after the task's delay. */
+  value: Node;
+}
+
+/** A controller as a periodic task. Times are in s and may depend on parameters. */
+export interface Task {
+  name: string;
+  place: Place;
+  period: Node;
+  phase: Node;
+  delay: Node;
+}
+
+/** Ends of a signal's own range and the size of one step of it (0 where it has none), SI. */
+export interface SignalRange {
+  low: Node;
+  high: Node;
+  resolution: Node;
+}
+
+/** How a named signal can be followed over time; SI. */
+export type TracedSignal = {
+  range: SignalRange | undefined;
+} /** Between instants it moves with the states; jumps only when inputs or held values do. */ & (
+  | { kind: 'continuous'; value: Node }
+  /** Changes at the sampling instants of a task only. */
+  | { kind: 'sampled'; task: number; value: Node }
+);
+
+/** Where the loop is cut: every consumer of the signal sees `injected` 0 instead. */
+export interface Opening {
+  at: string;
+  task: number;
+  /** The injected value changes when the task computes, or when its outputs are delivered. */
+  when: 'compute' | 'deliver';
+  /** What the signal would have been. */
+  returned: Node;
+}
+
+/**
+ * A closed loop as equations over leaves: parameters, inputs and states in SI, held values, memories and readings as
+ * numbered here. Nothing behind this type knows blocks.
+ */
+export interface Loop {
+  graph: Graph;
+  parameters: string[];
+  inputs: string[];
+  /** Values of the inputs before anything happens. */
+  inputRest: number[];
+  states: ContinuousState[];
+  memories: Memory[];
+  readings: Reading[];
+  held: Held[];
+  /** In the order in which tasks compute that fall on the same instant. */
+  tasks: Task[];
+  /** For each independent noise source the task at whose sampling instants it is drawn. */
+  noises: number[];
+  signals: Map<string, TracedSignal>;
+  opening: Opening | undefined;
+}
+
+/** Something that only shows when the build's numbers are in: a mistake at a place in the spec. */
+export class LoopError extends Error {
+  constructor(
+    message: string,
+    readonly place: Place,
+  ) {
+    super(message);
+  }
+}
