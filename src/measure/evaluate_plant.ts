@@ -1,0 +1,201 @@
+import { TraceStore } from '../kernel/run_plant.js';
+import type { Run, SignalTrace } from '../kernel/trace.js';
+import { Linearisation } from '../linear/linearise.js';
+import { pointOfRest, type RestResult } from '../linear/point_of_rest.js';
+import { TargetArithmetic } from '../loop/arithmetic.js';
+import { Evaluation } from '../loop/evaluate.js';
+import { type CoefficientValues, expandLoop } from '../loop/expand.js';
+import type { Loop } from '../loop/loop.js';
+import { lower } from '../loop/lower.js';
+import { type Schedule, scheduleOf } from '../loop/schedule.js';
+import type { Expression, Requirement, Spec } from '../spec/spec.js';
+import { measureNamed } from './index.js';
+import { LoopPoint, type MarginsResult } from './loop_point.js';
+import { type MeasureResult, type TraceContext, type TraceMeasure, unformed } from './measure.js';
+import { ScenarioEvents } from './scenario_events.js';
+import { ScenarioRun, timingIsCommon } from './scenario_run.js';
+
+interface TraceGroup {
+  run: ScenarioRun;
+  events: ScenarioEvents;
+  requirements: { requirement: Requirement; index: number; measure: TraceMeasure }[];
+}
+
+interface LoopGroup {
+  point: LoopPoint;
+  requirements: { requirement: Requirement; index: number }[];
+}
+
+/** Measures every requirement of a spec for one plant after another. */
+export class PlantEvaluator {
+  readonly loop: Loop;
+  private readonly linearisation: Linearisation;
+  private readonly traceGroups: TraceGroup[];
+  private readonly loopGroups: LoopGroup[];
+  private readonly commonSchedule: Schedule | undefined;
+
+  /** @throws {LoopError} where the build's numbers do not fit the spec. */
+  constructor(
+    private readonly spec: Spec,
+    coefficients: CoefficientValues,
+  ) {
+    this.loop = expandLoop(spec, coefficients);
+    this.linearisation = new Linearisation(this.loop);
+    const nominal = Float64Array.from(spec.parameters, (parameter) => parameter.nominal);
+    const schedule = scheduleOf(this.loop, nominal);
+    this.commonSchedule = timingIsCommon(this.loop) ? schedule : undefined;
+    this.traceGroups = this.groupByScenario();
+    this.loopGroups = this.groupByLoopPoint(coefficients);
+  }
+
+  /**
+   * @param parameters SI, in the order of the spec.
+   * @param halvings how often the steps of the integration and of the traces are halved.
+   * @returns one result for each requirement, in the order of the spec.
+   */
+  evaluate(parameters: Float64Array, halvings: number): MeasureResult[] {
+    const results: MeasureResult[] = this.spec.requirements.map(() => unformed('it was not measured'));
+    const schedule = this.commonSchedule ?? scheduleOf(this.loop, parameters);
+    const rest = pointOfRest(this.linearisation, parameters, this.loop.inputRest);
+    for (const group of this.traceGroups)
+      this.traceResults(group, parameters, rest, schedule, halvings, results);
+    for (const group of this.loopGroups) this.loopResults(group, parameters, rest, schedule, results);
+    return results;
+  }
+
+  private groupByScenario(): TraceGroup[] {
+    const store = new TraceStore();
+    return this.spec.scenarios.flatMap((scenario, scenarioIndex) => {
+      const requirements = this.spec.requirements.flatMap((requirement, index) => {
+        const measure = measureNamed(requirement.measure);
+        return 'in' in requirement && requirement.in === scenario.name && isTraceMeasure(measure)
+          ? [{ requirement, index, measure }]
+          : [];
+      });
+      if (requirements.length === 0) return [];
+      const traced = [
+        ...new Set(requirements.flatMap(({ requirement }) => Object.values(requirement.signals))),
+      ];
+      const events = new ScenarioEvents(this.spec, scenario, (expression) => this.lowerPlain(expression));
+      const seed = this.spec.perturbation.seed + scenarioIndex;
+      return [
+        { run: new ScenarioRun(this.loop, scenario, events, traced, seed, store), events, requirements },
+      ];
+    });
+  }
+
+  private lowerPlain(expression: Expression): ReturnType<typeof lower> {
+    const { graph } = this.loop;
+    return lower(expression, {
+      arithmetic: new TargetArithmetic(graph, 'float64'),
+      name: ({ name }) => graph.leaf('parameter', this.loop.parameters.indexOf(name)),
+      before: () => {
+        throw new Error('before() in a scenario passed the spec reader');
+      },
+    });
+  }
+
+  private groupByLoopPoint(coefficients: CoefficientValues): LoopGroup[] {
+    const groups = new Map<string, LoopGroup>();
+    this.spec.requirements.forEach((requirement, index) => {
+      if (measureNamed(requirement.measure).description.basis !== 'loop') return;
+      const around = requirement.around.map(({ name, value }) => [name, value]);
+      const key = JSON.stringify([requirement.signals.at, around]);
+      let group = groups.get(key);
+      if (!group) {
+        group = { point: new LoopPoint(this.spec, coefficients, requirement), requirements: [] };
+        groups.set(key, group);
+      }
+      group.requirements.push({ requirement, index });
+    });
+    return [...groups.values()];
+  }
+
+  private traceResults(
+    group: TraceGroup,
+    parameters: Float64Array,
+    rest: RestResult,
+    schedule: Schedule,
+    halvings: number,
+    results: MeasureResult[],
+  ): void {
+    const fromRest = group.run.scenario.start === 'rest';
+    if (fromRest && rest.kind === 'none') {
+      for (const { index } of group.requirements) results[index] = unformed(rest.why);
+      return;
+    }
+    const point = fromRest && rest.kind === 'rest' ? rest.point : undefined;
+    const run = group.run.run(parameters, point, schedule, halvings);
+    for (const { requirement, index, measure } of group.requirements) {
+      results[index] =
+        endedEarly(run) ?? measure.measure(this.traceContext(group, requirement, parameters, run));
+    }
+  }
+
+  private traceContext(
+    { run, events }: TraceGroup,
+    requirement: Requirement,
+    parameters: Float64Array,
+    { times, records, pieces }: Run,
+  ): TraceContext {
+    const trace = (name: string): SignalTrace => ({
+      times,
+      record: records[run.traced.indexOf(name)],
+      pieces,
+    });
+    const { of, to } = requirement.signals;
+    return {
+      of: trace(of),
+      to: to === undefined ? undefined : trace(to),
+      step: to === undefined ? undefined : events.stepOf(to, parameters),
+      range: this.rangeOf(of, parameters),
+      firstEvent: events.firstEvent(parameters),
+      quantity: (name) => requirement.quantities[name],
+    };
+  }
+
+  private rangeOf(name: string, parameters: Float64Array): TraceContext['range'] {
+    const range = this.loop.signals.get(name)?.range;
+    if (!range) return undefined;
+    const evaluation = new Evaluation({ parameter: parameters });
+    return {
+      low: evaluation.of(range.low),
+      high: evaluation.of(range.high),
+      resolution: evaluation.of(range.resolution),
+    };
+  }
+
+  private loopResults(
+    { point, requirements }: LoopGroup,
+    parameters: Float64Array,
+    rest: RestResult,
+    schedule: Schedule,
+    results: MeasureResult[],
+  ): void {
+    const found: MarginsResult =
+      rest.kind === 'none'
+        ? { kind: 'unformed', why: rest.why }
+        : point.margins(parameters, rest.point, schedule);
+    for (const { requirement, index } of requirements) {
+      const measure = measureNamed(requirement.measure);
+      if (isTraceMeasure(measure)) continue;
+      results[index] = found.kind === 'margins' ? measure.measure(found.margins) : unformed(found.why);
+    }
+  }
+}
+
+function isTraceMeasure(measure: ReturnType<typeof measureNamed>): measure is TraceMeasure {
+  return measure.description.basis === 'trace';
+}
+
+function endedEarly({ end }: Run): MeasureResult | undefined {
+  const time = 'time' in end ? Number(end.time.toPrecision(4)) : 0;
+  switch (end.kind) {
+    case 'complete':
+      return undefined;
+    case 'overflow':
+      return { kind: 'overflow', why: `'${end.state}' grew without bound by ${time} s`, time: end.time };
+    case 'not_a_number':
+      return unformed(`'${end.state}' is not a number at ${time} s`);
+  }
+}

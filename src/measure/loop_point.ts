@@ -1,0 +1,92 @@
+import { edgeOf } from '../linear/edge.js';
+import { Linearisation, withReadings } from '../linear/linearise.js';
+import { type LoopMargins, marginsOfLoop } from '../linear/margins.js';
+import { openedLoop } from '../linear/opened_loop.js';
+import type { PointOfRest } from '../linear/point_of_rest.js';
+import { Evaluation, type LeafValues } from '../loop/evaluate.js';
+import { type CoefficientValues, expandLoop } from '../loop/expand.js';
+import { LoopError } from '../loop/loop.js';
+import type { Schedule } from '../loop/schedule.js';
+import type { Requirement, Spec } from '../spec/spec.js';
+
+/** The margins of one plant, or why they cannot be formed. */
+export type MarginsResult = { kind: 'margins'; margins: LoopMargins } | { kind: 'unformed'; why: string };
+
+/** The loop opened at one signal and linearised at one point, for plant after plant. */
+export class LoopPoint {
+  private readonly linearisation: Linearisation;
+  private readonly overrides: { group: 'state' | 'input' | 'held'; index: number; value: number }[];
+
+  constructor(spec: Spec, coefficients: CoefficientValues, { signals, around }: Requirement) {
+    const at = sensorFedBy(spec, signals.at) ?? signals.at;
+    this.linearisation = new Linearisation(expandLoop(spec, coefficients, at));
+    this.overrides = around.map(({ name, value, place }) => ({ ...this.leafNamed(name, place), value }));
+  }
+
+  private leafNamed(
+    name: string,
+    place: Requirement['place'],
+  ): { group: 'state' | 'input' | 'held'; index: number } {
+    const { loop } = this.linearisation;
+    const found = [
+      { group: 'state' as const, index: loop.states.findIndex((state) => state.name === name) },
+      { group: 'input' as const, index: loop.inputs.indexOf(name) },
+      { group: 'held' as const, index: loop.held.findIndex((held) => held.name === name) },
+    ].find(({ index }) => index >= 0);
+    if (found) return found;
+    const states = loop.states.map((state) => `'${state.name}'`).join(', ');
+    throw new LoopError(
+      `the loop cannot be linearised around '${name}', which follows from other signals; expected a state of the plant (${states}), an input or an actuator`,
+      place,
+    );
+  }
+
+  /** @param rest the closed loop's point of rest. */
+  margins(parameters: Float64Array, rest: PointOfRest, schedule: Schedule): MarginsResult {
+    const leaves = this.leaves(parameters, rest);
+    const why = this.edge(leaves);
+    if (why) return { kind: 'unformed', why };
+    const opened = openedLoop(this.linearisation, schedule, leaves);
+    if (opened.b.columns !== 1) {
+      const at = this.linearisation.loop.opening?.at;
+      return {
+        kind: 'unformed',
+        why: `the signal '${at}' changes ${opened.b.columns} times in a cycle of all controllers; open the loop at a signal of the slowest controller`,
+      };
+    }
+    return { kind: 'margins', margins: marginsOfLoop(opened) };
+  }
+
+  private leaves(parameters: Float64Array, rest: PointOfRest): LeafValues {
+    const { loop } = this.linearisation;
+    const point = { state: [...rest.state], input: [...loop.inputRest], held: [...rest.held] };
+    for (const { group, index, value } of this.overrides) point[group][index] = value;
+    // The injected value stands at what the signal is at rest, so that the point is the closed loop's own.
+    const closed = withReadings(loop, { parameter: parameters, memory: rest.memory, ...point });
+    const injected = [new Evaluation(closed, 'off').of(loop.opening!.returned)];
+    return withReadings(loop, { ...closed, injected });
+  }
+
+  private edge(leaves: LeafValues): string | undefined {
+    const evaluation = new Evaluation(leaves, 'off');
+    const { loop } = this.linearisation;
+    const named = [
+      ...loop.states.map(({ name, derivative }) => ({ name, node: derivative })),
+      ...loop.readings.map(({ sensor, sampled }) => ({ name: sensor, node: sampled })),
+      ...loop.memories.map(({ name, next }) => ({ name, node: next })),
+      ...loop.held.map(({ name, value }) => ({ name, node: value })),
+    ];
+    for (const { name, node } of named) {
+      const edge = edgeOf(node, evaluation);
+      if (edge) return `at the point of linearisation '${name}' is at ${edge}`;
+    }
+    return undefined;
+  }
+}
+
+/** A continuous signal that feeds exactly one sensor means that sensor. */
+function sensorFedBy(spec: Spec, name: string): string | undefined {
+  if (!spec.plant.some((signal) => signal.name === name)) return undefined;
+  const fed = spec.sensors.filter(({ of }) => of.kind === 'name' && of.name === name);
+  return fed.length === 1 ? fed[0].name : undefined;
+}

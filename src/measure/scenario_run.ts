@@ -1,0 +1,114 @@
+import { type CompiledLoop, compileLoop } from '../kernel/compile.js';
+import { MovementChoice } from '../kernel/movement.js';
+import { standardNormal } from '../kernel/noise.js';
+import { runPlant, type TraceStore } from '../kernel/run_plant.js';
+import { type InputChange, type Timeline, timelineOf } from '../kernel/timeline.js';
+import type { Run } from '../kernel/trace.js';
+import type { PointOfRest } from '../linear/point_of_rest.js';
+import { Evaluation } from '../loop/evaluate.js';
+import { dependsOn, type Node } from '../loop/graph.js';
+import type { Loop } from '../loop/loop.js';
+import type { Schedule } from '../loop/schedule.js';
+import type { Scenario } from '../spec/spec.js';
+import type { ScenarioEvents } from './scenario_events.js';
+
+/** Runs one scenario for plant after plant; what plants have in common is made once. */
+export class ScenarioRun {
+  readonly compiled: CompiledLoop;
+  private readonly choice: MovementChoice;
+  private readonly noises: Float64Array[] = [];
+  private shared: { schedule: Schedule; timeline: Timeline } | undefined;
+
+  /** @param traced names of the signals to follow, in this order. */
+  constructor(
+    private readonly loop: Loop,
+    readonly scenario: Scenario,
+    private readonly events: ScenarioEvents,
+    readonly traced: readonly string[],
+    private readonly seed: number,
+    private readonly store: TraceStore,
+  ) {
+    this.compiled = compileLoop(loop, traced);
+    this.choice = new MovementChoice(this.compiled);
+  }
+
+  /** Follows one plant from its point of rest (or from zero, where the scenario says so). */
+  run(parameters: Float64Array, rest: PointOfRest | undefined, schedule: Schedule, halvings: number): Run {
+    const start = this.start(parameters, rest);
+    const timeline = this.timeline(parameters, schedule);
+    return runPlant({
+      compiled: this.compiled,
+      start,
+      schedule,
+      timeline,
+      movement: this.choice.of(start, halvings),
+      noise: this.noise(schedule),
+      signals: this.traced.length,
+      store: this.store,
+    });
+  }
+
+  private timeline(parameters: Float64Array, schedule: Schedule): Timeline {
+    if (this.shared?.schedule === schedule) return this.shared.timeline;
+    const changes: InputChange[] = this.events.changes(parameters);
+    const timeline = timelineOf(schedule, changes, this.scenario.lasts);
+    if (this.events.sameForAllPlants) this.shared = { schedule, timeline };
+    return timeline;
+  }
+
+  private noise(schedule: Schedule): Float64Array[] {
+    this.loop.noises.forEach((task, source) => {
+      const instants = Math.ceil((this.scenario.lasts * schedule.ticksPerSecond) / schedule.period[task]) + 1;
+      if ((this.noises[source]?.length ?? 0) < instants) {
+        this.noises[source] = standardNormal(this.seed, source, instants);
+      }
+    });
+    return this.noises;
+  }
+
+  private start(parameters: Float64Array, rest: PointOfRest | undefined): Float64Array {
+    const { layout } = this.compiled;
+    const m = new Float64Array(layout.length);
+    m.set(parameters, layout.parameter);
+    m.set(this.loop.inputRest, layout.input);
+    if (rest) {
+      m.set(rest.state, layout.state);
+      m.set(rest.memory, layout.memory);
+      m.set(rest.held, layout.held);
+    }
+    const evaluation = new Evaluation({ parameter: parameters, input: this.loop.inputRest, ...rest }, 'off');
+    this.loop.readings.forEach(({ sampled }, i) => {
+      m[layout.reading + i] = evaluation.of(sampled);
+    });
+    this.latestAtStart(m);
+    return m;
+  }
+
+  /** Sampled signals have a value before their task computes for the first time: the one at rest. */
+  private latestAtStart(m: Float64Array): void {
+    const { layout } = this.compiled;
+    const part = (from: number, length: number): Float64Array => m.subarray(from, from + length);
+    const evaluation = new Evaluation(
+      {
+        parameter: part(layout.parameter, this.loop.parameters.length),
+        input: part(layout.input, this.loop.inputs.length),
+        held: part(layout.held, this.loop.held.length),
+        memory: part(layout.memory, this.loop.memories.length),
+        reading: part(layout.reading, this.loop.readings.length),
+      },
+      'off',
+    );
+    this.traced
+      .map((name) => this.loop.signals.get(name)!)
+      .filter(({ kind }) => kind === 'sampled')
+      .forEach(({ value }, i) => {
+        m[layout.latest + i] = evaluation.of(value);
+      });
+  }
+}
+
+/** Whether a schedule is the same for every plant. */
+export function timingIsCommon(loop: Loop): boolean {
+  const nodes: Node[] = loop.tasks.flatMap(({ period, phase, delay }) => [period, phase, delay]);
+  return nodes.every((node) => !dependsOn(node, ['parameter']));
+}

@@ -1,0 +1,21 @@
+import { upperBoundOfShare } from '../perturb/binomial_bound.js';
+import type { Judgement } from './judge.js';
+
+/** What the independent plants alone allow to be said, in words a reviewer can quote. */
+export function claimOf(independent: readonly Judgement[], confidence: number): string | undefined {
+  const tried = independent.length;
+  if (tried === 0) return undefined;
+  const failed = independent.filter(({ kind }) => kind !== 'met').length;
+  const bound = upperBoundOfShare(failed, tried, confidence);
+  const plants = `${tried.toLocaleString('en')} independent plants`;
+  const found =
+    failed === 0 ? `in ${plants} none failed` : `${failed.toLocaleString('en')} of ${plants} failed`;
+  return `${found}: with ${percent(confidence)} confidence fewer than ${percent(bound)} do`;
+}
+
+/** Rounded up to two digits, so that the words never claim more than the bound. */
+function percent(share: number): string {
+  const exact = share * 100;
+  const unit = 10 ** (Math.floor(Math.log10(exact)) - 1);
+  return `${Number((Math.ceil(exact / unit - 1e-9) * unit).toPrecision(2))} %`;
+}

@@ -1,0 +1,14 @@
+import type { ParameterDefinition } from '../spec/spec.js';
+import type { ParameterValue } from './run.js';
+
+/** A plant's values beside their nominal ones, each with how far it is on its way to the bound on its side. */
+export function parameterValues(
+  parameters: readonly ParameterDefinition[],
+  values: ArrayLike<number>,
+): ParameterValue[] {
+  return parameters.map(({ name, unit, nominal, low, high }, i) => {
+    const move = values[i] - nominal;
+    const room = move < 0 ? nominal - low : high - nominal;
+    return { name, unit, nominal, value: values[i], moved: move === 0 ? 0 : move / room };
+  });
+}

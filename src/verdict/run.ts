@@ -1,0 +1,107 @@
+import type { Coefficient } from '../firmware/coefficient.js';
+import type { MeasureResult } from '../measure/measure.js';
+import type { PlantOrigin } from '../perturb/plants.js';
+import type { HoldsFor, Limit, Place, Unit } from '../spec/spec.js';
+
+/** What a run says of a requirement. Only `met` lets a merge through. */
+export type Verdict =
+  | { kind: 'met'; headroom: number | undefined }
+  | { kind: 'broken'; headroom: number | undefined; why: string }
+  | { kind: 'unjudged'; why: string };
+
+/** The value of one parameter in a plant, and how far it is moved from nominal towards the bound on that side (0 to 1). */
+export interface ParameterValue {
+  name: string;
+  /** SI */
+  value: number;
+  unit: Unit;
+  nominal: number;
+  /** Share of the way from nominal to the lower (negative) or upper (positive) bound; 0 at nominal. */
+  moved: number;
+}
+
+/** A plant with what the requirement's measure gave for it. */
+export interface JudgedPlant {
+  origin: PlantOrigin;
+  parameters: ParameterValue[];
+  result: MeasureResult;
+  /** Share of the limit; undefined where there is no number. */
+  headroom: number | undefined;
+}
+
+/** How many plants stand behind a verdict. */
+export type Evidence = { kind: 'nominal_only' } | { kind: 'tried'; plants: number };
+
+export interface RequirementRun {
+  name: string;
+  place: Place;
+  measure: string;
+  /** Signals by key as the spec gives them, and the scenario. */
+  signals: Record<string, string>;
+  scenario: string | undefined;
+  reason: string | undefined;
+  limit: Limit;
+  unit: Unit;
+  inDecibels: boolean;
+  holdsFor: HoldsFor;
+  verdict: Verdict;
+  evidence: Evidence;
+  nominal: JudgedPlant;
+  worst: JudgedPlant;
+  /** Plants on which it is broken, or could not be formed. */
+  counts: { tried: number; broken: number; unjudged: number };
+  /** What may be claimed from the independent plants alone, in words. */
+  claim: string | undefined;
+}
+
+/** A coefficient as read from the build, under the spec's name for it. */
+export interface CoefficientRead {
+  name: string;
+  place: Place;
+  unit: Unit | undefined;
+  coefficient: Coefficient;
+}
+
+/** Where the numbers come from. */
+export interface Provenance {
+  /** As written in the spec or on the command line. */
+  image: string;
+  bytes: number;
+  sha256: string;
+  buildId: string | undefined;
+  compilers: string[];
+  build: { command: string[]; seconds: number; output: string } | undefined;
+  /** Said where the build command of the spec was not run. */
+  buildSkipped: boolean;
+}
+
+/** Everything found for one spec. */
+export interface SpecRun {
+  file: string;
+  loop: string;
+  seed: number;
+  confidence: number;
+  provenance: Provenance | undefined;
+  coefficients: CoefficientRead[];
+  requirements: RequirementRun[];
+  /** Plants tried, by why they were tried. */
+  plants: Record<PlantOrigin, number>;
+  scenarios: { name: string; lasts: number }[];
+  /** How often the first step of the integration was halved for all plants. */
+  halvings: number;
+  /** Said of the `merge:` section. */
+  merge: string | undefined;
+  /** Wall time of the judging, in s; for the terminal only. */
+  seconds: number;
+}
+
+/** A finished run over one or more specs. */
+export interface FinishedRun {
+  version: string;
+  specs: SpecRun[];
+}
+
+/** Whether every requirement of every spec is met. */
+export function allMet({ specs }: FinishedRun): boolean {
+  return specs.every(({ requirements }) => requirements.every(({ verdict }) => verdict.kind === 'met'));
+}
