@@ -14,7 +14,7 @@ import {
 } from 'yaml';
 import type { Problems } from './problems.js';
 import type { Place } from './spec.js';
-import type { MapEntry, TextTree, Tree } from './tree.js';
+import type { BrokenTree, MapEntry, TextTree, Tree } from './tree.js';
 import { yamlFaults } from './yaml_faults.js';
 
 /** Longest spec text in characters; a spec is a page or two. */
@@ -162,7 +162,7 @@ function splitByComma(tree: Tree): boolean {
   return tree.source.split('(').length > tree.source.split(')').length;
 }
 
-function brokenByComma(tree: TextTree, source: Source): Tree {
+function brokenByComma(tree: TextTree, source: Source): BrokenTree {
   source.problems.add(
     tree.place,
     `\`${tree.text}\` is cut off at a comma; inside { } and [ ] an expression with a comma or a [ needs quotes, as in value: "max(a, b)"`,

@@ -32,6 +32,16 @@ export interface BlockDescription {
   takesInput: boolean;
   /** Whether `gain:` may stand beside the key (it has dimension output/input). */
   takesGain: boolean;
+  /**
+   * Whether `of` must have the dimension of the signal itself, as in a filter of gain one. Where `takesGain`, this holds
+   * whenever no gain is given, and need not be said.
+   */
+  inputLikeOutput?: boolean;
+  /**
+   * Whether the output is a state (an integral, a lag): it does not depend on its input at the same instant, and so
+   * breaks a cycle of signals. Without it every setting and `of` count as needed at once.
+   */
+  outputIsState?: boolean;
   settings: readonly SettingDescription[];
   /** One line for the reference: the equation, in words and symbols. */
   meaning: string;

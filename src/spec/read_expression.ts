@@ -1,0 +1,148 @@
+import type { CheckContext } from './check_context.js';
+import { check } from './check_expression.js';
+import { isPlain, sameDimension } from './dimension.js';
+import { formatDimension } from './format_dimension.js';
+import type { Room } from './names.js';
+import { parseExpression } from './parse_expression.js';
+import { missing, type Reading } from './reading.js';
+import { type Checked, toScale } from './scales.js';
+import type { Dimension, Expression, Range } from './spec.js';
+import type { Syntax } from './syntax.js';
+import type { ListTree, TextTree, Tree } from './tree.js';
+import { prefixHint } from './unit_hints.js';
+
+/** Where an expression stands and what it must come out as. */
+export interface Slot {
+  /** Undefined where it is not known, because something it follows from is wrong. */
+  dimension: Dimension | undefined;
+  /** SI value of one unit of the slot; 1 in rooms that compute in SI. */
+  scale: number;
+  /** For errors: "`gain`". */
+  what: string;
+}
+
+/** A room and whether conversions may be inserted in it. */
+export interface Surroundings {
+  room: Room;
+  convertsFreely: boolean;
+}
+
+/** An expression that was read and checked, before it is fitted to a slot. */
+export interface Free extends Checked {
+  /** The expression is a coefficient without a unit and nothing else: it takes the slot's. */
+  adapts: boolean;
+  text: TextTree;
+  context: CheckContext;
+}
+
+/** Reads an expression for a slot; undefined where none is written. A wrong one is reported and stands as missing. */
+export function readExpression(
+  tree: Tree | undefined,
+  slot: Slot,
+  surroundings: Surroundings,
+  reading: Reading,
+): Expression | undefined {
+  if (tree === undefined) return undefined;
+  const free = readFree(tree, surroundings, reading);
+  return free === undefined ? missing(tree.place) : fit(free, slot);
+}
+
+/** Reads and checks an expression whose dimension is what it comes out as. */
+export function readFree(
+  tree: Tree | undefined,
+  surroundings: Surroundings,
+  reading: Reading,
+): Free | undefined {
+  if (tree === undefined || tree.kind !== 'text') {
+    if (tree?.kind === 'broken') useAllNames(tree.source, reading);
+    return undefined;
+  }
+  const syntax = parseExpression(tree.source);
+  if (syntax.kind === 'fault') {
+    reading.problems.add(tree.placeAt(syntax.at), syntax.message);
+    useAllNames(tree.source, reading);
+    return undefined;
+  }
+  const context: CheckContext = {
+    ...surroundings,
+    names: reading.names,
+    problems: reading.problems,
+    placeAt: tree.placeAt,
+  };
+  return { ...check(syntax, context), adapts: isAdapting(syntax, reading), text: tree, context };
+}
+
+/** Brings a checked expression to its slot, or reports both dimensions. */
+export function fit(free: Free, slot: Slot): Expression {
+  const { dimension, expression, context } = free;
+  if (dimension === undefined || slot.dimension === undefined) return missing(expression.place);
+  if (free.adapts) return expression;
+  if (!free.zero && !sameDimension(dimension, slot.dimension)) {
+    context.problems.add(startOf(free.text), mismatch(free, dimension, slot, slot.dimension));
+    return missing(expression.place);
+  }
+  return toScale(free, slot.scale, expression.place, context).expression;
+}
+
+/** Reads `[low, high]`. */
+export function readRange(
+  tree: Tree | undefined,
+  slot: Slot,
+  surroundings: Surroundings,
+  reading: Reading,
+): Range | undefined {
+  if (tree?.kind === 'broken') useAllNames(tree.source, reading);
+  if (tree?.kind !== 'list' || tree.items.length !== 2) return undefined;
+  const [low, high] = tree.items.map((item) => readExpression(item, slot, surroundings, reading)!);
+  if (low.kind === 'number' && high.kind === 'number' && low.value >= high.value) reportOrder(tree, reading);
+  const bounds = [numberOf(low), numberOf(high)];
+  if (bounds[0] !== undefined && bounds[1] !== undefined && bounds[0] >= bounds[1])
+    reportOrder(tree, reading);
+  return { low, high };
+}
+
+function reportOrder(tree: ListTree, reading: Reading): void {
+  reading.problems.add(tree.place, 'the lower bound comes first and must be below the upper one');
+}
+
+function numberOf(of: Expression): number | undefined {
+  if (of.kind === 'number') return Number.isNaN(of.value) ? undefined : of.value;
+  if (of.kind !== 'negate') return undefined;
+  const inner = numberOf(of.of);
+  return inner === undefined ? undefined : -inner;
+}
+
+function mismatch(free: Free, found: Dimension, slot: Slot, expected: Dimension): string {
+  const hint = free.withUnit ? prefixHint(free.withUnit, expected) : '';
+  const cure = hint === '' && isPlain(found) && usesBareCoefficient(free.expression) ? coefficientHint : hint;
+  return `${slot.what} must be in ${formatDimension(expected)}, but this is ${formatDimension(found)}${cure}`;
+}
+
+const coefficientHint = '; a coefficient without `unit:` counts as a plain number in an expression';
+
+function usesBareCoefficient(expression: Expression): boolean {
+  switch (expression.kind) {
+    case 'name':
+      return expression.role === 'coefficient';
+    case 'negate':
+    case 'before':
+      return usesBareCoefficient(expression.of);
+    case 'operation':
+      return usesBareCoefficient(expression.left) || usesBareCoefficient(expression.right);
+    default:
+      return false;
+  }
+}
+
+function isAdapting(syntax: Syntax, reading: Reading): boolean {
+  return syntax.kind === 'name' && reading.names.entries.get(syntax.name)?.adapts === true;
+}
+
+function startOf(text: TextTree) {
+  return text.placeAt(Math.max(0, text.source.search(/\S/)));
+}
+
+/** What cannot be parsed still uses the names that stand in it: else each would be reported as unused. */
+function useAllNames(source: string, reading: Reading): void {
+  for (const [word] of source.matchAll(/[A-Za-z]\w*/g)) reading.names.used.add(word);
+}

@@ -1,0 +1,83 @@
+import { formatMismatch } from './format_dimension.js';
+import type { NameEntry, NameKind } from './names.js';
+import { suggestion } from './nearest.js';
+import type { Reading } from './reading.js';
+import { sameUnit } from './same_unit.js';
+import type { SensorDefinition } from './spec.js';
+import { childOf, type MapTree, type TextTree, textOf } from './tree.js';
+import type { MeasureDescription, MeasureKey } from './vocabulary.js';
+
+const traced: readonly NameKind[] = ['plant signal', 'controller signal', 'sensor', 'actuator', 'input'];
+const openable: readonly NameKind[] = ['sensor', 'controller signal', 'actuator'];
+
+/** Reads the keys of a requirement that name signals, and checks that `to` can be compared with `of`. */
+export function readSignalKeys(
+  item: MapTree,
+  measure: MeasureDescription,
+  sensors: readonly SensorDefinition[],
+  reading: Reading,
+): Record<string, string> {
+  const signals: Record<string, string> = {};
+  for (const key of measure.keys) {
+    const text = textOf(childOf(item, key.name));
+    if (text === undefined || !['signal', 'target', 'loop_point'].includes(key.kind)) continue;
+    const found = readSignalKey(text, key, sensors, reading);
+    if (found !== undefined) signals[key.name] = found;
+  }
+  checkComparable(item, signals, reading);
+  return signals;
+}
+
+function readSignalKey(
+  text: TextTree,
+  key: MeasureKey,
+  sensors: readonly SensorDefinition[],
+  reading: Reading,
+): string | undefined {
+  const entry = reading.names.entries.get(text.text);
+  reading.names.used.add(text.text);
+  const accepted = key.kind === 'loop_point' ? openable : traced;
+  if (entry !== undefined && accepted.includes(entry.kind)) return entry.name;
+  if (entry?.kind === 'plant signal') return onlySensorOf(entry, text, sensors, reading);
+  const known = [...reading.names.entries.values()].filter(({ kind }) => accepted.includes(kind));
+  const near = suggestion(
+    text.text,
+    known.map(({ name }) => name),
+  );
+  const fault =
+    entry === undefined ? `unknown signal \`${text.text}\`` : `\`${text.text}\` is a ${entry.kind}`;
+  const expected = entry === undefined ? '' : `, but \`${key.name}\` names ${article(accepted)}`;
+  reading.problems.add(text.place, `${fault}${expected}${near}`);
+  return undefined;
+}
+
+/** A loop opened at a continuous signal is opened at the one sensor that reads it. */
+function onlySensorOf(
+  entry: NameEntry,
+  text: TextTree,
+  sensors: readonly SensorDefinition[],
+  reading: Reading,
+): string | undefined {
+  const reads = sensors.filter(({ of }) => of.kind === 'name' && of.name === entry.name);
+  if (reads.length === 1) return reads[0].name;
+  const found = reads.length === 0 ? 'no sensor reads it by itself' : `${reads.length} sensors read it`;
+  reading.problems.add(
+    text.place,
+    `the loop cannot be opened at the plant signal \`${entry.name}\`, since ${found}; name ${article(openable)}`,
+  );
+  return undefined;
+}
+
+function checkComparable(item: MapTree, signals: Record<string, string>, reading: Reading): void {
+  const to = textOf(childOf(item, 'to'));
+  const [a, b] = [signals.of, signals.to].map((name) => reading.names.entries.get(name ?? '')?.unit);
+  if (to === undefined || a === undefined || b === undefined || sameUnit(a, b)) return;
+  reading.problems.add(
+    to.place,
+    `\`${to.text}\` is in ${formatMismatch(b.dimension, a.dimension)}, the unit of \`${signals.of}\``,
+  );
+}
+
+function article(kinds: readonly NameKind[]): string {
+  return `a ${kinds.slice(0, -1).join(', ')} or ${kinds.at(-1)}`;
+}

@@ -1,0 +1,224 @@
+import { z } from 'zod';
+import type { BlockDescription, Room, Vocabulary } from './vocabulary.js';
+
+/** What is said of a slot in the JSON Schema and in the error when it is missing or of the wrong shape. */
+const text = (expected: string) => z.string().describe(expected);
+const unit = text('a unit such as kg*m^2').optional();
+const range = z
+  .tuple([text('a lower bound'), text('an upper bound')])
+  .describe('two bounds in brackets, such as [-1, 1]')
+  .optional();
+const expression = text('an expression').optional();
+const name = text('a name');
+
+/** The shape of a spec: sections, keys and which are needed; what stands in the slots is read afterwards. */
+export function skeletonOf(vocabulary: Vocabulary) {
+  return z
+    .strictObject({
+      pawl: text('the format version, 1'),
+      loop: text('a title of the loop in plain words'),
+      firmware: firmware.optional(),
+      constants: z
+        .record(z.string(), text('a quantity such as 9.81 m/s^2'))
+        .describe(mappingOf('constants'))
+        .optional(),
+      parameters: named(parameter, 'parameters'),
+      inputs: named(input, 'inputs'),
+      plant: named(signal(vocabulary, 'plant'), 'signals'),
+      sensors: named(sensor, 'sensors'),
+      controllers: named(controller(vocabulary), 'controllers'),
+      actuators: named(actuator, 'actuators'),
+      scenarios: named(scenario, 'scenarios'),
+      requirements: z.array(requirement(vocabulary)).min(1).describe('a list of at least one requirement'),
+      perturbation: perturbation.optional(),
+      merge: merge.optional(),
+    })
+    .describe('a mapping of sections: pawl, loop, firmware, plant, controllers, requirements …');
+}
+
+function mappingOf(what: string): string {
+  return `a mapping of ${what} by name`;
+}
+
+function named<T extends z.ZodType>(one: T, what: string) {
+  return z.record(z.string(), one).describe(mappingOf(what)).optional();
+}
+
+const coefficient = z
+  .union([
+    text('where it is in the build, such as drive.gains.kp'),
+    z.strictObject({
+      at: text('where it is in the build, such as drive.gains.kp'),
+      format: text('a number format such as Q2.14').optional(),
+      unit,
+    }),
+  ])
+  .describe('where it is in the build, such as drive.gains.kp, or { at: …, unit: …, format: … }');
+
+const firmware = z
+  .strictObject({
+    build: z
+      .array(text('an argument'))
+      .min(1)
+      .describe('a list of arguments, such as [make, -C, firmware]')
+      .optional(),
+    image: text('the path of the image, relative to this file'),
+    coefficients: named(coefficient, 'coefficients'),
+  })
+  .describe('a mapping with image, and coefficients by name');
+
+const parameter = z
+  .strictObject({
+    nominal: text('a quantity such as 38 kg*m^2'),
+    spread: text('a share such as 20 %, or a quantity').optional(),
+    from: text('the lower bound').optional(),
+    to: text('the upper bound').optional(),
+  })
+  .describe('{ nominal: …, spread: … } or { nominal: …, from: …, to: … }');
+
+const input = z
+  .strictObject({ unit, rest: text('the value before anything happens').optional() })
+  .describe('{ unit: … }');
+
+function blockValue(block: BlockDescription) {
+  const whole = block.settings.find((setting) => setting.name === block.key);
+  const direct = text(whole?.meaning ?? `the settings of ${block.key}`);
+  if (whole !== undefined && block.settings.length === 1) return direct;
+  const settings = Object.fromEntries(
+    block.settings.map((setting) => {
+      const slot = text(setting.meaning);
+      return [setting.name, setting.optional || setting === whole ? slot.optional() : slot];
+    }),
+  );
+  const needed = block.settings.filter((setting) => !setting.optional).map((setting) => `${setting.name}: …`);
+  const mapping = z
+    .strictObject(settings)
+    .describe(`a mapping of its settings, such as { ${needed.join(', ')} }`);
+  return whole === undefined ? mapping : z.union([direct, mapping]).describe(whole.meaning);
+}
+
+/** The keys that may stand beside the defining key of a signal. */
+export const signalKeys = ['of', 'unit', 'gain', 'range', 'slew', 'start'] as const;
+
+function signal(vocabulary: Vocabulary, room: Room) {
+  const blocks = vocabulary.blocks.filter((block) => block.rooms.includes(room));
+  const defining = Object.fromEntries(blocks.map((block) => [block.key, blockValue(block).optional()]));
+  return z
+    .strictObject({
+      ...defining,
+      of: expression,
+      unit,
+      gain: expression,
+      range,
+      slew: expression,
+      start: text('the state at the start').optional(),
+    })
+    .describe('a mapping with one defining key, such as { value: …, unit: … }');
+}
+
+const sensor = z
+  .strictObject({
+    of: text('what it measures, such as a plant signal'),
+    unit,
+    gain: expression,
+    offset: expression,
+    filter: text('a time constant or a corner frequency').optional(),
+    noise: text('a standard deviation').optional(),
+    range,
+    quantum: text('the size of one step of the reading').optional(),
+  })
+  .describe('{ of: …, unit: … }');
+
+function controller(vocabulary: Vocabulary) {
+  return z
+    .strictObject({
+      every: text('the sampling period, such as 1 ms or 1 kHz'),
+      phase: text('a time').optional(),
+      delay: text('a time').optional(),
+      arithmetic: text('float64 or float32').optional(),
+      signals: z.record(z.string(), signal(vocabulary, 'controller')).describe(mappingOf('signals')),
+    })
+    .describe('{ every: …, signals: … }');
+}
+
+const actuator = z
+  .strictObject({ of: text('a controller signal'), unit, resolution: expression, range })
+  .describe('{ of: … }');
+
+const event = z
+  .strictObject({
+    step: text('an amount').optional(),
+    pulse: text('an amount').optional(),
+    at: text('a time such as 0.2 s'),
+    for: text('a time such as 0.6 s').optional(),
+  })
+  .describe('an event such as { step: 1 V, at: 0.2 s }');
+
+const scenario = z
+  .strictObject({
+    lasts: text('a time such as 4 s'),
+    inputs: z
+      .record(
+        z.string(),
+        z.union([event, z.array(event)]).describe('an event such as { step: 1 V, at: 0.2 s }, or a list'),
+      )
+      .describe(mappingOf('events'))
+      .optional(),
+    start: text('rest or zero').optional(),
+  })
+  .describe('{ lasts: …, inputs: … }');
+
+/** The keys of every requirement, beside those of its measure. */
+export const requirementKeys = [
+  'name',
+  'measure',
+  'in',
+  'around',
+  'at_most',
+  'at_least',
+  'between',
+  'holds_for',
+  'scale',
+  'reason',
+] as const;
+
+function requirement(vocabulary: Vocabulary) {
+  const keys = vocabulary.measures.flatMap((measure) => measure.keys);
+  const slots = Object.fromEntries(keys.map((key) => [key.name, text(key.meaning).optional()]));
+  return z
+    .strictObject({
+      ...slots,
+      name,
+      measure: text('the name of a measure'),
+      in: text('the name of a scenario').optional(),
+      around: z
+        .record(z.string(), text('a quantity'))
+        .describe('signal values, such as { speed: 5 rad/s }')
+        .optional(),
+      at_most: text('a limit: a number with its unit').optional(),
+      at_least: text('a limit: a number with its unit').optional(),
+      between: z
+        .tuple([text('a limit'), text('a limit')])
+        .describe('two limits in brackets, such as [1 V, 2 V]')
+        .optional(),
+      holds_for: text('nominal, all, or a share such as 99 %').optional(),
+      scale: text('a quantity').optional(),
+      reason: text('plain words').optional(),
+    })
+    .describe('{ name: …, measure: …, at_most: … }');
+}
+
+const perturbation = z
+  .strictObject({
+    plants: text('a whole number').optional(),
+    seed: text('a whole number').optional(),
+    confidence: text('a share such as 95 %').optional(),
+  })
+  .describe('{ plants: …, seed: …, confidence: … }');
+
+const merge = z
+  .strictObject({
+    reference: text('the path of the latched reference, relative to this file'),
+    may_slip: text('a share such as 5 %'),
+  })
+  .describe('{ reference: …, may_slip: … }');
