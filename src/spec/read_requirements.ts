@@ -145,7 +145,7 @@ function readQuantities(
   const quantities: Record<string, number> = {};
   for (const key of measure.keys) {
     if (key.kind !== 'share' && key.kind !== 'quantity') continue;
-    const dimension = key.kind === 'share' ? plainNumber : ofDimension && key.dimension(ofDimension);
+    const dimension = key.kind === 'quantity' ? ofDimension && key.dimension(ofDimension) : plainNumber;
     const quantity = readQuantity(childOf(item, key.name), dimension, `\`${key.name}\``, reading);
     if (quantity === undefined) continue;
     if (quantity.value <= 0) reading.problems.add(quantity.place, `\`${key.name}\` must be above 0`);

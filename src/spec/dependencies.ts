@@ -1,0 +1,62 @@
+import type { Expression, SignalDefinition } from './spec.js';
+
+/** A name that an expression needs, and whether it needs it at the same instant. */
+export interface Need {
+  name: string;
+  atOnce: boolean;
+}
+
+/** The names in an expression; those inside before(…) are not needed at once. */
+export function needsOf(expression: Expression, atOnce = true): Need[] {
+  switch (expression.kind) {
+    case 'number':
+      return [];
+    case 'name':
+      return [{ name: expression.name, atOnce }];
+    case 'negate':
+      return needsOf(expression.of, atOnce);
+    case 'before':
+      return needsOf(expression.of, false);
+    case 'operation':
+      return [...needsOf(expression.left, atOnce), ...needsOf(expression.right, atOnce)];
+    case 'call':
+      return expression.arguments.flatMap((argument) => needsOf(argument, atOnce));
+  }
+}
+
+/** The expressions of a signal: what drives its block, and the bounds that act on its output. */
+export function expressionsOf(signal: SignalDefinition): { drives: Expression[]; bounds: Expression[] } {
+  const settings = Object.values(signal.settings).flatMap((setting) =>
+    setting.kind === 'expression' ? [setting.expression] : [],
+  );
+  const given = (list: (Expression | undefined)[]) => list.filter((one) => one !== undefined);
+  return {
+    drives: [...settings, ...given([signal.of, signal.gain])],
+    bounds: given([signal.range?.low, signal.range?.high, signal.slew]),
+  };
+}
+
+/**
+ * A cycle in a graph, as the names along it, or undefined. Depth first without recursion; each name is entered once.
+ */
+export function cyclesOf(graph: ReadonlyMap<string, readonly string[]>): string[][] {
+  const done = new Set<string>();
+  const cycles: string[][] = [];
+  for (const start of graph.keys()) {
+    const path: { name: string; next: number }[] = done.has(start) ? [] : [{ name: start, next: 0 }];
+    while (path.length > 0) {
+      const top = path.at(-1)!;
+      const follower = graph.get(top.name)?.[top.next];
+      top.next += 1;
+      if (follower === undefined) {
+        done.add(top.name);
+        path.pop();
+        continue;
+      }
+      const met = path.findIndex(({ name }) => name === follower);
+      if (met >= 0) cycles.push(path.slice(met).map(({ name }) => name));
+      else if (!done.has(follower) && graph.has(follower)) path.push({ name: follower, next: 0 });
+    }
+  }
+  return cycles;
+}

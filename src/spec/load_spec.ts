@@ -1,0 +1,102 @@
+import { checkCycles } from './check_cycles.js';
+import { checkSkeleton } from './check_skeleton.js';
+import { checkControllersHear, checkUse } from './check_use.js';
+import { checkWindows } from './check_windows.js';
+import { newProblems } from './problems.js';
+import { declareLoop, readActuators, readControllers, readPlant, readSensors } from './read_loop.js';
+import { readConstants, readFirmware, readInputs, readParameters } from './read_named.js';
+import { readRequirements } from './read_requirements.js';
+import { checkVersion, readMerge, readPerturbation } from './read_run.js';
+import { readScenarios } from './read_scenarios.js';
+import { readYaml } from './read_yaml.js';
+import type { Reading } from './reading.js';
+import { skeletonOf } from './skeleton.js';
+import type { Spec, SpecError } from './spec.js';
+import { childOf, entryOf, type MapTree, type Tree, textOf } from './tree.js';
+import type { Vocabulary } from './vocabulary.js';
+
+/** A spec, or all its errors: half a spec cannot be used by forgetting to look. */
+export type LoadedSpec = { kind: 'spec'; spec: Spec } | { kind: 'errors'; errors: SpecError[] };
+
+/**
+ * Reads and checks a spec. Never throws for what stands in the text; every error has its place, sorted by it.
+ *
+ * @param text the YAML text.
+ * @param file its path as errors shall show it.
+ * @param vocabulary the blocks and measures that a spec may use.
+ */
+export function loadSpec(text: string, file: string, vocabulary: Vocabulary): LoadedSpec {
+  const problems = newProblems();
+  const root = rootOf(readYaml(text, file, problems), (place, message) => problems.add(place, message));
+  const reading: Reading = { vocabulary, problems, names: { entries: new Map(), used: new Set() } };
+  const spec = root && readSpec(root, file, reading);
+  const errors = problems.all();
+  return spec !== undefined && errors.length === 0 ? { kind: 'spec', spec } : { kind: 'errors', errors };
+}
+
+function rootOf(
+  tree: Tree | undefined,
+  report: (place: SpecError['place'], message: string) => void,
+): MapTree | undefined {
+  if (tree === undefined || tree.kind === 'map') return tree;
+  report(
+    tree.place,
+    'a spec is a mapping of sections: pawl, loop, firmware, plant, controllers, requirements …',
+  );
+  return undefined;
+}
+
+function readSpec(root: MapTree, file: string, reading: Reading): Spec {
+  checkSkeleton(root, skeletonOf(reading.vocabulary), reading.problems, (path, key) =>
+    misplaced(path, key, reading),
+  );
+  checkVersion(childOf(root, 'pawl'), reading);
+  readConstants(childOf(root, 'constants'), reading);
+  const parameters = readParameters(childOf(root, 'parameters'), reading);
+  const inputs = readInputs(childOf(root, 'inputs'), reading);
+  const firmware = readFirmware(entryOf(root, 'firmware'), reading);
+  declareLoop(root, reading);
+  const plant = readPlant(childOf(root, 'plant'), reading);
+  const sensors = readSensors(childOf(root, 'sensors'), reading);
+  const controllers = readControllers(childOf(root, 'controllers'), reading);
+  const actuators = readActuators(childOf(root, 'actuators'), reading);
+  const scenarios = readScenarios(childOf(root, 'scenarios'), reading);
+  const requirements = readRequirements(childOf(root, 'requirements'), { scenarios, sensors }, reading);
+  const perturbation = readPerturbation(childOf(root, 'perturbation'), reading);
+  const merge = readMerge(entryOf(root, 'merge'), reading);
+  const spec: Spec = {
+    file,
+    loop: textOf(childOf(root, 'loop'))?.text ?? '',
+    firmware,
+    parameters,
+    inputs,
+    plant,
+    sensors,
+    controllers,
+    actuators,
+    scenarios,
+    requirements,
+    perturbation,
+    merge,
+  };
+  checkWhole(spec, reading);
+  return spec;
+}
+
+/** What can be judged only when every section is read. */
+function checkWhole(spec: Spec, reading: Reading): void {
+  checkUse(reading);
+  checkControllersHear(spec.controllers, reading);
+  checkCycles(spec, reading);
+  checkWindows(spec.requirements, spec.scenarios, reading);
+}
+
+/** A block in the wrong room. */
+function misplaced(path: readonly PropertyKey[], key: string, reading: Reading): string | undefined {
+  const inPlant = path[0] === 'plant' && path.length === 2;
+  const inController = path[0] === 'controllers' && path[2] === 'signals' && path.length === 4;
+  const block = reading.vocabulary.blocks.find((known) => known.key === key);
+  if (block === undefined || !(inPlant || inController)) return undefined;
+  const [here, there] = inPlant ? ['the plant', 'a controller'] : ['a controller', 'the plant'];
+  return `\`${key}\` cannot be in ${here}: it is a block of ${there}`;
+}
