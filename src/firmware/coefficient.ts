@@ -14,6 +14,19 @@ export interface StoredElement {
   address: number | undefined;
   /** Name of the value, where the type is an enumeration which has one for it. */
   enumerator?: string;
+  /** Distance to the next number which can be stored, in the unit of the value; absent for what is not finite. */
+  quantum?: number;
+  /** What is conspicuous about the stored bits. */
+  remark?: StoredRemark;
+}
+
+/** A stored number that is hardly meant: `erased` is flash which nobody wrote, all ones. */
+export type StoredRemark = 'not_a_number' | 'infinite' | 'denormal' | 'erased';
+
+/** value = stored number × scale + offset, one entry for each element. */
+export interface Scaling {
+  scale: number[];
+  offset: number[];
 }
 
 /** Where the variable is declared in the source, as the debug information says. */
@@ -34,4 +47,6 @@ export interface Coefficient {
   type: string;
   format: NumberFormat;
   declaredAt: DeclaredAt | undefined;
+  /** Present where the spec gave a scale or an offset; the values have it applied. */
+  scaling?: Scaling;
 }

@@ -66,7 +66,7 @@ function whyNot(type: DataType, text: string): string {
     case 'record':
       return `name one of its members, as in ${text}.${firstMember(type)}`;
     case 'pointer':
-      return 'a pointer is no coefficient; follow it to what it points to with ->';
+      return `a pointer is no coefficient; follow it with ${text}[0] or ${text}->member`;
     case 'other':
       return type.why;
     default:

@@ -5,9 +5,17 @@
  * from, `runBuild` makes the image first. Nothing here guesses: there is an exact value or a `FirmwareError`.
  */
 export { type BuildRecord, type BuildRequest, runBuild } from './build.js';
-export type { Coefficient, DeclaredAt, NumberFormat, StoredElement } from './coefficient.js';
+export type {
+  Coefficient,
+  DeclaredAt,
+  NumberFormat,
+  Scaling,
+  StoredElement,
+  StoredRemark,
+} from './coefficient.js';
 export { describeImage, type ImageDescription } from './describe_image.js';
 export { FirmwareError, type FirmwareErrorCode } from './failure.js';
 export { type FirmwareImage, openImage } from './image.js';
 export { formatText, parseFormat } from './number_format.js';
-export { type CoefficientRequest, readCoefficient, readCoefficients } from './read_coefficient.js';
+export { readCoefficient, readCoefficients } from './read_coefficient.js';
+export type { CoefficientRequest } from './request.js';

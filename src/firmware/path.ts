@@ -9,6 +9,8 @@ export type PathStep =
 /** A variable and the way into it, as `file.c:ns::type::name.member[3]->other`. */
 export interface CoefficientPath {
   text: string;
+  /** The text up to the first step. */
+  root: string;
   /** The source file that tells variables of the same name apart. */
   file: string | undefined;
   /** Namespaces, classes or the function around it, outermost first. */
@@ -32,6 +34,7 @@ export function parsePath(text: string): CoefficientPath {
     throw notAPath(text, rest === '' ? 'a name is missing' : `${quoted(rest)} does not begin with a name`);
   return {
     text: trimmed,
+    root: trimmed.slice(0, trimmed.length - rest.length + rootEnd),
     file: file?.[1],
     scopes: parts,
     name,

@@ -120,12 +120,6 @@ function memberNames(
 
 function elementOf(part: Part, index: number): Part {
   const { type } = part;
-  if (type.kind === 'pointer') {
-    throw new FirmwareError(
-      'index_out_of_range',
-      `${quoted(part.text)} is a pointer to data of unknown length: name the table itself`,
-    );
-  }
   if (type.kind !== 'array') {
     throw new FirmwareError(
       'index_out_of_range',

@@ -8,6 +8,8 @@ import { FirmwareError } from './failure.js';
 export interface Storage {
   /** @throws FirmwareError where there are none */
   read(offset: number, size: number): Uint8Array;
+  /** The same for bytes which are an address. */
+  readAddress(offset: number, size: number): Uint8Array;
   /** The address on the target; undefined for a constant without one. */
   address(offset: number): number | undefined;
 }
@@ -22,6 +24,8 @@ export function storageAt(elf: ElfFile, place: Place, size: number, options: Rea
     case 'memory':
       return {
         read: (offset, length) => readMemory(elf, place.address + offset, length, options),
+        readAddress: (offset, length) =>
+          readMemory(elf, place.address + offset, length, { ...options, isAddress: true }),
         // The sections of an unlinked object are placed by the linker only.
         address: (offset) => (elf.relocatable ? undefined : place.address + offset),
       };
@@ -40,18 +44,16 @@ export function storageAt(elf: ElfFile, place: Place, size: number, options: Rea
 }
 
 function constantStorage(bytes: Uint8Array, options: ReadOptions): Storage {
-  return {
-    read(offset, size) {
-      if (offset + size > bytes.length) {
-        throw new FirmwareError(
-          'malformed_image',
-          `${options.what}: the constant in the debug information has ${bytes.length} bytes, wanted ${size} at ${hex(offset)}`,
-        );
-      }
-      return bytes.subarray(offset, offset + size);
-    },
-    address: () => undefined,
+  const read = (offset: number, size: number) => {
+    if (offset + size > bytes.length) {
+      throw new FirmwareError(
+        'malformed_image',
+        `${options.what}: the constant in the debug information has ${bytes.length} bytes, wanted ${size} at ${hex(offset)}`,
+      );
+    }
+    return bytes.subarray(offset, offset + size);
   };
+  return { read, readAddress: read, address: () => undefined };
 }
 
 function bytesOfNumber(value: bigint, size: number, littleEndian: boolean): Uint8Array {
@@ -80,19 +82,18 @@ function piecesStorage(
       const to = Math.min(offset + size, starts[i] + piece.size);
       return from < to ? [{ piece, from: from - starts[i], length: to - from }] : [];
     });
+  const read = (offset: number, size: number) => {
+    const bytes = parts(offset, size).map(({ piece, from, length }) =>
+      storageAt(elf, piece.place, piece.size, options).read(from, length),
+    );
+    const whole = Buffer.concat(bytes);
+    if (whole.length < size)
+      throw new FirmwareError('no_fixed_place', `${options.what}: a part of it was removed by the optimiser`);
+    return whole;
+  };
   return {
-    read(offset, size) {
-      const bytes = parts(offset, size).map(({ piece, from, length }) =>
-        storageAt(elf, piece.place, piece.size, options).read(from, length),
-      );
-      const whole = Buffer.concat(bytes);
-      if (whole.length < size)
-        throw new FirmwareError(
-          'no_fixed_place',
-          `${options.what}: a part of it was removed by the optimiser`,
-        );
-      return whole;
-    },
+    read,
+    readAddress: read,
     address(offset) {
       const [part] = parts(offset, 1);
       return part?.piece.place.kind === 'memory' && !elf.relocatable

@@ -26,6 +26,11 @@ export function findVariable(debug: DebugInformation, path: CoefficientPath): Ma
   return { definitions: chosen, declarations: fitting.filter((variable) => !isDefinition(variable)) };
 }
 
+/** The variables of this name which are declared within functions, whatever those are called. */
+export function findInFunction(debug: DebugInformation, name: string): Variable[] {
+  return variablesNamed(debug, name).filter((variable) => variable.inFunction && isDefinition(variable));
+}
+
 /** Where the variable is declared, from the definition if that says it. */
 export function declaredAt(variable: Variable): { file: string; line: number } | undefined {
   const entry = entryWith(variable, at.declarationLine);

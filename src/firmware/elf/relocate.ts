@@ -60,7 +60,7 @@ const actions: Record<number, Record<number, Action>> = {
 };
 
 /** One row of a relocation table. */
-interface Relocation {
+export interface Relocation {
   offset: number;
   type: number;
   symbol: number;
@@ -94,6 +94,17 @@ const executable = 0x4;
 /** Offsets in the section which the linker will still change. */
 export function relocatedOffsets(elf: ElfFile, section: ElfSection): number[] {
   return relocationsOf(elf, section).map((row) => row.offset);
+}
+
+/** The row of a relocation table which changes this place, as a loader does it. */
+export function relocationAt(elf: ElfFile, table: ElfSection, place: number): Relocation | undefined {
+  if (table.type !== sectionType.rela && table.type !== sectionType.rel) return undefined;
+  let rows = keptRows.get(table);
+  if (!rows) {
+    rows = readTable(elf, table);
+    keptRows.set(table, rows);
+  }
+  return rows.find((row) => row.offset === place);
 }
 
 const keptRows = new WeakMap<ElfSection, Relocation[]>();

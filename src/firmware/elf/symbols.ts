@@ -63,6 +63,15 @@ export function symbolAt(elf: ElfFile, index: number): ElfSymbol | undefined {
   return table && index < table.count ? readSymbol(elf, table, index) : undefined;
 }
 
+/** The address of a symbol in the table that a relocation table is linked to; undefined when it is not in this file. */
+export function dynamicSymbolAddress(elf: ElfFile, tableIndex: number, index: number): number | undefined {
+  const section = elf.sections[tableIndex];
+  if (section?.type !== sectionType.dynamicSymbols && section?.type !== sectionType.symbols) return undefined;
+  const table = tableFrom(elf, section);
+  const symbol = index > 0 && index < table.count ? readSymbol(elf, table, index) : undefined;
+  return symbol && symbol.section !== undefinedSection ? symbol.address : undefined;
+}
+
 /** All symbols of this exact name, found without decoding the other names. */
 export function symbolsNamed(elf: ElfFile, name: string): ElfSymbol[] {
   const kept = tableOf(elf);
@@ -113,7 +122,10 @@ function openTable(elf: ElfFile): SymbolTable | undefined {
   const section =
     elf.sections.find((s) => s.type === sectionType.symbols && s.size > 0) ??
     elf.sections.find((s) => s.type === sectionType.dynamicSymbols && s.size > 0);
-  if (!section) return undefined;
+  return section && tableFrom(elf, section);
+}
+
+function tableFrom(elf: ElfFile, section: ElfSection): SymbolTable {
   const strings = elf.sections[section.link];
   if (!strings || strings.type !== sectionType.strings) {
     throw new FirmwareError(

@@ -1,0 +1,88 @@
+import { hex } from './cursor.js';
+import { textAttribute } from './dwarf/attributes.js';
+import { at } from './dwarf/codes.js';
+import { declaredAt } from './dwarf/find_variable.js';
+import { entryWith, type Variable } from './dwarf/variables.js';
+import {
+  commonSection,
+  type ElfSymbol,
+  fileOfSymbol,
+  hasSymbols,
+  isData,
+  symbolsNamed,
+} from './elf/symbols.js';
+import { FirmwareError, quoted } from './failure.js';
+import type { ElfImage } from './image.js';
+import type { CoefficientPath } from './path.js';
+import type { Root } from './root.js';
+
+/**
+ * The symbol that a path without a definition in the debug information means.
+ * @throws FirmwareError `ambiguous_name` when there are several
+ */
+export function symbolFor(
+  image: ElfImage,
+  path: CoefficientPath,
+  declarations: Variable[],
+): ElfSymbol | undefined {
+  const linked = declarations
+    .map((variable) => entryWith(variable, at.linkageName))
+    .find((entry) => entry !== undefined);
+  const names = [
+    linked && textAttribute(linked, at.linkageName),
+    path.scopes.length === 0 ? path.name : undefined,
+    path.text,
+  ];
+  for (const name of names) {
+    if (name === undefined) continue;
+    const named = symbolsNamed(image.elf, name).filter(
+      (symbol) =>
+        isData(symbol) && (path.file === undefined || fileOfSymbol(image.elf, symbol)?.endsWith(path.file)),
+    );
+    const places = new Map(named.map((symbol) => [symbol.address, symbol]));
+    if (places.size > 1) throw ambiguousSymbols(image, path, [...places.values()]);
+    if (places.size === 1) return named.find((symbol) => symbol.size > 0) ?? named[0];
+  }
+  return undefined;
+}
+
+/** A variable of which only the symbol table knows. @throws FirmwareError for common data, which has no value */
+export function rootOfSymbol(image: ElfImage, path: CoefficientPath, symbol: ElfSymbol): Root {
+  if (symbol.section === commonSection) {
+    throw new FirmwareError(
+      'no_contents',
+      `${quoted(path.text)} in ${quoted(image.name)} is common data without a value; initialise it in the source`,
+    );
+  }
+  return {
+    steps: symbol.name === path.text ? [] : path.steps,
+    type: undefined,
+    place: { kind: 'memory', address: symbol.address },
+    symbolSize: symbol.size || undefined,
+    declaredAt: undefined,
+  };
+}
+
+function ambiguousSymbols(image: ElfImage, path: CoefficientPath, symbols: ElfSymbol[]): FirmwareError {
+  const places = symbols.slice(0, 4).map((symbol) => {
+    const file = fileOfSymbol(image.elf, symbol);
+    return `${quoted(file ? `${file}:${symbol.name}` : symbol.name)} (${hex(symbol.address)})`;
+  });
+  return new FirmwareError(
+    'ambiguous_name',
+    `${quoted(path.text)} can mean ${places.join(' or ')}: write one of these`,
+  );
+}
+
+/** The error for a variable that the image declares but does not hold. */
+export function declaredOnly(image: ElfImage, path: CoefficientPath, variable: Variable): FirmwareError {
+  const place = declaredAt(variable);
+  const where = place ? ` (${place.file}:${place.line})` : '';
+  const why = hasSymbols(image.elf)
+    ? 'the image does not hold it: it was removed, or its definition was not linked in'
+    : 'the image has no symbol table that says where it is: keep the symbols (do not strip)';
+  return new FirmwareError(
+    'garbage_collected',
+    `${quoted(path.text)}${where} is only declared in ${quoted(image.name)}; ${why}`,
+  );
+}
