@@ -1,5 +1,5 @@
 import type { FrequencySweep } from './frequency_sweep.js';
-import { dipBelowZero, rootBetween } from './root_finding.js';
+import { zerosOver } from './sweep_zeros.js';
 
 /** A frequency at which the loop gain is one. */
 export interface GainCrossing {
@@ -57,8 +57,6 @@ export function phaseCrossingAt(frequency: number, parts: Float64Array): PhaseCr
   return negative && factor < LARGEST_GAIN && factor > 1 / LARGEST_GAIN ? { frequency, factor } : undefined;
 }
 
-type OfParts = (parts: Float64Array, at: number) => number;
-
 /** (|L|² − 1)/(|L|² + 1). */
 function gainExcess(p: Float64Array, at: number): number {
   const below = p[at] * p[at] + p[at + 1] * p[at + 1];
@@ -72,38 +70,4 @@ function quadrature(p: Float64Array, at: number): number {
   const above = p[at + 2] * p[at + 2] + p[at + 3] * p[at + 3];
   const product = Math.sqrt(below) * Math.sqrt(above);
   return product === 0 ? 0 : (p[at + 3] * p[at] - p[at + 2] * p[at + 1]) / product;
-}
-
-/** The zeros of a function of the response between two indices of the sweep, ascending. */
-function zerosOver(sweep: FrequencySweep, of: OfParts, first: number, last: number): number[] {
-  const { frequencies, parts, transfer } = sweep;
-  const scratch = new Float64Array(4);
-  const f = (frequency: number): number => {
-    transfer.evaluate(frequency, scratch);
-    return of(scratch, 0);
-  };
-  const values = new Float64Array(frequencies.length);
-  for (let i = first; i <= last; i++) values[i] = of(parts, 4 * i);
-  const result: number[] = [];
-  for (let i = first; i < last; i++) {
-    if (i > first && values[i] === 0 && values[i - 1] * values[i + 1] !== 0) result.push(frequencies[i]);
-    if (values[i] * values[i + 1] < 0) result.push(rootBetween(f, frequencies[i], frequencies[i + 1]));
-    if (i > first && isNearMiss(values, i)) {
-      result.push(...pairBetween(f, frequencies[i - 1], frequencies[i + 1], Math.sign(values[i])));
-    }
-  }
-  return result.sort((a, b) => a - b);
-}
-
-/** Whether the value at i is the nearest to zero among its neighbours, all of one sign, and near enough to deserve a search. */
-function isNearMiss(values: Float64Array, i: number): boolean {
-  const here = Math.abs(values[i]);
-  if (!(here < 0.5) || here === 0) return false;
-  if (values[i - 1] * values[i] <= 0 || values[i] * values[i + 1] <= 0) return false;
-  return here <= Math.abs(values[i - 1]) && here <= Math.abs(values[i + 1]);
-}
-
-function pairBetween(f: (x: number) => number, a: number, b: number, sign: number): number[] {
-  const turn = dipBelowZero((x) => sign * f(x), a, b);
-  return turn === undefined ? [] : [rootBetween(f, a, turn), rootBetween(f, turn, b)];
 }

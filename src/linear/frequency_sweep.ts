@@ -6,6 +6,8 @@ import { prepareTransfer, type Transfer } from './transfer.js';
 /** A response with one input and one output, evaluated at frequencies that follow its features. */
 export interface FrequencySweep {
   transfer: Transfer;
+  /** Sampling period in s, or undefined for a continuous response. */
+  period: number | undefined;
   /** rad/s, ascending: 0, the grid, and for a sampled system half the sampling frequency. */
   frequencies: number[];
   /** Denominator and numerator at each frequency: real, imaginary, real, imaginary. */
@@ -25,8 +27,10 @@ export function sweepOf(system: StateEquations, features: readonly Complex[], de
   if (system.period !== undefined) frequencies.push(Math.PI / system.period);
   const transfer = prepareTransfer(system, 0, deadTime);
   const parts = new Float64Array(4 * frequencies.length);
-  frequencies.forEach((frequency, i) => {
-    transfer.evaluate(frequency, parts.subarray(4 * i, 4 * i + 4));
-  });
-  return { transfer, frequencies, parts, lastInner: grid.length };
+  const scratch = new Float64Array(4);
+  for (let i = 0; i < frequencies.length; i++) {
+    transfer.evaluate(frequencies[i], scratch);
+    parts.set(scratch, 4 * i);
+  }
+  return { transfer, period: system.period, frequencies, parts, lastInner: grid.length };
 }

@@ -1,13 +1,10 @@
 import type { FrequencySweep } from './frequency_sweep.js';
+import { frequencyOfImage } from './largest_gain.js';
+import type { LoopAnalysis } from './loop_analysis.js';
+import { fromRows, scale } from './matrix.js';
+import type { Peak } from './peak.js';
+import { provenPeak } from './proven_peak.js';
 import { rootBetween } from './root_finding.js';
-
-/** The largest size of a closed-loop response over frequency. */
-export interface Peak {
-  /** As a ratio. */
-  value: number;
-  /** rad/s; 0, half the sampling frequency or Infinity when the peak lies at the end. Undefined for an unstable loop. */
-  frequency: number | undefined;
-}
 
 /** A closed-loop response (loopWeight·L + unitWeight)/(1 + L). */
 export interface ClosedLoopRatio {
@@ -22,6 +19,34 @@ export const COMPLEMENTARY: ClosedLoopRatio = { loopWeight: 1, unitWeight: 0 };
 /** 1/(1 + L) − 1/2 */
 export const BALANCED: ClosedLoopRatio = { loopWeight: -0.5, unitWeight: 0.5 };
 
+/**
+ * The largest size of a closed-loop response of a stable loop: the best of the sweep, then proved to be the largest.
+ * With a dead time the sweep alone stands, because the proof needs a rational response.
+ */
+export function peakOfLoop(
+  { sweep, atInfinity, sensitivityImage }: LoopAnalysis,
+  ratio: ClosedLoopRatio,
+): Peak {
+  const start = sweptPeak(sweep, ratio, atInfinity);
+  if (sensitivityImage === undefined) return start;
+  const parts = new Float64Array(4);
+  const probe = {
+    gainAt: (frequency: number): number => {
+      sweep.transfer.evaluate(frequency, parts);
+      return sizeAt(parts, 0, ratio);
+    },
+    peakBetween: (left: number, right: number) => refinedPeak(sweep, ratio, left, right),
+  };
+  // (loopWeight·L + unitWeight)/(1 + L) = loopWeight + (unitWeight − loopWeight)/(1 + L)
+  const factor = ratio.unitWeight - ratio.loopWeight;
+  const image = {
+    ...sensitivityImage,
+    c: scale(sensitivityImage.c, factor),
+    d: fromRows([[ratio.loopWeight + factor * sensitivityImage.d.data[0]]]),
+  };
+  return provenPeak(image, start, probe, frequencyOfImage(sweep.period));
+}
+
 /** Grid values down to this share of the largest one are refined: between two points a peak rises by a few per cent only. */
 const WORTH_REFINING = 0.7;
 
@@ -29,11 +54,7 @@ const WORTH_REFINING = 0.7;
  * The largest peak that the sweep of a loop transfer L shows, each candidate refined by a zero of the exact slope.
  * @param atInfinity L at infinite frequency (continuous systems), or undefined for a sampled system.
  */
-export function largestPeak(
-  sweep: FrequencySweep,
-  ratio: ClosedLoopRatio,
-  atInfinity: number | undefined,
-): Peak {
+function sweptPeak(sweep: FrequencySweep, ratio: ClosedLoopRatio, atInfinity: number | undefined): Peak {
   const { frequencies, parts } = sweep;
   const sizes = Float64Array.from(frequencies, (_, i) => sizeAt(parts, 4 * i, ratio));
   let best: Peak = { value: 0, frequency: 0 };

@@ -1,4 +1,3 @@
-import { closedLoopMatrix } from './closed_loop.js';
 import {
   type GainCrossing,
   gainCrossings,
@@ -6,12 +5,11 @@ import {
   phaseCrossingAt,
   phaseCrossings,
 } from './crossings.js';
-import { staysStableWithDeadTime } from './dead_time_stability.js';
-import { type FrequencySweep, sweepOf } from './frequency_sweep.js';
-import { COMPLEMENTARY, largestPeak, type Peak, SENSITIVITY } from './loop_peaks.js';
-import { polesOf, stabilityReserve } from './poles.js';
+import type { FrequencySweep } from './frequency_sweep.js';
+import { analyseLoop } from './loop_analysis.js';
+import { COMPLEMENTARY, peakOfLoop, SENSITIVITY } from './loop_peaks.js';
+import type { Peak } from './peak.js';
 import type { StateEquations } from './state_equations.js';
-import { transmissionZeros } from './transmission_zeros.js';
 
 /**
  * How far a loop is from instability. All are as the loop stands, counted from −1; an unstable loop has none, so every
@@ -55,13 +53,14 @@ export interface GainMargin {
  * closed or an entry is not finite.
  */
 export function marginsOfLoop(loop: StateEquations, deadTime = 0): LoopMargins {
-  const { sweep, stable, atInfinity } = analyseLoop(loop, deadTime);
+  const analysis = analyseLoop(loop, deadTime);
+  const { sweep, stable, atInfinity } = analysis;
   const crossings = {
     gainCrossings: gainCrossings(sweep),
     phaseCrossings: allPhaseCrossings(sweep, atInfinity),
   };
   if (!stable) return { ...UNSTABLE, ...crossings };
-  const sensitivityPeak = largestPeak(sweep, SENSITIVITY, atInfinity);
+  const sensitivityPeak = peakOfLoop(analysis, SENSITIVITY);
   return {
     stable,
     gainMargin: gainMarginOf(crossings.phaseCrossings),
@@ -69,7 +68,7 @@ export function marginsOfLoop(loop: StateEquations, deadTime = 0): LoopMargins {
     delayMargin: smallest(crossings.gainCrossings, delayMarginAt),
     modulusMargin: 1 / sensitivityPeak.value,
     sensitivityPeak,
-    complementaryPeak: largestPeak(sweep, COMPLEMENTARY, atInfinity),
+    complementaryPeak: peakOfLoop(analysis, COMPLEMENTARY),
     ...crossings,
   };
 }
@@ -83,46 +82,6 @@ const UNSTABLE = {
   sensitivityPeak: { value: Number.POSITIVE_INFINITY, frequency: undefined },
   complementaryPeak: { value: Number.POSITIVE_INFINITY, frequency: undefined },
 };
-
-interface LoopAnalysis {
-  sweep: FrequencySweep;
-  stable: boolean;
-  /** What L tends to at infinite frequency, at its worst angle when there is a dead time; undefined for a sampled loop. */
-  atInfinity: number | undefined;
-}
-
-function analyseLoop(loop: StateEquations, deadTime: number): LoopAnalysis {
-  const { period } = loop;
-  if (deadTime !== 0 && !(deadTime > 0 && period === undefined)) {
-    throw new RangeError(
-      `a dead time of ${deadTime} s was given: it must be positive, and the loop continuous`,
-    );
-  }
-  const closed = polesOf(closedLoopMatrix(loop), period);
-  const open = polesOf(loop.a, period);
-  const features = [...closed, ...open, ...transmissionZeros(loop, typicalSize([...closed, ...open]))];
-  const feedthrough = loop.d.data[0];
-  const atInfinity = period === undefined ? (deadTime > 0 ? -Math.abs(feedthrough) : feedthrough) : undefined;
-  if (deadTime === 0) {
-    const stable = stabilityReserve(closed, period) > 0;
-    return { sweep: sweepOf(loop, features), stable, atInfinity };
-  }
-  const undelayed = sweepOf(loop, features);
-  const unstablePoles = closed.filter(({ real }) => real >= 0).length;
-  const stable = staysStableWithDeadTime(
-    undelayed,
-    gainCrossings(undelayed),
-    unstablePoles,
-    feedthrough,
-    deadTime,
-  );
-  return { sweep: sweepOf(loop, features, deadTime), stable, atInfinity };
-}
-
-function typicalSize(poles: readonly { real: number; imaginary: number }[]): number {
-  const largest = Math.max(0, ...poles.map(({ real, imaginary }) => Math.hypot(real, imaginary)));
-  return largest > 0 ? largest : 1;
-}
 
 /** Those inside the range, and the ends, where L is always real. */
 function allPhaseCrossings(sweep: FrequencySweep, atInfinity: number | undefined): PhaseCrossing[] {
