@@ -1,0 +1,148 @@
+import {
+  add,
+  fromRows,
+  identity,
+  type Matrix,
+  multiply,
+  place,
+  scale,
+  zeros,
+} from '../../src/linear/matrix.js';
+import { type PolynomialRatio, stateEquationsOf } from '../../src/linear/polynomial_ratio.js';
+import type { StateEquations } from '../../src/linear/state_equations.js';
+
+/** State equations of numerator/denominator in descending powers; sampled when a period is given. */
+export function loopOf(numerator: number[], denominator: number[], period?: number): StateEquations {
+  return stateEquationsOf({ numerator, denominator, period });
+}
+
+/** The product of polynomials in descending powers. */
+export function product(...factors: number[][]): number[] {
+  return factors.reduce(
+    (total, factor) => {
+      const result = new Array<number>(total.length + factor.length - 1).fill(0);
+      total.forEach((x, i) => {
+        factor.forEach((y, j) => {
+          result[i + j] += x * y;
+        });
+      });
+      return result;
+    },
+    [1],
+  );
+}
+
+/** The characteristic polynomial in descending powers (Faddeev and Leverrier): exact enough for a few states. */
+export function characteristicPolynomial(a: Matrix): number[] {
+  const n = a.rows;
+  const result = [1];
+  let m = zeros(n, n);
+  for (let k = 1; k <= n; k++) {
+    m = add(multiply(a, m), identity(n), result[k - 1]);
+    const am = multiply(a, m);
+    let trace = 0;
+    for (let i = 0; i < n; i++) trace += am.data[i * n + i];
+    result.push(-trace / k);
+  }
+  return result;
+}
+
+/** The transfer function of a system with one input and one output, numerator padded to the denominator's length. */
+export function ratioOf(system: StateEquations): PolynomialRatio {
+  const denominator = characteristicPolynomial(system.a);
+  const shifted = characteristicPolynomial(add(system.a, multiply(system.b, system.c), -1));
+  const through = system.d.data[0];
+  const numerator = denominator.map((x, i) => shifted[i] - x + through * x);
+  return { numerator, denominator, period: system.period };
+}
+
+/** `first`, then `second`: what the first gives drives the second. */
+export function inSeries(first: StateEquations, second: StateEquations): StateEquations {
+  const n = first.a.rows;
+  const m = second.a.rows;
+  const a = zeros(n + m, n + m);
+  place(a, first.a, 0, 0);
+  place(a, multiply(second.b, first.c), n, 0);
+  place(a, second.a, n, n);
+  const b = zeros(n + m, first.b.columns);
+  place(b, first.b, 0, 0);
+  place(b, multiply(second.b, first.d), n, 0);
+  const c = zeros(second.c.rows, n + m);
+  place(c, multiply(second.d, first.c), 0, 0);
+  place(c, second.c, 0, n);
+  return { a, b, c, d: multiply(second.d, first.d), period: first.period };
+}
+
+/** The same system with its output multiplied by a factor. */
+export function times(system: StateEquations, factor: number): StateEquations {
+  return { ...system, c: scale(system.c, factor), d: scale(system.d, factor) };
+}
+
+/** State equations from plain rows. */
+export function systemOf(
+  a: number[][],
+  b: number[][],
+  c: number[][],
+  d: number[][],
+  period?: number,
+): StateEquations {
+  return { a: fromRows(a), b: fromRows(b), c: fromRows(c), d: fromRows(d), period };
+}
+
+/** Repeatable numbers, uniform between 0 and 1 (a 32-bit mix after Steele, Lea and Flood, 2014). */
+export function repeatable(seed: number): () => number {
+  let state = seed >>> 0;
+  return () => {
+    state = (state + 0x9e3779b9) >>> 0;
+    let x = state;
+    x = Math.imul(x ^ (x >>> 16), 0x21f0aaad);
+    x = Math.imul(x ^ (x >>> 15), 0x735a2d97);
+    return ((x ^ (x >>> 15)) >>> 0) / 2 ** 32;
+  };
+}
+
+/**
+ * A sampled loop of the given order with real and resonant poles at many distances from the unit circle, zeros likewise, and
+ * a gain that leaves about half of such loops stable.
+ */
+export function randomLoop(order: number, random: () => number): StateEquations {
+  const denominator = randomPolynomial(order, random);
+  const zeroCount = Math.floor(random() * (order + 1));
+  const numerator = randomPolynomial(zeroCount, random);
+  const bare = loopOf(numerator, denominator, 10 ** (-4 + 3 * random()));
+  // Gain against the largest size over a coarse look round the circle.
+  let largest = 0;
+  for (let k = 1; k < 200; k++)
+    largest = Math.max(largest, sizeOnCircle(numerator, denominator, (Math.PI * k) / 200));
+  return times(bare, (random() < 0.8 ? 1 : -1) * (10 ** (2 * random() - 1) / largest));
+}
+
+function randomPolynomial(order: number, random: () => number): number[] {
+  let result = [1];
+  for (let left = order; left > 0; ) {
+    const radius = 1 - 10 ** (-3.5 * random());
+    if (left >= 2 && random() < 0.6) {
+      const angle = Math.PI * random() ** 2;
+      result = product(result, [1, -2 * radius * Math.cos(angle), radius * radius]);
+      left -= 2;
+    } else {
+      result = product(result, [1, random() < 0.15 ? -1 : (random() < 0.85 ? -1 : 1) * radius]);
+      left -= 1;
+    }
+  }
+  return result;
+}
+
+function sizeOnCircle(numerator: number[], denominator: number[], angle: number): number {
+  const at = (coefficients: number[]): number => {
+    let real = 0;
+    let imaginary = 0;
+    for (const coefficient of coefficients) {
+      const next = real * Math.cos(angle) - imaginary * Math.sin(angle) + coefficient;
+      imaginary = real * Math.sin(angle) + imaginary * Math.cos(angle);
+      real = next;
+    }
+    return Math.hypot(real, imaginary);
+  };
+  return at(numerator) / at(denominator);
+}
