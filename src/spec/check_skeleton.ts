@@ -1,8 +1,8 @@
 import { z } from 'zod';
-import { suggestion } from './nearest.js';
+import { nearestName, suggestion } from './nearest.js';
 import type { Problems } from './problems.js';
 import type { Place } from './spec.js';
-import { childOf, entryOf, type MapTree, type Tree } from './tree.js';
+import { childOf, entryOf, type MapEntry, type MapTree, type Tree } from './tree.js';
 
 /** One complaint of the schema, as far as it is used here. */
 type Issue = z.core.$ZodIssue;
@@ -11,8 +11,15 @@ type Path = readonly PropertyKey[];
 /** Stands for a broken part: no schema accepts it, and the complaint is then dropped. */
 const broken = Symbol('broken');
 
+/** A key that no schema knows, and the mapping in which it stands. */
+export interface UnknownKey {
+  holder: Tree;
+  entry: MapEntry;
+  nearest: string | undefined;
+}
+
 /**
- * Holds a tree against the schema and reports what has the wrong shape, each at its place.
+ * Holds a tree against the schema, reports what has the wrong shape, each at its place, and returns the unknown keys.
  * `explain` may say more of an unknown key than its nearest neighbour.
  */
 export function checkSkeleton(
@@ -20,10 +27,14 @@ export function checkSkeleton(
   schema: z.ZodType,
   problems: Problems,
   explain: (path: Path, key: string) => string | undefined,
-): void {
+): UnknownKey[] {
   const result = schema.safeParse(plainRoot(tree));
-  for (const issue of result.error?.issues ?? [])
-    report(issue, issue.path, { tree, schema, problems, explain });
+  const held: Held = { tree, schema, problems, explain, unknown: [] };
+  const complaints = (result.error?.issues ?? []).flatMap((issue) => unfolded(issue, issue.path));
+  const isUnknown = ({ issue }: Complaint) => issue.code === 'unrecognized_keys';
+  for (const complaint of complaints.filter(isUnknown)) reportUnknownKeys(complaint, held);
+  for (const complaint of complaints.filter((one) => !isUnknown(one))) reportShape(complaint, held);
+  return held.unknown;
 }
 
 interface Held {
@@ -31,21 +42,18 @@ interface Held {
   schema: z.ZodType;
   problems: Problems;
   explain: (path: Path, key: string) => string | undefined;
+  unknown: UnknownKey[];
 }
 
-function report(issue: Issue, path: Path, held: Held): void {
-  const at = treeAt(held.tree, path);
-  if (at?.kind === 'broken') return;
-  if (issue.code === 'unrecognized_keys') {
-    for (const key of issue.keys) reportUnknownKey(key, path, at, held);
-    return;
-  }
+/** An issue with its path from the root. */
+interface Complaint {
+  issue: Issue;
+  path: Path;
+}
+
+function unfolded(issue: Issue, path: Path): Complaint[] {
   const branch = issue.code === 'invalid_union' ? fittingBranch(issue) : undefined;
-  if (branch !== undefined) {
-    for (const inner of branch) report(inner, [...path, ...inner.path], held);
-    return;
-  }
-  held.problems.add(at?.place ?? ownerPlace(held.tree, path), shapeFault(path, at, expectedAt(held, path)));
+  return branch?.flatMap((inner) => unfolded(inner, [...path, ...inner.path])) ?? [{ issue, path }];
 }
 
 /** The alternative that has the shape of what is written: its complaints lie deeper. */
@@ -55,20 +63,38 @@ function fittingBranch(issue: z.core.$ZodIssueInvalidUnion): Issue[] | undefined
   );
 }
 
-function reportUnknownKey(key: string, path: Path, at: Tree | undefined, held: Held): void {
-  const place = entryOf(at, key)?.keyPlace ?? held.tree.place;
-  const explained = held.explain(path, key);
+function reportUnknownKeys({ issue, path }: Complaint, held: Held): void {
+  const holder = treeAt(held.tree, path);
   const valid = keysOf(schemaAt(held.schema, path, held.tree));
-  const where = path.length === 0 ? 'the spec' : `\`${String(path.at(-1))}\``;
-  held.problems.add(place, explained ?? `unknown key \`${key}\` in ${where}${suggestion(key, valid)}`);
+  const where = path.length === 0 ? 'the spec' : whatIs(path.at(-1)!);
+  for (const key of issue.code === 'unrecognized_keys' ? issue.keys : []) {
+    const entry = entryOf(holder, key);
+    if (holder === undefined || entry === undefined) continue;
+    held.unknown.push({ holder, entry, nearest: nearestName(key, valid) });
+    const fault = held.explain(path, key) ?? `unknown key \`${key}\` in ${where}${suggestion(key, valid)}`;
+    held.problems.add(entry.keyPlace, fault);
+  }
+}
+
+/** What seems missing but stands there mistyped is reported as mistyped only. */
+function reportShape({ path }: Complaint, held: Held): void {
+  const at = treeAt(held.tree, path);
+  const holder = treeAt(held.tree, path.slice(0, -1));
+  const mistyped = held.unknown.some((one) => one.holder === holder && one.nearest === path.at(-1));
+  if (at?.kind === 'broken' || (at === undefined && mistyped)) return;
+  held.problems.add(at?.place ?? ownerPlace(held.tree, path), shapeFault(path, at, expectedAt(held, path)));
+}
+
+function whatIs(step: PropertyKey): string {
+  return typeof step === 'number' ? `item ${step + 1}` : `\`${String(step)}\``;
 }
 
 function shapeFault(path: Path, at: Tree | undefined, expected: string): string {
-  const last = path.at(-1);
-  const name = typeof last === 'number' ? `item ${last + 1}` : `\`${String(last ?? 'the spec')}\``;
+  const name = path.length === 0 ? 'the spec' : whatIs(path.at(-1)!);
   if (at === undefined) return `${name} is missing; expected ${expected}`;
   if (at.kind === 'empty') return `${name} is empty; expected ${expected}`;
-  const found = { text: 'a single value', map: 'a mapping', list: 'a list', broken: '' }[at.kind];
+  const list = at.kind === 'list' && at.items.length === 0 ? 'an empty list' : 'a list';
+  const found = { text: 'a single value', map: 'a mapping', list, broken: '' }[at.kind];
   const shown = at.kind === 'text' ? `\`${at.text}\`` : found;
   return `${name} is ${shown}; expected ${expected}`;
 }

@@ -63,7 +63,8 @@ function checkLength(requirement: Requirement, scenario: Scenario, window: Windo
   const longest = 'at_most' in limit ? limit.at_most : 'between' in limit ? limit.between[1] : Number.NaN;
   const needed = 1.5 * longest;
   // One part in 1e9 is left to the rounding of sums such as 0.2 + 3.8.
-  if (!(window.until - window.from < needed * (1 - 1e-9))) return;
+  const long = !(window.until - window.from < needed * (1 - 1e-9));
+  if (long || window.from >= scenario.lasts) return;
   const end =
     window.until === scenario.lasts ? `scenario \`${scenario.name}\` ends` : 'the next change comes';
   reading.problems.add(

@@ -1,12 +1,4 @@
-import {
-  baseUnits,
-  isPlain,
-  plainNumber,
-  powerOf,
-  quotientOf,
-  rateDimension,
-  sameDimension,
-} from './dimension.js';
+import { baseUnits, isPlain, powerOf, quotientOf, rateDimension, sameDimension } from './dimension.js';
 import type { Dimension } from './spec.js';
 import { unitSymbols } from './unit_table.js';
 
@@ -64,7 +56,8 @@ function raised(symbol: string, power: number): string {
   return power === 1 ? symbol : `${symbol}^${Number(power.toPrecision(6))}`;
 }
 
-/** Both sides of a wrong dimension, as in "N*m, expected rad/s". */
-export function formatMismatch(found: Dimension, expected: Dimension = plainNumber): string {
-  return `${formatDimension(found)}, but expected ${formatDimension(expected)}`;
+/** Both sides of a wrong dimension: "must be in N*m, but this is V". */
+export function formatMismatch(found: Dimension, expected: Dimension): string {
+  const inOrBe = isPlain(expected) ? 'must be' : 'must be in';
+  return `${inOrBe} ${formatDimension(expected)}, but this is ${formatDimension(found)}`;
 }

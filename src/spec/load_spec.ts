@@ -2,14 +2,14 @@ import { checkCycles } from './check_cycles.js';
 import { checkSkeleton } from './check_skeleton.js';
 import { checkControllersHear, checkUse } from './check_use.js';
 import { checkWindows } from './check_windows.js';
-import { newProblems } from './problems.js';
+import { newProblems, type Problems } from './problems.js';
 import { declareLoop, readActuators, readControllers, readPlant, readSensors } from './read_loop.js';
 import { readConstants, readFirmware, readInputs, readParameters } from './read_named.js';
 import { readRequirements } from './read_requirements.js';
 import { checkVersion, readMerge, readPerturbation } from './read_run.js';
 import { readScenarios } from './read_scenarios.js';
 import { readYaml } from './read_yaml.js';
-import type { Reading } from './reading.js';
+import { type Reading, useAllNames } from './reading.js';
 import { skeletonOf } from './skeleton.js';
 import type { Spec, SpecError } from './spec.js';
 import { childOf, entryOf, type MapTree, type Tree, textOf } from './tree.js';
@@ -28,8 +28,7 @@ export type LoadedSpec = { kind: 'spec'; spec: Spec } | { kind: 'errors'; errors
 export function loadSpec(text: string, file: string, vocabulary: Vocabulary): LoadedSpec {
   const problems = newProblems();
   const root = rootOf(readYaml(text, file, problems), (place, message) => problems.add(place, message));
-  const reading: Reading = { vocabulary, problems, names: { entries: new Map(), used: new Set() } };
-  const spec = root && readSpec(root, file, reading);
+  const spec = root && readSpec(root, file, readingOf(root, vocabulary, problems));
   const errors = problems.all();
   return spec !== undefined && errors.length === 0 ? { kind: 'spec', spec } : { kind: 'errors', errors };
 }
@@ -46,10 +45,18 @@ function rootOf(
   return undefined;
 }
 
-function readSpec(root: MapTree, file: string, reading: Reading): Spec {
-  checkSkeleton(root, skeletonOf(reading.vocabulary), reading.problems, (path, key) =>
-    misplaced(path, key, reading),
+/** Checks the shape of everything; the readers of the sections then pass over what has the wrong one. */
+function readingOf(root: MapTree, vocabulary: Vocabulary, problems: Problems): Reading {
+  const unknown = checkSkeleton(root, skeletonOf(vocabulary), problems, (path, key) =>
+    misplaced(path, key, vocabulary),
   );
+  const strange = new Set(unknown.map(({ holder }) => holder));
+  const reading: Reading = { vocabulary, problems, strange, names: { entries: new Map(), used: new Set() } };
+  for (const { entry } of unknown) useAllNames(entry.value, reading);
+  return reading;
+}
+
+function readSpec(root: MapTree, file: string, reading: Reading): Spec {
   checkVersion(childOf(root, 'pawl'), reading);
   readConstants(childOf(root, 'constants'), reading);
   const parameters = readParameters(childOf(root, 'parameters'), reading);
@@ -92,10 +99,10 @@ function checkWhole(spec: Spec, reading: Reading): void {
 }
 
 /** A block in the wrong room. */
-function misplaced(path: readonly PropertyKey[], key: string, reading: Reading): string | undefined {
+function misplaced(path: readonly PropertyKey[], key: string, vocabulary: Vocabulary): string | undefined {
   const inPlant = path[0] === 'plant' && path.length === 2;
   const inController = path[0] === 'controllers' && path[2] === 'signals' && path.length === 4;
-  const block = reading.vocabulary.blocks.find((known) => known.key === key);
+  const block = vocabulary.blocks.find((known) => known.key === key);
   if (block === undefined || !(inPlant || inController)) return undefined;
   const [here, there] = inPlant ? ['the plant', 'a controller'] : ['a controller', 'the plant'];
   return `\`${key}\` cannot be in ${here}: it is a block of ${there}`;

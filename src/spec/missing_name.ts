@@ -4,9 +4,16 @@ import { type NameEntry, type NameKind, nameFault } from './names.js';
 import { nearestName } from './nearest.js';
 import { parseUnit } from './units.js';
 
-/** Why a name means nothing where it stands: hidden there, mistyped, or not defined at all. */
+/**
+ * Why a name means nothing where it stands: hidden there, mistyped, or not defined at all. What was probably meant
+ * counts as used, so that it is not reported as forgotten besides.
+ */
 export function missingName(name: string, entry: NameEntry | undefined, context: CheckContext): string {
-  if (entry !== undefined) return hiddenName(entry, context);
+  const { used } = context.names;
+  if (entry !== undefined) {
+    if (entry.kind === 'plant signal') for (const sensor of namesOf('sensor', context)) used.add(sensor);
+    return hiddenName(entry, context);
+  }
   if (functionNamed(name) !== undefined || name === 'before') {
     return `\`${name}\` is a function: its arguments follow in parentheses`;
   }
@@ -16,7 +23,10 @@ export function missingName(name: string, entry: NameEntry | undefined, context:
     name,
     visible.map((known) => known.name),
   );
-  if (nearest !== undefined) return `no such name \`${name}\`; did you mean \`${nearest}\`?`;
+  if (nearest !== undefined) {
+    used.add(nearest);
+    return `no such name \`${name}\`; did you mean \`${nearest}\`?`;
+  }
   if (nameFault(name) !== undefined || isUnit(name)) {
     return `no such name \`${name}\`; a quantity stands in parentheses of its own, as in (0.5 mrad/s)`;
   }
@@ -43,6 +53,11 @@ function hiddenName(entry: NameEntry, context: CheckContext): string {
   if (entry.kind === 'parameter') return `${what}, which the firmware does not know; ${sees}`;
   if (entry.kind === 'coefficient') return `${what} of the firmware, which the plant does not know; ${sees}`;
   return `${what}; ${sees}`;
+}
+
+function namesOf(kind: NameKind, context: CheckContext): string[] {
+  const entries = [...context.names.entries.values()];
+  return entries.filter((entry) => entry.kind === kind).map(({ name }) => name);
 }
 
 function isUnit(name: string): boolean {

@@ -2,7 +2,7 @@ import { distance } from 'fastest-levenshtein';
 
 /**
  * The valid name nearest to a mistyped one, or undefined where none is near: at most one edit for every three
- * letters (at least one), capitals and underscores not counted at full weight.
+ * letters begun, capitals and underscores not counted at full weight.
  */
 export function nearestName(mistyped: string, valid: Iterable<string>): string | undefined {
   let best: { name: string; edits: number } | undefined;
@@ -19,14 +19,16 @@ export function nearestName(mistyped: string, valid: Iterable<string>): string |
 export function suggestion(mistyped: string, valid: readonly string[]): string {
   const nearest = nearestName(mistyped, valid);
   if (nearest !== undefined) return `; did you mean \`${nearest}\`?`;
-  if (valid.length === 0 || valid.length > 12) return '';
+  if (valid.length === 0 || valid.length > 14) return '';
   return `; valid here: ${valid.join(', ')}`;
 }
 
 /** Long junk is not compared at all, so that the cost stays bounded. */
 function allowedEdits(a: string, b: string): number {
-  if (Math.max(a.length, b.length) > 60) return -1;
-  return Math.max(1, Math.min(a.length, b.length) / 3);
+  const [shorter, longer] = [Math.min(a.length, b.length), Math.max(a.length, b.length)];
+  if (longer > 60) return -1;
+  // Of single letters any is one edit from any other: there only the capital counts as near.
+  return longer === 1 ? 0.5 : Math.ceil(shorter / 3);
 }
 
 function withoutStyle(name: string): string {

@@ -1,10 +1,10 @@
 import type { CheckContext } from './check_context.js';
 import { check } from './check_expression.js';
 import { isPlain, sameDimension } from './dimension.js';
-import { formatDimension } from './format_dimension.js';
+import { formatMismatch } from './format_dimension.js';
 import type { Room } from './names.js';
 import { parseExpression } from './parse_expression.js';
-import { missing, type Reading } from './reading.js';
+import { missing, type Reading, useAllNames } from './reading.js';
 import { type Checked, toScale } from './scales.js';
 import type { Dimension, Expression, Range } from './spec.js';
 import type { Syntax } from './syntax.js';
@@ -54,13 +54,13 @@ export function readFree(
   reading: Reading,
 ): Free | undefined {
   if (tree === undefined || tree.kind !== 'text') {
-    if (tree?.kind === 'broken') useAllNames(tree.source, reading);
+    if (tree?.kind === 'broken') useAllNames(tree, reading);
     return undefined;
   }
   const syntax = parseExpression(tree.source);
   if (syntax.kind === 'fault') {
     reading.problems.add(tree.placeAt(syntax.at), syntax.message);
-    useAllNames(tree.source, reading);
+    useAllNames(tree, reading);
     return undefined;
   }
   const context: CheckContext = {
@@ -91,7 +91,7 @@ export function readRange(
   surroundings: Surroundings,
   reading: Reading,
 ): Range | undefined {
-  if (tree?.kind === 'broken') useAllNames(tree.source, reading);
+  if (tree?.kind === 'broken') useAllNames(tree, reading);
   if (tree?.kind !== 'list' || tree.items.length !== 2) return undefined;
   const [low, high] = tree.items.map((item) => readExpression(item, slot, surroundings, reading)!);
   if (low.kind === 'number' && high.kind === 'number' && low.value >= high.value) reportOrder(tree, reading);
@@ -115,7 +115,7 @@ function numberOf(of: Expression): number | undefined {
 function mismatch(free: Free, found: Dimension, slot: Slot, expected: Dimension): string {
   const hint = free.withUnit ? prefixHint(free.withUnit, expected) : '';
   const cure = hint === '' && isPlain(found) && usesBareCoefficient(free.expression) ? coefficientHint : hint;
-  return `${slot.what} must be in ${formatDimension(expected)}, but this is ${formatDimension(found)}${cure}`;
+  return `${slot.what} ${formatMismatch(found, expected)}${cure}`;
 }
 
 const coefficientHint = '; a coefficient without `unit:` counts as a plain number in an expression';
@@ -140,9 +140,4 @@ function isAdapting(syntax: Syntax, reading: Reading): boolean {
 
 function startOf(text: TextTree) {
   return text.placeAt(Math.max(0, text.source.search(/\S/)));
-}
-
-/** What cannot be parsed still uses the names that stand in it: else each would be reported as unused. */
-function useAllNames(source: string, reading: Reading): void {
-  for (const [word] of source.matchAll(/[A-Za-z]\w*/g)) reading.names.used.add(word);
 }

@@ -36,6 +36,7 @@ export function readLimit(
 
 function reportCount(item: MapTree, given: MapEntry[], reading: Reading): void {
   if (given.length === 0) {
+    if (reading.strange.has(item)) return;
     const place = textOf(childOf(item, 'name'))?.place ?? item.place;
     reading.problems.add(place, 'this requirement has no limit; expected one of at_most, at_least, between');
     return;

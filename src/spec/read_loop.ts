@@ -12,7 +12,7 @@ import {
   type Surroundings,
 } from './read_expression.js';
 import { readPeriod, readTimeConstant } from './read_frequency.js';
-import { declareEntry } from './read_named.js';
+import { declaredUnit, declareEntry } from './read_named.js';
 import { readUnit } from './read_quantity.js';
 import { readSignal } from './read_signal.js';
 import { missing, type Reading } from './reading.js';
@@ -62,7 +62,7 @@ export function readSensors(tree: Tree | undefined, reading: Reading): SensorDef
 
 function readSensor(entry: MapEntry, reading: Reading): SensorDefinition {
   const part = (key: string) => childOf(entry.value, key);
-  const unit = reading.names.entries.get(entry.key)?.unit;
+  const unit = declaredUnit(entry, reading);
   const own = (key: string): Slot => ({ dimension: unit?.dimension, scale: 1, what: `\`${key}\`` });
   const measured = readFree(part('of'), plant, reading);
   const hasGain = part('gain') !== undefined;
@@ -148,7 +148,7 @@ export function readActuators(tree: Tree | undefined, reading: Reading): Actuato
 }
 
 function readActuator(entry: MapEntry, reading: Reading): ActuatorDefinition {
-  const unit = reading.names.entries.get(entry.key)?.unit;
+  const unit = declaredUnit(entry, reading);
   const slot = (what: string): Slot => ({ dimension: unit?.dimension, scale: 1, what });
   const of = textOf(childOf(entry.value, 'of'));
   checkActuatorSource(entry, reading);
@@ -181,10 +181,10 @@ function checkActuatorSource(entry: MapEntry, reading: Reading): void {
     );
     return;
   }
-  const unit = reading.names.entries.get(entry.key)?.unit;
+  const unit = declaredUnit(entry, reading);
   if (sameUnit(unit, source.unit)) return;
   reading.problems.add(
     of.place,
-    `\`${of.text}\` is in ${formatMismatch(source.unit!.dimension, unit!.dimension)}, the unit of actuator \`${entry.key}\``,
+    `what actuator \`${entry.key}\` takes ${formatMismatch(source.unit!.dimension, unit!.dimension)}`,
   );
 }

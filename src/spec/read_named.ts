@@ -20,6 +20,12 @@ export function declareEntry(
   );
 }
 
+/** The declared unit of an entry; unknown where it is wrong or the name belongs to an earlier definition. */
+export function declaredUnit({ key, keyPlace }: MapEntry, reading: Reading): Unit | undefined {
+  const known = reading.names.entries.get(key);
+  return known?.place === keyPlace ? known.unit : undefined;
+}
+
 /** `constants:` fixed quantities by name; they stand in the namespace only. */
 export function readConstants(tree: Tree | undefined, reading: Reading): void {
   for (const entry of entriesOf(tree)) {
@@ -45,6 +51,7 @@ function readParameter(
   const dimension = nominal?.unit.dimension;
   const given = ['spread', 'from', 'to'].filter((key) => childOf(value, key) !== undefined);
   if (value.kind === 'map' && !['spread', 'from,to'].includes(given.join())) {
+    if (reading.strange.has(value)) return undefined;
     const found = given.length === 0 ? 'no bounds' : given.join(' and ');
     reading.problems.add(
       place,

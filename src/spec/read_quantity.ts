@@ -1,5 +1,5 @@
 import { isPlain, plainNumber, sameDimension } from './dimension.js';
-import { formatDimension, unitOfDimension } from './format_dimension.js';
+import { formatMismatch, unitOfDimension } from './format_dimension.js';
 import { parseExpression } from './parse_expression.js';
 import type { Reading } from './reading.js';
 import type { Dimension, Place, Quantity, Unit } from './spec.js';
@@ -116,7 +116,7 @@ function fitted(
   }
   reading.problems.add(
     quantity.place,
-    `${what} must be in ${formatDimension(expected)}, but this is ${formatDimension(dimension)}${prefixHint(text, expected)}`,
+    `${what} ${formatMismatch(dimension, expected)}${prefixHint(text, expected)}`,
   );
   return undefined;
 }

@@ -103,7 +103,7 @@ function checkKeys(item: MapTree, measure: MeasureDescription, reading: Reading)
   }
   const place = textOf(childOf(item, 'measure'))?.place ?? item.place;
   const absent = measure.keys.filter((key) => !key.optional && entryOf(item, key.name) === undefined);
-  if (absent.length === 0) return;
+  if (absent.length === 0 || reading.strange.has(item)) return;
   const list = absent.map((key) => `\`${key.name}:\` (${key.meaning})`).join(' and ');
   reading.problems.add(place, `\`${measure.name}\` needs ${list}`);
 }

@@ -70,6 +70,7 @@ function readEvent(
   if (tree.kind !== 'map') return undefined;
   const kinds = (['step', 'pulse'] as const).filter((key) => entryOf(tree, key) !== undefined);
   if (kinds.length !== 1) {
+    if (reading.strange.has(tree)) return undefined;
     const found = kinds.length === 0 ? 'neither step nor pulse' : 'both step and pulse';
     reading.problems.add(tree.place, `this event has ${found}; expected one of them`);
     return undefined;

@@ -10,10 +10,11 @@ import {
   type Surroundings,
 } from './read_expression.js';
 import { readCorner, readTimeConstant } from './read_frequency.js';
+import { declaredUnit } from './read_named.js';
 import { readQuantity } from './read_quantity.js';
-import { missing, type Reading } from './reading.js';
+import { missing, type Reading, useAllNames } from './reading.js';
 import type { Dimension, Expression, Setting, SignalDefinition, Unit } from './spec.js';
-import { childOf, entriesOf, entryOf, type MapEntry, type Tree, textOf } from './tree.js';
+import { childOf, entryOf, type MapEntry, type Tree, textOf } from './tree.js';
 import type { BlockDescription, Room, SettingDescription } from './vocabulary.js';
 
 /** What is known of a signal while its settings are read. */
@@ -37,7 +38,7 @@ export function readSignal(
 ): SignalDefinition | undefined {
   const block = definingBlock(entry, room, reading);
   if (block === undefined) return undefined;
-  const unit = reading.names.entries.get(entry.key)?.unit;
+  const unit = declaredUnit(entry, reading);
   const scale = around.room.si ? 1 : (unit?.scale ?? 1);
   const ofTree = childOf(entry.value, 'of');
   const place: Workplace = {
@@ -72,31 +73,25 @@ function definingBlock(entry: MapEntry, room: Room, reading: Reading): BlockDesc
   const found = known.filter((block) => entryOf(entry.value, block.key) !== undefined);
   if (found.length === 1) return found[0];
   const keys = known.map((block) => block.key);
+  useAllNames(entry.value, reading);
   if (found.length > 1) {
     const given = found.map((block) => `\`${block.key}\``).join(' and ');
     reading.problems.add(
       entry.keyPlace,
       `signal \`${entry.key}\` is defined by ${given}; expected exactly one`,
     );
-  } else if (!hasStrangeKey(entry, reading)) {
+  } else if (!reading.strange.has(entry.value)) {
     const expected = `expected one of ${keys.join(', ')}`;
     reading.problems.add(entry.keyPlace, `signal \`${entry.key}\` has no defining key; ${expected}`);
   }
   return undefined;
 }
 
-/** A mistyped defining key is reported as an unknown key already. */
-function hasStrangeKey(entry: MapEntry, reading: Reading): boolean {
-  const blocks = reading.vocabulary.blocks.map((block) => block.key);
-  const beside = ['of', 'unit', 'gain', 'range', 'slew', 'start'];
-  return entriesOf(entry.value).some(({ key }) => blocks.includes(key) || !beside.includes(key));
-}
-
 /** What the block needs or cannot have beside it. */
 function checkCompanions({ block, entry, reading }: Workplace): void {
   const of = entryOf(entry.value, 'of');
   const gain = entryOf(entry.value, 'gain');
-  if (block.takesInput && of === undefined) {
+  if (block.takesInput && of === undefined && !reading.strange.has(entry.value)) {
     reading.problems.add(entry.keyPlace, `\`${block.key}\` needs \`of:\`, the signal that it takes`);
   }
   if (!block.takesInput && of !== undefined) {
@@ -118,7 +113,7 @@ function readOf(place: Workplace): Expression | undefined {
   if (input === undefined) return missing(tree.place);
   const alike = block.takesGain ? childOf(entry.value, 'gain') === undefined : block.inputLikeOutput === true;
   if (!alike) return input.dimension === undefined ? missing(tree.place) : input.expression;
-  const what = `\`of\` of \`${block.key}\` has the unit of its signal: it`;
+  const what = `what \`${block.key}\` takes${block.takesGain ? ' without a `gain:`' : ''}`;
   return fit(input, { dimension: unit?.dimension, scale, what });
 }
 
@@ -145,14 +140,18 @@ function readSettings(place: Workplace): Record<string, Setting> {
     const setting = tree && readSetting(tree, description, place);
     if (setting !== undefined) settings[description.name] = setting;
   }
-  const windup = entryOf(given, 'anti_windup');
-  if (windup !== undefined && childOf(entry.value, 'range') === undefined) {
-    place.reading.problems.add(
-      windup.keyPlace,
-      '`anti_windup` without a `range:` of the signal has nothing to act on',
-    );
-  }
+  checkWindup(given, place);
   return settings;
+}
+
+function checkWindup(given: Tree, { entry, reading }: Workplace): void {
+  const windup = entryOf(given, 'anti_windup');
+  const hasRange = childOf(entry.value, 'range') !== undefined || reading.strange.has(entry.value);
+  if (windup === undefined || hasRange) return;
+  reading.problems.add(
+    windup.keyPlace,
+    '`anti_windup` without a `range:` of the signal has nothing to act on',
+  );
 }
 
 function readSetting(tree: Tree, description: SettingDescription, place: Workplace): Setting | undefined {

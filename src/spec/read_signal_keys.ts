@@ -74,7 +74,7 @@ function checkComparable(item: MapTree, signals: Record<string, string>, reading
   if (to === undefined || a === undefined || b === undefined || sameUnit(a, b)) return;
   reading.problems.add(
     to.place,
-    `\`${to.text}\` is in ${formatMismatch(b.dimension, a.dimension)}, the unit of \`${signals.of}\``,
+    `what \`${signals.of}\` is compared with ${formatMismatch(b.dimension, a.dimension)}`,
   );
 }
 

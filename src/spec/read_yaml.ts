@@ -14,7 +14,7 @@ import {
 } from 'yaml';
 import type { Problems } from './problems.js';
 import type { Place } from './spec.js';
-import type { BrokenTree, MapEntry, TextTree, Tree } from './tree.js';
+import { type BrokenTree, type MapEntry, type TextTree, type Tree, textsOf } from './tree.js';
 import { yamlFaults } from './yaml_faults.js';
 
 /** Longest spec text in characters; a spec is a page or two. */
@@ -96,8 +96,12 @@ function mapOf(map: YAMLMap, source: Source, place: Place, depth: number): Tree 
   const entries: MapEntry[] = [];
   for (const pair of map.items as Pair[]) {
     const last = entries.at(-1);
-    if (pair.value === null && last !== undefined && splitByComma(last.value)) {
-      last.value = brokenByComma(last.value as TextTree, source);
+    if (
+      pair.value === null &&
+      last !== undefined &&
+      (splitByComma(last.value) || last.value.kind === 'broken')
+    ) {
+      if (last.value.kind === 'text') last.value = brokenByComma(last.value, source, `${pair.key}`);
       continue;
     }
     const entry = entryOf(pair, source, depth);
@@ -123,8 +127,7 @@ function listOf(list: YAMLSeq, source: Source, place: Place, depth: number): Tre
   const items = list.items.map((item) => treeOf(item, source, depth + 1));
   const split = items.find(splitByComma);
   if (split === undefined || list.flow !== true) return { kind: 'list', items, place };
-  const broken = brokenByComma(split as TextTree, source);
-  return { ...broken, source: items.map((item) => ('source' in item ? item.source : '')).join(' ') };
+  return brokenByComma(split as TextTree, source, items.flatMap(textsOf).join(' '));
 }
 
 function scalarOf(scalar: Scalar, source: Source, place: Place): Tree {
@@ -162,10 +165,10 @@ function splitByComma(tree: Tree): boolean {
   return tree.source.split('(').length > tree.source.split(')').length;
 }
 
-function brokenByComma(tree: TextTree, source: Source): BrokenTree {
+function brokenByComma(tree: TextTree, source: Source, rest: string): BrokenTree {
   source.problems.add(
     tree.place,
     `\`${tree.text}\` is cut off at a comma; inside { } and [ ] an expression with a comma or a [ needs quotes, as in value: "max(a, b)"`,
   );
-  return { kind: 'broken', source: tree.source, place: tree.place };
+  return { kind: 'broken', source: `${tree.source} ${rest}`, place: tree.place };
 }

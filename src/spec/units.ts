@@ -155,6 +155,8 @@ function lookUp(text: string): Size | undefined {
 
 function unknownUnit(text: string): string {
   if (text === 'dB') return 'dB stands alone: it is a ratio by itself and takes no part in a product';
+  if (Object.hasOwn(prefixes, text))
+    return `\`${text}\` is a prefix without its unit, as in \`${text}s\` or \`${text}V\``;
   const joined = joinedUnits(text);
   if (joined !== undefined) return `unknown unit \`${text}\`; did you mean \`${joined}\`?`;
   return `unknown unit \`${text}\`${suggestion(text, [...symbolTable.keys(), ...common])}`;

@@ -1,5 +1,6 @@
 import { expect, test } from 'vitest';
-import { errorsOf, heliostat } from './loading.js';
+import { heliostat } from './heliostat_example.js';
+import { errorsOf } from './loading.js';
 
 test('the example of the format loads as it stands', () => {
   expect(errorsOf(heliostat)).toEqual([]);

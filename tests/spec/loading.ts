@@ -1,9 +1,6 @@
-import { readFileSync } from 'node:fs';
 import { formatSpecError, loadSpec, type Spec } from '../../src/spec/index.js';
+import { heliostat } from './heliostat_example.js';
 import { vocabulary } from './vocabulary.js';
-
-/** The example of the format, as it stands. */
-export const heliostat = readFileSync(new URL('./heliostat.pawl.yaml', import.meta.url), 'utf8');
 
 /** The lines of all errors of a spec; empty where it loads. */
 export function errorsOf(text: string): string[] {
