@@ -4,11 +4,12 @@ import { at } from './dwarf/codes.js';
 import { rootOf } from './dwarf/entry.js';
 import { buildIdOf, compilerComments } from './elf/identity.js';
 import { machineName } from './elf/machine.js';
-import type { FirmwareImage } from './image.js';
+import type { ElfImage, FirmwareImage } from './image.js';
 
 /** Where the coefficients come from, for every report. */
 export interface ImageDescription {
   name: string;
+  kind: FirmwareImage['kind'];
   /** Bytes. */
   size: number;
   /** Lower-case hexadecimal digits. */
@@ -17,29 +18,34 @@ export interface ImageDescription {
   buildId: string | undefined;
   /** What the compilers call themselves, each once, in the order of the image. */
   producers: string[];
-  /** The processor, e.g. `Arm`. */
-  machine: string;
-  /** Width of an address. */
-  bits: 32 | 64;
+  /** The processor, e.g. `Arm`; undefined where the image does not say it. */
+  machine: string | undefined;
+  /** Width of an address, where the image says it. */
+  bits: 32 | 64 | undefined;
   byteOrder: 'little' | 'big';
+  /** The ELF file that gave the names to an image without any. */
+  symbols: ImageDescription | undefined;
 }
 
 /** Says what an image is. */
 export function describeImage(image: FirmwareImage): ImageDescription {
-  const { elf } = image;
+  const elf = image.kind === 'elf' ? image.elf : undefined;
+  const littleEndian = image.kind === 'elf' ? image.elf.littleEndian : image.littleEndian;
   return {
     name: image.name,
+    kind: image.kind,
     size: image.bytes.length,
     sha256: createHash('sha256').update(image.bytes).digest('hex'),
-    buildId: buildIdOf(elf),
-    producers: producersOf(image),
-    machine: machineName(elf.machine),
-    bits: elf.bits,
-    byteOrder: elf.littleEndian ? 'little' : 'big',
+    buildId: elf && buildIdOf(elf),
+    producers: image.kind === 'elf' ? producersOf(image) : [],
+    machine: elf && machineName(elf.machine),
+    bits: elf?.bits,
+    byteOrder: littleEndian ? 'little' : 'big',
+    symbols: image.kind !== 'elf' && image.symbols ? describeImage(image.symbols) : undefined,
   };
 }
 
-function producersOf(image: FirmwareImage): string[] {
+function producersOf(image: ElfImage): string[] {
   const producers = new Set<string>();
   for (const unit of image.debug.units()) {
     const root = rootOf(unit);

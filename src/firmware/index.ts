@@ -15,7 +15,8 @@ export type {
 } from './coefficient.js';
 export { describeImage, type ImageDescription } from './describe_image.js';
 export { FirmwareError, type FirmwareErrorCode } from './failure.js';
-export { type FirmwareImage, openImage } from './image.js';
+export { type ElfImage, type FirmwareImage, type FlashImage, type OpenOptions, openImage } from './image.js';
 export { formatText, parseFormat } from './number_format.js';
+export { type FileOptions, openImageFile } from './open_file.js';
 export { readCoefficient, readCoefficients } from './read_coefficient.js';
 export type { CoefficientRequest } from './request.js';

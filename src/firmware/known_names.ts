@@ -11,7 +11,7 @@ const mostNames = 50_000;
 /** The error for a name that the image does not have, with the names that may have been meant and the cure. */
 export function noSuchSymbol(image: ElfImage, path: CoefficientPath): FirmwareError {
   const wanted = [...path.scopes, path.name].join('::');
-  if (!image.debug.present && !hasSymbols(image.elf)) {
+  if (!image.debug.present && !hasSymbols(image.symbolTable)) {
     return new FirmwareError(
       'no_debug_information',
       `no variable ${quoted(wanted)} can be found in ${quoted(image.name)}: it has neither symbols nor debug information; build with -g and do not strip`,
@@ -27,7 +27,8 @@ export function noSuchSymbol(image: ElfImage, path: CoefficientPath): FirmwareEr
 }
 
 function* knownNames(image: ElfImage): Generator<string> {
-  for (const symbol of allSymbols(image.elf)) if (isData(symbol) && symbol.name !== '') yield symbol.name;
+  for (const symbol of allSymbols(image.symbolTable))
+    if (isData(symbol) && symbol.name !== '') yield symbol.name;
   let count = 0;
   for (const unit of image.debug.units()) {
     for (const variable of variablesOf(unit)) {

@@ -93,7 +93,7 @@ function follow(
   const size = fixedSizeOf(type);
   const start = address + index * size;
   const tableEnd = endOfTable(image, at.part.text, index, address, start + size);
-  const storage = storageAt(elf, { kind: 'memory', address: start }, size, {
+  const storage = storageAt(image, { kind: 'memory', address: start }, size, {
     what: quoted(text),
     startsAtZero,
   });
@@ -116,7 +116,7 @@ function endOfTable(
   address: number,
   end: number,
 ): number | undefined {
-  const table = allSymbols(image.elf).find(
+  const table = allSymbols(image.symbolTable).find(
     (symbol) =>
       isData(symbol) &&
       symbol.size > 0 &&

@@ -3,6 +3,7 @@ import { FirmwareError, quoted } from './failure.js';
 import type { FirmwareImage } from './image.js';
 import { parseFormat } from './number_format.js';
 import { parsePath } from './path.js';
+import { readAddress } from './read_address.js';
 import { readElf } from './read_elf.js';
 import type { CoefficientRequest } from './request.js';
 import { scaled } from './scaling.js';
@@ -13,8 +14,7 @@ import { scaled } from './scaling.js';
  */
 export function readCoefficient(image: FirmwareImage, request: CoefficientRequest): Coefficient {
   try {
-    const format = request.format === undefined ? undefined : parseFormat(request.format);
-    return scaled(readElf(image, parsePath(request.at), format, request), request);
+    return scaled(readUnscaled(image, request), request);
   } catch (error) {
     if (!(error instanceof FirmwareError)) throw error;
     const message = error.message.includes(request.at)
@@ -40,4 +40,16 @@ export function readCoefficients(
     }
   }
   return { coefficients, errors };
+}
+
+function readUnscaled(image: FirmwareImage, request: CoefficientRequest): Coefficient {
+  if (request.address !== undefined) return readAddress(image, request.address, request);
+  const path = parsePath(request.at);
+  const format = request.format === undefined ? undefined : parseFormat(request.format);
+  if (image.kind === 'elf') return readElf(image, path, format, request);
+  if (image.symbols) return readElf(image.symbols, path, format, request);
+  throw new FirmwareError(
+    'bad_request',
+    `${quoted(image.name)} has no names: give the ELF file of the same build as symbols, or address and format of ${quoted(request.at)}`,
+  );
 }

@@ -49,7 +49,7 @@ function readRoot(
   const type = root.type ?? typeFromFormat(image, path, root, format);
   const part: Part = { type, offset: 0, bitField: undefined, text: path.root };
   const size = root.place.kind === 'number' ? sizeOf(type) : 0;
-  const storage = storageAt(image.elf, root.place, size, { what: quoted(path.text), startsAtZero });
+  const storage = storageAt(image, root.place, size, { what: quoted(path.text), startsAtZero });
   const found = navigate(image, { part, storage, room: root.symbolSize }, root.steps, startsAtZero);
   return readPart(image, found, format, { path: path.text, declaredAt: root.declaredAt });
 }

@@ -55,7 +55,7 @@ export function rootsOf(image: ElfImage, path: CoefficientPath): Root[] {
 /** Where the debug information lost the name of the function around a variable, the symbol table has both: `update.taps`. */
 function definitionsByFunction(image: ElfImage, path: CoefficientPath): Variable[] {
   if (path.scopes.length === 0 || !image.debug.present) return [];
-  const symbols = symbolsNamed(image.elf, [...path.scopes, path.name].join('.')).filter(isData);
+  const symbols = symbolsNamed(image.symbolTable, [...path.scopes, path.name].join('.')).filter(isData);
   if (symbols.length !== 1) return [];
   return findInFunction(image.debug, path.name).filter((variable) => {
     const place = placeOf(variable.entry, undefined);

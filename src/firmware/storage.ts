@@ -1,8 +1,9 @@
 import { hex } from './cursor.js';
 import type { Place } from './dwarf/location.js';
-import type { ElfFile } from './elf/elf_file.js';
-import { type ReadOptions, readMemory } from './elf/memory.js';
-import { FirmwareError } from './failure.js';
+import { hasContents, type ReadOptions, readMemory } from './elf/memory.js';
+import { FirmwareError, quoted } from './failure.js';
+import { checkFlashed } from './flash/flash_image.js';
+import type { ElfImage } from './image.js';
 
 /** The bytes of one variable, wherever they are. Offsets are bytes from its beginning. */
 export interface Storage {
@@ -19,28 +20,46 @@ export interface Storage {
  * @param size bytes of the whole variable, needed for a constant that is only a number
  * @throws FirmwareError `no_fixed_place` where there is none
  */
-export function storageAt(elf: ElfFile, place: Place, size: number, options: ReadOptions): Storage {
+export function storageAt(image: ElfImage, place: Place, size: number, options: ReadOptions): Storage {
+  if (image.flash && place.kind !== 'memory') throw notInFlash(image, options);
   switch (place.kind) {
     case 'memory':
-      return {
-        read: (offset, length) => readMemory(elf, place.address + offset, length, options),
-        readAddress: (offset, length) =>
-          readMemory(elf, place.address + offset, length, { ...options, isAddress: true }),
-        // The sections of an unlinked object are placed by the linker only.
-        address: (offset) => (elf.relocatable ? undefined : place.address + offset),
-      };
+      return memoryStorage(image, place.address, options);
     case 'bytes':
       return constantStorage(place.bytes, options);
     case 'number':
-      return constantStorage(bytesOfNumber(place.value, size, elf.littleEndian), options);
+      return constantStorage(bytesOfNumber(place.value, size, image.elf.littleEndian), options);
     case 'pieces':
-      return piecesStorage(elf, place.pieces, options);
+      return piecesStorage(image, place.pieces, options);
     case 'none':
       throw new FirmwareError(
         'no_fixed_place',
         `${options.what} has no value that can be read from the image: ${place.why}`,
       );
   }
+}
+
+function memoryStorage(image: ElfImage, start: number, options: ReadOptions): Storage {
+  const { elf, flash } = image;
+  const readAs = (isAddress: boolean) => (offset: number, size: number) => {
+    const bytes = readMemory(elf, start + offset, size, { ...options, isAddress });
+    if (flash && hasContents(elf, start + offset))
+      checkFlashed(flash, elf, start + offset, bytes, options.what);
+    return bytes;
+  };
+  return {
+    read: readAs(false),
+    readAddress: readAs(true),
+    // The sections of an unlinked object are placed by the linker only.
+    address: (offset) => (elf.relocatable ? undefined : start + offset),
+  };
+}
+
+function notInFlash(image: ElfImage, options: ReadOptions): FirmwareError {
+  return new FirmwareError(
+    'no_fixed_place',
+    `${options.what} has no address in ${quoted(image.name)}, so that ${quoted(image.flash?.name ?? '')} cannot be compared: keep it in memory (volatile, or used by its address)`,
+  );
 }
 
 function constantStorage(bytes: Uint8Array, options: ReadOptions): Storage {
@@ -66,7 +85,7 @@ function bytesOfNumber(value: bigint, size: number, littleEndian: boolean): Uint
 }
 
 function piecesStorage(
-  elf: ElfFile,
+  image: ElfImage,
   pieces: { place: Place; size: number }[],
   options: ReadOptions,
 ): Storage {
@@ -84,7 +103,7 @@ function piecesStorage(
     });
   const read = (offset: number, size: number) => {
     const bytes = parts(offset, size).map(({ piece, from, length }) =>
-      storageAt(elf, piece.place, piece.size, options).read(from, length),
+      storageAt(image, piece.place, piece.size, options).read(from, length),
     );
     const whole = Buffer.concat(bytes);
     if (whole.length < size)
@@ -96,7 +115,7 @@ function piecesStorage(
     readAddress: read,
     address(offset) {
       const [part] = parts(offset, 1);
-      return part?.piece.place.kind === 'memory' && !elf.relocatable
+      return part?.piece.place.kind === 'memory' && !image.elf.relocatable
         ? part.piece.place.address + part.from
         : undefined;
     },

@@ -32,7 +32,7 @@ export function removedByLinker(
 }
 
 function isCoveredBySymbol(image: ElfImage, address: number): boolean {
-  return allSymbols(image.elf).some(
+  return allSymbols(image.symbolTable).some(
     (symbol) =>
       isData(symbol) &&
       symbol.name !== '' &&
@@ -52,12 +52,11 @@ export function checkedSymbol(
   address: number,
   type: DataType | undefined,
 ) {
-  const { elf } = image;
   const linked = entryWith(variable, at.linkageName) ?? entryWith(variable, at.mipsLinkageName);
   const name =
     (linked && (textAttribute(linked, at.linkageName) ?? textAttribute(linked, at.mipsLinkageName))) ??
     variable.name;
-  const named = symbolsNamed(elf, name).filter((symbol) => isData(symbol));
+  const named = symbolsNamed(image.symbolTable, name).filter((symbol) => isData(symbol));
   const symbol = named.find((candidate) => candidate.address === address);
   const isExternal = variable.chain.some((entry) => attribute(entry, at.external));
   const [only] = named;

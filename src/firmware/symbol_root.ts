@@ -35,9 +35,10 @@ export function symbolFor(
   ];
   for (const name of names) {
     if (name === undefined) continue;
-    const named = symbolsNamed(image.elf, name).filter(
+    const named = symbolsNamed(image.symbolTable, name).filter(
       (symbol) =>
-        isData(symbol) && (path.file === undefined || fileOfSymbol(image.elf, symbol)?.endsWith(path.file)),
+        isData(symbol) &&
+        (path.file === undefined || fileOfSymbol(image.symbolTable, symbol)?.endsWith(path.file)),
     );
     const places = new Map(named.map((symbol) => [symbol.address, symbol]));
     if (places.size > 1) throw ambiguousSymbols(image, path, [...places.values()]);
@@ -65,7 +66,7 @@ export function rootOfSymbol(image: ElfImage, path: CoefficientPath, symbol: Elf
 
 function ambiguousSymbols(image: ElfImage, path: CoefficientPath, symbols: ElfSymbol[]): FirmwareError {
   const places = symbols.slice(0, 4).map((symbol) => {
-    const file = fileOfSymbol(image.elf, symbol);
+    const file = fileOfSymbol(image.symbolTable, symbol);
     return `${quoted(file ? `${file}:${symbol.name}` : symbol.name)} (${hex(symbol.address)})`;
   });
   return new FirmwareError(
@@ -78,7 +79,7 @@ function ambiguousSymbols(image: ElfImage, path: CoefficientPath, symbols: ElfSy
 export function declaredOnly(image: ElfImage, path: CoefficientPath, variable: Variable): FirmwareError {
   const place = declaredAt(variable);
   const where = place ? ` (${place.file}:${place.line})` : '';
-  const why = hasSymbols(image.elf)
+  const why = hasSymbols(image.symbolTable)
     ? 'the image does not hold it: it was removed, or its definition was not linked in'
     : 'the image has no symbol table that says where it is: keep the symbols (do not strip)';
   return new FirmwareError(

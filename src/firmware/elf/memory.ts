@@ -37,6 +37,13 @@ export function readMemory(elf: ElfFile, address: number, size: number, options:
   );
 }
 
+/** Whether the file has bytes for the address, as it has not for memory that is cleared at start-up. */
+export function hasContents(elf: ElfFile, address: number): boolean {
+  const segment = segmentAt(elf, address);
+  if (segment) return address - segment.virtualAddress < segment.fileSize;
+  return sectionsAt(elf, address).some((section) => section.type !== sectionType.noBits);
+}
+
 function sectionsAt(elf: ElfFile, address: number): ElfSection[] {
   return elf.sections.filter(
     (s) =>
@@ -128,4 +135,12 @@ function zeroes(
     `${options.what} at ${hex(address)} has no value in ${quoted(elf.name)}: ${quoted(place)} is cleared at start-up and set by the running program; ` +
       'initialise it in the source (const), or say starts_at_zero: true',
   );
+}
+
+/** Where a loader puts the byte which the running program has at an address: elsewhere for initialised RAM. */
+export function physicalAddress(elf: ElfFile, address: number): number {
+  const segment = elf.segments.find(
+    (s) => s.type === loadedSegment && address >= s.virtualAddress && address < s.virtualAddress + s.fileSize,
+  );
+  return segment ? segment.physicalAddress + (address - segment.virtualAddress) : address;
 }
