@@ -1,6 +1,7 @@
 import { TraceStore } from '../kernel/run_plant.js';
 import type { Run, SignalTrace } from '../kernel/trace.js';
 import { Linearisation } from '../linear/linearise.js';
+import { NumericFailure } from '../linear/numeric_failure.js';
 import { pointOfRest, type RestResult } from '../linear/point_of_rest.js';
 import { TargetArithmetic } from '../loop/arithmetic.js';
 import { Evaluation } from '../loop/evaluate.js';
@@ -125,7 +126,11 @@ export class PlantEvaluator {
       return;
     }
     const point = fromRest && rest.kind === 'rest' ? rest.point : undefined;
-    const run = group.run.run(parameters, point, schedule, halvings);
+    const run = numeric(() => group.run.run(parameters, point, schedule, halvings));
+    if (typeof run === 'string') {
+      for (const { index } of group.requirements) results[index] = unformed(run);
+      return;
+    }
     for (const { requirement, index, measure } of group.requirements) {
       results[index] =
         endedEarly(run) ?? measure.measure(this.traceContext(group, requirement, parameters, run));
@@ -172,20 +177,29 @@ export class PlantEvaluator {
     schedule: Schedule,
     results: MeasureResult[],
   ): void {
-    const found: MarginsResult =
-      rest.kind === 'none'
-        ? { kind: 'unformed', why: rest.why }
-        : point.margins(parameters, rest.point, schedule);
+    const found: MarginsResult | string =
+      rest.kind === 'none' ? rest.why : numeric(() => point.margins(parameters, rest.point, schedule));
     for (const { requirement, index } of requirements) {
       const measure = measureNamed(requirement.measure);
       if (isTraceMeasure(measure)) continue;
-      results[index] = found.kind === 'margins' ? measure.measure(found.margins) : unformed(found.why);
+      if (typeof found === 'string') results[index] = unformed(found);
+      else results[index] = found.kind === 'margins' ? measure.measure(found.margins) : unformed(found.why);
     }
   }
 }
 
 function isTraceMeasure(measure: ReturnType<typeof measureNamed>): measure is TraceMeasure {
   return measure.description.basis === 'trace';
+}
+
+/** A result, or the reason why its numbers cannot be formed. */
+function numeric<T>(form: () => T): T | string {
+  try {
+    return form();
+  } catch (error) {
+    if (error instanceof NumericFailure) return error.message;
+    throw error;
+  }
 }
 
 function endedEarly({ end }: Run): MeasureResult | undefined {

@@ -1,6 +1,6 @@
 import { plainNumber } from '../spec/dimension.js';
+import { largest, scaled } from './extremes.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
-import { largest, scaled } from './sections.js';
 
 /**
  * How far the response goes past the target's new value, in the direction of the step, as a share of the step:

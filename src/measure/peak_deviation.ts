@@ -1,5 +1,5 @@
+import { difference, largest, smallest } from './extremes.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
-import { difference, largest, smallest } from './sections.js';
 
 /** The largest distance of the response from the target from the scenario's first event on: max |of − to|. */
 export const peakDeviation: TraceMeasure = {

@@ -1,6 +1,7 @@
 import { plainNumber } from '../spec/dimension.js';
+import { scaled } from './extremes.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
-import { scaled, timeAtOrAbove } from './sections.js';
+import { timeAtOrAbove } from './time_at_or_above.js';
 
 /**
  * The share of time, from the scenario's first event to its end, in which the signal is within half a resolution of

@@ -11,36 +11,16 @@ export interface Section {
 }
 
 /**
- * The monotone sections of a trace between two times, in order; `latestFirst` gives them from the end. The cubic of each
- * piece is cut where its rate is zero, so that extremes and crossings between the samples are found, not guessed.
+ * The monotone sections of one piece of a trace between two times, in order. The cubic is cut where its rate is zero, so
+ * that extremes and crossings between the samples are found, not guessed.
  */
-export function* sections(
-  trace: SignalTrace,
-  from: number,
-  to: number,
-  latestFirst = false,
-): Generator<Section> {
-  const last = trace.pieces - 1;
-  for (let k = 0; k <= last; k++) {
-    const piece = latestFirst ? last - k : k;
-    const start = Math.max(from, trace.times[piece]);
-    const end = Math.min(to, trace.times[piece + 1]);
-    if (start > end || (start === end && from !== to)) continue;
-    const own = sectionsOfPiece(trace, piece, start, end);
-    yield* latestFirst ? own.reverse() : own;
-  }
-}
-
-function sectionsOfPiece(trace: SignalTrace, piece: number, start: number, end: number): Section[] {
+export function sectionsOf(trace: SignalTrace, piece: number, from: number, to: number): Section[] {
   const [t0, t1] = [trace.times[piece], trace.times[piece + 1]];
+  const [start, end] = [Math.max(from, t0), Math.min(to, t1)];
   const h = t1 - t0;
   const at = 4 * piece;
-  const [y0, r0, y1, r1] = [
-    trace.record[at],
-    trace.record[at + 1] * h,
-    trace.record[at + 2],
-    trace.record[at + 3] * h,
-  ];
+  const { record } = trace;
+  const [y0, r0, y1, r1] = [record[at], record[at + 1] * h, record[at + 2], record[at + 3] * h];
   // y = y0 + r0·s + c·s² + d·s³ with s from 0 to 1 (Hermite).
   const rise = y1 - y0;
   const c = 3 * rise - 2 * r0 - r1;
@@ -82,42 +62,34 @@ export function timeAtLevel(section: Section, level: number): number {
   return b;
 }
 
-/** The largest value of a trace between two times, and when it is reached first. */
-export function largest(trace: SignalTrace, from: number, to: number): { value: number; time: number } {
-  let best = { value: Number.NEGATIVE_INFINITY, time: from };
-  for (const section of sections(trace, from, to)) {
-    if (Number.isNaN(section.first) || Number.isNaN(section.last))
-      return { value: Number.NaN, time: section.from };
-    if (section.first > best.value) best = { value: section.first, time: section.from };
-    if (section.last > best.value) best = { value: section.last, time: section.to };
+/** The piece that is under way at a time, or the last one: the later one where two meet. */
+export function pieceAt({ times, pieces }: SignalTrace, time: number): number {
+  let [low, high] = [0, pieces - 1];
+  while (low < high) {
+    const middle = (low + high + 1) >> 1;
+    if (times[middle] <= time) low = middle;
+    else high = middle - 1;
   }
-  return best;
+  return low;
 }
 
-/** The smallest value of a trace between two times, and when it is reached first. */
-export function smallest(trace: SignalTrace, from: number, to: number): { value: number; time: number } {
-  const { value, time } = largest(scaled(trace, -1), from, to);
-  return { value: -value, time };
+/**
+ * No value of a piece is above this: a cubic stays within the hull of its control points (Bernstein form).
+ * Not-a-number where the piece has one.
+ */
+export function upperBound({ record, times }: SignalTrace, piece: number): number {
+  const third = (times[piece + 1] - times[piece]) / 3;
+  const at = 4 * piece;
+  const first = record[at];
+  const last = record[at + 2];
+  return Math.max(first, first + third * record[at + 1], last - third * record[at + 3], last);
 }
 
-/** How long a trace is at or above a level between two times, s. */
-export function timeAtOrAbove(trace: SignalTrace, level: number, from: number, to: number): number {
-  let total = 0;
-  for (const section of sections(trace, from, to)) {
-    const [first, last] = [section.first >= level, section.last >= level];
-    if (first && last) total += section.to - section.from;
-    else if (first) total += timeAtLevel(section, level) - section.from;
-    else if (last) total += section.to - timeAtLevel(section, level);
-  }
-  return total;
-}
-
-/** A trace with all values multiplied by a factor. */
-export function scaled(trace: SignalTrace, factor: number): SignalTrace {
-  return { ...trace, record: trace.record.subarray(0, 4 * trace.pieces).map((value) => factor * value) };
-}
-
-/** One trace less another of the same run. */
-export function difference(a: SignalTrace, b: SignalTrace): SignalTrace {
-  return { ...a, record: a.record.subarray(0, 4 * a.pieces).map((value, i) => value - b.record[i]) };
+/** No value of a piece is below this. */
+export function lowerBound({ record, times }: SignalTrace, piece: number): number {
+  const third = (times[piece + 1] - times[piece]) / 3;
+  const at = 4 * piece;
+  const first = record[at];
+  const last = record[at + 2];
+  return Math.min(first, first + third * record[at + 1], last - third * record[at + 3], last);
 }

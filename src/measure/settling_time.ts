@@ -1,7 +1,6 @@
-import type { SignalTrace } from '../kernel/trace.js';
 import { timeDimension } from '../spec/dimension.js';
+import { lastEntry } from './last_entry.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
-import { sections, timeAtLevel } from './sections.js';
 
 /**
  * Time from the step of the target to the response's last entry into after ± band·|after − before|, where it stays to the
@@ -32,34 +31,10 @@ export const settlingTime: TraceMeasure = {
     if (!step) return unformed('the target makes no single step');
     const band = quantity('band')! * Math.abs(step.after - step.before);
     const entry = lastEntry(of, step.after - band, step.after + band, step.time, step.until);
-    if (Number.isNaN(entry.time)) return unformed('the response is not a number');
+    if (entry.kind === 'not_a_number') return unformed('the response is not a number');
     if (entry.kind === 'inside') return measured(entry.time - step.time);
     const left = Math.abs(entry.value - step.after);
     const span = Number((step.until - step.time).toPrecision(4));
     return { kind: 'never', why: `longer than ${span} s: never stays in the band`, left };
   },
 };
-
-/** When a trace enters low … high for good, between two times; or its value at the end where it is outside. */
-export function lastEntry(
-  trace: SignalTrace,
-  low: number,
-  high: number,
-  from: number,
-  to: number,
-): { kind: 'inside'; time: number } | { kind: 'outside'; time: number; value: number } {
-  const outside = (value: number): boolean => value < low || value > high;
-  let entered = to;
-  for (const section of sections(trace, from, to, true)) {
-    const { first, last } = section;
-    if (Number.isNaN(first) || Number.isNaN(last)) return { kind: 'inside', time: Number.NaN };
-    if (outside(last)) {
-      return section.to === to
-        ? { kind: 'outside', time: to, value: last }
-        : { kind: 'inside', time: section.to };
-    }
-    if (outside(first)) return { kind: 'inside', time: timeAtLevel(section, first < low ? low : high) };
-    entered = section.from;
-  }
-  return { kind: 'inside', time: entered };
-}

@@ -10,8 +10,8 @@ export type Judgement =
 export function judge(requirement: Requirement, result: MeasureResult): Judgement {
   switch (result.kind) {
     case 'value': {
-      const headroom = headroomOf(requirement.limit, requirement.scale, result.value);
-      return { kind: headroom >= 0 ? 'met' : 'broken', headroom, rank: headroom };
+      const rank = distanceOf(requirement.limit, requirement.scale, result.value);
+      return { kind: rank >= 0 ? 'met' : 'broken', headroom: Math.min(1, rank), rank };
     }
     case 'never':
       return { kind: 'broken', headroom: undefined, rank: -1e9 * (1 + saturating(result.left)) };
@@ -24,12 +24,12 @@ export function judge(requirement: Requirement, result: MeasureResult): Judgemen
 
 /**
  * Distance of a value from its limit, inward, as a share of the limit (of `scale` where the limit is zero; of half the
- * width of `between`); negative when broken, capped at 1.
+ * width of `between`); negative when broken.
  */
-export function headroomOf(limit: Limit, scale: number | undefined, value: number): number {
+function distanceOf(limit: Limit, scale: number | undefined, value: number): number {
   const share = (distance: number, of: number): number => {
     const size = scale ?? Math.abs(of);
-    return distance === 0 ? 0 : Math.min(1, distance / (size === 0 ? 1 : size));
+    return distance === 0 ? 0 : distance / (size === 0 ? 1 : size);
   };
   if ('at_most' in limit) return share(limit.at_most - value, limit.at_most);
   if ('at_least' in limit) return share(value - limit.at_least, limit.at_least);

@@ -1,20 +1,19 @@
 import type { CoefficientValues } from '../loop/expand.js';
-import { PlantEvaluator } from '../measure/evaluate_plant.js';
 import type { MeasureResult } from '../measure/measure.js';
 import { type Plant, type PlantOrigin, plantsToTry } from '../perturb/plants.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import { claimOf } from './claim.js';
+import { Crew } from './crew.js';
 import { type Judgement, judge } from './judge.js';
 import { parameterValues } from './parameter_values.js';
 import type { JudgedPlant, RequirementRun, SpecRun } from './run.js';
-import { settleSteps } from './settle_steps.js';
 import { verdictOf } from './verdict_of.js';
 
 /** What judging adds to a spec's run. */
 export type JudgedSpec = Pick<SpecRun, 'requirements' | 'plants' | 'halvings'>;
 
 /** One plant with the results of all requirements. */
-export interface TriedPlant {
+interface TriedPlant {
   plant: Plant;
   results: MeasureResult[];
   judgements: Judgement[];
@@ -22,41 +21,65 @@ export interface TriedPlant {
 
 /**
  * Tries every plant of a spec against every requirement.
+ * @param workers threads to use; the result does not depend on it.
  * @throws {LoopError} where the build's numbers do not fit the spec.
  */
-export function judgeSpec(spec: Spec, coefficients: CoefficientValues): JudgedSpec {
-  const evaluator = new PlantEvaluator(spec, coefficients);
-  const plants = plantsToTry(spec.parameters, spec.perturbation);
-  const settled = new Map<Plant, MeasureResult[]>();
-  const settle = (plant: Plant, first: number): number => {
-    const evaluate = (halvings: number): MeasureResult[] => evaluator.evaluate(plant.values, halvings);
-    const { results, halvings } = settleSteps(spec.requirements, evaluate, first);
-    settled.set(plant, results);
-    return halvings;
-  };
-  let halvings = 0;
-  for (const plant of plants) {
-    if (plant.origin === 'nominal' || plant.origin === 'corner')
-      halvings = Math.max(halvings, settle(plant, halvings));
+export async function judgeSpec(
+  spec: Spec,
+  coefficients: CoefficientValues,
+  workers?: number,
+): Promise<JudgedSpec> {
+  const crew = new Crew(spec, coefficients, workers);
+  try {
+    const plants = plantsToTry(spec.parameters, spec.perturbation);
+    const { tried, halvings } = await tryAll(spec, plants, crew);
+    const worst = await confirmedWorst(spec, tried, halvings, crew);
+    return {
+      requirements: spec.requirements.map((requirement, i) =>
+        requirementRun(spec, requirement, i, tried, worst[i]),
+      ),
+      plants: countByOrigin(plants),
+      halvings,
+    };
+  } finally {
+    await crew.dismiss();
   }
+}
+
+/** The steps are settled on the nominal plant and the corners; the finest of them then serves every plant. */
+async function tryAll(
+  spec: Spec,
+  plants: Plant[],
+  crew: Crew,
+): Promise<{ tried: TriedPlant[]; halvings: number }> {
+  const settles = ({ origin }: Plant): boolean => origin === 'nominal' || origin === 'corner';
+  const settled = await crew.measure(valuesOf(plants.filter(settles)), 0, true);
+  const halvings = Math.max(...settled.map((answer) => answer.halvings));
+  const others = await crew.measure(valuesOf(plants.filter((plant) => !settles(plant))), halvings, false);
   const tried = plants.map((plant) =>
-    triedPlant(spec, plant, settled.get(plant) ?? evaluator.evaluate(plant.values, halvings)),
+    triedPlant(spec, plant, (settles(plant) ? settled.shift()! : others.shift()!).results),
   );
-  const worst = spec.requirements.map((_, i) => {
-    const found = worstOf(tried, i);
-    if (settled.has(found.plant)) return found;
-    settle(found.plant, halvings);
-    const confirmed = triedPlant(spec, found.plant, settled.get(found.plant)!);
-    tried[tried.indexOf(found)] = confirmed;
-    return confirmed;
+  return { tried, halvings };
+}
+
+/** The worst plant of each requirement, its steps halved until its results stand; it replaces what was tried. */
+async function confirmedWorst(
+  spec: Spec,
+  tried: TriedPlant[],
+  halvings: number,
+  crew: Crew,
+): Promise<TriedPlant[]> {
+  const found = spec.requirements.map((_, i) => tried.indexOf(worstOf(tried, i)));
+  const distinct = [...new Set(found)];
+  const answers = await crew.measure(valuesOf(distinct.map((at) => tried[at].plant)), halvings, true);
+  distinct.forEach((at, i) => {
+    tried[at] = triedPlant(spec, tried[at].plant, answers[i].results);
   });
-  return {
-    requirements: spec.requirements.map((requirement, i) =>
-      requirementRun(spec, requirement, i, tried, worst[i]),
-    ),
-    plants: countByOrigin(plants),
-    halvings,
-  };
+  return found.map((at) => tried[at]);
+}
+
+function valuesOf(plants: Plant[]): Float64Array[] {
+  return plants.map(({ values }) => values);
 }
 
 function triedPlant(spec: Spec, plant: Plant, results: MeasureResult[]): TriedPlant {
@@ -76,41 +99,33 @@ function requirementRun(
   tried: TriedPlant[],
   worst: TriedPlant,
 ): RequirementRun {
-  const judgements = tried.map(({ judgements }) => judgements[index]);
+  const judgements = tried.map((one) => one.judgements[index]);
   const count = (kind: Judgement['kind']): number => judgements.filter((one) => one.kind === kind).length;
   const independent = tried
     .filter(({ plant }) => plant.origin === 'independent')
     .map((one) => one.judgements[index]);
   const nominalOnly = requirement.holdsFor === 'nominal';
-  const judged = (one: TriedPlant): JudgedPlant => ({
-    origin: one.plant.origin,
-    parameters: parameterValues(spec.parameters, one.plant.values),
-    result: one.results[index],
-    headroom: 'headroom' in one.judgements[index] ? one.judgements[index].headroom : undefined,
-  });
+  const { confidence } = spec.perturbation;
+  const { name, place, measure, signals, reason, limit, unit, inDecibels, holdsFor } = requirement;
   return {
-    name: requirement.name,
-    place: requirement.place,
-    measure: requirement.measure,
-    signals: requirement.signals,
+    ...{ name, place, measure, signals, reason, limit, unit, inDecibels, holdsFor },
     scenario: requirement.in,
-    reason: requirement.reason,
-    limit: requirement.limit,
-    unit: requirement.unit,
-    inDecibels: requirement.inDecibels,
-    holdsFor: requirement.holdsFor,
-    verdict: verdictOf(
-      requirement,
-      judgements[0],
-      worst.judgements[index],
-      independent,
-      spec.perturbation.confidence,
-    ),
+    verdict: verdictOf(requirement, judgements[0], worst.judgements[index], independent, confidence),
     evidence: nominalOnly ? { kind: 'nominal_only' } : { kind: 'tried', plants: tried.length },
-    nominal: judged(tried[0]),
-    worst: judged(nominalOnly ? tried[0] : worst),
+    nominal: judgedPlant(spec, tried[0], index),
+    worst: judgedPlant(spec, nominalOnly ? tried[0] : worst, index),
     counts: { tried: tried.length, broken: count('broken'), unjudged: count('unjudged') },
-    claim: nominalOnly ? undefined : claimOf(independent, spec.perturbation.confidence),
+    claim: nominalOnly ? undefined : claimOf(independent, confidence),
+  };
+}
+
+function judgedPlant(spec: Spec, { plant, results, judgements }: TriedPlant, index: number): JudgedPlant {
+  const judgement = judgements[index];
+  return {
+    origin: plant.origin,
+    parameters: parameterValues(spec.parameters, plant.values),
+    result: results[index],
+    headroom: 'headroom' in judgement ? judgement.headroom : undefined,
   };
 }
 

@@ -10,6 +10,7 @@ export const biquads: Block = {
     rooms: ['controller'],
     takesInput: true,
     takesGain: false,
+    inputLikeOutput: true,
     settings: [
       {
         name: 'biquads',

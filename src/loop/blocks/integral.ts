@@ -8,6 +8,7 @@ export const integral: Block = {
     rooms: ['plant'],
     takesInput: false,
     takesGain: false,
+    outputIsState: true,
     settings: [
       {
         name: 'integral',

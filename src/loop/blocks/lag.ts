@@ -7,6 +7,7 @@ export const lag: Block = {
     rooms: ['plant'],
     takesInput: true,
     takesGain: true,
+    outputIsState: true,
     settings: [
       {
         name: 'lag',

@@ -1,0 +1,115 @@
+import { type ParseArgsConfig, parseArgs } from 'node:util';
+import { nearestOf } from './nearest_word.js';
+import { type ExitStatus, Fault, type Surroundings } from './surroundings.js';
+
+type Options = NonNullable<ParseArgsConfig['options']>;
+type Values = Record<string, string | boolean | undefined>;
+
+interface Command {
+  /** One line for the overview. */
+  meaning: string;
+  usage: string;
+  options: Options;
+  optionMeanings: Record<string, string>;
+  run: (values: Values, positionals: string[], around: Surroundings) => Promise<ExitStatus>;
+}
+
+const buildOptions: Options = { image: { type: 'string' }, 'skip-build': { type: 'boolean' } };
+const buildMeanings = {
+  '--image PATH': 'judge this image instead of the one that the spec names',
+  '--skip-build': 'take the image as it is, without running the build command',
+};
+
+/** Every command, in the order of the overview. Their code is loaded when they run. */
+const commands: Record<string, Command> = {
+  check: {
+    meaning: 'judge specs against the build; the main job',
+    usage: 'pawl check [SPEC…] [--image PATH] [--skip-build] [--out DIR]',
+    options: { ...buildOptions, out: { type: 'string' } },
+    optionMeanings: {
+      ...buildMeanings,
+      '--out DIR': 'write DIR/junit.xml and DIR/run.json',
+    },
+    run: async (values, specs, around) => {
+      const { check } = await import('./check.js');
+      return check({ ...buildChoice(values), specs, out: values.out as string | undefined }, around);
+    },
+  },
+  read: {
+    meaning: 'show the coefficients that the build really holds',
+    usage: 'pawl read SPEC [--image PATH] [--skip-build]',
+    options: buildOptions,
+    optionMeanings: buildMeanings,
+    run: async (values, positionals, around) => {
+      if (positionals.length !== 1)
+        throw new Fault([`'pawl read' takes one spec, but got ${positionals.length}`]);
+      const { read } = await import('./read.js');
+      return read(positionals[0], buildChoice(values), around);
+    },
+  },
+};
+
+function buildChoice(values: Values): { image: string | undefined; skipBuild: boolean } {
+  return { image: values.image as string | undefined, skipBuild: values['skip-build'] === true };
+}
+
+/**
+ * Runs one command line.
+ * @throws {Fault} for a mistake in the command line or anything else a user can put right.
+ */
+export async function runCommand(words: readonly string[], around: Surroundings): Promise<ExitStatus> {
+  const [name, ...rest] = words;
+  if (name === undefined) throw new Fault([`no command was given\n${overview()}`]);
+  if (name === '--help' || name === 'help') {
+    around.print(`${overview()}\n`);
+    return 0;
+  }
+  if (name === '--version') {
+    const { version } = await import('./version.js');
+    around.print(`${version}\n`);
+    return 0;
+  }
+  const command = Object.hasOwn(commands, name) ? commands[name] : undefined;
+  if (!command) throw new Fault([`there is no command '${name}'${nearestOf(name, Object.keys(commands))}`]);
+  const { values, positionals } = parse(name, command, rest);
+  if (values.help) {
+    around.print(`${helpOf(command)}\n`);
+    return 0;
+  }
+  return command.run(values, positionals, around);
+}
+
+function parse(name: string, command: Command, words: string[]): { values: Values; positionals: string[] } {
+  const options: Options = { ...command.options, help: { type: 'boolean' } };
+  try {
+    const { values, positionals } = parseArgs({ args: words, options, allowPositionals: true, strict: true });
+    return { values: values as Values, positionals };
+  } catch (error) {
+    const unknown = /Unknown option '(--?[^'=]+)/.exec((error as Error).message)?.[1];
+    const hint = unknown
+      ? nearestOf(
+          unknown,
+          Object.keys(options).map((option) => `--${option}`),
+        )
+      : '';
+    const what = unknown ? `there is no option '${unknown}'` : (error as Error).message.split('. ')[0];
+    throw new Fault([`pawl ${name}: ${what}${hint}; see 'pawl ${name} --help'`]);
+  }
+}
+
+function overview(): string {
+  const rows = Object.entries(commands).map(([name, { meaning }]) => `  pawl ${name.padEnd(8)}${meaning}`);
+  return [
+    'pawl: judges the feedback controller that a firmware build holds against written requirements',
+    '',
+    ...rows,
+    '',
+    'Exit status: 0 all requirements met; 1 one is broken, slipped or unjudged; 2 the run could not be made.',
+    "'pawl COMMAND --help' tells more.",
+  ].join('\n');
+}
+
+function helpOf({ meaning, usage, optionMeanings }: Command): string {
+  const rows = Object.entries(optionMeanings).map(([option, text]) => `  ${option.padEnd(16)}${text}`);
+  return [usage, '', meaning, '', ...rows].join('\n');
+}

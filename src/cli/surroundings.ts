@@ -1,0 +1,23 @@
+/** What a command may touch outside itself; handed in, so that tests need no spying. */
+export interface Surroundings {
+  /** Working folder, absolute. */
+  cwd: string;
+  /** Writes to standard output. */
+  print: (text: string) => void;
+  /** Writes to standard error. */
+  complain: (text: string) => void;
+  /** Whether standard output is a terminal that shows colours. */
+  colour: boolean;
+  /** Columns of the terminal. */
+  width: number;
+}
+
+/** The three ways a command can end; see the README. */
+export type ExitStatus = 0 | 1 | 2;
+
+/** A user's mistake, or a build or file that fails: one line for people for each fault, no stack trace; exit status 2. */
+export class Fault extends Error {
+  constructor(readonly lines: readonly string[]) {
+    super(lines.join('\n'));
+  }
+}
