@@ -69,7 +69,7 @@ function rootsOfDefinitions(image: ElfImage, path: CoefficientPath, definitions:
   for (const variable of definitions) {
     const place = placeOf(variable.entry, entryWith(variable, at.constValue));
     const trouble =
-      place.kind === 'memory' ? removedByLinker(image, path, variable, place.address) : undefined;
+      place.kind === 'memory' ? removedByLinker(image, path.text, variable, place.address) : undefined;
     if (trouble) removed.push(trouble);
     else
       byPlace.set(place.kind === 'memory' ? hex(place.address) : pathWithFile(variable), { variable, place });

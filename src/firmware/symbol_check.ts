@@ -16,7 +16,7 @@ import type { CoefficientPath } from './path.js';
  */
 export function removedByLinker(
   image: ElfImage,
-  path: CoefficientPath,
+  path: string,
   variable: Variable,
   address: number,
 ): FirmwareError | undefined {
@@ -26,7 +26,7 @@ export function removedByLinker(
   const place = declaredAt(variable);
   return new FirmwareError(
     'garbage_collected',
-    `${quoted(path.text)}${place ? `, declared in ${place.file}:${place.line},` : ''} is not in ${quoted(image.name)}: the linker dropped it since nothing uses it ` +
+    `${quoted(path)}${place ? `, declared in ${place.file}:${place.line},` : ''} is not in ${quoted(image.name)}: the linker dropped it since nothing uses it ` +
       '(--gc-sections); use it, or mark it __attribute__((used)) and KEEP its section',
   );
 }

@@ -99,7 +99,7 @@ function keyOf(entry: { unit: { section: string }; offset: number }): string {
 }
 
 /** A variable of a function counts when it is static; one on the stack or in a register comes and goes. */
-function isLasting(variable: Variable): boolean {
+export function isLasting(variable: Variable): boolean {
   if (!variable.inFunction) return true;
   const location = attribute(variable.entry, at.location)?.value;
   if (location instanceof Uint8Array) return addressOperations.includes(location[0]);

@@ -44,8 +44,18 @@ export function isDefinition(variable: Variable): boolean {
   );
 }
 
-/** All variables of this simple name, definitions and declarations, from the units which can hold them. */
+const kept = new WeakMap<DebugInformation, Map<string, Variable[]>>();
+
+/** All variables of this simple name, definitions and declarations, from the units which can hold them; searched once. */
 export function variablesNamed(debug: DebugInformation, name: string): Variable[] {
+  const byName = kept.get(debug) ?? new Map<string, Variable[]>();
+  kept.set(debug, byName);
+  const found = byName.get(name) ?? searchVariables(debug, name);
+  byName.set(name, found);
+  return found;
+}
+
+function searchVariables(debug: DebugInformation, name: string): Variable[] {
   const found: Variable[] = [];
   const seen = new Set<Unit>();
   let waiting = unitsMentioning(debug, name);
