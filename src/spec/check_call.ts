@@ -12,6 +12,7 @@ export function checkCall(name: string, given: Checked[], place: Place, context:
   const description = functionNamed(name);
   if (description === undefined) {
     context.problems.add(place, missingFunction(name, context.names.entries.get(name)));
+    context.names.incomplete = true;
     return unknown(place);
   }
   if (given.length < description.least || given.length > description.most) {

@@ -13,7 +13,7 @@ export function checkCycles(
   report(
     new Map(plant.map((signal) => [signal.name, plantNeeds(signal, states)])),
     plant,
-    'no integral or lag between them, so they have no order to be computed in',
+    'at the same time: nothing between them, such as an integral or a lag, holds a value',
     reading,
   );
   const signals = controllers.flatMap((controller) => controller.signals);
@@ -24,7 +24,7 @@ export function checkCycles(
       ),
     ),
     signals,
-    'all at one sampling instant; let one of them use before(…), or give a controller a delay',
+    'at the same sampling instant: let one of them use before(…), or give a controller a delay',
     reading,
   );
 }
@@ -71,6 +71,6 @@ function report(
     for (const name of cycle) reported.add(name);
     const first = signals.find(({ name }) => name === cycle[0])!;
     const chain = [...cycle, cycle[0]].map((name) => `\`${name}\``).join(' ← ');
-    reading.problems.add(first.place, `${chain}: each needs the next, with ${why}`);
+    reading.problems.add(first.place, `${chain}: each needs the next ${why}`);
   }
 }

@@ -4,7 +4,7 @@ import { scaled } from './decimal.js';
 import { isPlain, plainNumber, powerOf, productOf, quotientOf } from './dimension.js';
 import { formatDimension } from './format_dimension.js';
 import { missingName } from './missing_name.js';
-import { type NameEntry, type Room, roleOf } from './names.js';
+import { aKind, type NameEntry, type Room, roleOf } from './names.js';
 import { type Checked, toOneScale, toScale, unknown } from './scales.js';
 import type { Expression, Place } from './spec.js';
 import type { Syntax } from './syntax.js';
@@ -64,12 +64,14 @@ function quantity(syntax: Syntax & { kind: 'quantity' }, place: Place, context: 
 function name(syntax: Syntax & { kind: 'name' }, place: Place, context: CheckContext): Checked {
   const entry = context.names.entries.get(syntax.name);
   context.names.used.add(syntax.name);
+  if (entry?.twice) return unknown(place);
   if (entry === undefined || !context.room.sees.includes(entry.kind)) {
     context.problems.add(place, missingName(syntax.name, entry, context));
+    context.names.incomplete = true;
     return unknown(place);
   }
   if (syntax.index !== undefined && entry.kind !== 'coefficient') {
-    context.problems.add(place, `only a coefficient has an index; \`${entry.name}\` is a ${entry.kind}`);
+    context.problems.add(place, `only a coefficient has an index; \`${entry.name}\` is ${aKind(entry.kind)}`);
     return unknown(place);
   }
   return named(entry, syntax.index, place, context.room);

@@ -19,7 +19,7 @@ export interface UnknownKey {
 }
 
 /**
- * Holds a tree against the schema, reports what has the wrong shape, each at its place, and returns the unknown keys.
+ * Holds a tree against the schema, reports what has the wrong shape, each at its place. Gives the unknown keys.
  * `explain` may say more of an unknown key than its nearest neighbour.
  */
 export function checkSkeleton(
@@ -27,14 +27,14 @@ export function checkSkeleton(
   schema: z.ZodType,
   problems: Problems,
   explain: (path: Path, key: string) => string | undefined,
-): UnknownKey[] {
+): { unknown: UnknownKey[]; fits: boolean } {
   const result = schema.safeParse(plainRoot(tree));
   const held: Held = { tree, schema, problems, explain, unknown: [] };
   const complaints = (result.error?.issues ?? []).flatMap((issue) => unfolded(issue, issue.path));
   const isUnknown = ({ issue }: Complaint) => issue.code === 'unrecognized_keys';
   for (const complaint of complaints.filter(isUnknown)) reportUnknownKeys(complaint, held);
   for (const complaint of complaints.filter((one) => !isUnknown(one))) reportShape(complaint, held);
-  return held.unknown;
+  return { unknown: held.unknown, fits: result.success };
 }
 
 interface Held {

@@ -13,6 +13,7 @@ const mustBeUsed: Partial<Record<NameKind, string>> = {
 
 /** Reports what is defined and then forgotten: a change of it would be judged by nothing. */
 export function checkUse(reading: Reading): void {
+  if (reading.names.incomplete) return;
   for (const { name, kind, place } of reading.names.entries.values()) {
     const fault = mustBeUsed[kind];
     if (fault === undefined || reading.names.used.has(name)) continue;
@@ -22,14 +23,15 @@ export function checkUse(reading: Reading): void {
 
 /** Reports controllers that see nothing from outside themselves. */
 export function checkControllersHear(controllers: readonly ControllerDefinition[], reading: Reading): void {
+  if (reading.names.incomplete) return;
   for (const controller of controllers) {
     const expressions = controller.signals.flatMap((signal) => {
       const { drives, bounds } = expressionsOf(signal);
       return [...drives, ...bounds];
     });
-    if (controller.signals.length > 0 && !expressions.every(isWhole)) continue;
     const names = expressions.flatMap((expression) => needsOf(expression)).map((need) => need.name);
-    if (names.some((name) => comesFromOutside(name, controller.name, reading))) continue;
+    const hears = names.some((name) => comesFromOutside(name, controller.name, reading));
+    if (hears || !expressions.every(isWhole)) continue;
     reading.problems.add(
       controller.place,
       `controller \`${controller.name}\` never gets a signal: none of its signals depends on a sensor, an input or another controller`,

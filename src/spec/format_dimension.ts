@@ -2,11 +2,12 @@ import { baseUnits, isPlain, powerOf, quotientOf, rateDimension, sameDimension }
 import type { Dimension } from './spec.js';
 import { unitSymbols } from './unit_table.js';
 
-/** Derived units tried in this order; the joule is left out, since N*m serves torque and energy alike. */
-const named = ['N', 'W', 'V', 'A', 'Pa', 'ohm', 'Hz', 'H', 'F', 'C', 'T', 'Wb', 'K'];
+/** Derived units tried in this order; the joule is left out, since N*m serves torque and energy alike, and so on. */
+const named = ['N', 'W', 'V', 'A', 'Pa', 'ohm', 'Hz', 'H', 'F', 'K'];
 
 interface Writing {
   text: string;
+  /** How long it reads: a factor for each power, and more where nothing stands above the line. */
   factors: number;
 }
 
@@ -17,7 +18,7 @@ export function formatDimension(dimension: Dimension): string {
   let best = inBaseUnits(undefined, dimension);
   for (const symbol of named) {
     const unit = unitSymbols.find((candidate) => candidate.symbol === symbol)!;
-    for (const power of [1, -1]) {
+    for (const power of [1, -1, 2, -2]) {
       const rest = quotientOf(dimension, powerOf(unit.dimension, power));
       const writing = inBaseUnits({ symbol, power }, rest);
       if (writing.factors < best.factors) best = writing;
@@ -40,7 +41,10 @@ function inBaseUnits(first: { symbol: string; power: number } | undefined, rest:
   const all = (first === undefined ? ordered : [first, ...ordered]).filter(({ power }) => power !== 0);
   return {
     text: joined(all),
-    factors: all.reduce((sum, { power }) => sum + Math.abs(power), 0),
+    factors: all.reduce(
+      (sum, { power }) => sum + Math.abs(power),
+      all.some(({ power }) => power > 0) ? 0 : 1.5,
+    ),
   };
 }
 

@@ -9,7 +9,7 @@ import { readRequirements } from './read_requirements.js';
 import { checkVersion, readMerge, readPerturbation } from './read_run.js';
 import { readScenarios } from './read_scenarios.js';
 import { readYaml } from './read_yaml.js';
-import { type Reading, useAllNames } from './reading.js';
+import type { Reading } from './reading.js';
 import { skeletonOf } from './skeleton.js';
 import type { Spec, SpecError } from './spec.js';
 import { childOf, entryOf, type MapTree, type Tree, textOf } from './tree.js';
@@ -47,13 +47,11 @@ function rootOf(
 
 /** Checks the shape of everything; the readers of the sections then pass over what has the wrong one. */
 function readingOf(root: MapTree, vocabulary: Vocabulary, problems: Problems): Reading {
-  const unknown = checkSkeleton(root, skeletonOf(vocabulary), problems, (path, key) =>
+  const { unknown, fits } = checkSkeleton(root, skeletonOf(vocabulary), problems, (path, key) =>
     misplaced(path, key, vocabulary),
   );
   const strange = new Set(unknown.map(({ holder }) => holder));
-  const reading: Reading = { vocabulary, problems, strange, names: { entries: new Map(), used: new Set() } };
-  for (const { entry } of unknown) useAllNames(entry.value, reading);
-  return reading;
+  return { vocabulary, problems, strange, names: { entries: new Map(), used: new Set(), incomplete: !fits } };
 }
 
 function readSpec(root: MapTree, file: string, reading: Reading): Spec {

@@ -1,19 +1,12 @@
 import type { CheckContext } from './check_context.js';
 import { functionNamed, functions } from './functions.js';
-import { type NameEntry, type NameKind, nameFault } from './names.js';
+import { aKind, type NameEntry, type NameKind, nameFault } from './names.js';
 import { nearestName } from './nearest.js';
 import { parseUnit } from './units.js';
 
-/**
- * Why a name means nothing where it stands: hidden there, mistyped, or not defined at all. What was probably meant
- * counts as used, so that it is not reported as forgotten besides.
- */
+/** Why a name means nothing where it stands: hidden there, mistyped, or not defined at all. */
 export function missingName(name: string, entry: NameEntry | undefined, context: CheckContext): string {
-  const { used } = context.names;
-  if (entry !== undefined) {
-    if (entry.kind === 'plant signal') for (const sensor of namesOf('sensor', context)) used.add(sensor);
-    return hiddenName(entry, context);
-  }
+  if (entry !== undefined) return hiddenName(entry, context);
   if (functionNamed(name) !== undefined || name === 'before') {
     return `\`${name}\` is a function: its arguments follow in parentheses`;
   }
@@ -23,10 +16,7 @@ export function missingName(name: string, entry: NameEntry | undefined, context:
     name,
     visible.map((known) => known.name),
   );
-  if (nearest !== undefined) {
-    used.add(nearest);
-    return `no such name \`${name}\`; did you mean \`${nearest}\`?`;
-  }
+  if (nearest !== undefined) return `no such name \`${name}\`; did you mean \`${nearest}\`?`;
   if (nameFault(name) !== undefined || isUnit(name)) {
     return `no such name \`${name}\`; a quantity stands in parentheses of its own, as in (0.5 mrad/s)`;
   }
@@ -36,7 +26,7 @@ export function missingName(name: string, entry: NameEntry | undefined, context:
 /** An unknown function, with the nearest known one. */
 export function missingFunction(name: string, entry: NameEntry | undefined): string {
   if (entry !== undefined)
-    return `\`${name}\` is a ${entry.kind}, not a function; a product is written with *`;
+    return `\`${name}\` is ${aKind(entry.kind)}, not a function; a product is written with *`;
   const known = functions.map((description) => description.name);
   const nearest = nearestName(name, [...known, 'before']);
   const end = nearest === undefined ? `; known: ${known.join(', ')}` : `; did you mean \`${nearest}\`?`;
@@ -45,7 +35,7 @@ export function missingFunction(name: string, entry: NameEntry | undefined): str
 
 function hiddenName(entry: NameEntry, context: CheckContext): string {
   const { room } = context;
-  const what = `\`${entry.name}\` is a ${entry.kind}`;
+  const what = `\`${entry.name}\` is ${aKind(entry.kind)}`;
   const sees = `${room.words} sees ${list(room.sees)}`;
   if (entry.kind === 'plant signal' && room.sees.includes('sensor')) {
     return `${what}, and a controller cannot see the true plant: let it read a sensor; ${sees}`;
@@ -53,11 +43,6 @@ function hiddenName(entry: NameEntry, context: CheckContext): string {
   if (entry.kind === 'parameter') return `${what}, which the firmware does not know; ${sees}`;
   if (entry.kind === 'coefficient') return `${what} of the firmware, which the plant does not know; ${sees}`;
   return `${what}; ${sees}`;
-}
-
-function namesOf(kind: NameKind, context: CheckContext): string[] {
-  const entries = [...context.names.entries.values()];
-  return entries.filter((entry) => entry.kind === kind).map(({ name }) => name);
 }
 
 function isUnit(name: string): boolean {

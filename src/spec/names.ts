@@ -26,6 +26,8 @@ export interface NameEntry {
   adapts: boolean;
   /** SI value of a constant, nominal SI value of a parameter. */
   value: number | undefined;
+  /** Defined more than once: what it stands for is not known. */
+  twice: boolean;
   /** The controller of a controller signal. */
   controller: string | undefined;
 }
@@ -34,6 +36,13 @@ export interface NameEntry {
 export interface Names {
   entries: Map<string, NameEntry>;
   used: Set<string>;
+  /** Something that may use a name could not be read, so that no name can be called unused. */
+  incomplete: boolean;
+}
+
+/** "a sensor", "an input". */
+export function aKind(kind: NameKind): string {
+  return /^[aeiou]/.test(kind) ? `an ${kind}` : `a ${kind}`;
 }
 
 /** The role in a checked expression; constants have become numbers by then. */
@@ -56,6 +65,7 @@ export function declare(names: Names, entry: NameEntry, problems: Problems): voi
     names.entries.set(entry.name, entry);
     return;
   }
+  earlier.twice = true;
   const where = `line ${earlier.place.line}`;
   problems.add(
     entry.place,

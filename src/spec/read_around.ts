@@ -1,3 +1,4 @@
+import { aKind } from './names.js';
 import { suggestion } from './nearest.js';
 import { readQuantity } from './read_quantity.js';
 import type { Reading } from './reading.js';
@@ -34,7 +35,7 @@ function readPoint(
   if (signal === undefined) {
     const known = signals.map(({ name }) => name);
     const fault = entries.has(key)
-      ? `\`${key}\` is a ${entries.get(key)!.kind}, not a signal`
+      ? `\`${key}\` is ${aKind(entries.get(key)!.kind)}, not a signal`
       : `unknown signal \`${key}\``;
     reading.problems.add(keyPlace, `${fault}${suggestion(key, known)}`);
     return undefined;

@@ -1,6 +1,6 @@
 import { quotientOf, timeDimension } from './dimension.js';
 import { formatMismatch } from './format_dimension.js';
-import { controllerRoom, plantRoom, settingRoom, timingRoom } from './names.js';
+import { aKind, controllerRoom, plantRoom, settingRoom, timingRoom } from './names.js';
 import { suggestion } from './nearest.js';
 import {
   type Free,
@@ -168,9 +168,10 @@ function checkActuatorSource(entry: MapEntry, reading: Reading): void {
   if (of === undefined) return;
   const source = reading.names.entries.get(of.text);
   reading.names.used.add(of.text);
+  reading.names.incomplete ||= source === undefined;
   if (source?.kind !== 'controller signal') {
     const known = [...reading.names.entries.values()].filter(({ kind }) => kind === 'controller signal');
-    const found = source === undefined ? 'is not defined' : `is a ${source.kind}`;
+    const found = source === undefined ? 'is not defined' : `is ${aKind(source.kind)}`;
     const near = suggestion(
       of.text,
       known.map(({ name }) => name),

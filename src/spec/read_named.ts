@@ -1,3 +1,4 @@
+import { formatDimension } from './format_dimension.js';
 import { declare, type NameEntry, type NameKind } from './names.js';
 import { readQuantity, readUnit } from './read_quantity.js';
 import type { Reading } from './reading.js';
@@ -15,7 +16,17 @@ export function declareEntry(
   const { key: name, keyPlace: place } = entry;
   declare(
     reading.names,
-    { name, kind, place, unit, adapts: false, value: undefined, controller: undefined, ...more },
+    {
+      name,
+      kind,
+      place,
+      unit,
+      adapts: false,
+      value: undefined,
+      twice: false,
+      controller: undefined,
+      ...more,
+    },
     reading.problems,
   );
 }
@@ -98,7 +109,7 @@ function halfWidth(
   if (same && !spread.decibel) return spread.value;
   reading.problems.add(
     spread.place,
-    `a spread is a share in %, or a quantity in the unit of the nominal value`,
+    `a spread is a share in %, or in ${formatDimension(unit.dimension)} like the nominal value, but this is ${spread.decibel ? 'dB' : formatDimension(spread.unit.dimension)}`,
   );
   return undefined;
 }

@@ -1,5 +1,5 @@
 import { timeDimension } from './dimension.js';
-import { nameFault, scenarioRoom } from './names.js';
+import { aKind, nameFault, scenarioRoom } from './names.js';
 import { suggestion } from './nearest.js';
 import { nominalValue } from './nominal_value.js';
 import { readExpression, type Slot, type Surroundings } from './read_expression.js';
@@ -26,7 +26,9 @@ function readScenario(entry: MapEntry, reading: Reading): Scenario {
   for (const input of entriesOf(childOf(entry.value, 'inputs'))) {
     const dimension = inputDimension(input, reading);
     const events = input.value.kind === 'list' ? itemsOf(input.value) : [input.value];
-    inputs[input.key] = events.flatMap((event) => readEvent(event, dimension, lasts?.value, reading) ?? []);
+    inputs[input.key] = events.map(
+      (event) => readEvent(event, dimension, lasts?.value, reading) ?? unread(event),
+    );
   }
   return {
     name: entry.key,
@@ -37,6 +39,11 @@ function readScenario(entry: MapEntry, reading: Reading): Scenario {
   };
 }
 
+/** Stands for an event that is wrong: something happens, but it is not known when. */
+function unread({ place }: Tree): InputEvent {
+  return { kind: 'step', amount: missing(place), at: missing(place), place };
+}
+
 function inputDimension({ key, keyPlace }: MapEntry, reading: Reading): Dimension | undefined {
   const entry = reading.names.entries.get(key);
   if (entry?.kind === 'input') return entry.unit?.dimension;
@@ -44,7 +51,7 @@ function inputDimension({ key, keyPlace }: MapEntry, reading: Reading): Dimensio
     .filter(({ kind }) => kind === 'input')
     .map(({ name }) => name);
   const found =
-    entry === undefined ? `unknown input \`${key}\`` : `\`${key}\` is a ${entry.kind}, not an input`;
+    entry === undefined ? `unknown input \`${key}\`` : `\`${key}\` is ${aKind(entry.kind)}, not an input`;
   reading.problems.add(keyPlace, `${found}${suggestion(key, known)}`);
   return undefined;
 }

@@ -12,7 +12,7 @@ import {
 import { readCorner, readTimeConstant } from './read_frequency.js';
 import { declaredUnit } from './read_named.js';
 import { readQuantity } from './read_quantity.js';
-import { missing, type Reading, useAllNames } from './reading.js';
+import { missing, type Reading } from './reading.js';
 import type { Dimension, Expression, Setting, SignalDefinition, Unit } from './spec.js';
 import { childOf, entryOf, type MapEntry, type Tree, textOf } from './tree.js';
 import type { BlockDescription, Room, SettingDescription } from './vocabulary.js';
@@ -73,7 +73,7 @@ function definingBlock(entry: MapEntry, room: Room, reading: Reading): BlockDesc
   const found = known.filter((block) => entryOf(entry.value, block.key) !== undefined);
   if (found.length === 1) return found[0];
   const keys = known.map((block) => block.key);
-  useAllNames(entry.value, reading);
+  reading.names.incomplete = true;
   if (found.length > 1) {
     const given = found.map((block) => `\`${block.key}\``).join(' and ');
     reading.problems.add(
@@ -92,6 +92,7 @@ function checkCompanions({ block, entry, reading }: Workplace): void {
   const of = entryOf(entry.value, 'of');
   const gain = entryOf(entry.value, 'gain');
   if (block.takesInput && of === undefined && !reading.strange.has(entry.value)) {
+    reading.names.incomplete = true;
     reading.problems.add(entry.keyPlace, `\`${block.key}\` needs \`of:\`, the signal that it takes`);
   }
   if (!block.takesInput && of !== undefined) {
@@ -205,6 +206,7 @@ function readCoefficientName(tree: Tree, what: string, reading: Reading): Settin
     text.text,
     known.map(({ name }) => name),
   );
+  reading.names.incomplete = true;
   reading.problems.add(
     text.place,
     `${what} must be the name of a coefficient, but is \`${text.text}\`${near}`,

@@ -1,5 +1,5 @@
 import { formatMismatch } from './format_dimension.js';
-import type { NameEntry, NameKind } from './names.js';
+import { aKind, type NameEntry, type NameKind } from './names.js';
 import { suggestion } from './nearest.js';
 import type { Reading } from './reading.js';
 import { sameUnit } from './same_unit.js';
@@ -45,7 +45,7 @@ function readSignalKey(
     known.map(({ name }) => name),
   );
   const fault =
-    entry === undefined ? `unknown signal \`${text.text}\`` : `\`${text.text}\` is a ${entry.kind}`;
+    entry === undefined ? `unknown signal \`${text.text}\`` : `\`${text.text}\` is ${aKind(entry.kind)}`;
   const expected = entry === undefined ? '' : `, but \`${key.name}\` names ${article(accepted)}`;
   reading.problems.add(text.place, `${fault}${expected}${near}`);
   return undefined;

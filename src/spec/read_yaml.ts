@@ -63,7 +63,7 @@ function parsed(text: string, lineCounter: LineCounter): Document.Parsed {
     schema: 'failsafe',
     prettyErrors: false,
     uniqueKeys: true,
-    logLevel: 'silent',
+    logLevel: 'error',
   });
 }
 
