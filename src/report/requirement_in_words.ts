@@ -1,0 +1,94 @@
+import type { Limit } from '../spec/spec.js';
+import type { RequirementRun, SpecRun } from '../verdict/run.js';
+import {
+  counted,
+  formatCount,
+  formatHeadroom,
+  formatLimit,
+  formatNumber,
+  formatResult,
+  formatShare,
+  limitNumber,
+  unitText,
+  type WrittenUnit,
+} from './format_value.js';
+import { oneLine } from './plain_text.js';
+import { plantInWords } from './plant_in_words.js';
+
+/** The numbers of a limit, SI. */
+export function limitNumbers(limit: Limit): number[] {
+  if ('at_most' in limit) return [limit.at_most];
+  if ('at_least' in limit) return [limit.at_least];
+  return [...limit.between];
+}
+
+/** A limit in the unit it was written in: "at most 25 %", "between 1.2 and 1.5 s". */
+export function limitInWords(limit: Limit, written: WrittenUnit): string {
+  if ('at_most' in limit) return `at most ${formatLimit(limit.at_most, written)}`;
+  if ('at_least' in limit) return `at least ${formatLimit(limit.at_least, written)}`;
+  const [low, high] = limit.between.map((end) => limitNumber(end, written));
+  return `between ${low} and ${high} ${unitText(written)}`.trimEnd();
+}
+
+/** The measure's name as people write it: "settling time". */
+export function measureName(measure: string): string {
+  return oneLine(measure).replaceAll('_', ' ');
+}
+
+/** The measure with its signals and scenario: "overshoot of angle to target in slew", "phase margin at duty". */
+export function measureInWords(
+  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'scenario'>,
+): string {
+  const { measure, signals, scenario } = requirement;
+  const parts = Object.entries(signals).map(([key, signal]) => ` ${oneLine(key)} ${oneLine(signal)}`);
+  return measureName(measure) + parts.join('') + (scenario === undefined ? '' : ` in ${oneLine(scenario)}`);
+}
+
+/** The measure with the one signal that it is taken from: "overshoot of angle". */
+export function measureWithSignal({ measure, signals }: Pick<RequirementRun, 'measure' | 'signals'>): string {
+  const key = ['of', 'at'].find((one) => Object.hasOwn(signals, one));
+  return key === undefined ? measureName(measure) : `${measureName(measure)} ${key} ${oneLine(signals[key])}`;
+}
+
+/** For which plants it must hold, where that is not every one: "for 99 % of plants", "at nominal". */
+export function holdsForInWords({ holdsFor }: Pick<RequirementRun, 'holdsFor'>): string {
+  if (holdsFor === 'nominal') return 'at the nominal plant';
+  return holdsFor === 'all' ? 'for all plants' : `for ${formatNumber(holdsFor * 100)} % of plants`;
+}
+
+/** What stands behind the verdict: "nominal only", "tried 1,108 plants: broken on 12 (1.08 %), no number on 3". */
+export function evidenceInWords({ evidence, counts }: Pick<RequirementRun, 'evidence' | 'counts'>): string {
+  if (evidence.kind === 'nominal_only') return 'nominal only';
+  const { tried, broken, unjudged } = counts;
+  const found = broken > 0 ? [`broken on ${formatCount(broken)} (${formatShare(broken / tried)})`] : [];
+  if (unjudged > 0) found.push(`no number on ${formatCount(unjudged)}`);
+  return `tried ${counted(evidence.plants, 'plant')}${found.length > 0 ? `: ${found.join(', ')}` : ''}`;
+}
+
+/**
+ * The finding on one line: "AZ-1 is broken: overshoot of angle to target in slew: 31.4 %; limit at most 25 %; headroom
+ * -25.6 %; plant: friction at its lower bound (10 N*m*s/rad); nothing else moved".
+ */
+export function findingOnOneLine(requirement: RequirementRun): string {
+  const { name, verdict, worst, limit } = requirement;
+  const measured = formatResult(worst.result, requirement, limitNumbers(limit));
+  const parts = [`${oneLine(name)} is ${verdict.kind}: ${measureInWords(requirement)}: ${measured}`];
+  const said = worst.result.kind === 'unformed' ? worst.result.why : undefined;
+  if (verdict.kind === 'unjudged' && verdict.why !== said) parts.push(oneLine(verdict.why));
+  parts.push(
+    `limit ${limitInWords(limit, requirement)}`,
+    `headroom ${formatHeadroom(worst.headroom)}`,
+    `plant: ${plantInWords(worst)}`,
+  );
+  return parts.join('; ');
+}
+
+/** Claims of a spec, each once, with the requirements that it is made for: "AZ-1, AZ-2: in 1,000 …". */
+export function claimsInWords(spec: Pick<SpecRun, 'requirements'>): { names: string[]; claim: string }[] {
+  const byClaim = new Map<string, string[]>();
+  for (const { name, claim } of spec.requirements) {
+    if (claim === undefined) continue;
+    byClaim.set(claim, [...(byClaim.get(claim) ?? []), oneLine(name)]);
+  }
+  return [...byClaim].map(([claim, names]) => ({ names, claim }));
+}

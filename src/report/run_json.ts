@@ -1,0 +1,123 @@
+import type { MeasureResult } from '../measure/measure.js';
+import type { Limit, Place } from '../spec/spec.js';
+import type {
+  CoefficientRead,
+  FinishedRun,
+  JudgedPlant,
+  Provenance,
+  RequirementRun,
+  SpecRun,
+} from '../verdict/run.js';
+import { portablePath } from './file_path.js';
+import { siUnit } from './si_unit.js';
+import { type Json, jsonNumber, stableJson } from './stable_json.js';
+
+/**
+ * The whole run as JSON: numbers in SI (angles in rad, margins as plain ratios, shares as fractions), an infinite one as
+ * the word "infinite", one that could not be formed as null with a `why`. It holds no times and no absolute paths, so
+ * that the same spec, image and version give the same bytes: paths below `root` are written relative to it.
+ */
+export function runJson(run: FinishedRun, root?: string): string {
+  return stableJson({ pawl: run.version, specs: run.specs.map((spec) => specJson(spec, root)) });
+}
+
+function specJson(spec: SpecRun, root: string | undefined): Json {
+  return {
+    file: portablePath(spec.file, root),
+    loop: spec.loop,
+    seed: spec.seed,
+    confidence: spec.confidence,
+    plants: { ...spec.plants },
+    scenarios: spec.scenarios.map(({ name, lasts }) => ({ name, lasts })),
+    halvings: spec.halvings,
+    merge: spec.merge ?? null,
+    provenance: spec.provenance ? provenanceJson(spec.provenance, root) : null,
+    coefficients: spec.coefficients.map((one) => coefficientJson(one, root)),
+    requirements: spec.requirements.map((one) => requirementJson(one, root)),
+  };
+}
+
+function requirementJson(requirement: RequirementRun, root: string | undefined): Json {
+  const { verdict, evidence, counts, nominal, worst } = requirement;
+  const why = verdict.kind === 'met' ? missing(worst) : verdict.why;
+  return {
+    name: requirement.name,
+    at: placeJson(requirement.place, root),
+    measure: requirement.measure,
+    signals: { ...requirement.signals },
+    scenario: requirement.scenario ?? null,
+    reason: requirement.reason ?? null,
+    limit: limitJson(requirement.limit),
+    unit: siUnit(requirement.unit),
+    written_unit: requirement.inDecibels ? 'dB' : requirement.unit.text,
+    holds_for: requirement.holdsFor,
+    verdict: verdict.kind,
+    ...(why === undefined ? {} : { why }),
+    evidence: evidence.kind === 'tried' ? { tried: evidence.plants } : 'nominal only',
+    counts: { ...counts },
+    claim: requirement.claim ?? null,
+    nominal: resultJson(nominal.result),
+    ...(nominal.result.kind === 'value'
+      ? notes('nominal', nominal.result)
+      : { nominal_why: nominal.result.why }),
+    worst: resultJson(worst.result),
+    ...(worst.result.kind === 'value' ? notes('worst', worst.result) : { worst_why: worst.result.why }),
+    headroom: worst.headroom === undefined ? null : jsonNumber(worst.headroom),
+    nominal_headroom: nominal.headroom === undefined ? null : jsonNumber(nominal.headroom),
+    plant: Object.fromEntries(worst.parameters.map(({ name, value }) => [name, jsonNumber(value)])),
+    plant_moved: Object.fromEntries(worst.parameters.map(({ name, moved }) => [name, jsonNumber(moved)])),
+    plant_origin: worst.origin,
+  };
+}
+
+function missing({ result }: JudgedPlant): string | undefined {
+  return result.kind === 'value' ? undefined : result.why;
+}
+
+function resultJson(result: MeasureResult): Json {
+  return result.kind === 'value' ? jsonNumber(result.value) : null;
+}
+
+function notes(of: string, { note }: { note?: string }): Record<string, string> {
+  return note === undefined ? {} : { [`${of}_note`]: note };
+}
+
+function limitJson(limit: Limit): Json {
+  if ('at_most' in limit) return { at_most: jsonNumber(limit.at_most) };
+  if ('at_least' in limit) return { at_least: jsonNumber(limit.at_least) };
+  return { between: limit.between.map(jsonNumber) };
+}
+
+function placeJson({ file, line, column }: Place, root: string | undefined): Json {
+  return { file: portablePath(file, root), line, column };
+}
+
+function coefficientJson({ name, unit, coefficient }: CoefficientRead, root: string | undefined): Json {
+  const { path, elements, shape, type, declaredAt } = coefficient;
+  const values = elements.map(({ value }) => jsonNumber(value));
+  const stored = elements.map((element) => element.stored);
+  const isScalar = shape.length === 0;
+  return {
+    name,
+    path,
+    type,
+    unit: unit?.text ?? null,
+    ...(isScalar
+      ? { value: values[0] ?? null, stored: stored[0] ?? null }
+      : { shape: [...shape], values, stored }),
+    declared_at: declaredAt ? { file: portablePath(declaredAt.file, root), line: declaredAt.line } : null,
+  };
+}
+
+function provenanceJson(provenance: Provenance, root: string | undefined): Json {
+  const { image, bytes, sha256, buildId, compilers, build, buildSkipped } = provenance;
+  return {
+    image: portablePath(image, root),
+    bytes,
+    sha256,
+    build_id: buildId ?? null,
+    compilers: [...compilers],
+    build: build?.command ?? null,
+    build_skipped: buildSkipped,
+  };
+}

@@ -1,0 +1,112 @@
+import type { FinishedRun, JudgedPlant, RequirementRun, SpecRun } from '../verdict/run.js';
+import { caution } from './caution.js';
+import { counted, formatNumber, formatResult } from './format_value.js';
+import { oneLine, shortened } from './plain_text.js';
+import { plantInWords } from './plant_in_words.js';
+import { claimsInWords, evidenceInWords, holdsForInWords, limitNumbers } from './requirement_in_words.js';
+import { type Painter, painter } from './terminal_colour.js';
+import { type RowWidths, rowLines, rowWidths, terminalHeadings, terminalRow } from './terminal_row.js';
+import { blockingFirst, mayMerge, runInWords, verdictSigns } from './verdict_words.js';
+import { wrapText } from './wrap_text.js';
+
+/** How a terminal is written to: whether in colour, and how many columns it has. */
+export interface TerminalLook {
+  colour: boolean;
+  width: number;
+}
+
+const leastWidth = 80;
+const mostWidth = 100;
+const detailIndent = 4;
+/** Longer texts lose their middle, so that one name cannot fill the screen. */
+const longest = 400;
+
+/**
+ * The run as a table for a terminal: for each spec its verdicts, what blocks the merge first with the plant it breaks
+ * on, then what may be claimed; the verdict on the whole and the caution at the end, where the eye is.
+ */
+export function terminalReport(run: FinishedRun, { colour, width }: TerminalLook): string {
+  const columns = Math.min(mostWidth, Math.max(leastWidth, Math.floor(width)));
+  const paint = painter(colour);
+  const passes = mayMerge(run);
+  const sign = verdictSigns[passes ? 'met' : 'broken'];
+  return [
+    ...run.specs.flatMap((spec) => [...specLines(spec, columns, paint), '']),
+    paint(passes ? 'met' : 'broken', `${sign} ${runInWords(run)}`),
+    ...wrapText(caution, columns).map((line) => paint('quiet', line)),
+    '',
+  ].join('\n');
+}
+
+function specLines(spec: SpecRun, width: number, paint: Painter): string[] {
+  const requirements = blockingFirst(spec.requirements);
+  const rows = requirements.map(terminalRow);
+  const widths = rowWidths([terminalHeadings, ...rows], width);
+  return [
+    paint('strong', shortened(oneLine(spec.loop), width)),
+    ...about(spec).flatMap((text) => wrapText(text, width, 0, 2).map((line) => paint('quiet', line))),
+    '',
+    ...rowLines(terminalHeadings, widths, (text) => text).map((line) => paint('quiet', line)),
+    ...requirements.flatMap((requirement, at) =>
+      requirementLines(requirement, rows[at], widths, width, paint),
+    ),
+    '',
+    ...closing(spec).flatMap((text) => wrapText(text, width, 0, 2)),
+  ];
+}
+
+function about(spec: SpecRun): string[] {
+  const { provenance, coefficients, plants, scenarios } = spec;
+  const tried = Object.values(plants).reduce((sum, count) => sum + count, 0);
+  const image = provenance
+    ? `image ${shortened(oneLine(provenance.image), 60)} (SHA-256 ${provenance.sha256.slice(0, 12)})`
+    : 'no image';
+  const skipped = provenance?.buildSkipped ? ', taken as it is: the build was skipped' : '';
+  return [
+    shortened(oneLine(spec.file), 200),
+    image + skipped,
+    `${counted(coefficients.length, 'coefficient')}, ${counted(tried, 'plant')} tried in ${counted(scenarios.length, 'scenario')}, seed ${spec.seed}`,
+  ];
+}
+
+function requirementLines(
+  requirement: RequirementRun,
+  row: ReturnType<typeof terminalRow>,
+  widths: RowWidths,
+  width: number,
+  paint: Painter,
+): string[] {
+  const lines = rowLines(row, widths, (text) => paint(requirement.verdict.kind, text));
+  if (requirement.verdict.kind === 'met') return lines;
+  return [...lines, ...details(requirement).flatMap((text) => wrapText(text, width, detailIndent, 2)), ''];
+}
+
+/** What a reader of a blocked merge asks next: on which plant, why, how often, what for, and where it is written. */
+function details(requirement: RequirementRun): string[] {
+  const { verdict, worst, reason, place, holdsFor } = requirement;
+  const why = verdict.kind === 'met' ? [] : [oneLine(verdict.why)];
+  const found = withoutNumber(worst, requirement);
+  if (found !== undefined && !why.includes(found)) why.push(found);
+  return [
+    ...why.map((text) => shortened(text, longest)),
+    `plant: ${shortened(plantInWords(worst), longest)}`,
+    evidenceInWords(requirement) + (holdsFor === 'all' ? '' : `; must hold ${holdsForInWords(requirement)}`),
+    ...(reason === undefined ? [] : [`reason: ${shortened(oneLine(reason), longest)}`]),
+    `${shortened(oneLine(place.file), 200)}:${place.line}:${place.column}`,
+  ];
+}
+
+function withoutNumber({ result }: JudgedPlant, requirement: RequirementRun): string | undefined {
+  if (result.kind === 'value') return result.note && oneLine(result.note);
+  if (result.kind === 'unformed') return undefined;
+  return formatResult(result, requirement, limitNumbers(requirement.limit));
+}
+
+function closing(spec: SpecRun): string[] {
+  const claims = claimsInWords(spec).map(({ names, claim }) => {
+    const all = names.length === spec.requirements.length && names.length > 1;
+    return `${all ? 'each requirement' : shortened(names.join(', '), 120)}: ${oneLine(claim)}`;
+  });
+  const merge = spec.merge === undefined ? [] : [`merge: ${oneLine(spec.merge)}`];
+  return [...claims, ...merge, `judged in ${formatNumber(spec.seconds, 3)} s`];
+}

@@ -1,0 +1,39 @@
+import type { FinishedRun, RequirementRun, Verdict } from '../verdict/run.js';
+import { counted } from './format_value.js';
+
+/** The verdicts, what blocks the merge first. */
+export const verdictKinds = ['broken', 'unjudged', 'met'] as const satisfies readonly Verdict['kind'][];
+
+/** A verdict's sign on a line of text: a bar between two posts that is whole, cut, or not to be seen. */
+export const verdictSigns: Readonly<Record<Verdict['kind'], string>> = {
+  met: '┣━┫',
+  broken: '┣╱┫',
+  unjudged: '┣?┫',
+};
+
+/** How many requirements of a run have each verdict. */
+export function countVerdicts(run: FinishedRun): Record<Verdict['kind'], number> {
+  const counts = { met: 0, broken: 0, unjudged: 0 };
+  for (const { verdict } of run.specs.flatMap(({ requirements }) => requirements)) counts[verdict.kind]++;
+  return counts;
+}
+
+/** Whether the merge may go through: at least one requirement, and every one of them met. */
+export function mayMerge(run: FinishedRun): boolean {
+  const { met, broken, unjudged } = countVerdicts(run);
+  return met > 0 && broken === 0 && unjudged === 0;
+}
+
+/** The whole run in a few words: "merge blocked: 2 broken, 1 unjudged, 4 met". */
+export function runInWords(run: FinishedRun): string {
+  const counts = countVerdicts(run);
+  const parts = verdictKinds.filter((kind) => counts[kind] > 0).map((kind) => `${counts[kind]} ${kind}`);
+  if (parts.length === 0) return 'merge blocked: there are no requirements';
+  if (!mayMerge(run)) return `merge blocked: ${parts.join(', ')}`;
+  return `merge may go through: ${counted(counts.met, 'requirement')} met`;
+}
+
+/** Requirements in the order in which a reader wants them: broken, unjudged, met; else as in the spec. */
+export function blockingFirst(requirements: readonly RequirementRun[]): RequirementRun[] {
+  return verdictKinds.flatMap((kind) => requirements.filter(({ verdict }) => verdict.kind === kind));
+}
