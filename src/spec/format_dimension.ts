@@ -5,6 +5,8 @@ import { unitSymbols } from './unit_table.js';
 /** Derived units tried in this order; the joule is left out, since N*m serves torque and energy alike, and so on. */
 const named = ['N', 'W', 'V', 'A', 'Pa', 'ohm', 'Hz', 'H', 'F', 'K'];
 
+const mass = baseUnits.indexOf('kg');
+
 interface Writing {
   text: string;
   /** How long it reads: a factor for each power, and more where nothing stands above the line. */
@@ -20,6 +22,8 @@ export function formatDimension(dimension: Dimension): string {
     const unit = unitSymbols.find((candidate) => candidate.symbol === symbol)!;
     for (const power of [1, -1, 2, -2]) {
       const rest = quotientOf(dimension, powerOf(unit.dimension, power));
+      // N/kg for m/s^2 would be no help: a unit with mass in it must account for all of the mass.
+      if (unit.dimension[mass] !== 0 && rest[mass] !== 0) continue;
       const writing = inBaseUnits({ symbol, power }, rest);
       if (writing.factors < best.factors) best = writing;
     }

@@ -75,7 +75,9 @@ function operations(cursor: Cursor, weakest: number): Syntax {
     }
     compared = strength[operator] === comparison;
     cursor.next += 1;
-    const right = operations(cursor, operator === '^' ? strength[operator] - 1 : strength[operator] + 1);
+    // Only ^ groups to the right.
+    const next = operator === '^' ? strength[operator] - 1 : strength[operator] + 1;
+    const right = nested(cursor, () => operations(cursor, next));
     left = { kind: 'operation', operator, left, right, at: token.at };
   }
 }

@@ -4,7 +4,7 @@ import { isPlain, sameDimension } from './dimension.js';
 import { formatMismatch } from './format_dimension.js';
 import type { Room } from './names.js';
 import { parseExpression } from './parse_expression.js';
-import { missing, type Reading, useAllNames } from './reading.js';
+import { missing, type Reading } from './reading.js';
 import { type Checked, toScale } from './scales.js';
 import type { Dimension, Expression, Range } from './spec.js';
 import type { Syntax } from './syntax.js';
@@ -54,13 +54,12 @@ export function readFree(
   reading: Reading,
 ): Free | undefined {
   if (tree === undefined || tree.kind !== 'text') {
-    if (tree?.kind === 'broken') useAllNames(tree, reading);
     return undefined;
   }
   const syntax = parseExpression(tree.source);
   if (syntax.kind === 'fault') {
     reading.problems.add(tree.placeAt(syntax.at), syntax.message);
-    useAllNames(tree, reading);
+    reading.names.incomplete = true;
     return undefined;
   }
   const context: CheckContext = {
@@ -91,7 +90,6 @@ export function readRange(
   surroundings: Surroundings,
   reading: Reading,
 ): Range | undefined {
-  if (tree?.kind === 'broken') useAllNames(tree, reading);
   if (tree?.kind !== 'list' || tree.items.length !== 2) return undefined;
   const [low, high] = tree.items.map((item) => readExpression(item, slot, surroundings, reading)!);
   if (low.kind === 'number' && high.kind === 'number' && low.value >= high.value) reportOrder(tree, reading);

@@ -63,7 +63,7 @@ function readParameter(
   const given = ['spread', 'from', 'to'].filter((key) => childOf(value, key) !== undefined);
   if (value.kind === 'map' && !['spread', 'from,to'].includes(given.join())) {
     if (reading.strange.has(value)) return undefined;
-    const found = given.length === 0 ? 'no bounds' : given.join(' and ');
+    const found = given.length === 0 ? 'no bounds' : given.map((key) => `\`${key}\``).join(' and ');
     reading.problems.add(
       place,
       `parameter \`${name}\` has ${found}; expected either spread, or from and to (a fixed quantity belongs in constants)`,

@@ -14,7 +14,7 @@ import {
 } from 'yaml';
 import type { Problems } from './problems.js';
 import type { Place } from './spec.js';
-import { type BrokenTree, type MapEntry, type TextTree, type Tree, textsOf } from './tree.js';
+import type { BrokenTree, MapEntry, TextTree, Tree } from './tree.js';
 import { yamlFaults } from './yaml_faults.js';
 
 /** Longest spec text in characters; a spec is a page or two. */
@@ -73,7 +73,7 @@ function treeOf(node: unknown, source: Source, depth: number): Tree {
   const refused = refusal(parsedNode, depth);
   if (refused !== undefined) {
     source.problems.add(place, refused);
-    return { kind: 'broken', source: '', place };
+    return { kind: 'broken', place };
   }
   if (isMap(node)) return mapOf(node as YAMLMap, source, place, depth);
   if (isSeq(node)) return listOf(node as YAMLSeq, source, place, depth);
@@ -101,7 +101,7 @@ function mapOf(map: YAMLMap, source: Source, place: Place, depth: number): Tree 
       last !== undefined &&
       (splitByComma(last.value) || last.value.kind === 'broken')
     ) {
-      if (last.value.kind === 'text') last.value = brokenByComma(last.value, source, `${pair.key}`);
+      if (last.value.kind === 'text') last.value = brokenByComma(last.value, source);
       continue;
     }
     const entry = entryOf(pair, source, depth);
@@ -127,7 +127,7 @@ function listOf(list: YAMLSeq, source: Source, place: Place, depth: number): Tre
   const items = list.items.map((item) => treeOf(item, source, depth + 1));
   const split = items.find(splitByComma);
   if (split === undefined || list.flow !== true) return { kind: 'list', items, place };
-  return brokenByComma(split as TextTree, source, items.flatMap(textsOf).join(' '));
+  return brokenByComma(split as TextTree, source);
 }
 
 function scalarOf(scalar: Scalar, source: Source, place: Place): Tree {
@@ -165,10 +165,10 @@ function splitByComma(tree: Tree): boolean {
   return tree.source.split('(').length > tree.source.split(')').length;
 }
 
-function brokenByComma(tree: TextTree, source: Source, rest: string): BrokenTree {
+function brokenByComma(tree: TextTree, source: Source): BrokenTree {
   source.problems.add(
     tree.place,
     `\`${tree.text}\` is cut off at a comma; inside { } and [ ] an expression with a comma or a [ needs quotes, as in value: "max(a, b)"`,
   );
-  return { kind: 'broken', source: `${tree.source} ${rest}`, place: tree.place };
+  return { kind: 'broken', place: tree.place };
 }

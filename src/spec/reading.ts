@@ -1,7 +1,7 @@
 import type { Names } from './names.js';
 import type { Problems } from './problems.js';
 import type { Expression, Place } from './spec.js';
-import { type Tree, textsOf } from './tree.js';
+import type { Tree } from './tree.js';
 import type { Vocabulary } from './vocabulary.js';
 
 /** What every section's reader is handed. */
@@ -11,13 +11,6 @@ export interface Reading {
   problems: Problems;
   /** Mappings with a key that is unknown, and reported: what they seem to lack may stand there mistyped. */
   strange: ReadonlySet<Tree>;
-}
-
-/** What cannot be read still uses the names that stand in it: else each would be reported as forgotten besides. */
-export function useAllNames(tree: Tree, reading: Reading): void {
-  for (const text of textsOf(tree)) {
-    for (const [word] of text.matchAll(/[A-Za-z]\w*/g)) reading.names.used.add(word);
-  }
 }
 
 /** Stands where an expression is wrong and has been reported; a spec with problems is never handed out. */

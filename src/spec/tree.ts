@@ -39,10 +39,9 @@ export interface EmptyTree {
   place: Place;
 }
 
-/** Already reported: whoever needs it stays silent. `source` is the text, if any, whose names count as used. */
+/** Already reported: whoever needs it stays silent. */
 export interface BrokenTree {
   kind: 'broken';
-  source: string;
   place: Place;
 }
 
@@ -69,19 +68,4 @@ export function itemsOf(tree: Tree | undefined): Tree[] {
 /** A scalar, or undefined. */
 export function textOf(tree: Tree | undefined): TextTree | undefined {
   return tree?.kind === 'text' ? tree : undefined;
-}
-
-/** Every text of a tree, also of broken parts. */
-export function textsOf(tree: Tree): string[] {
-  switch (tree.kind) {
-    case 'text':
-    case 'broken':
-      return [tree.source];
-    case 'map':
-      return tree.entries.flatMap((entry) => textsOf(entry.value));
-    case 'list':
-      return tree.items.flatMap(textsOf);
-    case 'empty':
-      return [];
-  }
 }

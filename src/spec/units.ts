@@ -157,6 +157,8 @@ function unknownUnit(text: string): string {
   if (text === 'dB') return 'dB stands alone: it is a ratio by itself and takes no part in a product';
   if (Object.hasOwn(prefixes, text))
     return `\`${text}\` is a prefix without its unit, as in \`${text}s\` or \`${text}V\``;
+  const spelled = spelledOut(text);
+  if (spelled !== undefined) return `unknown unit \`${text}\`; it is written \`${spelled}\``;
   const joined = joinedUnits(text);
   if (joined !== undefined) return `unknown unit \`${text}\`; did you mean \`${joined}\`?`;
   return `unknown unit \`${text}\`${suggestion(text, [...symbolTable.keys(), ...common])}`;
@@ -180,6 +182,13 @@ const common = [
   'kohm',
   'uF',
 ];
+
+/** The symbol of a unit written as a word: volt, seconds. */
+function spelledOut(text: string): string | undefined {
+  const word = text.toLowerCase().replace(/s$/, '');
+  return unitSymbols.find(({ meaning, symbol }) => /^[a-z]+/.exec(meaning)?.[0] === word && symbol !== text)
+    ?.symbol;
+}
 
 /** `Nm`, `kgm`: a product written without its operator. */
 function joinedUnits(text: string): string | undefined {

@@ -30,7 +30,7 @@ export function yamlFaults(errors: readonly YAMLError[], text: string): YamlFaul
 function tabFault(text: string): YamlFault | undefined {
   const found = [...text.matchAll(/^ *\t/gm)];
   if (found.length === 0) return undefined;
-  const more = found.length > 1 ? ` (and ${found.length - 1} more lines)` : '';
+  const more = found.length > 1 ? `, and ${found.length - 1} more` : '';
   const offset = found[0].index + found[0][0].length - 1;
   return {
     offset,
