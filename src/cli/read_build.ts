@@ -9,7 +9,7 @@ import {
   readCoefficients,
   runBuild,
 } from '../firmware/index.js';
-import type { CoefficientValues } from '../loop/expand.js';
+import type { CoefficientValues } from '../loop/parts.js';
 import { formatSpecError } from '../spec/index.js';
 import type { Firmware, Place, Spec } from '../spec/spec.js';
 import type { CoefficientRead, Provenance } from '../verdict/run.js';

@@ -4,8 +4,9 @@ import { type LoopMargins, marginsOfLoop } from '../linear/margins.js';
 import { openedLoop } from '../linear/opened_loop.js';
 import type { PointOfRest } from '../linear/point_of_rest.js';
 import { Evaluation, type LeafValues } from '../loop/evaluate.js';
-import { type CoefficientValues, expandLoop } from '../loop/expand.js';
+import { expandLoop } from '../loop/expand.js';
 import { LoopError } from '../loop/loop.js';
+import type { CoefficientValues } from '../loop/parts.js';
 import type { Schedule } from '../loop/schedule.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 

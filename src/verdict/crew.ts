@@ -1,6 +1,6 @@
 import { availableParallelism } from 'node:os';
 import type { Tinypool } from 'tinypool';
-import type { CoefficientValues } from '../loop/expand.js';
+import type { CoefficientValues } from '../loop/parts.js';
 import { PlantEvaluator } from '../measure/evaluate_plant.js';
 import type { Spec } from '../spec/spec.js';
 import { answersOf, type PlantAnswer, type PlantTask } from './plant_answers.js';

@@ -1,4 +1,4 @@
-import type { CoefficientValues } from '../loop/expand.js';
+import type { CoefficientValues } from '../loop/parts.js';
 import type { MeasureResult } from '../measure/measure.js';
 import { type Plant, type PlantOrigin, plantsToTry } from '../perturb/plants.js';
 import type { Requirement, Spec } from '../spec/spec.js';

@@ -1,5 +1,5 @@
 import { workerData } from 'node:worker_threads';
-import type { CoefficientValues } from '../loop/expand.js';
+import type { CoefficientValues } from '../loop/parts.js';
 import { PlantEvaluator } from '../measure/evaluate_plant.js';
 import type { Spec } from '../spec/spec.js';
 import { answersOf, type PlantAnswer, type PlantTask } from './plant_answers.js';

@@ -1,0 +1,158 @@
+import type {
+  ActuatorDefinition,
+  ControllerDefinition,
+  Expression,
+  SensorDefinition,
+  SignalDefinition,
+  Spec,
+} from '../spec/spec.js';
+import { TargetArithmetic } from './arithmetic.js';
+import type { Workshop } from './blocks/block.js';
+import type { Cut } from './cut.js';
+import { expandBlock, limited } from './expand_block.js';
+import type { Node } from './graph.js';
+import { lower, type Surroundings } from './lower.js';
+import type { Parts } from './parts.js';
+import type { PlantRoom } from './plant_room.js';
+
+/**
+ * The sampled side of a loop: readings, controller signals and actuators. Controllers compute in the declared units of their
+ * signals; SI stays outside.
+ */
+export class ControllerRoom {
+  private readonly signals = new Map<string, Node>();
+  private readonly seenReadings = new Map<string, Node>();
+  private readonly delivered = new Map<string, Node>();
+
+  /** @param controllers in the order in which they compute; a task is an index into it. */
+  constructor(
+    private readonly spec: Spec,
+    private readonly controllers: readonly ControllerDefinition[],
+    private readonly parts: Parts,
+    private readonly plant: PlantRoom,
+    private readonly cut: Cut,
+  ) {}
+
+  /** A controller's signal as it computes it. */
+  signal(name: string): Node {
+    const found = this.signals.get(name);
+    if (found) return found;
+    const { definition, task } = this.owner(name);
+    const workshop = this.workshop(definition, task);
+    const node = expandBlock(definition, this.surroundings(task), workshop, this.parts);
+    this.signals.set(name, node);
+    return node;
+  }
+
+  /** Adds an actuator and tells the plant what it sees of it. */
+  addActuator(actuator: ActuatorDefinition): void {
+    const { task } = this.owner(actuator.of);
+    const held = this.parts.addHeld(actuator.name, task, () => this.actuatorValue(actuator));
+    this.plant.connect(actuator.name, this.cut.through(actuator.name, task, 'deliver', held));
+  }
+
+  /** What names mean in expressions of a task. */
+  surroundings(task: number): Surroundings {
+    const arithmetic = this.arithmetic(task);
+    return {
+      arithmetic,
+      name: (use) => this.named(use, task, arithmetic),
+      before: (of) => this.parts.addMemory('before()', task, 0, () => lower(of, this.surroundings(task))),
+    };
+  }
+
+  private owner(name: string): { definition: SignalDefinition; task: number } {
+    const task = this.controllers.findIndex(({ signals }) => signals.some((signal) => signal.name === name));
+    return { task, definition: this.controllers[task].signals.find((signal) => signal.name === name)! };
+  }
+
+  private arithmetic(task: number): TargetArithmetic {
+    return new TargetArithmetic(this.parts.graph, this.controllers[task].arithmetic);
+  }
+
+  private workshop({ start }: SignalDefinition, task: number): Workshop {
+    return {
+      arithmetic: this.arithmetic(task),
+      addState: () => {
+        throw new Error('a block of a controller asked for a continuous state');
+      },
+      addMemory: (name, next) => this.parts.addMemory(name, task, start ?? 0, next),
+      period: () => this.arithmetic(task).take(this.plant.lower(this.controllers[task].every)),
+    };
+  }
+
+  private named(
+    { role, name, index, place }: Extract<Expression, { kind: 'name' }>,
+    task: number,
+    arithmetic: TargetArithmetic,
+  ): Node {
+    switch (role) {
+      case 'sensor':
+        return this.reading(this.spec.sensors.find((sensor) => sensor.name === name)!, task);
+      case 'coefficient':
+        return arithmetic.number(this.parts.numberOf(name, index, place));
+      case 'signal':
+        return this.owner(name).task === task ? this.seen(name) : arithmetic.take(this.fromOther(name));
+      case 'input': {
+        const { scale } = this.spec.inputs.find((input) => input.name === name)!.unit;
+        return arithmetic.take(this.inUnit(this.plant.outer(role, name), scale));
+      }
+      case 'parameter':
+        return arithmetic.take(this.plant.outer(role, name));
+      case 'actuator':
+        throw new Error(
+          `a controller sees actuator '${name}', which the spec reader should not have let pass`,
+        );
+    }
+  }
+
+  /** From SI into a declared unit. */
+  private inUnit(node: Node, scale: number): Node {
+    return scale === 1 ? node : this.parts.plain.divide(node, this.parts.graph.number(scale));
+  }
+
+  /** A controller's signal as its consumers see it. */
+  private seen(name: string): Node {
+    return this.cut.through(name, this.owner(name).task, 'compute', this.signal(name));
+  }
+
+  private fromOther(name: string): Node {
+    const found = this.delivered.get(name);
+    if (found) return found;
+    const held = this.parts.addHeld(name, this.owner(name).task, () => this.seen(name));
+    this.delivered.set(name, held);
+    return held;
+  }
+
+  private actuatorValue({ of, resolution, range }: ActuatorDefinition): Node {
+    const { graph, plain } = this.parts;
+    const { scale } = this.owner(of).definition.unit;
+    let value = this.seen(of);
+    if (scale !== 1) value = plain.multiply(value, graph.number(scale));
+    if (resolution) value = graph.apply('quantise', value, this.plant.lower(resolution));
+    return limited(value, range, this.plant.surroundings);
+  }
+
+  /** A sensor's value at the instants of a task, as the task's expressions see it. */
+  private reading(sensor: SensorDefinition, task: number): Node {
+    const key = `${task} ${sensor.name}`;
+    const found = this.seenReadings.get(key);
+    if (found) return found;
+    const sampled = this.arithmetic(task).take(this.inUnit(this.sampled(sensor, task), sensor.unit.scale));
+    const reading = this.parts.addReading(sensor.name, task, sampled);
+    const seen = this.cut.through(sensor.name, task, 'compute', reading);
+    this.seenReadings.set(key, seen);
+    return seen;
+  }
+
+  /** Noise, range and quantum, SI. */
+  private sampled(sensor: SensorDefinition, task: number): Node {
+    const { graph, plain } = this.parts;
+    let value = this.plant.measured(sensor);
+    if (sensor.noise) {
+      value = plain.add(value, plain.multiply(this.plant.lower(sensor.noise), this.parts.addNoise(task)));
+    }
+    value = limited(value, sensor.range, this.plant.surroundings);
+    return sensor.quantum ? graph.apply('quantise', value, this.plant.lower(sensor.quantum)) : value;
+  }
+}

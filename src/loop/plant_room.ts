@@ -1,0 +1,105 @@
+import type { Expression, SensorDefinition, SignalDefinition, Spec } from '../spec/spec.js';
+import type { Workshop } from './blocks/block.js';
+import { expandBlock } from './expand_block.js';
+import type { Node } from './graph.js';
+import { lower, type Surroundings } from './lower.js';
+import type { Parts } from './parts.js';
+
+/** The continuous side of a loop: plant signals, and sensors up to where they are sampled. All in SI. */
+export class PlantRoom {
+  /** What names mean in expressions of the plant, of sensors, actuators, timings and scenarios. */
+  readonly surroundings: Surroundings;
+  private readonly signals = new Map<string, Node>();
+  private readonly measuredBySensor = new Map<string, Node>();
+  private readonly actuators = new Map<string, Node>();
+
+  constructor(
+    private readonly spec: Spec,
+    private readonly parts: Parts,
+  ) {
+    this.surroundings = {
+      arithmetic: parts.plain,
+      name: (use) => this.named(use),
+      before: () => {
+        throw new Error('before() in a plant expression passed the spec reader');
+      },
+    };
+  }
+
+  /** Tells what the plant sees of an actuator. */
+  connect(actuator: string, seen: Node): void {
+    this.actuators.set(actuator, seen);
+  }
+
+  lower(expression: Expression): Node {
+    return lower(expression, this.surroundings);
+  }
+
+  /** An input or a parameter, SI. */
+  outer(role: 'input' | 'parameter', name: string): Node {
+    const list = role === 'input' ? this.spec.inputs : this.spec.parameters;
+    return this.parts.graph.leaf(
+      role,
+      list.findIndex((one) => one.name === name),
+    );
+  }
+
+  signal(name: string): Node {
+    const found = this.signals.get(name);
+    if (found) return found;
+    const definition = this.spec.plant.find((signal) => signal.name === name)!;
+    const node = expandBlock(definition, this.surroundings, this.workshop(definition), this.parts);
+    this.signals.set(name, node);
+    return node;
+  }
+
+  /** The sensor's continuous value: gain, offset and filter, before it is sampled. */
+  measured(sensor: SensorDefinition): Node {
+    const found = this.measuredBySensor.get(sensor.name);
+    if (found) return found;
+    const { plain } = this.parts;
+    let value = this.lower(sensor.of);
+    if (sensor.gain) value = plain.multiply(this.lower(sensor.gain), value);
+    if (sensor.offset) value = plain.add(value, this.lower(sensor.offset));
+    if (sensor.filter) value = this.filtered(sensor.name, value, this.lower(sensor.filter));
+    this.measuredBySensor.set(sensor.name, value);
+    return value;
+  }
+
+  private filtered(name: string, source: Node, timeConstant: Node): Node {
+    const { plain } = this.parts;
+    const state: Node = this.parts.addState(`${name} filter`, 0, () =>
+      plain.divide(plain.subtract(source, state), timeConstant),
+    );
+    return state;
+  }
+
+  private named({ role, name, index, place }: Extract<Expression, { kind: 'name' }>): Node {
+    switch (role) {
+      case 'signal':
+        return this.signal(name);
+      case 'actuator':
+        return this.actuators.get(name)!;
+      case 'coefficient':
+        return this.parts.graph.number(this.parts.numberOf(name, index, place));
+      case 'input':
+      case 'parameter':
+        return this.outer(role, name);
+      case 'sensor':
+        throw new Error(`the plant sees sensor '${name}', which the spec reader should not have let pass`);
+    }
+  }
+
+  private workshop(definition: SignalDefinition): Workshop {
+    return {
+      arithmetic: this.parts.plain,
+      addState: (name, derivative) => this.parts.addState(name, definition.start ?? 0, derivative),
+      addMemory: () => {
+        throw new Error('a block of the plant asked for a sampled memory');
+      },
+      period: () => {
+        throw new Error('a block of the plant asked for a sampling period');
+      },
+    };
+  }
+}
