@@ -22,9 +22,15 @@ export class Cursor {
     readonly region: string,
     public position = 0,
     readonly end = bytes.length,
+    view?: DataView,
   ) {
-    this.view = new DataView(bytes.buffer, bytes.byteOffset, bytes.length);
+    this.view = view ?? new DataView(bytes.buffer, bytes.byteOffset, bytes.length);
     if (end > bytes.length) throw this.failure(`ends at ${hex(end)}, behind its ${bytes.length} bytes`);
+  }
+
+  /** Another cursor over the same region. */
+  at(position: number): Cursor {
+    return new Cursor(this.bytes, this.littleEndian, this.region, 0, this.end, this.view).moveTo(position);
   }
 
   /** An error which says where in the region the trouble is. */

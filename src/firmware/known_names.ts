@@ -26,7 +26,15 @@ export function noSuchSymbol(image: ElfImage, path: CoefficientPath): FirmwareEr
   );
 }
 
-function* knownNames(image: ElfImage): Generator<string> {
+const kept = new WeakMap<ElfImage, Set<string>>();
+
+function knownNames(image: ElfImage): Set<string> {
+  const names = kept.get(image) ?? new Set(listNames(image));
+  kept.set(image, names);
+  return names;
+}
+
+function* listNames(image: ElfImage): Generator<string> {
   for (const symbol of allSymbols(image.symbolTable))
     if (isData(symbol) && symbol.name !== '') yield symbol.name;
   let count = 0;

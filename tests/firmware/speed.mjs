@@ -50,7 +50,8 @@ function makeImage() {
   const units = Array.from({ length: kinds }, (_, kind) => compile(`unit${kind}`, unitSource(kind)));
   const bytesOf = (object) => debugBytes(join(folder, object));
   const perRound = units.reduce((sum, unit) => sum + bytesOf(unit), 0);
-  const rounds = Math.ceil(wanted.debug / perRound);
+  // The linker merges the texts of all objects.
+  const rounds = Math.ceil((1.3 * wanted.debug) / perRound);
   const copies = Array.from({ length: rounds }, () => units).flat();
   const half = Math.floor(copies.length / 2);
   const objects = [...copies.slice(0, half), main, ...copies.slice(half)];

@@ -1,15 +1,24 @@
 import type { Cursor } from '../cursor.js';
-import { at, form } from './codes.js';
+import { form } from './codes.js';
 import { type FormSizes, fixedSize } from './forms.js';
+
+/** An attribute that follows, and in which form. */
+export interface AttributeShape {
+  name: number;
+  form: number;
+  /** The value itself, for the form that keeps it here. */
+  implicit: bigint;
+  /** Bytes, undefined when they vary. */
+  size: number | undefined;
+}
 
 /** The shape of entries: what they stand for and which attributes follow in which form. */
 export interface Abbreviation {
   tag: number;
   hasChildren: boolean;
-  attributes: { name: number; form: number; implicit: bigint }[];
+  attributes: AttributeShape[];
   /** Bytes of all attributes together, when every form has a fixed size. */
   fixedSize: number | undefined;
-  hasSibling: boolean;
 }
 
 /** Reads one table of abbreviations, by code, up to its closing zero. */
@@ -27,16 +36,14 @@ function readAbbreviation(cursor: Cursor, sizes: FormSizes): Abbreviation {
     hasChildren: cursor.u8() !== 0,
     attributes: [],
     fixedSize: 0,
-    hasSibling: false,
   };
   for (;;) {
     const name = cursor.uleb();
     const formCode = cursor.uleb();
     const implicit = formCode === form.implicitConst ? cursor.sleb64() : 0n;
     if (name === 0 && formCode === 0) return abbreviation;
-    abbreviation.attributes.push({ name, form: formCode, implicit });
-    if (name === at.sibling) abbreviation.hasSibling = true;
     const size = fixedSize(formCode, sizes);
+    abbreviation.attributes.push({ name, form: formCode, implicit, size });
     abbreviation.fixedSize =
       size === undefined || abbreviation.fixedSize === undefined ? undefined : abbreviation.fixedSize + size;
   }

@@ -22,6 +22,8 @@ export interface Unit {
   addressSize: number;
   kind: number;
   abbreviationsAt: number;
+  /** Filled in when the first entry is read. */
+  abbreviations?: Map<number, Abbreviation>;
   /** Of a type unit: what refers to it, and the offset of the type within the unit. */
   signature?: bigint;
   typeOffset?: number;
@@ -33,7 +35,7 @@ export interface Unit {
  */
 export class DebugInformation {
   private readonly abbreviationsByOffset = new Map<string, Map<number, Abbreviation>>();
-  private readonly texts = new Map<string, Uint8Array>();
+  private readonly cursors = new Map<string, Cursor>();
   private unitList: Unit[] | undefined;
 
   constructor(readonly elf: ElfFile) {}
@@ -45,22 +47,23 @@ export class DebugInformation {
 
   /** Contents of a section, empty when it is missing. */
   section(name: string): Uint8Array {
-    let contents = this.texts.get(name);
-    if (!contents) {
-      const section = sectionNamed(this.elf, name);
-      contents = section ? contentsOf(this.elf, section) : new Uint8Array();
-      this.texts.set(name, contents);
-    }
-    return contents;
+    return this.whole(name).bytes;
   }
 
   /** A cursor over a section. */
   cursor(name: string, position = 0): Cursor {
-    return new Cursor(
-      this.section(name),
-      this.elf.littleEndian,
-      `${name} of ${quoted(this.elf.name)}`,
-    ).moveTo(position);
+    return this.whole(name).at(position);
+  }
+
+  private whole(name: string): Cursor {
+    let cursor = this.cursors.get(name);
+    if (!cursor) {
+      const section = sectionNamed(this.elf, name);
+      const contents = section ? contentsOf(this.elf, section) : new Uint8Array();
+      cursor = new Cursor(contents, this.elf.littleEndian, `${name} of ${quoted(this.elf.name)}`);
+      this.cursors.set(name, cursor);
+    }
+    return cursor;
   }
 
   /** All units, in the order of the file. */
@@ -85,6 +88,11 @@ export class DebugInformation {
 
   /** The abbreviations of a unit, by code. */
   abbreviations(unit: Unit): Map<number, Abbreviation> {
+    unit.abbreviations ??= this.abbreviationsFor(unit);
+    return unit.abbreviations;
+  }
+
+  private abbreviationsFor(unit: Unit): Map<number, Abbreviation> {
     const key = `${unit.abbreviationsAt}/${unit.version}/${unit.offsetSize}/${unit.addressSize}`;
     let found = this.abbreviationsByOffset.get(key);
     if (!found) {

@@ -2,7 +2,7 @@ import type { Cursor } from '../cursor.js';
 import type { Abbreviation } from './abbreviations.js';
 import { at } from './codes.js';
 import type { Unit } from './debug_information.js';
-import { type RawValue, readForm, skipForm } from './forms.js';
+import { type Attribute, readAttribute, skipForm } from './forms.js';
 
 /** One entry of the debug information: a variable, a type, a member … */
 export interface Entry {
@@ -11,7 +11,7 @@ export interface Entry {
   offset: number;
   tag: number;
   hasChildren: boolean;
-  attributes: { name: number; form: number; value: RawValue }[];
+  attributes: Attribute[];
   /** Offset behind its attributes, where its children begin. */
   end: number;
 }
@@ -35,10 +35,8 @@ function readEntryAt(unit: Unit, cursor: Cursor): Entry | undefined {
   const offset = cursor.position;
   const abbreviation = readCode(unit, cursor);
   if (!abbreviation) return undefined;
-  const attributes = abbreviation.attributes.map(({ name, form, implicit }) => ({
-    name,
-    ...readForm(cursor, form, implicit, unit),
-  }));
+  const attributes: Attribute[] = [];
+  for (const shape of abbreviation.attributes) attributes.push(readAttribute(cursor, shape, unit));
   return {
     unit,
     offset,

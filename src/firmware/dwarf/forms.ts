@@ -1,5 +1,6 @@
 import type { Cursor } from '../cursor.js';
 import { FirmwareError } from '../failure.js';
+import type { AttributeShape } from './abbreviations.js';
 import { form } from './codes.js';
 
 /** What the size of a form depends on. */
@@ -97,29 +98,40 @@ function directForm(cursor: Cursor): number {
   return actual;
 }
 
-/** Reads a value; the form that counts is returned with it, since `indirect` names another. */
-export function readForm(
-  cursor: Cursor,
-  code: number,
-  implicit: bigint,
-  sizes: FormSizes,
-): { form: number; value: RawValue } {
+/** An attribute of an entry; the form is the one that counts where an indirect form names another. */
+export interface Attribute {
+  name: number;
+  form: number;
+  value: RawValue;
+}
+
+/** Reads the attribute which comes next. */
+export function readAttribute(cursor: Cursor, shape: AttributeShape, sizes: FormSizes): Attribute {
+  const { name, form: code } = shape;
+  if (code === form.indirect) {
+    const actual = directForm(cursor);
+    const implicit = actual === form.implicitConst ? cursor.sleb64() : 0n;
+    return readAttribute(cursor, { name, form: actual, implicit, size: fixedSize(actual, sizes) }, sizes);
+  }
+  if (code === form.implicitConst) return { name, form: code, value: shape.implicit };
+  if (shape.size === undefined) return { name, form: code, value: readVarying(cursor, code) };
+  return { name, form: code, value: readFixed(cursor, code, shape.size) };
+}
+
+function readFixed(cursor: Cursor, code: number, size: number): RawValue {
+  if (size === 0) return 1;
+  if (code === form.data8 || code === form.refSig8) return cursor.u64();
+  return size === 16 ? cursor.slice(16) : cursor.unsigned(size);
+}
+
+function readVarying(cursor: Cursor, code: number): RawValue {
   switch (code) {
-    case form.flagPresent:
-      return { form: code, value: 1 };
-    case form.implicitConst:
-      return { form: code, value: implicit };
-    case form.data8:
-    case form.refSig8:
-      return { form: code, value: cursor.u64() };
-    case form.data16:
-      return { form: code, value: cursor.slice(16) };
     case form.string:
-      return { form: code, value: cursor.text() };
+      return cursor.text();
     case form.sdata:
-      return { form: code, value: cursor.sleb64() };
+      return cursor.sleb64();
     case form.udata:
-      return { form: code, value: cursor.uleb64() };
+      return cursor.uleb64();
     case form.refUdata:
     case form.strx:
     case form.addrx:
@@ -127,15 +139,10 @@ export function readForm(
     case form.rnglistx:
     case form.gnuAddrIndex:
     case form.gnuStrIndex:
-      return { form: code, value: cursor.uleb() };
-    case form.indirect: {
-      const actual = directForm(cursor);
-      return readForm(cursor, actual, actual === form.implicitConst ? cursor.sleb64() : 0n, sizes);
-    }
+      return cursor.uleb();
+    default:
+      return cursor.slice(blockLength(cursor, code));
   }
-  const size = fixedSize(code, sizes);
-  if (size !== undefined) return { form: code, value: cursor.unsigned(size) };
-  return { form: code, value: cursor.slice(blockLength(cursor, code)) };
 }
 
 function blockLength(cursor: Cursor, code: number): number {

@@ -3,7 +3,7 @@ import { numberAttribute, textAttribute, textOf } from './attributes.js';
 import { at } from './codes.js';
 import { readInitialLength, type Unit } from './debug_information.js';
 import { rootOf } from './entry.js';
-import { readForm } from './forms.js';
+import { fixedSize, readAttribute } from './forms.js';
 
 interface FileNames {
   folders: string[];
@@ -83,10 +83,11 @@ function readNames5(unit: Unit, cursor: Cursor, offsetSize: 4 | 8): FileNames {
 }
 
 function readRows(unit: Unit, cursor: Cursor, offsetSize: 4 | 8): FileNames['files'] {
-  const columns = Array.from({ length: cursor.u8() }, () => ({
-    content: cursor.uleb(),
-    form: cursor.uleb(),
-  }));
+  const sizes = { ...unit, offsetSize };
+  const columns = Array.from({ length: cursor.u8() }, () => {
+    const [name, form] = [cursor.uleb(), cursor.uleb()];
+    return { name, form, implicit: 0n, size: fixedSize(form, sizes) };
+  });
   const count = cursor.uleb();
   if (columns.length === 0 || count > cursor.end - cursor.position) {
     if (count === 0) return [];
@@ -95,9 +96,9 @@ function readRows(unit: Unit, cursor: Cursor, offsetSize: 4 | 8): FileNames['fil
   return Array.from({ length: count }, () => {
     const row = { name: '', folder: 0 };
     for (const column of columns) {
-      const { form, value } = readForm(cursor, column.form, 0n, { ...unit, offsetSize });
-      if (column.content === contentPath) row.name = textOf(unit, form, value) ?? '';
-      else if (column.content === contentFolder) row.folder = Number(value);
+      const { name, form, value } = readAttribute(cursor, column, sizes);
+      if (name === contentPath) row.name = textOf(unit, form, value) ?? '';
+      else if (name === contentFolder) row.folder = Number(value);
     }
     return row;
   });

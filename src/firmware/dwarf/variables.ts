@@ -64,7 +64,7 @@ function searchVariables(debug: DebugInformation, name: string): Variable[] {
     const fresh: Variable[] = [];
     for (const unit of waiting) {
       seen.add(unit);
-      for (const variable of variablesOf(unit)) if (variable.name === name) fresh.push(variable);
+      fresh.push(...variablesOf(unit, name));
     }
     found.push(...fresh);
     waiting = fresh
@@ -75,26 +75,30 @@ function searchVariables(debug: DebugInformation, name: string): Variable[] {
   return found;
 }
 
-/** All variables of a unit, in the order of the file. */
-export function* variablesOf(unit: Unit): Generator<Variable> {
+/** All variables of a unit, or those of one simple name, in the order of the file. */
+export function* variablesOf(unit: Unit, wanted?: string): Generator<Variable> {
   const root = rootOf(unit);
-  if (root) yield* variablesIn(root, [], false, 0);
+  if (!root) return;
+  for (const { entry, scopes, inFunction } of entriesIn(root, [], false, 0)) {
+    const variable = describe(entry, scopes, inFunction, wanted);
+    if (variable) yield variable;
+  }
 }
 
-function* variablesIn(
+/** The entries of variables and static members below an entry, with what is around them. */
+function* entriesIn(
   parent: Entry,
   scopes: Scope[],
   inFunction: boolean,
   depth: number,
-): Generator<Variable> {
+): Generator<Surroundings & { entry: Entry }> {
   if (depth > deepestScope) return;
   for (const entry of childrenOf(parent)) {
     if (entry.tag === tag.variable || (entry.tag === tag.member && isStaticMember(entry))) {
-      const variable = describe(entry, scopes, inFunction);
-      if (variable) yield variable;
+      yield { entry, scopes, inFunction };
     } else if (entry.hasChildren && isScope(entry.tag)) {
       const inside = inFunction || entry.tag === tag.subprogram || entry.tag === tag.lexicalBlock;
-      yield* variablesIn(entry, [...scopes, ...scopeOf(entry)], inside, depth + 1);
+      yield* entriesIn(entry, [...scopes, ...scopeOf(entry)], inside, depth + 1);
     }
   }
 }
@@ -118,13 +122,18 @@ function isStaticMember(entry: Entry): boolean {
   );
 }
 
-function describe(entry: Entry, scopes: Scope[], inFunction: boolean): Variable | undefined {
+function describe(
+  entry: Entry,
+  scopes: Scope[],
+  inFunction: boolean,
+  wanted: string | undefined,
+): Variable | undefined {
   const chain = chainOf(entry);
   const named = chain.find((link) => attribute(link, at.name) !== undefined);
   const name = named && textAttribute(named, at.name);
-  if (!name) return undefined;
-  const around = named === entry ? { scopes, inFunction } : scopesAround(named);
-  return { name, entry, chain, ...around };
+  if (!name || (wanted !== undefined && name !== wanted)) return undefined;
+  const around = named === entry ? { scopes, inFunction } : surroundingsOf(named);
+  return { name, entry, chain, scopes: around.scopes, inFunction: around.inFunction };
 }
 
 function chainOf(entry: Entry): Entry[] {
@@ -144,28 +153,21 @@ function scopeOf(entry: Entry): Scope[] {
   return name ? [{ name, optional: hasFlag(entry, at.exportSymbols) }] : [];
 }
 
-/** The scopes around an entry that was reached by a reference, found by descending towards it from its unit. */
-function scopesAround(target: Entry): { scopes: Scope[]; inFunction: boolean } {
-  const scopes: Scope[] = [];
-  let inFunction = false;
-  let parent = rootOf(target.unit);
-  for (let depth = 0; parent && depth < deepestScope; depth++) {
-    const around = childTowards(parent, target);
-    if (!around) break;
-    if (isScope(around.tag)) scopes.push(...scopeOf(around));
-    inFunction ||= around.tag === tag.subprogram || around.tag === tag.lexicalBlock;
-    parent = around;
-  }
-  return { scopes, inFunction };
+interface Surroundings {
+  scopes: Scope[];
+  inFunction: boolean;
 }
 
-/** The child which the target lies in; undefined when it is a child itself. */
-function childTowards(parent: Entry, target: Entry): Entry | undefined {
-  let around: Entry | undefined;
-  for (const child of childrenOf(parent)) {
-    if (child.offset === target.offset) return undefined;
-    if (child.offset > target.offset) break;
-    around = child;
+const keptSurroundings = new WeakMap<Unit, Map<number, Surroundings>>();
+
+/** The scopes around an entry that was reached by a reference. */
+function surroundingsOf(target: Entry): Surroundings {
+  let known = keptSurroundings.get(target.unit);
+  if (!known) {
+    known = new Map();
+    const root = rootOf(target.unit);
+    if (root) for (const met of entriesIn(root, [], false, 0)) known.set(met.entry.offset, met);
+    keptSurroundings.set(target.unit, known);
   }
-  return around?.hasChildren ? around : undefined;
+  return known.get(target.offset) ?? { scopes: [], inFunction: false };
 }
