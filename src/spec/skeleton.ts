@@ -11,8 +11,17 @@ const range = z
 const expression = text('an expression').optional();
 const name = text('a name');
 
+/** Schemas are slow to make and quick to use; a vocabulary does not change. */
+const made = new WeakMap<Vocabulary, z.ZodType>();
+
 /** The shape of a spec: sections, keys and which are needed; what stands in the slots is read afterwards. */
-export function skeletonOf(vocabulary: Vocabulary) {
+export function skeletonOf(vocabulary: Vocabulary): z.ZodType {
+  const schema = made.get(vocabulary) ?? newSkeleton(vocabulary);
+  made.set(vocabulary, schema);
+  return schema;
+}
+
+function newSkeleton(vocabulary: Vocabulary) {
   return z
     .strictObject({
       pawl: text('the format version, 1'),

@@ -160,6 +160,7 @@ test('the unit of a dimension can be read again', () => {
   fc.assert(
     fc.property(anyUnit, (factors) => {
       const { dimension } = unit(factors.map(([{ symbol }, power]) => `${symbol}^${power}`).join('*')).unit;
+      fc.pre(dimension.every((exponent) => Math.abs(exponent) <= 12));
       const text = unitOfDimension(dimension);
       if (text === '') expect(dimension).toEqual(plainNumber);
       else expect(unit(text).unit).toMatchObject({ dimension, scale: 1 });
