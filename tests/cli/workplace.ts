@@ -1,0 +1,50 @@
+import { cpSync, mkdtempSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { tmpdir } from 'node:os';
+import { join, resolve } from 'node:path';
+import { execa } from 'execa';
+
+const built = resolve('dist/cli/main.js');
+const demo = resolve('specs/heliostat');
+
+/** What a command printed and how it ended. */
+export interface Ended {
+  status: number | undefined;
+  output: string;
+  errors: string;
+}
+
+/** A folder of its own with the demo firmware and a spec, in which the built command runs as a user runs it. */
+export class Workplace {
+  readonly folder = mkdtempSync(join(tmpdir(), 'pawl-'));
+  readonly spec = 'axis.pawl.yaml';
+
+  /** @param change turns the demo spec's text into the one to be tried; fewer plants, so that tests are fast. */
+  constructor(change: (text: string) => string = (text) => text) {
+    cpSync(join(demo, 'firmware'), join(this.folder, 'firmware'), { recursive: true });
+    const text = readFileSync(join(demo, 'heliostat.pawl.yaml'), 'utf8').replace('plants: 1000', 'plants: 8');
+    this.write(this.spec, change(text));
+  }
+
+  write(name: string, text: string | Uint8Array): void {
+    writeFileSync(join(this.folder, name), text);
+  }
+
+  read(name: string): string {
+    return readFileSync(join(this.folder, name), 'utf8');
+  }
+
+  /** Line and column, counted from 1, of the first place where `text` stands in the spec. */
+  placeOf(text: string): string {
+    const before = this.read(this.spec).split(text)[0].split('\n');
+    return `${this.spec}:${before.length}:${before[before.length - 1].length + 1}`;
+  }
+
+  async pawl(...words: string[]): Promise<Ended> {
+    const result = await execa('node', [built, ...words], { cwd: this.folder, reject: false });
+    return { status: result.exitCode, output: result.stdout, errors: result.stderr };
+  }
+
+  remove(): void {
+    rmSync(this.folder, { recursive: true });
+  }
+}
