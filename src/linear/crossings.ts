@@ -17,8 +17,11 @@ export interface PhaseCrossing {
   factor: number;
 }
 
-/** Where |L| or 1/|L| is beyond this, the sign of L's small part is rounding and nothing is counted as a crossing. */
-const LARGEST_GAIN = 1e8;
+/**
+ * Where |L| or 1/|L| is beyond this (120 dB), rounding can turn the sign of L (at an integrator it always does), and nothing
+ * is counted as a crossing.
+ */
+const LARGEST_GAIN = 1e6;
 
 /**
  * All frequencies inside the swept range at which |L| is one, ascending. They are changes of sign on a grid that follows

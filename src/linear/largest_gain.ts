@@ -1,7 +1,7 @@
 import { continuousImage } from './bilinear.js';
 import type { Complex } from './complex.js';
 import type { Peak } from './peak.js';
-import { polesOf, stabilityReserve } from './poles.js';
+import { areStable, polesOf } from './poles.js';
 import { type GainProbe, provenPeak } from './proven_peak.js';
 import { rootBetween } from './root_finding.js';
 import { largestSingularValue } from './singular_value.js';
@@ -17,8 +17,7 @@ import { prepareTransfer, type Transfer } from './transfer.js';
 export function largestGain(system: StateEquations): Peak {
   const { period } = system;
   const poles = polesOf(system.a, period);
-  if (!(stabilityReserve(poles, period) > 0))
-    return { value: Number.POSITIVE_INFINITY, frequency: undefined };
+  if (!areStable(poles, period)) return { value: Number.POSITIVE_INFINITY, frequency: undefined };
   const probe = gainProbe(system);
   const end = period === undefined ? Number.POSITIVE_INFINITY : Math.PI / period;
   let start: Peak = { value: probe.gainAt(0), frequency: 0 };
@@ -27,8 +26,19 @@ export function largestGain(system: StateEquations): Peak {
     if (value > start.value) start = { value, frequency };
   }
   const image = period === undefined ? system : continuousImage(system);
-  return provenPeak(image, start, probe, frequencyOfImage(period));
+  return polished(provenPeak(image, start, probe, frequencyOfImage(period)), probe);
 }
+
+/** The same peak with its frequency to the last digits, where it does not lie at an end of the range. */
+function polished(peak: Peak, { peakBetween }: GainProbe): Peak {
+  const { frequency } = peak;
+  if (frequency === undefined || frequency === 0 || frequency === Number.POSITIVE_INFINITY) return peak;
+  const found = peakBetween(frequency * (1 - POLISHED_OVER), frequency * (1 + POLISHED_OVER));
+  return found && found.value >= peak.value ? found : peak;
+}
+
+/** A peak proved to a share of 1e-10 is known to about the root of that in frequency, against its width. */
+const POLISHED_OVER = 1e-3;
 
 /** The frequency in rad/s that belongs to one of the continuous image of a system with this period. */
 export function frequencyOfImage(period: number | undefined): (imageFrequency: number) => number {

@@ -4,7 +4,7 @@ import type { Complex } from './complex.js';
 import { gainCrossings } from './crossings.js';
 import { staysStableWithDeadTime } from './dead_time_stability.js';
 import { type FrequencySweep, sweepOf } from './frequency_sweep.js';
-import { polesOf, stabilityReserve } from './poles.js';
+import { areStable, polesOf } from './poles.js';
 import type { StateEquations } from './state_equations.js';
 import { transmissionZeros } from './transmission_zeros.js';
 
@@ -53,7 +53,7 @@ export function analyseLoop(loop: StateEquations, deadTime: number): LoopAnalysi
       sensitivityImage: undefined,
     };
   }
-  const stable = stabilityReserve(closed, period) > 0;
+  const stable = areStable(closed, period);
   return {
     stable,
     sweep: sweepOf(loop, features),

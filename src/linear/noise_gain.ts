@@ -1,6 +1,6 @@
 import { add, columnSumNorm, identity, type Matrix, multiply, scale, transpose } from './matrix.js';
 import { NumericFailure } from './numeric_failure.js';
-import { polesOf, stabilityReserve } from './poles.js';
+import { areStable, polesOf } from './poles.js';
 import { solve } from './solve.js';
 import type { StateEquations } from './state_equations.js';
 
@@ -13,7 +13,7 @@ import type { StateEquations } from './state_equations.js';
  */
 export function noiseGain(system: StateEquations): number {
   const { a, b, c, d, period } = system;
-  if (!(stabilityReserve(polesOf(a, period), period) > 0)) return Number.POSITIVE_INFINITY;
+  if (!areStable(polesOf(a, period), period)) return Number.POSITIVE_INFINITY;
   const direct = sumOfSquares(d);
   if (period === undefined && direct > 0) return Number.POSITIVE_INFINITY;
   const covariance = stateCovariance(a, multiply(b, transpose(b)), period);

@@ -10,8 +10,18 @@ export function polesOf(a: Matrix, period: number | undefined): Complex[] {
   return eigenvalues(period === undefined ? a : add(a, identity(a.rows), -1));
 }
 
+/**
+ * Whether all poles lie inside the boundary of stability. A pole nearer to it than the rounding of its computation counts as
+ * lying on it, so that an integrator which no loop closes is never taken for stable.
+ * @param poles as `polesOf` gives them.
+ */
+export function areStable(poles: readonly Complex[], period: number | undefined): boolean {
+  const largest = Math.max(0, ...poles.map(({ real, imaginary }) => Math.hypot(real, imaginary)));
+  return stabilityReserve(poles, period) > 8 * poles.length * Number.EPSILON * largest;
+}
+
 /** How far the poles are inside the boundary of stability: −Re s, or 1 − |z| for poles given as z − 1. Positive when stable. */
-export function stabilityReserve(poles: readonly Complex[], period: number | undefined): number {
+function stabilityReserve(poles: readonly Complex[], period: number | undefined): number {
   let least = Number.POSITIVE_INFINITY;
   for (const { real, imaginary } of poles) {
     const reserve = period === undefined ? -real : oneLessModulus(real, imaginary);

@@ -47,7 +47,9 @@ function makeOrthogonal(columns: Complex[][], turns: Complex[][]): boolean {
       const second = dot(columns[q], columns[q]).real;
       const across = dot(columns[p], columns[q]);
       const size = Math.hypot(across.real, across.imaginary);
+      // Orthogonal to rounding, or too weakly coupled to matter to the larger of the two.
       if (!(size > 4 * Number.EPSILON * Math.sqrt(first * second))) continue;
+      if (!(size > 1e-3 * Number.EPSILON * Math.max(first, second))) continue;
       turned = true;
       const ratio = (second - first) / (2 * size);
       const tangent = Math.sign(ratio || 1) / (Math.abs(ratio) + Math.sqrt(1 + ratio * ratio));

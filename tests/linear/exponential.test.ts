@@ -16,16 +16,14 @@ import { NumericFailure } from '../../src/linear/numeric_failure.js';
 import { expectPublished, publishedCase } from '../published.js';
 
 const squareMatrix = (largest: number): fc.Arbitrary<Matrix> =>
-  fc
-    .integer({ min: 1, max: 6 })
-    .chain((n) =>
-      fc
-        .array(fc.double({ min: -largest, max: largest, noNaN: true }), {
-          minLength: n * n,
-          maxLength: n * n,
-        })
-        .map((entries) => ({ rows: n, columns: n, data: Float64Array.from(entries) })),
-    );
+  fc.integer({ min: 1, max: 6 }).chain((n) =>
+    fc
+      .array(fc.double({ min: -largest, max: largest, noNaN: true }), {
+        minLength: n * n,
+        maxLength: n * n,
+      })
+      .map((entries) => ({ rows: n, columns: n, data: Float64Array.from(entries) })),
+  );
 
 function distance(a: Matrix, b: Matrix): number {
   return columnSumNorm(add(a, b, -1));

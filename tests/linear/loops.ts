@@ -101,48 +101,62 @@ export function repeatable(seed: number): () => number {
   };
 }
 
+/** One factor of a transfer function, in descending powers of z. */
+interface Section {
+  numerator: number[];
+  denominator: number[];
+}
+
 /**
- * A sampled loop of the given order with real and resonant poles at many distances from the unit circle, zeros likewise, and
- * a gain that leaves about half of such loops stable.
+ * A sampled loop of the given order: sections of first and second order in series, with poles and zeros at many distances
+ * from the unit circle, now and then a pure integrator, and a gain that leaves about half of such loops stable. Sections in
+ * series are well conditioned, so that two methods can agree on them to many digits.
  */
 export function randomLoop(order: number, random: () => number): StateEquations {
-  const denominator = randomPolynomial(order, random);
-  const zeroCount = Math.floor(random() * (order + 1));
-  const numerator = randomPolynomial(zeroCount, random);
-  const bare = loopOf(numerator, denominator, 10 ** (-4 + 3 * random()));
-  // Gain against the largest size over a coarse look round the circle.
-  let largest = 0;
-  for (let k = 1; k < 200; k++)
-    largest = Math.max(largest, sizeOnCircle(numerator, denominator, (Math.PI * k) / 200));
-  return times(bare, (random() < 0.8 ? 1 : -1) * (10 ** (2 * random() - 1) / largest));
-}
-
-function randomPolynomial(order: number, random: () => number): number[] {
-  let result = [1];
+  const period = 10 ** (-4 + 3 * random());
+  const sections: Section[] = [];
   for (let left = order; left > 0; ) {
-    const radius = 1 - 10 ** (-3.5 * random());
-    if (left >= 2 && random() < 0.6) {
-      const angle = Math.PI * random() ** 2;
-      result = product(result, [1, -2 * radius * Math.cos(angle), radius * radius]);
-      left -= 2;
-    } else {
-      result = product(result, [1, random() < 0.15 ? -1 : (random() < 0.85 ? -1 : 1) * radius]);
-      left -= 1;
-    }
+    const degree = left >= 2 && random() < 0.6 ? 2 : 1;
+    const numerator = randomFactor(
+      random() < 0.5 ? degree : Math.floor(random() * (degree + 1)),
+      random,
+      false,
+    );
+    sections.push({ numerator, denominator: randomFactor(degree, random, 3.5, random() < 0.15) });
+    left -= degree;
   }
-  return result;
+  let largest = 0;
+  for (let k = 1; k < 200; k++) {
+    const angle = (Math.PI * k) / 200;
+    const sizes = sections.map(
+      (one) => sizeOnCircle(one.numerator, angle) / sizeOnCircle(one.denominator, angle),
+    );
+    largest = Math.max(
+      largest,
+      sizes.reduce((total, size) => total * size, 1),
+    );
+  }
+  const gain = ((random() < 0.8 ? 1 : -1) * 10 ** (2 * random() - 1)) / largest;
+  return times(sections.map((one) => loopOf(one.numerator, one.denominator, period)).reduce(inSeries), gain);
 }
 
-function sizeOnCircle(numerator: number[], denominator: number[], angle: number): number {
-  const at = (coefficients: number[]): number => {
-    let real = 0;
-    let imaginary = 0;
-    for (const coefficient of coefficients) {
-      const next = real * Math.cos(angle) - imaginary * Math.sin(angle) + coefficient;
-      imaginary = real * Math.sin(angle) + imaginary * Math.cos(angle);
-      real = next;
-    }
-    return Math.hypot(real, imaginary);
-  };
-  return at(numerator) / at(denominator);
+/** Roots between radius 0 and 1 − 10^−nearness. */
+function randomFactor(degree: number, random: () => number, nearness: number, integrator: boolean): number[] {
+  if (degree === 0) return [1];
+  const radius = 1 - 10 ** (-nearness * random());
+  if (degree === 1) return [1, integrator ? -1 : (random() < 0.85 ? -1 : 1) * radius];
+  const angle = Math.PI * random() ** 2;
+  return [1, -2 * radius * Math.cos(angle), radius * radius];
+}
+
+/** Size of a polynomial at e^{j·angle}. */
+function sizeOnCircle(coefficients: number[], angle: number): number {
+  let real = 0;
+  let imaginary = 0;
+  for (const coefficient of coefficients) {
+    const next = real * Math.cos(angle) - imaginary * Math.sin(angle) + coefficient;
+    imaginary = real * Math.sin(angle) + imaginary * Math.cos(angle);
+    real = next;
+  }
+  return Math.hypot(real, imaginary);
 }
