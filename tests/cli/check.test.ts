@@ -24,7 +24,12 @@ describe('pawl check on the shipped image', () => {
     expect(specs).toHaveLength(1);
     expect(specs[0]).toMatchObject({ file: place.spec, loop: 'Heliostat azimuth drive', seed: 11 });
     const [overshoot, , , , phase, gain] = specs[0].requirements;
-    expect(overshoot).toMatchObject({ name: 'AZ-1', measure: 'overshoot', verdict: 'met', limit: { at_most: 0.25 } });
+    expect(overshoot).toMatchObject({
+      name: 'AZ-1',
+      measure: 'overshoot',
+      verdict: 'met',
+      limit: { at_most: 0.25 },
+    });
     expect(overshoot.nominal).toBeGreaterThan(0);
     expect(overshoot.worst).toBeGreaterThan(overshoot.nominal);
     expect(overshoot.headroom).toBeCloseTo((0.25 - overshoot.worst) / 0.25, 12);
@@ -154,7 +159,9 @@ describe('bad input ends with status 2 and one clear line at its place', () => {
     const place = new Workplace();
     const missing = await place.pawl('check', place.spec, '--image', 'nowhere.elf');
     expect(missing).toMatchObject({ status: 2, errors: "there is no image 'nowhere.elf'" });
-    const failing = new Workplace((text) => text.replace('[make, -s, -C, firmware]', '[node, --eval, process.exit(3)]'));
+    const failing = new Workplace((text) =>
+      text.replace('[make, -s, -C, firmware]', '[node, --eval, process.exit(3)]'),
+    );
     const ended = await failing.pawl('check', failing.spec);
     expect(ended.status).toBe(2);
     expect(ended.errors).toMatch(/^axis\.pawl\.yaml:\d+:\d+: the build .* ended with status 3/);
