@@ -27,14 +27,14 @@ export function checkSkeleton(
   schema: z.ZodType,
   problems: Problems,
   explain: (path: Path, key: string) => string | undefined,
-): { unknown: UnknownKey[]; fits: boolean } {
+): UnknownKey[] {
   const result = schema.safeParse(plainRoot(tree));
   const held: Held = { tree, schema, problems, explain, unknown: [] };
   const complaints = (result.error?.issues ?? []).flatMap((issue) => unfolded(issue, issue.path));
   const isUnknown = ({ issue }: Complaint) => issue.code === 'unrecognized_keys';
   for (const complaint of complaints.filter(isUnknown)) reportUnknownKeys(complaint, held);
   for (const complaint of complaints.filter((one) => !isUnknown(one))) reportShape(complaint, held);
-  return { unknown: held.unknown, fits: result.success };
+  return held.unknown;
 }
 
 interface Held {

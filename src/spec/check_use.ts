@@ -11,12 +11,15 @@ const mustBeUsed: Partial<Record<NameKind, string>> = {
   actuator: 'no plant equation uses it',
 };
 
-/** Reports what is defined and then forgotten: a change of it would be judged by nothing. */
-export function checkUse(reading: Reading): void {
+/**
+ * Reports what is defined and then forgotten: a change of it would be judged by nothing. What an included file defines
+ * is there for several specs, and need not be used by each.
+ */
+export function checkUse(file: string, reading: Reading): void {
   if (reading.names.incomplete) return;
   for (const { name, kind, place } of reading.names.entries.values()) {
     const fault = mustBeUsed[kind];
-    if (fault === undefined || reading.names.used.has(name)) continue;
+    if (fault === undefined || place.file !== file || reading.names.used.has(name)) continue;
     reading.problems.add(place, `the ${kind} \`${name}\` is defined, but ${fault}; use it or leave it out`);
   }
 }

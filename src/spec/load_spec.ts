@@ -2,6 +2,7 @@ import { checkCycles } from './check_cycles.js';
 import { checkSkeleton } from './check_skeleton.js';
 import { checkControllersHear, checkUse } from './check_use.js';
 import { checkWindows } from './check_windows.js';
+import { gatherParts, type Includes, joined } from './include.js';
 import { newProblems, type Problems } from './problems.js';
 import { declareLoop, readActuators, readControllers, readPlant, readSensors } from './read_loop.js';
 import { readConstants, readFirmware, readInputs, readParameters } from './read_named.js';
@@ -10,7 +11,7 @@ import { checkVersion, readMerge, readPerturbation } from './read_run.js';
 import { readScenarios } from './read_scenarios.js';
 import { readYaml } from './read_yaml.js';
 import type { Reading } from './reading.js';
-import { skeletonOf } from './skeleton.js';
+import { skeletonsOf } from './skeleton.js';
 import type { Spec, SpecError } from './spec.js';
 import { childOf, entryOf, type MapTree, type Tree, textOf } from './tree.js';
 import type { Vocabulary } from './vocabulary.js';
@@ -24,11 +25,17 @@ export type LoadedSpec = { kind: 'spec'; spec: Spec } | { kind: 'errors'; errors
  * @param text the YAML text.
  * @param file its path as errors shall show it.
  * @param vocabulary the blocks and measures that a spec may use.
+ * @param includes how the files that it includes are read; without it there are none.
  */
-export function loadSpec(text: string, file: string, vocabulary: Vocabulary): LoadedSpec {
+export function loadSpec(
+  text: string,
+  file: string,
+  vocabulary: Vocabulary,
+  includes?: Includes,
+): LoadedSpec {
   const problems = newProblems();
   const root = rootOf(readYaml(text, file, problems), (place, message) => problems.add(place, message));
-  const spec = root && readSpec(root, file, readingOf(root, vocabulary, problems));
+  const spec = root && readWithParts(root, file, { vocabulary, problems, includes });
   const errors = problems.all();
   return spec !== undefined && errors.length === 0 ? { kind: 'spec', spec } : { kind: 'errors', errors };
 }
@@ -45,13 +52,26 @@ function rootOf(
   return undefined;
 }
 
+interface Surroundings {
+  vocabulary: Vocabulary;
+  problems: Problems;
+  includes: Includes | undefined;
+}
+
 /** Checks the shape of everything; the readers of the sections then pass over what has the wrong one. */
-function readingOf(root: MapTree, vocabulary: Vocabulary, problems: Problems): Reading {
-  const { unknown, fits } = checkSkeleton(root, skeletonOf(vocabulary), problems, (path, key) =>
-    misplaced(path, key, vocabulary),
+function readWithParts(root: MapTree, file: string, { vocabulary, problems, includes }: Surroundings): Spec {
+  const skeletons = skeletonsOf(vocabulary);
+  const parts = gatherParts(root, file, includes, problems);
+  const shapes = [
+    { tree: root, schema: skeletons.spec },
+    ...parts.map(({ tree }) => ({ tree, schema: skeletons.part })),
+  ].map(({ tree, schema }) =>
+    checkSkeleton(tree, schema, problems, (path, key) => misplaced(path, key, vocabulary)),
   );
-  const strange = new Set(unknown.map(({ holder }) => holder));
-  return { vocabulary, problems, strange, names: { entries: new Map(), used: new Set(), incomplete: !fits } };
+  const strange = new Set(shapes.flat().map(({ holder }) => holder));
+  const incomplete = problems.all().length > 0;
+  const names = { entries: new Map(), used: new Set<string>(), incomplete };
+  return readSpec(joined(root, parts), file, { vocabulary, problems, strange, names });
 }
 
 function readSpec(root: MapTree, file: string, reading: Reading): Spec {
@@ -90,7 +110,7 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
 
 /** What can be judged only when every section is read. */
 function checkWhole(spec: Spec, reading: Reading): void {
-  checkUse(reading);
+  checkUse(spec.file, reading);
   checkControllersHear(spec.controllers, reading);
   checkCycles(spec, reading);
   checkWindows(spec.requirements, spec.scenarios, reading);

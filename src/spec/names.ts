@@ -66,7 +66,8 @@ export function declare(names: Names, entry: NameEntry, problems: Problems): voi
     return;
   }
   earlier.twice = true;
-  const where = `line ${earlier.place.line}`;
+  const sameFile = earlier.place.file === entry.place.file;
+  const where = sameFile ? `line ${earlier.place.line}` : `${earlier.place.file}:${earlier.place.line}`;
   problems.add(
     entry.place,
     `the name \`${entry.name}\` is already taken by the ${earlier.kind} at ${where}; every name is defined once`,

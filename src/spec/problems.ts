@@ -7,7 +7,7 @@ export interface Problems {
   all: () => SpecError[];
 }
 
-/** An empty collection. The first file named is listed first. */
+/** An empty collection. */
 export function newProblems(): Problems {
   const errors: SpecError[] = [];
   return {

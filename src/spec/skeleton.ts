@@ -11,14 +11,29 @@ const range = z
 const expression = text('an expression').optional();
 const name = text('a name');
 
-/** Schemas are slow to make and quick to use; a vocabulary does not change. */
-const made = new WeakMap<Vocabulary, z.ZodType>();
+/** The shape of a spec and of a file that it includes. */
+export interface Skeletons {
+  spec: z.ZodType;
+  part: z.ZodType;
+}
 
-/** The shape of a spec: sections, keys and which are needed; what stands in the slots is read afterwards. */
-export function skeletonOf(vocabulary: Vocabulary): z.ZodType {
-  const schema = made.get(vocabulary) ?? newSkeleton(vocabulary);
-  made.set(vocabulary, schema);
-  return schema;
+/** Schemas are slow to make and quick to use; a vocabulary does not change. */
+const made = new WeakMap<Vocabulary, Skeletons>();
+
+/** The shapes: sections, keys and which are needed; what stands in the slots is read afterwards. */
+export function skeletonsOf(vocabulary: Vocabulary): Skeletons {
+  const skeletons = made.get(vocabulary) ?? newSkeletons(vocabulary);
+  made.set(vocabulary, skeletons);
+  return skeletons;
+}
+
+function newSkeletons(vocabulary: Vocabulary): Skeletons {
+  const spec = newSkeleton(vocabulary);
+  const { include, constants, parameters, inputs, plant, sensors, actuators } = spec.shape;
+  const part = z
+    .strictObject({ include, constants, parameters, inputs, plant, sensors, actuators })
+    .describe('a mapping of sections, such as parameters and plant');
+  return { spec, part };
 }
 
 function newSkeleton(vocabulary: Vocabulary) {
@@ -26,6 +41,10 @@ function newSkeleton(vocabulary: Vocabulary) {
     .strictObject({
       pawl: text('the format version, 1'),
       loop: text('a title of the loop in plain words'),
+      include: z
+        .array(text('the path of a file, relative to this one'))
+        .describe('a list of paths, such as [shared/motor.yaml]')
+        .optional(),
       firmware: firmware.optional(),
       constants: z
         .record(z.string(), text('a quantity such as 9.81 m/s^2'))
