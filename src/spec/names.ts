@@ -133,3 +133,11 @@ export const scenarioRoom: Room = {
   si: true,
   mayLookBack: false,
 };
+
+/** Parameters that follow from others, and conditions on parameters. */
+export const derivedRoom: Room = {
+  sees: ['parameter', 'constant'],
+  words: 'an expression of parameters',
+  si: true,
+  mayLookBack: false,
+};

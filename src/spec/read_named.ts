@@ -1,8 +1,7 @@
-import { formatDimension } from './format_dimension.js';
 import { declare, type NameEntry, type NameKind } from './names.js';
 import { readQuantity, readUnit } from './read_quantity.js';
 import type { Reading } from './reading.js';
-import type { CoefficientDefinition, Firmware, InputDefinition, ParameterDefinition, Unit } from './spec.js';
+import type { CoefficientDefinition, Firmware, InputDefinition, Unit } from './spec.js';
 import { childOf, entriesOf, entryOf, itemsOf, type MapEntry, type Tree, textOf } from './tree.js';
 
 /** Takes the name of an entry into the namespace. */
@@ -43,75 +42,6 @@ export function readConstants(tree: Tree | undefined, reading: Reading): void {
     const quantity = readQuantity(entry.value, undefined, `\`${entry.key}\``, reading);
     declareEntry(entry, 'constant', quantity?.unit, reading, { value: quantity?.value });
   }
-}
-
-/** `parameters:` uncertain quantities. */
-export function readParameters(tree: Tree | undefined, reading: Reading): ParameterDefinition[] {
-  return entriesOf(tree).flatMap((entry) => {
-    const parameter = readParameter(entry, reading);
-    declareEntry(entry, 'parameter', parameter?.unit, reading, { value: parameter?.nominal });
-    return parameter === undefined ? [] : [parameter];
-  });
-}
-
-function readParameter(
-  { key: name, keyPlace: place, value }: MapEntry,
-  reading: Reading,
-): ParameterDefinition | undefined {
-  const nominal = readQuantity(childOf(value, 'nominal'), undefined, '`nominal`', reading);
-  const dimension = nominal?.unit.dimension;
-  const given = ['spread', 'from', 'to'].filter((key) => childOf(value, key) !== undefined);
-  if (value.kind === 'map' && !['spread', 'from,to'].includes(given.join())) {
-    if (reading.strange.has(value)) return undefined;
-    const found = given.length === 0 ? 'no bounds' : given.map((key) => `\`${key}\``).join(' and ');
-    reading.problems.add(
-      place,
-      `parameter \`${name}\` has ${found}; expected either spread, or from and to (a fixed quantity belongs in constants)`,
-    );
-    return undefined;
-  }
-  const spread = readQuantity(childOf(value, 'spread'), undefined, '`spread`', reading);
-  const from = readQuantity(childOf(value, 'from'), dimension, '`from`', reading);
-  const to = readQuantity(childOf(value, 'to'), dimension, '`to`', reading);
-  if (nominal === undefined) return undefined;
-  const unit = nominal.decibel ? { ...nominal.unit, text: '' } : nominal.unit;
-  const parameter = { name, place, unit, nominal: nominal.value };
-  if (spread !== undefined) {
-    const half = halfWidth(nominal.value, spread, unit, reading);
-    return half === undefined
-      ? undefined
-      : { ...parameter, low: nominal.value - half, high: nominal.value + half };
-  }
-  if (from === undefined || to === undefined) return undefined;
-  if (from.value > nominal.value || to.value < nominal.value) {
-    const order = from.value > to.value ? 'are the wrong way round' : 'do not contain the nominal value';
-    reading.problems.add(from.place, `the bounds of \`${name}\` ${order}; expected from ≤ nominal ≤ to`);
-  }
-  return { ...parameter, low: from.value, high: to.value };
-}
-
-function halfWidth(
-  nominal: number,
-  spread: NonNullable<ReturnType<typeof readQuantity>>,
-  unit: Unit,
-  reading: Reading,
-): number | undefined {
-  if (spread.relative && nominal === 0) {
-    reading.problems.add(spread.place, 'a spread in % of a nominal 0 is nothing; give from and to');
-    return undefined;
-  }
-  if (spread.value < 0) {
-    reading.problems.add(spread.place, 'a spread is a size and cannot be negative');
-    return undefined;
-  }
-  if (spread.relative) return spread.value * Math.abs(nominal);
-  const same = spread.unit.dimension.every((exponent, at) => exponent === unit.dimension[at]);
-  if (same && !spread.decibel) return spread.value;
-  reading.problems.add(
-    spread.place,
-    `a spread is a share in %, or in ${formatDimension(unit.dimension)} like the nominal value, but this is ${spread.decibel ? 'dB' : formatDimension(spread.unit.dimension)}`,
-  );
-  return undefined;
 }
 
 /** `inputs:` what comes from outside. */

@@ -1,6 +1,7 @@
 import { readShare, readWhole } from './read_quantity.js';
+import { readConditions, readCorrelations } from './read_relations.js';
 import type { Reading } from './reading.js';
-import type { Perturbation, Spec } from './spec.js';
+import type { ParameterDefinition, Perturbation, Spec } from './spec.js';
 import { childOf, type MapEntry, type Tree, textOf } from './tree.js';
 
 /** What `perturbation:` leaves out. */
@@ -9,10 +10,18 @@ export const defaultPerturbation: Perturbation = { plants: 200, seed: 1, confide
 const mostPlants = 10_000_000;
 const largestSeed = 2 ** 32 - 1;
 
-/** `perturbation:` how many plants are drawn, from which seed, and the confidence of statements about shares. */
-export function readPerturbation(tree: Tree | undefined, reading: Reading): Perturbation {
+/**
+ * `perturbation:` how many plants are drawn, from which seed, the confidence of statements about shares, what the search
+ * for the worst may spend, and how the parameters hang together.
+ */
+export function readPerturbation(
+  tree: Tree | undefined,
+  parameters: readonly ParameterDefinition[],
+  reading: Reading,
+): Perturbation {
   const plants = readWhole(childOf(tree, 'plants'), { least: 0, most: mostPlants }, '`plants`', reading);
   const seed = readWhole(childOf(tree, 'seed'), { least: 0, most: largestSeed }, '`seed`', reading);
+  const search = readWhole(childOf(tree, 'search'), { least: 0, most: mostPlants }, '`search`', reading);
   const confidenceTree = childOf(tree, 'confidence');
   const confidence = readShare(confidenceTree, '`confidence`', reading);
   if (confidenceTree !== undefined && confidence !== undefined && (confidence <= 0 || confidence >= 1)) {
@@ -25,6 +34,9 @@ export function readPerturbation(tree: Tree | undefined, reading: Reading): Pert
     plants: plants ?? defaultPerturbation.plants,
     seed: seed ?? defaultPerturbation.seed,
     confidence: confidence ?? defaultPerturbation.confidence,
+    search,
+    onlyWhere: readConditions(childOf(tree, 'only_where'), parameters, reading),
+    correlations: readCorrelations(childOf(tree, 'correlations'), parameters, reading),
   };
 }
 

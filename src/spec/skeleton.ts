@@ -97,10 +97,19 @@ const firmware = z
 
 const parameter = z
   .strictObject({
-    nominal: text('a quantity such as 38 kg*m^2'),
+    nominal: text('a quantity such as 38 kg*m^2').optional(),
     spread: text('a share such as 20 %, or a quantity').optional(),
     from: text('the lower bound').optional(),
     to: text('the upper bound').optional(),
+    values: z
+      .array(text('a quantity'))
+      .min(1)
+      .describe('a list of the values that it can take, such as [2 mm, 3 mm]')
+      .optional(),
+    distribution: text('uniform, normal, triangular or log_uniform').optional(),
+    deviation: text('the standard deviation of a normal distribution').optional(),
+    value: text('an expression of other parameters that it follows from').optional(),
+    unit,
   })
   .describe('{ nominal: …, spread: … } or { nominal: …, from: …, to: … }');
 
@@ -241,6 +250,23 @@ const perturbation = z
     plants: text('a whole number').optional(),
     seed: text('a whole number').optional(),
     confidence: text('a share such as 95 %').optional(),
+    search: text('a whole number').optional(),
+    only_where: z
+      .union([text('a condition on parameters'), z.array(text('a condition on parameters'))])
+      .describe('a condition such as inertia > mass * (0.1 m^2), or a list of them')
+      .optional(),
+    correlations: z
+      .array(
+        z
+          .strictObject({
+            of: text('the name of a parameter'),
+            with: text('the name of a parameter'),
+            coefficient: text('a number between -1 and 1'),
+          })
+          .describe('{ of: …, with: …, coefficient: … }'),
+      )
+      .describe('a list of { of: …, with: …, coefficient: … }')
+      .optional(),
   })
   .describe('{ plants: …, seed: …, confidence: … }');
 

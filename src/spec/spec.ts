@@ -145,7 +145,17 @@ export interface CoefficientDefinition {
   unit: Unit | undefined;
 }
 
-/** An uncertain quantity, uniformly spread between its bounds (SI). */
+/**
+ * How independent plants draw a parameter between its bounds. `normal`: about the nominal value with a standard deviation
+ * (SI), cut at the bounds; `triangular`: most likely at the nominal value; `log_uniform`: the logarithm is uniform;
+ * `values`: one of these (SI, ascending), each as likely.
+ */
+export type Distribution =
+  | { kind: 'uniform' | 'triangular' | 'log_uniform' }
+  | { kind: 'normal'; deviation: number }
+  | { kind: 'values'; values: number[] };
+
+/** An uncertain quantity between bounds (SI). */
 export interface ParameterDefinition {
   name: string;
   place: Place;
@@ -153,6 +163,18 @@ export interface ParameterDefinition {
   nominal: number;
   low: number;
   high: number;
+  /** Uniform where nothing is said. */
+  distribution?: Distribution;
+  /** Follows from other parameters by this expression in SI; bounds and nominal are then its nominal value. */
+  derived?: Expression;
+}
+
+/** The rank correlation (Spearman 1904) of two parameters in independent plants, between -1 and 1. */
+export interface Correlation {
+  of: string;
+  with: string;
+  coefficient: number;
+  place: Place;
 }
 
 export interface InputDefinition {
@@ -209,6 +231,11 @@ export interface Perturbation {
   seed: number;
   /** As a share, e.g. 0.95. */
   confidence: number;
+  /** Plants that the search for the worst may spend on each requirement. */
+  search?: number;
+  /** Plants count only where each of these is not 0; expressions of parameters in SI. */
+  onlyWhere?: Expression[];
+  correlations?: Correlation[];
 }
 
 /** One loop, its firmware, plant, scenarios and requirements, checked; every value in SI unless said otherwise. */
