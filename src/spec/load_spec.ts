@@ -5,8 +5,7 @@ import { checkWindows } from './check_windows.js';
 import { gatherParts, type Includes, joined } from './include.js';
 import { newProblems, type Problems } from './problems.js';
 import { declareLoop, readActuators, readControllers, readPlant, readSensors } from './read_loop.js';
-import { readConstants, readFirmware, readInputs } from './read_named.js';
-import { readParameters } from './read_parameters.js';
+import { readConstants, readFirmware, readInputs, readParameters } from './read_named.js';
 import { readRequirements } from './read_requirements.js';
 import { checkVersion, readMerge, readPerturbation } from './read_run.js';
 import { readScenarios } from './read_scenarios.js';
@@ -60,15 +59,23 @@ interface Surroundings {
 }
 
 /** Checks the shape of everything; the readers of the sections then pass over what has the wrong one. */
-function readWithParts(root: MapTree, file: string, { vocabulary, problems, includes }: Surroundings): Spec {
+function readWithParts(
+  root: MapTree,
+  file: string,
+  { vocabulary, problems, includes }: Surroundings,
+): Spec | undefined {
   const skeletons = skeletonsOf(vocabulary);
+  const before = problems.all().length;
   const parts = gatherParts(root, file, includes, problems);
+  const gathered = problems.all().length === before;
   const shapes = [
     { tree: root, schema: skeletons.spec },
     ...parts.map(({ tree }) => ({ tree, schema: skeletons.part })),
   ].map(({ tree, schema }) =>
     checkSkeleton(tree, schema, problems, (path, key) => misplaced(path, key, vocabulary)),
   );
+  // Without a part every name that it defines would seem to be missing.
+  if (!gathered) return undefined;
   const strange = new Set(shapes.flat().map(({ holder }) => holder));
   const incomplete = problems.all().length > 0;
   const names = { entries: new Map(), used: new Set<string>(), incomplete };
@@ -88,7 +95,7 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
   const actuators = readActuators(childOf(root, 'actuators'), reading);
   const scenarios = readScenarios(childOf(root, 'scenarios'), reading);
   const requirements = readRequirements(childOf(root, 'requirements'), { scenarios, sensors }, reading);
-  const perturbation = readPerturbation(childOf(root, 'perturbation'), parameters, reading);
+  const perturbation = readPerturbation(childOf(root, 'perturbation'), reading);
   const merge = readMerge(entryOf(root, 'merge'), reading);
   const spec: Spec = {
     file,

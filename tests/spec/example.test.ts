@@ -141,7 +141,7 @@ test('requirements: signals, quantities and limits in SI, the unit as written', 
 });
 
 test('the run and the merge', () => {
-  expect(spec.perturbation).toEqual({ plants: 1000, seed: 11, confidence: 0.95 });
+  expect(spec.perturbation).toMatchObject({ plants: 1000, seed: 11, confidence: 0.95 });
   expect(spec.merge).toMatchObject({ reference: '../../reference/latched/heliostat.json', maySlip: 0.05 });
 });
 
@@ -152,7 +152,7 @@ test('what may be left out is left out', () => {
     [', holds_for: all', ', holds_for: 99 %'],
   );
   const short = specOf(text);
-  expect(short.perturbation).toEqual({ plants: 200, seed: 1, confidence: 0.95 });
+  expect(short.perturbation).toMatchObject({ plants: 200, seed: 1, confidence: 0.95 });
   expect(short.merge).toBeUndefined();
   expect(short.controllers[0].arithmetic).toBe('float64');
   expect(short.requirements[6].holdsFor).toBe(0.99);
