@@ -5,7 +5,8 @@ import { checkWindows } from './check_windows.js';
 import { gatherParts, type Includes, joined } from './include.js';
 import { newProblems, type Problems } from './problems.js';
 import { declareLoop, readActuators, readControllers, readPlant, readSensors } from './read_loop.js';
-import { readConstants, readFirmware, readInputs, readParameters } from './read_named.js';
+import { readConstants, readFirmware, readInputs } from './read_named.js';
+import { readParameters } from './read_parameters.js';
 import { readRequirements } from './read_requirements.js';
 import { checkVersion, readMerge, readPerturbation } from './read_run.js';
 import { readScenarios } from './read_scenarios.js';
@@ -95,7 +96,7 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
   const actuators = readActuators(childOf(root, 'actuators'), reading);
   const scenarios = readScenarios(childOf(root, 'scenarios'), reading);
   const requirements = readRequirements(childOf(root, 'requirements'), { scenarios, sensors }, reading);
-  const perturbation = readPerturbation(childOf(root, 'perturbation'), reading);
+  const perturbation = readPerturbation(childOf(root, 'perturbation'), parameters, reading);
   const merge = readMerge(entryOf(root, 'merge'), reading);
   const spec: Spec = {
     file,
