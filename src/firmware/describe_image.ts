@@ -22,7 +22,8 @@ export interface ImageDescription {
   machine: string | undefined;
   /** Width of an address, where the image says it. */
   bits: 32 | 64 | undefined;
-  byteOrder: 'little' | 'big';
+  /** Undefined for values that are not stored in an image. */
+  byteOrder: 'little' | 'big' | undefined;
   /** The ELF file that gave the names to an image without any. */
   symbols: ImageDescription | undefined;
 }
@@ -30,7 +31,8 @@ export interface ImageDescription {
 /** Says what an image is. */
 export function describeImage(image: FirmwareImage): ImageDescription {
   const elf = image.kind === 'elf' ? image.elf : undefined;
-  const littleEndian = image.kind === 'elf' ? image.elf.littleEndian : image.littleEndian;
+  const littleEndian =
+    image.kind === 'elf' ? image.elf.littleEndian : 'contents' in image && image.littleEndian;
   return {
     name: image.name,
     kind: image.kind,
@@ -40,8 +42,8 @@ export function describeImage(image: FirmwareImage): ImageDescription {
     producers: image.kind === 'elf' ? producersOf(image) : [],
     machine: elf && machineName(elf.machine),
     bits: elf?.bits,
-    byteOrder: littleEndian ? 'little' : 'big',
-    symbols: image.kind !== 'elf' && image.symbols ? describeImage(image.symbols) : undefined,
+    byteOrder: 'values' in image ? undefined : littleEndian ? 'little' : 'big',
+    symbols: 'contents' in image && image.symbols ? describeImage(image.symbols) : undefined,
   };
 }
 

@@ -4,9 +4,10 @@ import { FirmwareError, quoted } from './failure.js';
 import type { FlashContents } from './flash/flash_image.js';
 import { readIntelHex } from './flash/intel_hex.js';
 import { readSRecords } from './flash/s_record.js';
+import type { ValuesImage } from './values/values_image.js';
 
 /** A built image, opened: what coefficients are read from. */
-export type FirmwareImage = ElfImage | FlashImage;
+export type FirmwareImage = ElfImage | FlashImage | ValuesImage;
 
 /** An ELF file with the debug information that belongs to it. */
 export interface ElfImage {

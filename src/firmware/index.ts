@@ -23,3 +23,6 @@ export { formatText, parseFormat } from './number_format.js';
 export { type FileOptions, openImageFile } from './open_file.js';
 export { readCoefficient, readCoefficients } from './read_coefficient.js';
 export type { CoefficientRequest } from './request.js';
+export { openSource, type SourceRequest } from './source/open_source.js';
+export { type CommandRequest, openCommand } from './values/run_command.js';
+export type { ValuesImage } from './values/values_image.js';

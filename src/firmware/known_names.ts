@@ -1,4 +1,9 @@
+import { attribute } from './dwarf/attributes.js';
+import { at } from './dwarf/codes.js';
+import { rootOf } from './dwarf/entry.js';
 import { qualifiedName, variablesOf } from './dwarf/variables.js';
+import { debugLinkOf } from './elf/debug_link.js';
+import { demangledData } from './elf/demangle.js';
 import { allSymbols, hasSymbols, isData } from './elf/symbols.js';
 import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage } from './image.js';
@@ -11,6 +16,12 @@ const mostNames = 50_000;
 /** The error for a name that the image does not have, with the names that may have been meant and the cure. */
 export function noSuchSymbol(image: ElfImage, path: CoefficientPath): FirmwareError {
   const wanted = [...path.scopes, path.name].join('::');
+  const split = splitOff(image);
+  if (split)
+    return new FirmwareError(
+      'no_debug_information',
+      `no variable ${quoted(wanted)} can be found in ${quoted(image.name)}: ${split}`,
+    );
   if (!image.debug.present && !hasSymbols(image.symbolTable)) {
     return new FirmwareError(
       'no_debug_information',
@@ -26,6 +37,21 @@ export function noSuchSymbol(image: ElfImage, path: CoefficientPath): FirmwareEr
   );
 }
 
+/** Why the debug information is elsewhere, and how to give it. */
+function splitOff(image: ElfImage): string | undefined {
+  const link = image.debug.present ? undefined : debugLinkOf(image.elf);
+  if (link) {
+    return `its debug information was split off into ${quoted(link.fileName)}, which was not found; put that beside the image, or give it as debug file`;
+  }
+  const isSplit = image.debug.units().some((unit) => {
+    const root = rootOf(unit);
+    return (
+      root !== undefined && (attribute(root, at.dwoName) ?? attribute(root, at.gnuDwoName)) !== undefined
+    );
+  });
+  return isSplit ? 'its debug information is kept in .dwo files; build without -gsplit-dwarf' : undefined;
+}
+
 const kept = new WeakMap<ElfImage, Set<string>>();
 
 function knownNames(image: ElfImage): Set<string> {
@@ -36,7 +62,7 @@ function knownNames(image: ElfImage): Set<string> {
 
 function* listNames(image: ElfImage): Generator<string> {
   for (const symbol of allSymbols(image.symbolTable))
-    if (isData(symbol) && symbol.name !== '') yield symbol.name;
+    if (isData(symbol) && symbol.name !== '') yield demangledData(symbol.name)?.join('::') ?? symbol.name;
   let count = 0;
   for (const unit of image.debug.units()) {
     for (const variable of variablesOf(unit)) {

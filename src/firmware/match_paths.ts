@@ -7,6 +7,7 @@ import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage, FirmwareImage } from './image.js';
 import { indicesOf, type Leaf, leavesOf } from './leaves.js';
 import { parsePath } from './path.js';
+import { pathsIn } from './values/value_tree.js';
 
 /** More coefficients than this at once are no use to anyone. */
 const mostPaths = 100_000;
@@ -25,7 +26,8 @@ export function matchPaths(image: FirmwareImage, pattern: string): string[] {
   if (!isPattern(pattern)) return [pattern];
   const fits = patternExpression(pattern);
   const paths: string[] = [];
-  for (const leaf of leavesFor(elfOf(image), pattern)) {
+  const leaves = 'values' in image ? pathsIn(image.values) : leavesFor(elfOf(image), pattern);
+  for (const leaf of leaves) {
     paths.push(...fittingPaths(leaf, fits));
     if (paths.length > mostPaths)
       throw new FirmwareError('bad_request', `${quoted(pattern)} fits more than ${mostPaths} coefficients`);
@@ -37,7 +39,7 @@ export function matchPaths(image: FirmwareImage, pattern: string): string[] {
 
 /** The ELF file which has the names. @throws FirmwareError `bad_request` where there is none */
 export function elfOf(image: FirmwareImage): ElfImage {
-  const elf = image.kind === 'elf' ? image : image.symbols;
+  const elf = image.kind === 'elf' ? image : 'contents' in image ? image.symbols : undefined;
   if (elf) return elf;
   throw new FirmwareError(
     'bad_request',
@@ -72,7 +74,7 @@ function* leavesFor(image: ElfImage, pattern: string): Generator<Leaf> {
 }
 
 /** A table is meant as a whole, or element by element where the pattern ends in an index. */
-function fittingPaths(leaf: Leaf, fits: RegExp): string[] {
+function fittingPaths(leaf: Pick<Leaf, 'path' | 'lengths'>, fits: RegExp): string[] {
   if (fits.test(leaf.path)) return [leaf.path];
   const { lengths } = leaf;
   if (lengths.length === 0 || lengths.some((length) => length === undefined)) return [];

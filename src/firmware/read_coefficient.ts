@@ -7,6 +7,7 @@ import { readAddress } from './read_address.js';
 import { readElf } from './read_elf.js';
 import type { CoefficientRequest } from './request.js';
 import { scaled } from './scaling.js';
+import { readValue } from './values/value_tree.js';
 
 /**
  * Reads one coefficient.
@@ -43,9 +44,16 @@ export function readCoefficients(
 }
 
 function readUnscaled(image: FirmwareImage, request: CoefficientRequest): Coefficient {
-  if (request.address !== undefined) return readAddress(image, request.address, request);
+  const isAddressed = request.address !== undefined;
+  if (request.address !== undefined && !('values' in image))
+    return readAddress(image, request.address, request);
   const path = parsePath(request.at);
   const format = request.format === undefined ? undefined : parseFormat(request.format);
+  if ('values' in image) {
+    if (isAddressed)
+      throw new FirmwareError('bad_request', `${quoted(image.name)} has no addresses: give a name instead`);
+    return readValue(image.values, path, format, image.name);
+  }
   if (image.kind === 'elf') return readElf(image, path, format, request);
   if (image.symbols) return readElf(image.symbols, path, format, request);
   throw new FirmwareError(

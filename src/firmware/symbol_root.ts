@@ -3,7 +3,9 @@ import { textAttribute } from './dwarf/attributes.js';
 import { at } from './dwarf/codes.js';
 import { declaredAt } from './dwarf/find_variable.js';
 import { entryWith, type Variable } from './dwarf/variables.js';
+import { demangledData } from './elf/demangle.js';
 import {
+  allSymbols,
   commonSection,
   type ElfSymbol,
   fileOfSymbol,
@@ -28,23 +30,39 @@ export function symbolFor(
   const linked = declarations
     .map((variable) => entryWith(variable, at.linkageName))
     .find((entry) => entry !== undefined);
-  const names = [
-    linked && textAttribute(linked, at.linkageName),
-    path.scopes.length === 0 ? path.name : undefined,
-    path.text,
-  ];
-  for (const name of names) {
-    if (name === undefined) continue;
-    const named = symbolsNamed(image.symbolTable, name).filter(
-      (symbol) =>
-        isData(symbol) &&
-        (path.file === undefined || fileOfSymbol(image.symbolTable, symbol)?.endsWith(path.file)),
-    );
-    const places = new Map(named.map((symbol) => [symbol.address, symbol]));
-    if (places.size > 1) throw ambiguousSymbols(image, path, [...places.values()]);
-    if (places.size === 1) return named.find((symbol) => symbol.size > 0) ?? named[0];
+  const linkedName = linked && textAttribute(linked, at.linkageName);
+  const plainName = path.scopes.length === 0 ? path.name : undefined;
+  for (const name of [linkedName, plainName, path.text]) {
+    const symbol = name === undefined ? undefined : oneOf(image, path, symbolsNamed(image.symbolTable, name));
+    if (symbol) return symbol;
   }
-  return undefined;
+  return oneOf(image, path, mangledSymbols(image, path));
+}
+
+/** The one place which the symbols stand for, undefined when there are none. */
+function oneOf(image: ElfImage, path: CoefficientPath, symbols: ElfSymbol[]): ElfSymbol | undefined {
+  const named = symbols.filter(
+    (symbol) =>
+      isData(symbol) &&
+      (path.file === undefined || fileOfSymbol(image.symbolTable, symbol)?.endsWith(path.file)),
+  );
+  const places = new Map(named.map((symbol) => [symbol.address, symbol]));
+  if (places.size > 1) throw ambiguousSymbols(image, path, [...places.values()]);
+  return named.find((symbol) => symbol.size > 0) ?? named[0];
+}
+
+/** The symbols whose demangled C++ name ends as the path is written. */
+function mangledSymbols(image: ElfImage, path: CoefficientPath): ElfSymbol[] {
+  const written = [...path.scopes, path.name].map(compact);
+  return allSymbols(image.symbolTable).filter((symbol) => {
+    if (!symbol.name.startsWith('_Z') || !symbol.name.includes(path.name)) return false;
+    const parts = demangledData(symbol.name)?.map(compact);
+    return parts !== undefined && parts.slice(-written.length).join('::') === written.join('::');
+  });
+}
+
+function compact(name: string): string {
+  return name.replace(/\s+/g, '');
 }
 
 /** A variable of which only the symbol table knows. @throws FirmwareError for common data, which has no value */

@@ -63,7 +63,10 @@ async function lead(count, first) {
 /** A worker that says nothing for a minute hangs: it is ended, and its last seed named. */
 function outcomeOf(first, count) {
   return new Promise((resolve) => {
-    const worker = fork(self, [String(first), String(count), String(workers)]);
+    // A heap that must be swept in time: without a limit Node rather takes memory than sweeps.
+    const worker = fork(self, [String(first), String(count), String(workers)], {
+      execArgv: ['--max-old-space-size=128'],
+    });
     let last = first;
     let sum = {
       images: 0,
