@@ -32,14 +32,15 @@ function factorFor(data: Float64Array, n: number, i: number): number {
   let column = 0;
   let row = 0;
   for (let j = 0; j < n; j++) {
+    if (j === i) continue;
     column += data[j * n + i] * data[j * n + i];
     row += data[i * n + j] * data[i * n + j];
   }
+  // Nothing couples to this state, or it couples to nothing: any factor would do, so it is left as it is.
+  if (!(column > 0 && row > 0 && Number.isFinite(column + row))) return 1;
   const diagonal = data[i * n + i] * data[i * n + i];
-  // Nothing couples to this state, or nothing is driven by it: any factor would do, so it is left as it is.
-  if (!(column > diagonal && row > diagonal && Number.isFinite(column + row))) return 1;
-  column = Math.sqrt(column);
-  row = Math.sqrt(row);
+  column = Math.sqrt(column + diagonal);
+  row = Math.sqrt(row + diagonal);
   let factor = 1;
   while (column * factor * 2 < row / factor && factor < LARGEST_FACTOR) factor *= 2;
   while (column * factor > (row / factor) * 2 && factor > 1 / LARGEST_FACTOR) factor /= 2;

@@ -8,8 +8,3 @@ export interface Complex {
 export function magnitude(z: Complex): number {
   return Math.hypot(z.real, z.imaginary);
 }
-
-/** The angle in rad, in (−π, π]. */
-export function phase(z: Complex): number {
-  return Math.atan2(z.imaginary, z.real);
-}

@@ -26,7 +26,9 @@ export function eigenvalues(a: Matrix): Complex[] {
 }
 
 /** Most QR steps for one eigenvalue. Two or three are usual. */
-const MOST_STEPS = 60;
+const MOST_STEPS = 90;
+/** After so many steps an entry may be dropped that is negligible against the whole matrix, not only its neighbours. */
+const PATIENCE = 30;
 
 /**
  * The eigenvalues of an upper Hessenberg matrix, which is destroyed.
@@ -35,10 +37,11 @@ const MOST_STEPS = 60;
  */
 export function eigenvaluesOfHessenberg(h: Float64Array, n: number): Complex[] {
   const found: Complex[] = [];
+  const rounding = Number.EPSILON * Math.hypot(...h);
   let last = n - 1;
   let steps = 0;
   while (last >= 0) {
-    const first = startOfBlock(h, n, last);
+    const first = startOfBlock(h, n, last, steps > PATIENCE ? rounding : 0);
     if (last - first > 1) {
       if (++steps > MOST_STEPS) {
         throw new NumericFailure(
@@ -57,9 +60,9 @@ export function eigenvaluesOfHessenberg(h: Float64Array, n: number): Complex[] {
 }
 
 /** First index of the unreduced block that ends at `last`; the negligible entry before it is set to zero. */
-function startOfBlock(h: Float64Array, n: number, last: number): number {
+function startOfBlock(h: Float64Array, n: number, last: number, rounding: number): number {
   for (let k = last; k > 0; k--) {
-    if (isNegligible(h, n, k)) {
+    if (Math.abs(h[k * n + k - 1]) <= rounding || isNegligible(h, n, k)) {
       h[k * n + k - 1] = 0;
       return k;
     }

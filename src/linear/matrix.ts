@@ -124,11 +124,6 @@ export function columnSumNorm(a: Matrix): number {
   return largest;
 }
 
-/** The root of the sum of the squared entries. */
-export function frobeniusNorm(a: Matrix): number {
-  return Math.hypot(...a.data);
-}
-
 /** The size in words, e.g. `3 x 2`, for messages. */
 export function shape(a: Matrix): string {
   return `${a.rows} x ${a.columns}`;

@@ -101,35 +101,36 @@ export function repeatable(seed: number): () => number {
   };
 }
 
-/** One factor of a transfer function, in descending powers of z. */
+/** One factor of a transfer function: a numerator in descending powers of z, over one real pole or a pair radius·e^{±j·angle}. */
 interface Section {
   numerator: number[];
-  denominator: number[];
+  radius: number;
+  angle: number | undefined;
 }
 
 /**
  * A sampled loop of the given order: sections of first and second order in series, with poles and zeros at many distances
- * from the unit circle, now and then a pure integrator, and a gain that leaves about half of such loops stable. Sections in
- * series are well conditioned, so that two methods can agree on them to many digits.
+ * from the unit circle, now and then a pure integrator, and a gain that leaves about half of such loops stable. Each pair of
+ * poles has states that turn with it, as sampled plants have: so the loop is well conditioned, and two methods can agree on
+ * it to many digits.
  */
 export function randomLoop(order: number, random: () => number): StateEquations {
   const period = 10 ** (-4 + 3 * random());
   const sections: Section[] = [];
   for (let left = order; left > 0; ) {
     const degree = left >= 2 && random() < 0.6 ? 2 : 1;
-    const numerator = randomFactor(
-      random() < 0.5 ? degree : Math.floor(random() * (degree + 1)),
-      random,
-      false,
-    );
-    sections.push({ numerator, denominator: randomFactor(degree, random, 3.5, random() < 0.15) });
+    const numerator = randomNumerator(random() < 0.5 ? degree : Math.floor(random() * (degree + 1)), random);
+    const radius = 1 - 10 ** (-3.5 * random());
+    if (degree === 2) sections.push({ numerator, radius, angle: Math.PI * random() ** 2 });
+    else if (random() < 0.15) sections.push({ numerator, radius: 1, angle: undefined });
+    else sections.push({ numerator, radius: random() < 0.85 ? radius : -radius, angle: undefined });
     left -= degree;
   }
   let largest = 0;
   for (let k = 1; k < 200; k++) {
-    const angle = (Math.PI * k) / 200;
+    const at = (Math.PI * k) / 200;
     const sizes = sections.map(
-      (one) => sizeOnCircle(one.numerator, angle) / sizeOnCircle(one.denominator, angle),
+      (one) => sizeOnCircle(one.numerator, at) / sizeOnCircle(denominatorOf(one), at),
     );
     largest = Math.max(
       largest,
@@ -137,16 +138,40 @@ export function randomLoop(order: number, random: () => number): StateEquations 
     );
   }
   const gain = ((random() < 0.8 ? 1 : -1) * 10 ** (2 * random() - 1)) / largest;
-  return times(sections.map((one) => loopOf(one.numerator, one.denominator, period)).reduce(inSeries), gain);
+  return times(sections.map((one) => sectionOf(one, period)).reduce(inSeries), gain);
 }
 
-/** Roots between radius 0 and 1 − 10^−nearness. */
-function randomFactor(degree: number, random: () => number, nearness: number, integrator: boolean): number[] {
+function randomNumerator(degree: number, random: () => number): number[] {
   if (degree === 0) return [1];
-  const radius = 1 - 10 ** (-nearness * random());
-  if (degree === 1) return [1, integrator ? -1 : (random() < 0.85 ? -1 : 1) * radius];
-  const angle = Math.PI * random() ** 2;
-  return [1, -2 * radius * Math.cos(angle), radius * radius];
+  const radius = 1 - 10 ** (-1.5 * random());
+  if (degree === 1) return [1, (random() < 0.85 ? -1 : 1) * radius];
+  return [1, -2 * radius * Math.cos(Math.PI * random() ** 2), radius * radius];
+}
+
+function denominatorOf({ radius, angle }: Section): number[] {
+  return angle === undefined ? [1, -radius] : [1, -2 * radius * Math.cos(angle), radius * radius];
+}
+
+function sectionOf(section: Section, period: number): StateEquations {
+  const { numerator, radius, angle } = section;
+  if (angle === undefined) return loopOf(numerator, denominatorOf(section), period);
+  const across = radius * Math.sin(angle);
+  const along = radius * Math.cos(angle);
+  const [through, first, last] = [...new Array(3 - numerator.length).fill(0), ...numerator];
+  const [, a1, a0] = denominatorOf(section);
+  const slope = first - through * a1;
+  // From the input to the two states: across and z − along over the denominator.
+  const c = [(last - through * a0 + slope * along) / across, slope];
+  return systemOf(
+    [
+      [along, across],
+      [-across, along],
+    ],
+    [[0], [1]],
+    [c],
+    [[through]],
+    period,
+  );
 }
 
 /** Size of a polynomial at e^{j·angle}. */
