@@ -1,6 +1,7 @@
 import library, { type Builder, type TestCase, type TestSuite } from 'junit-report-builder';
 import type { FinishedRun, RequirementRun, SpecRun } from '../verdict/run.js';
 import { caution } from './caution.js';
+import type { Fault } from './fault.js';
 import { counted, formatHeadroom, formatResult } from './format_value.js';
 import { parameterTable } from './parameter_table.js';
 import { oneLine, visible } from './plain_text.js';
@@ -17,12 +18,6 @@ import { runAgain } from './run_again.js';
 
 /** Node loads the library as CommonJS, whose whole export is the builder; its types describe it as an ES module. */
 const junit = library as unknown as Builder;
-
-/** Why no verdict could be reached for a spec: each message one line for people. */
-export interface Fault {
-  specFile: string;
-  messages: readonly string[];
-}
 
 /**
  * A run as JUnit XML: a suite for each spec, a case for each requirement. Broken is a `failure`, unjudged an `error`;

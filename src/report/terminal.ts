@@ -1,5 +1,6 @@
 import type { FinishedRun, JudgedPlant, RequirementRun, SpecRun } from '../verdict/run.js';
 import { caution } from './caution.js';
+import type { Fault } from './fault.js';
 import { counted, formatNumber, formatResult } from './format_value.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
@@ -23,16 +24,21 @@ const longest = 400;
 
 /**
  * The run as a table for a terminal: for each spec its verdicts, what blocks the merge first with the plant it breaks
- * on, then what may be claimed; the verdict on the whole and the caution at the end, where the eye is.
+ * on, then what may be claimed; the verdict on the whole and the caution at the end, where the eye is. Specs
+ * that could not be run (`faults`) count against the merge; their messages are printed by who ran them.
  */
-export function terminalReport(run: FinishedRun, { colour, width }: TerminalLook): string {
+export function terminalReport(
+  run: FinishedRun,
+  { colour, width }: TerminalLook,
+  faults: readonly Fault[] = [],
+): string {
   const columns = Math.min(mostWidth, Math.max(leastWidth, Math.floor(width)));
   const paint = painter(colour);
-  const passes = mayMerge(run);
+  const passes = mayMerge(run, faults.length);
   const sign = verdictSigns[passes ? 'met' : 'broken'];
   return [
     ...run.specs.flatMap((spec) => [...specLines(spec, columns, paint), '']),
-    paint(passes ? 'met' : 'broken', `${sign} ${runInWords(run)}`),
+    paint(passes ? 'met' : 'broken', `${sign} ${runInWords(run, faults.length)}`),
     ...wrapText(caution, columns).map((line) => paint('quiet', line)),
     '',
   ].join('\n');

@@ -18,19 +18,19 @@ export function countVerdicts(run: FinishedRun): Record<Verdict['kind'], number>
   return counts;
 }
 
-/** Whether the merge may go through: at least one requirement, and every one of them met. */
-export function mayMerge(run: FinishedRun): boolean {
+/** Whether the merge may go through: every spec could be run, and there are requirements, every one of them met. */
+export function mayMerge(run: FinishedRun, faults = 0): boolean {
   const { met, broken, unjudged } = countVerdicts(run);
-  return met > 0 && broken === 0 && unjudged === 0;
+  return faults === 0 && met > 0 && broken === 0 && unjudged === 0;
 }
 
-/** The whole run in a few words: "merge blocked: 2 broken, 1 unjudged, 4 met". */
-export function runInWords(run: FinishedRun): string {
+/** The whole run in a few words: "merge blocked: 2 broken, 1 unjudged, 4 met"; `faults` specs could not be run. */
+export function runInWords(run: FinishedRun, faults = 0): string {
   const counts = countVerdicts(run);
+  if (mayMerge(run, faults)) return `merge may go through: ${counted(counts.met, 'requirement')} met`;
   const parts = verdictKinds.filter((kind) => counts[kind] > 0).map((kind) => `${counts[kind]} ${kind}`);
-  if (parts.length === 0) return 'merge blocked: there are no requirements';
-  if (!mayMerge(run)) return `merge blocked: ${parts.join(', ')}`;
-  return `merge may go through: ${counted(counts.met, 'requirement')} met`;
+  if (faults > 0) parts.unshift(`${counted(faults, 'spec')} could not be run`);
+  return `merge blocked: ${parts.join(', ') || 'there are no requirements'}`;
 }
 
 /** Requirements in the order in which a reader wants them: broken, unjudged, met; else as in the spec. */

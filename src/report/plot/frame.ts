@@ -1,0 +1,73 @@
+import type { Part } from '../html/markup.js';
+import { html, type Markup } from '../html/markup.js';
+import { px } from './shape.js';
+
+/** The box inside a drawing in which curves are, px. */
+export interface Box {
+  left: number;
+  right: number;
+  top: number;
+  bottom: number;
+}
+
+/** Width of every drawing in its own px; it is scaled to the column it stands in. */
+export const drawingWidth = 480;
+
+/** A mark on an axis: where, in px, and what is written. */
+export interface AxisMark {
+  at: number;
+  text: string;
+}
+
+/** A drawing with a title and a description for those who do not see it. `id` is unique on the page. */
+export function drawing(
+  id: string,
+  height: number,
+  title: string,
+  description: string,
+  content: Part,
+): Markup {
+  return html`<svg class="drawing" viewBox="0 0 ${drawingWidth} ${height}" role="img" aria-labelledby="${id}-t ${id}-d" focusable="false"><title id="${id}-t">${title}</title><desc id="${id}-d">${description}</desc>${content}</svg>`;
+}
+
+/** The horizontal axis below the box: marks and the name of what it shows. */
+export function axisBelow(box: Box, marks: readonly AxisMark[], name: string): Markup {
+  return html`<path class="axis" d="M${box.left} ${box.bottom}H${box.right}${marks.map(({ at }) => `M${px(at)} ${box.bottom}v4`)}"/>${marks.map(
+    ({ at, text }) =>
+      html`<text class="mark" text-anchor="middle" x="${px(at)}" y="${box.bottom + 17}">${text}</text>`,
+  )}<text class="axis-name" text-anchor="end" x="${box.right}" y="${box.bottom + 33}">${name}</text>`;
+}
+
+/** The vertical axis at the left of the box: marks with hairlines across, the name above. */
+export function axisLeft(box: Box, marks: readonly AxisMark[], name: string): Markup {
+  return html`<path class="hair" d="${marks.map(({ at }) => `M${box.left} ${px(at)}H${box.right}`)}"/>${marks.map(
+    ({ at, text }) =>
+      html`<text class="mark" text-anchor="end" x="${box.left - 6}" y="${px(at + 4)}">${text}</text>`,
+  )}<text class="axis-name" x="${Math.min(6, box.left)}" y="${box.top - 9}">${name}</text>`;
+}
+
+/** Labels at their heights, moved down where they would stand on one another; `least` apart. */
+export function spread(heights: readonly number[], least: number): number[] {
+  const order = heights.map((height, at) => ({ height, at })).sort((a, b) => a.height - b.height);
+  const placed = [...heights];
+  let last = Number.NEGATIVE_INFINITY;
+  for (const { height, at } of order) {
+    last = Math.max(height, last + least);
+    placed[at] = last;
+  }
+  return placed;
+}
+
+/** The smallest interval that holds all finite values, opened by a twentieth at both ends; [0, 1] where there is none. */
+export function extent(values: readonly number[]): [number, number] {
+  let low = Number.POSITIVE_INFINITY;
+  let high = Number.NEGATIVE_INFINITY;
+  for (const value of values) {
+    if (!Number.isFinite(value)) continue;
+    low = Math.min(low, value);
+    high = Math.max(high, value);
+  }
+  if (low > high) return [0, 1];
+  const opening = (high - low) / 20 || Math.abs(low) / 10 || 1;
+  return [low - opening, high + opening];
+}

@@ -1,0 +1,109 @@
+import type { Unit } from '../spec/spec.js';
+
+/** What is drawn beside the numbers of a run; one entry for each spec of the run, in the same order. */
+export interface ReportPlots {
+  specs: SpecPlots[];
+}
+
+/** The plots of one spec. Each says by name which requirements it belongs to, and is shown with the first of them. */
+export interface SpecPlots {
+  traces: TracePlot[];
+  loops: OpenLoopPlot[];
+  planes: HeadroomPlane[];
+}
+
+/** A signal over time in one scenario, over all plants. All arrays have one entry for each time. */
+export interface TracePlot {
+  /** Names of the requirements that are measured on it; at least one. */
+  requirements: string[];
+  signal: string;
+  scenario: string;
+  /** In which the signal is shown; the values are SI. */
+  unit: Unit;
+  /** s, rising. */
+  times: readonly number[];
+  /** Smallest and largest value over all plants at each time, SI. */
+  low: readonly number[];
+  high: readonly number[];
+  nominal: readonly number[];
+  /** On the worst plant of the first requirement. */
+  worst: readonly number[];
+  /** What the signal is compared with, where there is such a signal, SI. */
+  target: readonly number[] | undefined;
+  fences: Fence[];
+}
+
+/** A limit in the plane of a trace: a straight line between two points, and the side on which the signal must not be. */
+export interface Fence {
+  requirement: string;
+  /** Time in s and value in SI. */
+  from: { time: number; value: number };
+  to: { time: number; value: number };
+  forbidden: 'above' | 'below' | 'left' | 'right';
+}
+
+/** The open loop L over frequency at one signal, so signed that stability is about 1 + L. */
+export interface OpenLoopPlot {
+  /** Names of the requirements that are measured on it; at least one. */
+  requirements: string[];
+  /** The signal at which the loop is opened. */
+  at: string;
+  /** rad/s, rising, above zero. */
+  frequencies: readonly number[];
+  nominal: FrequencyCurve;
+  /** On the worst plant of the first requirement. */
+  worst: FrequencyCurve;
+  margins: MarginBracket[];
+  /** The distance of L from −1, where a requirement asks for one. */
+  modulus: ModulusBracket | undefined;
+}
+
+/** Magnitude as a plain ratio and phase in rad, without jumps of 2π, one entry for each frequency. */
+export interface FrequencyCurve {
+  magnitude: readonly number[];
+  phase: readonly number[];
+}
+
+/**
+ * A margin to be bracketed. `gain`: at the frequency where the phase is an odd multiple of π, from |L| to 1. `phase`:
+ * at the frequency where |L| is 1, from the phase to the odd multiple of π nearest to it.
+ */
+export interface MarginBracket {
+  requirement: string;
+  kind: 'gain' | 'phase';
+  curve: 'nominal' | 'worst';
+  /** rad/s */
+  frequency: number;
+  /** |L| there (`gain`) or the phase there in rad (`phase`), which is where the bracket begins. */
+  start: number;
+  /** What is written at it: the margin in the requirement's unit, and its headroom. */
+  text: string;
+}
+
+/** The limit of a modulus margin (least distance of L from −1, a plain number), and where L comes nearest. */
+export interface ModulusBracket {
+  requirement: string;
+  limit: number;
+  curve: 'nominal' | 'worst';
+  nearest: { real: number; imaginary: number };
+  text: string;
+}
+
+/** A requirement's headroom over the plane of two parameters, all others at their nominal values. */
+export interface HeadroomPlane {
+  requirement: string;
+  x: PlaneAxis;
+  y: PlaneAxis;
+  /** `headroom[row][column]` belongs to `y.values[row]` and `x.values[column]`; a share; NaN where there is no number. */
+  headroom: readonly (readonly number[])[];
+}
+
+/** One parameter of a plane. */
+export interface PlaneAxis {
+  parameter: string;
+  unit: Unit;
+  /** SI, rising, evenly spaced. */
+  values: readonly number[];
+  nominal: number;
+  worst: number;
+}
