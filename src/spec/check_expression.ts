@@ -50,7 +50,7 @@ function literal(value: number, place: Place): Checked {
 /** In a controller a literal stays in its own unit until something asks for another; plain ratios are ratios. */
 function quantity(syntax: Syntax & { kind: 'quantity' }, place: Place, context: CheckContext): Checked {
   const { unit, value } = syntax;
-  const own = !context.room.si && !isPlain(unit.dimension) && !unit.decibel;
+  const own = !context.room.si && !isPlain(unit.dimension) && unit.law === undefined;
   return {
     expression: { kind: 'number', value: own ? Number(syntax.digits) : value, place },
     dimension: unit.dimension,

@@ -1,6 +1,6 @@
 import { aKind } from './names.js';
 import { suggestion } from './nearest.js';
-import { readQuantity } from './read_quantity.js';
+import { readPoint } from './read_quantity.js';
 import type { Reading } from './reading.js';
 import type { Requirement } from './spec.js';
 import { entriesOf, type MapEntry } from './tree.js';
@@ -20,10 +20,10 @@ export function readAround(
     );
     return [];
   }
-  return entriesOf(entry.value).flatMap((one) => readPoint(one, reading) ?? []);
+  return entriesOf(entry.value).flatMap((one) => readSignalValue(one, reading) ?? []);
 }
 
-function readPoint(
+function readSignalValue(
   { key, keyPlace, value }: MapEntry,
   reading: Reading,
 ): Requirement['around'][number] | undefined {
@@ -40,6 +40,6 @@ function readPoint(
     reading.problems.add(keyPlace, `${fault}${suggestion(key, known)}`);
     return undefined;
   }
-  const quantity = readQuantity(value, signal.unit?.dimension, `\`${key}\``, reading);
+  const quantity = readPoint(value, signal.unit?.dimension, `\`${key}\``, reading);
   return quantity && { name: key, value: quantity.value, place: keyPlace };
 }

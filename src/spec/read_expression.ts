@@ -19,6 +19,8 @@ export interface Slot {
   scale: number;
   /** For errors: "`gain`". */
   what: string;
+  /** A size and not a point on its scale: a temperature in degC is refused. */
+  size?: boolean;
 }
 
 /** A room and whether conversions may be inserted in it. */
@@ -31,6 +33,8 @@ export interface Surroundings {
 export interface Free extends Checked {
   /** The expression is a coefficient without a unit and nothing else: it takes the slot's. */
   adapts: boolean;
+  /** It is a temperature in degC and nothing else. */
+  celsius: boolean;
   text: TextTree;
   context: CheckContext;
 }
@@ -68,7 +72,13 @@ export function readFree(
     problems: reading.problems,
     placeAt: tree.placeAt,
   };
-  return { ...check(syntax, context), adapts: isAdapting(syntax, reading), text: tree, context };
+  return {
+    ...check(syntax, context),
+    adapts: isAdapting(syntax, reading),
+    celsius: isCelsius(syntax),
+    text: tree,
+    context,
+  };
 }
 
 /** Brings a checked expression to its slot, or reports both dimensions. */
@@ -76,6 +86,12 @@ export function fit(free: Free, slot: Slot): Expression {
   const { dimension, expression, context } = free;
   if (dimension === undefined || slot.dimension === undefined) return missing(expression.place);
   if (free.adapts) return expression;
+  if (free.celsius && slot.size) {
+    context.problems.add(
+      startOf(free.text),
+      `${slot.what} is a difference of temperatures, which is in K; degC is a temperature`,
+    );
+  }
   if (!free.zero && !sameDimension(dimension, slot.dimension)) {
     context.problems.add(startOf(free.text), mismatch(free, dimension, slot, slot.dimension));
     return missing(expression.place);
@@ -130,6 +146,10 @@ function usesBareCoefficient(expression: Expression): boolean {
     default:
       return false;
   }
+}
+
+function isCelsius(syntax: Syntax): boolean {
+  return syntax.kind === 'quantity' && syntax.unit.law === 'celsius';
 }
 
 function isAdapting(syntax: Syntax, reading: Reading): boolean {

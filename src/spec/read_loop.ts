@@ -64,6 +64,7 @@ function readSensor(entry: MapEntry, reading: Reading): SensorDefinition {
   const part = (key: string) => childOf(entry.value, key);
   const unit = declaredUnit(entry, reading);
   const own = (key: string): Slot => ({ dimension: unit?.dimension, scale: 1, what: `\`${key}\`` });
+  const size = (key: string): Slot => ({ ...own(key), size: true });
   const measured = readFree(part('of'), plant, reading);
   const hasGain = part('gain') !== undefined;
   const gainDimension =
@@ -79,11 +80,11 @@ function readSensor(entry: MapEntry, reading: Reading): SensorDefinition {
       setting,
       reading,
     ),
-    offset: readExpression(part('offset'), own('offset'), setting, reading),
+    offset: readExpression(part('offset'), size('offset'), setting, reading),
     filter: readTimeConstant(part('filter'), '`filter`', setting, reading),
-    noise: readExpression(part('noise'), own('noise'), setting, reading),
+    noise: readExpression(part('noise'), size('noise'), setting, reading),
     range: readRange(part('range'), own('range'), setting, reading),
-    quantum: readExpression(part('quantum'), own('quantum'), setting, reading),
+    quantum: readExpression(part('quantum'), size('quantum'), setting, reading),
   };
 }
 
@@ -158,7 +159,12 @@ function readActuator(entry: MapEntry, reading: Reading): ActuatorDefinition {
     of: of?.text ?? '',
     ofPlace: of?.place ?? entry.keyPlace,
     unit: unit!,
-    resolution: readExpression(childOf(entry.value, 'resolution'), slot('`resolution`'), setting, reading),
+    resolution: readExpression(
+      childOf(entry.value, 'resolution'),
+      { ...slot('`resolution`'), size: true },
+      setting,
+      reading,
+    ),
     range: readRange(childOf(entry.value, 'range'), slot('`range`'), setting, reading),
   };
 }

@@ -1,5 +1,5 @@
 import { declare, type NameEntry, type NameKind } from './names.js';
-import { readQuantity, readUnit } from './read_quantity.js';
+import { readPoint, readUnit } from './read_quantity.js';
 import type { Reading } from './reading.js';
 import type { CoefficientDefinition, Firmware, InputDefinition, Unit } from './spec.js';
 import { childOf, entriesOf, entryOf, itemsOf, type MapEntry, type Tree, textOf } from './tree.js';
@@ -39,7 +39,7 @@ export function declaredUnit({ key, keyPlace }: MapEntry, reading: Reading): Uni
 /** `constants:` fixed quantities by name; they stand in the namespace only. */
 export function readConstants(tree: Tree | undefined, reading: Reading): void {
   for (const entry of entriesOf(tree)) {
-    const quantity = readQuantity(entry.value, undefined, `\`${entry.key}\``, reading);
+    const quantity = readPoint(entry.value, undefined, `\`${entry.key}\``, reading);
     declareEntry(entry, 'constant', quantity?.unit, reading, { value: quantity?.value });
   }
 }
@@ -49,7 +49,7 @@ export function readInputs(tree: Tree | undefined, reading: Reading): InputDefin
   return entriesOf(tree).map((entry) => {
     const unit = readUnit(childOf(entry.value, 'unit'), reading);
     declareEntry(entry, 'input', unit, reading);
-    const rest = readQuantity(childOf(entry.value, 'rest'), unit?.dimension, '`rest`', reading);
+    const rest = readPoint(childOf(entry.value, 'rest'), unit?.dimension, '`rest`', reading);
     return { name: entry.key, place: entry.keyPlace, unit: unit!, rest: rest?.value ?? 0 };
   });
 }

@@ -4,7 +4,7 @@ import { derivedRoom, type NameEntry } from './names.js';
 import { readDistribution, valuesGiven } from './read_distribution.js';
 import { readExpression } from './read_expression.js';
 import { declareEntry } from './read_named.js';
-import { type ReadQuantity, readQuantity, readUnit } from './read_quantity.js';
+import { type ReadQuantity, readPoint, readQuantity, readUnit } from './read_quantity.js';
 import { isWhole, type Reading } from './reading.js';
 import type { Expression, ParameterDefinition, Unit } from './spec.js';
 import { childOf, entriesOf, type MapEntry, type Tree } from './tree.js';
@@ -85,7 +85,7 @@ function readParameter(
     );
     return undefined;
   }
-  const nominal = readQuantity(nominalTree, undefined, '`nominal`', reading);
+  const nominal = readPoint(nominalTree, undefined, '`nominal`', reading);
   if (value.kind === 'map' && !hasBounds(name, place, value, reading)) return undefined;
   const bounds = nominal && readBounds(name, value, nominal, reading);
   if (nominal === undefined || bounds === undefined) return undefined;
@@ -119,8 +119,8 @@ function readBounds(
   }
   const { dimension } = nominal.unit;
   const spread = readQuantity(childOf(value, 'spread'), undefined, '`spread`', reading);
-  const from = readQuantity(childOf(value, 'from'), dimension, '`from`', reading);
-  const to = readQuantity(childOf(value, 'to'), dimension, '`to`', reading);
+  const from = readPoint(childOf(value, 'from'), dimension, '`from`', reading);
+  const to = readPoint(childOf(value, 'to'), dimension, '`to`', reading);
   if (spread !== undefined) {
     const half = halfWidth(nominal.value, spread, nominal.unit, reading);
     return half === undefined ? undefined : { low: nominal.value - half, high: nominal.value + half };

@@ -6,12 +6,13 @@ import type { Dimension, Place, Quantity, Unit } from './spec.js';
 import type { Syntax } from './syntax.js';
 import type { TextTree, Tree } from './tree.js';
 import { prefixHint } from './unit_hints.js';
-import { parseUnit, plainUnit } from './units.js';
+import { kelvin, parseUnit, plainUnit } from './units.js';
 
-/** A quantity as written: `relative` where it is a percentage, `decibel` where it was a level. */
+/** A quantity as written: `relative` where it is a percentage, `decibel` where it was a level, `celsius` where in degC. */
 export interface ReadQuantity extends Quantity {
   relative: boolean;
   decibel: boolean;
+  celsius: boolean;
 }
 
 /**
@@ -35,6 +36,35 @@ export function readQuantity(
   }
   const quantity = fixed(syntax, tree, reading);
   if (quantity === undefined) return undefined;
+  if (quantity.celsius) {
+    reading.problems.add(
+      quantity.place,
+      `${what} is a difference of temperatures, which is in K; degC is a temperature`,
+    );
+    return undefined;
+  }
+  return fitted(quantity, expected, what, reading);
+}
+
+/** Like readQuantity, for a value that is a point on its scale and not a size: a temperature may be in degC. */
+export function readPoint(
+  tree: Tree | undefined,
+  expected: Dimension | undefined,
+  what: string,
+  reading: Reading,
+): ReadQuantity | undefined {
+  const syntax = tree?.kind === 'text' ? parseExpression(tree.source) : undefined;
+  const celsius = syntax?.kind === 'quantity' && syntax.unit.law === 'celsius';
+  if (tree?.kind !== 'text' || !celsius) return readQuantity(tree, expected, what, reading);
+  const place = tree.placeAt(syntax.at);
+  const quantity = {
+    value: syntax.value,
+    unit: kelvin,
+    relative: false,
+    decibel: false,
+    celsius: false,
+    place,
+  };
   return fitted(quantity, expected, what, reading);
 }
 
@@ -69,21 +99,24 @@ export function readUnit(tree: Tree | undefined, reading: Reading): Unit | undef
     reading.problems.add(tree.placeAt(unit.at), unit.message);
     return undefined;
   }
-  if (!unit.decibel) return unit.unit;
+  if (unit.law === undefined) return unit.unit;
   reading.problems.add(
     tree.place,
-    'a signal cannot be in dB: only a number can, as in 6 dB; use a plain ratio',
+    unit.law === 'decibel'
+      ? 'a signal cannot be in dB: only a number can, as in 6 dB; use a plain ratio'
+      : 'a signal cannot be in degC: only a number can, as in 20 degC; use K',
   );
   return undefined;
 }
 
 function fixed(syntax: Syntax, tree: TextTree, reading: Reading): ReadQuantity | undefined {
   const place = tree.placeAt(syntax.at);
-  const whole = { relative: false, decibel: false, place };
+  const whole = { relative: false, decibel: false, celsius: false, place };
   if (syntax.kind === 'number') return { ...whole, value: syntax.value, unit: plainUnit };
   if (syntax.kind === 'quantity') {
-    const { unit, decibel } = syntax.unit;
-    return { ...whole, value: syntax.value, unit, decibel, relative: unit.text === '%' };
+    const { unit, law } = syntax.unit;
+    const [decibel, celsius] = [law === 'decibel', law === 'celsius'];
+    return { ...whole, value: syntax.value, unit, decibel, celsius, relative: unit.text === '%' };
   }
   if (syntax.kind === 'negate') {
     const of = fixed(syntax.of, tree, reading);
@@ -100,7 +133,7 @@ function constant(syntax: Syntax, place: Place, reading: Reading): ReadQuantity 
     return undefined;
   }
   if (entry.value === undefined || entry.unit === undefined) return undefined;
-  return { value: entry.value, unit: entry.unit, relative: false, decibel: false, place };
+  return { value: entry.value, unit: entry.unit, relative: false, decibel: false, celsius: false, place };
 }
 
 function fitted(

@@ -85,7 +85,12 @@ function readEvent(
   const [kind] = kinds;
   const time = (key: string): Slot => ({ dimension: timeDimension, scale: 1, what: `\`${key}\`` });
   const amountTree = childOf(tree, kind)!;
-  const amount = readExpression(amountTree, { dimension, scale: 1, what: `\`${kind}\`` }, around, reading)!;
+  const amount = readExpression(
+    amountTree,
+    { dimension, scale: 1, what: `\`${kind}\``, size: true },
+    around,
+    reading,
+  )!;
   const at = readExpression(childOf(tree, 'at'), time('at'), around, reading) ?? missing(tree.place);
   const forEntry = entryOf(tree, 'for');
   const length = readExpression(forEntry?.value, time('for'), around, reading);

@@ -11,7 +11,7 @@ import {
 } from './read_expression.js';
 import { readCorner, readTimeConstant } from './read_frequency.js';
 import { declaredUnit } from './read_named.js';
-import { readQuantity } from './read_quantity.js';
+import { readPoint } from './read_quantity.js';
 import { missing, type Reading } from './reading.js';
 import type { Dimension, Expression, Setting, SignalDefinition, Unit } from './spec.js';
 import { childOf, entryOf, type MapEntry, type Tree, textOf } from './tree.js';
@@ -52,7 +52,7 @@ export function readSignal(
   };
   checkCompanions(place);
   const own: Slot = { dimension: unit?.dimension, scale, what: '`range`' };
-  const start = readQuantity(childOf(entry.value, 'start'), unit?.dimension, '`start`', reading);
+  const start = readPoint(childOf(entry.value, 'start'), unit?.dimension, '`start`', reading);
   return {
     name: entry.key,
     place: entry.keyPlace,

@@ -12,7 +12,7 @@ const likely = ['s', 'm', 'rad', 'Hz', 'N', 'V', 'A', 'W', 'Pa', 'F', 'H', 'ohm'
 export function prefixHint(written: string, expected: Dimension): string {
   const found = candidates(written).find((text) => {
     const unit = parseUnit(text);
-    return unit.kind === 'unit' && !unit.decibel && sameDimension(unit.dimension, expected);
+    return unit.kind === 'unit' && unit.law === undefined && sameDimension(unit.dimension, expected);
   });
   return found === undefined ? '' : `; was \`${found}\` meant?`;
 }

@@ -12,11 +12,14 @@ interface Size {
   tens: number;
 }
 
-/** A unit that was understood. `decibel`: 20·log10 of an amplitude ratio, which is not a scale but a law. */
+/**
+ * A unit that was understood. Two are no scale but a law, and only a number can be in them: `decibel`, 20·log10 of an
+ * amplitude ratio, and `celsius`, a temperature counted from 273.15 K.
+ */
 export interface ParsedUnit extends Size {
   kind: 'unit';
   unit: Unit;
-  decibel: boolean;
+  law: 'decibel' | 'celsius' | undefined;
 }
 
 /** Why a text is no unit; `at` is the index of the fault in the text. */
@@ -29,6 +32,9 @@ export interface UnitFault {
 /** The unit of plain numbers. */
 export const plainUnit: Unit = { text: '', dimension: plainNumber, scale: 1 };
 
+/** The unit that a temperature in degC is converted to. */
+export const kelvin: Unit = { text: 'K', dimension: [0, 0, 0, 0, 1, 0, 0, 0], scale: 1 };
+
 const one: Size = { dimension: plainNumber, times: 1, over: 1, tens: 0 };
 const symbolTable = new Map(unitSymbols.map((symbol) => [symbol.symbol, symbol]));
 const largestExponent = 12;
@@ -39,7 +45,10 @@ const largestExponent = 12;
  */
 export function parseUnit(text: string): ParsedUnit | UnitFault {
   const trimmed = text.trim();
-  if (trimmed === 'dB') return parsed('dB', one, true);
+  if (trimmed === 'dB') return parsed('dB', one, 'decibel');
+  if (trimmed === 'degC' || trimmed === '°C') {
+    return parsed('degC', { ...one, dimension: kelvin.dimension }, 'celsius');
+  }
   const reader = { text, at: 0, depth: 0 };
   try {
     const size = product(reader);
@@ -47,7 +56,7 @@ export function parseUnit(text: string): ParsedUnit | UnitFault {
     if (reader.at < text.length) {
       throw new Fault(`unexpected \`${text[reader.at]}\` in the unit \`${trimmed}\``, reader.at);
     }
-    return parsed(trimmed, size, false);
+    return parsed(trimmed, size, undefined);
   } catch (error) {
     if (error instanceof Fault) return { kind: 'fault', message: error.message, at: error.at };
     throw error;
@@ -56,13 +65,14 @@ export function parseUnit(text: string): ParsedUnit | UnitFault {
 
 /** The SI value of a number written in a unit; `digits` is the number as written. */
 export function siValue(digits: string, unit: ParsedUnit): number {
-  if (unit.decibel) return 10 ** (Number(digits) / 20);
+  if (unit.law === 'decibel') return 10 ** (Number(digits) / 20);
+  if (unit.law === 'celsius') return Number(digits) + 273.15;
   return (timesTenTo(digits, unit.tens) * unit.times) / unit.over;
 }
 
-function parsed(text: string, size: Size, decibel: boolean): ParsedUnit {
+function parsed(text: string, size: Size, law: ParsedUnit['law']): ParsedUnit {
   const scale = (Number(`1e${size.tens}`) * size.times) / size.over;
-  return { kind: 'unit', ...size, decibel, unit: { text, dimension: size.dimension, scale } };
+  return { kind: 'unit', ...size, law, unit: { text, dimension: size.dimension, scale } };
 }
 
 class Fault extends Error {
@@ -155,6 +165,8 @@ function lookUp(text: string): Size | undefined {
 
 function unknownUnit(text: string): string {
   if (text === 'dB') return 'dB stands alone: it is a ratio by itself and takes no part in a product';
+  if (text === 'degC' || text === '°C')
+    return 'degC stands alone; in a product a difference of temperatures is in K';
   if (Object.hasOwn(prefixes, text))
     return `\`${text}\` is a prefix without its unit, as in \`${text}s\` or \`${text}V\``;
   const spelled = spelledOut(text);

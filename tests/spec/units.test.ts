@@ -101,6 +101,7 @@ test.each([
   ['J/(kg*K', '2: this parenthesis of the unit is not closed'],
   ['V)', '1: unexpected `)` in the unit `V)`'],
   ['((((((((((m))))))))))', '8: a unit nested more than 8 parentheses deep'],
+  ['J/degC', '2: degC stands alone; in a product a difference of temperatures is in K'],
   ['dB/m', '0: dB stands alone: it is a ratio by itself and takes no part in a product'],
   ['kmin', '0: unknown unit `kmin`; did you mean `min`?'],
   ['3 V', '0: `3 V` is not a unit'],
