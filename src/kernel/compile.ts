@@ -85,7 +85,8 @@ function computeText(
 ): string[] {
   const targets: { place: number; node: Node }[] = [];
   loop.held.forEach((held, i) => {
-    if (held.task === task) targets.push({ place: layout.pending + i, node: held.value });
+    if (loop.channels[held.channel].task === task)
+      targets.push({ place: layout.pending + i, node: held.value });
   });
   loop.memories.forEach((memory, i) => {
     if (memory.task === task) targets.push({ place: layout.memory + i, node: memory.next });

@@ -1,8 +1,8 @@
 import type { Schedule } from '../loop/schedule.js';
-import { queueLength } from '../loop/schedule.js';
 import type { CompiledLoop } from './compile.js';
 import type { Movement } from './movement.js';
-import type { Action, Timeline } from './timeline.js';
+import { TaskRunner } from './task_runner.js';
+import type { Timeline } from './timeline.js';
 import type { Run, RunEnd } from './trace.js';
 
 /** Arrays for traces, grown as needed and used again from run to run, so that memory stays flat. */
@@ -38,11 +38,11 @@ export interface RunRequest {
 export function runPlant(request: RunRequest): Run {
   const { compiled, timeline, movement, store } = request;
   const m = request.start.slice();
-  const tasks = new TaskRunner(request, m);
+  const tasks = new TaskRunner(compiled, request.schedule, request.noise, m);
   const stepsOf = timeline.durations.map((duration) => movement.steps(duration));
   store.reserve(
     request.signals,
-    timeline.duration.reduce((sum, index) => sum + stepsOf[index], 0),
+    timeline.duration.reduce((sum, index) => sum + stepsOf[index].length, 0),
   );
   const { times, records } = store;
   const { state } = compiled.layout;
@@ -51,13 +51,13 @@ export function runPlant(request: RunRequest): Run {
   let end: RunEnd = { kind: 'complete' };
   for (let segment = 0; segment < timeline.action.length; segment++) {
     tasks.perform(timeline.actions[timeline.action[segment]]);
-    const steps = stepsOf[timeline.duration[segment]];
-    const h = timeline.durations[timeline.duration[segment]] / steps;
-    for (let step = 0; step < steps; step++) {
-      times[piece] = timeline.times[segment] + step * h;
+    let time = timeline.times[segment];
+    for (const h of stepsOf[timeline.duration[segment]]) {
+      times[piece] = time;
       compiled.record(m, records, 4 * piece);
       if (states > 0) movement.move(m, h);
       compiled.record(m, records, 4 * piece + 2);
+      time += h;
       piece++;
     }
     const bad = firstBad(m, state, states);
@@ -75,70 +75,4 @@ export function runPlant(request: RunRequest): Run {
 function firstBad(m: Float64Array, from: number, count: number): number {
   for (let i = 0; i < count; i++) if (!(Math.abs(m[from + i]) < 1e100)) return i;
   return -1;
-}
-
-/** Runs the tasks of one plant: samples, computes, and delivers results after their delays. */
-class TaskRunner {
-  private readonly queues: Float64Array[];
-  private readonly computed: Int32Array;
-  private readonly delivered: Int32Array;
-  private readonly heldOf: number[][];
-  private readonly noisesOf: number[][];
-
-  constructor(
-    private readonly request: RunRequest,
-    private readonly m: Float64Array,
-  ) {
-    const { loop } = request.compiled;
-    const tasks = loop.tasks.map((_, task) => task);
-    this.computed = new Int32Array(tasks.length);
-    this.delivered = new Int32Array(tasks.length);
-    this.heldOf = tasks.map((task) => loop.held.flatMap((held, i) => (held.task === task ? [i] : [])));
-    this.queues = tasks.map(
-      (task) => new Float64Array(this.heldOf[task].length * queueLength(request.schedule, task)),
-    );
-    this.noisesOf = tasks.map((task) => loop.noises.flatMap((owner, i) => (owner === task ? [i] : [])));
-  }
-
-  perform({ inputs, deliver, compute }: Action): void {
-    const { compiled } = this.request;
-    for (const { input, value } of inputs) this.m[compiled.layout.input + input] = value;
-    for (const task of compute) this.sample(task);
-    for (const task of deliver) this.deliver(task);
-    for (const task of compute) {
-      compiled.compute[task](this.m);
-      this.send(task);
-    }
-  }
-
-  private sample(task: number): void {
-    const { compiled, noise } = this.request;
-    for (const source of this.noisesOf[task]) {
-      this.m[compiled.layout.noise + source] = noise[source][this.computed[task]];
-    }
-    compiled.sample[task](this.m);
-  }
-
-  /** Puts the results just computed on their way; without delay they take effect at once. */
-  private send(task: number): void {
-    const { pending, held } = this.request.compiled.layout;
-    const own = this.heldOf[task];
-    if (this.request.schedule.delay[task] === 0) {
-      for (const i of own) this.m[held + i] = this.m[pending + i];
-    } else {
-      const queue = this.queues[task];
-      let at = (this.computed[task] * own.length) % queue.length || 0;
-      for (const i of own) queue[at++] = this.m[pending + i];
-    }
-    this.computed[task]++;
-  }
-
-  private deliver(task: number): void {
-    const { held } = this.request.compiled.layout;
-    const own = this.heldOf[task];
-    const queue = this.queues[task];
-    let at = (this.delivered[task] * own.length) % queue.length || 0;
-    for (const i of own) this.m[held + i] = queue[at++];
-    this.delivered[task]++;
-  }
 }

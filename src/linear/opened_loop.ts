@@ -28,7 +28,7 @@ class Cycle {
   private readonly width: number;
   private readonly known: number;
   private readonly rows: Record<'state' | 'held' | 'memory' | 'reading' | 'injected', Row[]>;
-  /** Results under way, oldest first, by task; each a row for every held value of the task. */
+  /** Results under way, oldest first, by channel; each a row for every held value of the channel. */
   private readonly queues: Row[][][];
   private readonly returned: Row[] = [];
   private readonly slopeCache = new Map<string, Matrix>();
@@ -41,17 +41,19 @@ class Cycle {
   ) {
     const { loop } = linearisation;
     const opening = loop.opening!;
-    const settled = Math.max(...schedule.phase.map((phase, task) => phase + schedule.delay[task]));
+    const settled = Math.max(0, ...schedule.channels.map(({ task, delay }) => schedule.phase[task] + delay));
     this.start = Math.ceil(settled / schedule.cycle) * schedule.cycle;
     const injections = schedule.cycle / schedule.period[opening.task];
-    const underWay = schedule.period.map((_, task) => resultsUnderWay(schedule, task, this.start));
-    const heldBy = loop.tasks.map((_, task) => loop.held.filter((held) => held.task === task).length);
+    const underWay = schedule.channels.map((_, channel) => resultsUnderWay(schedule, channel, this.start));
+    const heldBy = loop.channels.map(
+      (_, channel) => loop.held.filter((held) => held.channel === channel).length,
+    );
     this.known =
       loop.states.length +
       loop.held.length +
       loop.memories.length +
       1 +
-      underWay.reduce((sum, count, task) => sum + count * heldBy[task], 0);
+      underWay.reduce((sum, count, channel) => sum + count * heldBy[channel], 0);
     this.width = this.known + injections;
     let next = 0;
     const fresh = (count: number): Row[] => Array.from({ length: count }, () => this.unit(next++));
@@ -62,7 +64,9 @@ class Cycle {
       reading: loop.readings.map(() => new Float64Array(this.width)),
       injected: fresh(1),
     };
-    this.queues = underWay.map((count, task) => Array.from({ length: count }, () => fresh(heldBy[task])));
+    this.queues = underWay.map((count, channel) =>
+      Array.from({ length: count }, () => fresh(heldBy[channel])),
+    );
   }
 
   run(): StateEquations {
@@ -72,7 +76,7 @@ class Cycle {
       this.move(instant.tick - tick);
       tick = instant.tick;
       this.sample(instant.compute);
-      for (const task of instant.deliver) this.deliver(task, this.queues[task].shift()!);
+      for (const channel of instant.deliver) this.deliver(channel, this.queues[channel].shift()!);
       for (const task of instant.compute) this.compute(task);
     }
     this.move(start + schedule.cycle - tick);
@@ -143,23 +147,28 @@ class Cycle {
     for (const [i, row] of sampled) this.rows.reading[i] = row;
   }
 
-  private deliver(task: number, results: Row[]): void {
-    const { loop } = this.linearisation;
-    loop.held.forEach((held, i) => {
-      if (held.task === task) this.rows.held[i] = results.shift()!;
+  private deliver(channel: number, results: Row[]): void {
+    this.linearisation.loop.held.forEach((held, i) => {
+      if (held.channel === channel) this.rows.held[i] = results.shift()!;
     });
-    if (loop.opening!.task === task && loop.opening!.when === 'deliver') this.inject();
   }
 
   private compute(task: number): void {
     const { loop } = this.linearisation;
-    if (loop.opening!.task === task && loop.opening!.when === 'compute') this.inject();
+    if (loop.opening!.task === task) this.inject();
     const from = ['reading', 'memory', 'held', 'injected'] as const;
     const memories = this.evaluate('memory', (i) => loop.memories[i].task === task, [...from]);
-    const results = this.evaluate('held', (i) => loop.held[i].task === task, [...from]);
+    const channels = this.schedule.channels.flatMap((channel, index) =>
+      channel.task === task ? [index] : [],
+    );
+    const results = channels.map((channel) => [
+      ...this.evaluate('held', (i) => loop.held[i].channel === channel, [...from]).values(),
+    ]);
+    channels.forEach((channel, i) => {
+      if (this.schedule.channels[channel].delay > 0) this.queues[channel].push(results[i]);
+      else this.deliver(channel, results[i]);
+    });
     for (const [i, row] of memories) this.rows.memory[i] = row;
-    if (this.schedule.delay[task] > 0) this.queues[task].push([...results.values()]);
-    else this.deliver(task, [...results.values()]);
   }
 
   /** Keeps what the signal would have been, and lets its consumers see the next injected value. */
@@ -204,11 +213,12 @@ function accumulate(target: Row, matrix: Matrix, index: number, rows: readonly R
   }
 }
 
-/** Results of a task that are computed before a tick and delivered at or after it. */
-function resultsUnderWay({ period, phase, delay }: Schedule, task: number, tick: number): number {
-  if (delay[task] === 0) return 0;
+/** Results of a channel that are computed before a tick and delivered at or after it. */
+function resultsUnderWay({ period, phase, channels }: Schedule, channel: number, tick: number): number {
+  const { task, delay } = channels[channel];
+  if (delay === 0) return 0;
   const computed = Math.ceil((tick - phase[task]) / period[task]);
-  const delivered = Math.ceil((tick - phase[task] - delay[task]) / period[task]);
+  const delivered = Math.ceil((tick - phase[task] - delay) / period[task]);
   return computed - delivered;
 }
 

@@ -47,8 +47,10 @@ export class ControllerRoom {
   /** Adds an actuator and tells the plant what it sees of it. */
   addActuator(actuator: ActuatorDefinition): void {
     const { task } = this.owner(actuator.of);
-    const held = this.parts.addHeld(actuator.name, task, () => this.actuatorValue(actuator));
-    this.plant.connect(actuator.name, this.cut.through(actuator.name, task, 'deliver', held));
+    const held = this.parts.addHeld(actuator.name, task, this.delayOf(task), () =>
+      this.cut.through(actuator.name, task, this.actuatorValue(actuator)),
+    );
+    this.plant.connect(actuator.name, held);
   }
 
   /** What names mean in expressions of a task. */
@@ -64,6 +66,11 @@ export class ControllerRoom {
   private owner(name: string): { definition: SignalDefinition; task: number } {
     const task = this.controllers.findIndex(({ signals }) => signals.some((signal) => signal.name === name));
     return { task, definition: this.controllers[task].signals.find((signal) => signal.name === name)! };
+  }
+
+  private delayOf(task: number): Node {
+    const { delay } = this.controllers[task];
+    return delay ? this.plant.lower(delay) : this.parts.graph.number(0);
   }
 
   private arithmetic(task: number): TargetArithmetic {
@@ -113,13 +120,14 @@ export class ControllerRoom {
 
   /** A controller's signal as its consumers see it. */
   private seen(name: string): Node {
-    return this.cut.through(name, this.owner(name).task, 'compute', this.signal(name));
+    return this.cut.through(name, this.owner(name).task, this.signal(name));
   }
 
   private fromOther(name: string): Node {
     const found = this.delivered.get(name);
     if (found) return found;
-    const held = this.parts.addHeld(name, this.owner(name).task, () => this.seen(name));
+    const { task } = this.owner(name);
+    const held = this.parts.addHeld(name, task, this.delayOf(task), () => this.seen(name));
     this.delivered.set(name, held);
     return held;
   }
@@ -140,7 +148,7 @@ export class ControllerRoom {
     if (found) return found;
     const sampled = this.arithmetic(task).take(this.inUnit(this.sampled(sensor, task), sensor.unit.scale));
     const reading = this.parts.addReading(sensor.name, task, sampled);
-    const seen = this.cut.through(sensor.name, task, 'compute', reading);
+    const seen = this.cut.through(sensor.name, task, reading);
     this.seenReadings.set(key, seen);
     return seen;
   }

@@ -15,10 +15,9 @@ export class Cut {
 
   /**
    * What the consumers of a signal see: the signal, or the injected value where the loop is opened at it.
-   * @param when whether the value changes when the task computes, or when its results are delivered.
    * @throws {LoopError} when a second task has the signal too.
    */
-  through(name: string, task: number, when: Opening['when'], signal: Node): Node {
+  through(name: string, task: number, signal: Node): Node {
     if (this.at !== name) return signal;
     if (this.found && this.found.task !== task) {
       const [one, other] = [this.found.task, task].map((index) => this.controllers[index]);
@@ -27,7 +26,7 @@ export class Cut {
         other.place,
       );
     }
-    this.found = { at: name, task, when, returned: signal };
+    this.found = { at: name, task, returned: signal };
     return this.graph.leaf('injected', 0);
   }
 

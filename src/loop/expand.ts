@@ -33,12 +33,12 @@ export function expandLoop(spec: Spec, coefficients: CoefficientValues, openAt?:
     memories: parts.memories,
     readings: parts.readings,
     held: parts.held,
-    tasks: controllers.map(({ name, place, every, phase, delay }) => ({
+    channels: parts.channels,
+    tasks: controllers.map(({ name, place, every, phase }) => ({
       name,
       place,
       period: plant.lower(every),
       phase: phase ? plant.lower(phase) : parts.graph.number(0),
-      delay: delay ? plant.lower(delay) : parts.graph.number(0),
     })),
     noises: parts.noises,
     signals,

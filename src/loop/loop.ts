@@ -26,9 +26,16 @@ export interface Reading {
 /** A value that stays as it is between deliveries: an actuator's output, or a signal on its way to another controller. */
 export interface Held {
   name: string;
-  task: number;
-  /** Computed at the sampling instant, delivered after the task's delay. */
+  /** By which channel it is delivered; an index into `channels`. */
+  channel: number;
+  /** Computed at the sampling instant of the channel's task. */
   value: Node;
+}
+
+/** A way from a task to whoever takes its results: they arrive `delay` s after the sampling instant. */
+export interface Channel {
+  task: number;
+  delay: Node;
 }
 
 /** A controller as a periodic task. Times are in s and may depend on parameters. */
@@ -37,7 +44,6 @@ export interface Task {
   place: Place;
   period: Node;
   phase: Node;
-  delay: Node;
 }
 
 /** Ends of a signal's own range and the size of one step of it (0 where it has none), SI. */
@@ -59,9 +65,8 @@ export type TracedSignal = {
 /** Where the loop is cut: every consumer of the signal sees `injected` 0 instead. */
 export interface Opening {
   at: string;
+  /** The task at whose sampling instants the injected value changes. */
   task: number;
-  /** The injected value changes when the task computes, or when its outputs are delivered. */
-  when: 'compute' | 'deliver';
   /** What the signal would have been. */
   returned: Node;
 }
@@ -80,6 +85,7 @@ export interface Loop {
   memories: Memory[];
   readings: Reading[];
   held: Held[];
+  channels: Channel[];
   /** In the order in which tasks compute that fall on the same instant. */
   tasks: Task[];
   /** For each independent noise source the task at whose sampling instants it is drawn. */

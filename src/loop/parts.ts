@@ -1,7 +1,14 @@
 import type { Place } from '../spec/spec.js';
 import { TargetArithmetic } from './arithmetic.js';
 import { Graph, type Node } from './graph.js';
-import { type ContinuousState, type Held, LoopError, type Memory, type Reading } from './loop.js';
+import {
+  type Channel,
+  type ContinuousState,
+  type Held,
+  LoopError,
+  type Memory,
+  type Reading,
+} from './loop.js';
 
 /** The numbers that the build holds, by the spec's name for them; one for a scalar. */
 export type CoefficientValues = ReadonlyMap<string, readonly number[]>;
@@ -18,6 +25,7 @@ export class Parts {
   readonly memories: Memory[] = [];
   readonly readings: Reading[] = [];
   readonly held: Held[] = [];
+  readonly channels: Channel[] = [];
   readonly noises: number[] = [];
   private readonly deferred: (() => void)[] = [];
 
@@ -39,12 +47,18 @@ export class Parts {
     return this.graph.leaf('memory', this.memories.push(memory) - 1);
   }
 
-  addHeld(name: string, task: number, value: () => Node): Node {
-    const held = { name, task, value: this.graph.number(0) };
+  /** @param delay from the task's sampling instant to when the value takes effect, in s. */
+  addHeld(name: string, task: number, delay: Node, value: () => Node): Node {
+    const held = { name, channel: this.channelOf(task, delay), value: this.graph.number(0) };
     this.deferred.push(() => {
       held.value = value();
     });
     return this.graph.leaf('held', this.held.push(held) - 1);
+  }
+
+  private channelOf(task: number, delay: Node): number {
+    const found = this.channels.findIndex((channel) => channel.task === task && channel.delay === delay);
+    return found < 0 ? this.channels.push({ task, delay }) - 1 : found;
   }
 
   addReading(sensor: string, task: number, sampled: Node): Node {

@@ -1,101 +1,92 @@
 import { Evaluation } from './evaluate.js';
-import { asFraction, leastCommonMultiple } from './fraction.js';
+import { asFraction, type Fraction, leastCommonMultiple } from './fraction.js';
+import type { Node } from './graph.js';
 import { type Loop, LoopError } from './loop.js';
 
 /** What happens at one instant. Readings of all computing tasks are sampled first, then the rest in this order. */
 export interface Instant {
   /** In ticks from the start. */
   tick: number;
-  /** Tasks whose earlier results take effect now. */
+  /** Channels by which earlier results arrive now. */
   deliver: number[];
-  /** Tasks which compute now; one without delay takes effect at once. */
+  /** Tasks which compute now; what goes by a channel without delay takes effect at once. */
   compute: number[];
 }
 
 /** The periodic pattern of all tasks, in exact ticks. */
 export interface Schedule {
-  /** Length of a tick in s. */
-  tick: number;
   ticksPerSecond: number;
   period: number[];
   phase: number[];
-  delay: number[];
+  /** For each channel its task and its delay. */
+  channels: { task: number; delay: number }[];
   /** After so many ticks the pattern repeats. */
   cycle: number;
 }
 
-/** More ticks than this in a cycle, and the tasks' periods have no common pattern worth the name. */
+/** With more periods than this in a cycle, the tasks have no common pattern worth the name. */
 const longestCycle = 1e7;
 
 /**
  * The schedule of a loop's tasks for one plant.
- * @throws {LoopError} for a period that is not above zero, or periods without a common cycle.
+ * @throws {LoopError} for a period that is not above zero, a negative delay, or periods without a common cycle.
  */
 export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule {
   const evaluation = new Evaluation({ parameter: parameters });
-  const times = loop.tasks.map((task) => {
-    const [period, phase, delay] = [task.period, task.phase, task.delay].map((node) => evaluation.of(node));
-    if (!(period > 0) || !Number.isFinite(period)) {
-      throw new LoopError(
-        `controller '${task.name}' has a sampling period of ${period} s, expected one above 0`,
-        task.place,
-      );
-    }
-    for (const [word, time] of [
-      ['phase', phase],
-      ['delay', delay],
-    ] as const) {
-      if (!(time >= 0) || !Number.isFinite(time)) {
-        throw new LoopError(
-          `controller '${task.name}' has a ${word} of ${time} s, expected 0 or more`,
-          task.place,
-        );
-      }
-    }
-    return [period, phase, delay].map(asFraction);
-  });
-  const perSecond = leastCommonMultiple(times.flat().map(({ denominator }) => denominator));
-  const ticks = times.map((of) =>
-    of.map(({ numerator, denominator }) => Number((numerator * perSecond) / denominator)),
+  const timeOf = (task: number, word: string, node: Node): Fraction => {
+    const time = evaluation.of(node);
+    const least = word === 'sampling period' ? Number.MIN_VALUE : 0;
+    if (time >= least && Number.isFinite(time)) return asFraction(time);
+    const { name, place } = loop.tasks[task];
+    const expected = least === 0 ? '0 or more' : 'one above 0';
+    throw new LoopError(`controller '${name}' has a ${word} of ${time} s, expected ${expected}`, place);
+  };
+  const periods = loop.tasks.map(({ period }, task) => timeOf(task, 'sampling period', period));
+  const phases = loop.tasks.map(({ phase }, task) => timeOf(task, 'phase', phase));
+  const delays = loop.channels.map(({ task, delay }) => timeOf(task, 'delay', delay));
+  const perSecond = leastCommonMultiple(
+    [...periods, ...phases, ...delays].map(({ denominator }) => denominator),
   );
-  const cycle = leastCommonMultiple(ticks.map(([period]) => BigInt(period)));
-  if (
-    loop.tasks.length > 0 &&
-    cycle / BigInt(Math.min(...ticks.map(([period]) => period))) > BigInt(longestCycle)
-  ) {
-    throw new LoopError(
-      'the controllers’ periods have no common cycle of a usable length',
-      loop.tasks[0].place,
-    );
-  }
+  const inTicks = ({ numerator, denominator }: Fraction): number =>
+    Number((numerator * perSecond) / denominator);
+  const period = periods.map(inTicks);
   return {
-    tick: 1 / Number(perSecond),
     ticksPerSecond: Number(perSecond),
-    period: ticks.map(([period]) => period),
-    phase: ticks.map(([, phase]) => phase),
-    delay: ticks.map(([, , delay]) => delay),
-    cycle: Number(cycle),
+    period,
+    phase: phases.map(inTicks),
+    channels: loop.channels.map(({ task }, i) => ({ task, delay: inTicks(delays[i]) })),
+    cycle: cycleOf(loop, period),
   };
 }
 
-/** How many results of a task can be on their way at once, its next one included. */
-export function queueLength(schedule: Schedule, task: number): number {
-  return Math.floor(schedule.delay[task] / schedule.period[task]) + 1;
+function cycleOf({ tasks }: Loop, period: number[]): number {
+  const cycle = leastCommonMultiple(period.map(BigInt));
+  if (tasks.length === 0 || cycle / BigInt(Math.min(...period)) <= BigInt(longestCycle)) return Number(cycle);
+  const [{ place }] = tasks;
+  throw new LoopError('the periods of the controllers have no common cycle of a usable length', place);
+}
+
+/** How many results can be on their way by a channel at once, the next one included. */
+export function queueLength({ channels, period }: Schedule, channel: number): number {
+  const { task, delay } = channels[channel];
+  return Math.floor(delay / period[task]) + 1;
 }
 
 /** The instants from tick `from` (included) to `to` (excluded), in order of time. */
 export function instantsBetween(schedule: Schedule, from: number, to: number): Instant[] {
+  const { period, phase, channels } = schedule;
   const byTick = new Map<number, Instant>();
   const at = (tick: number): Instant => {
     const instant = byTick.get(tick) ?? { tick, deliver: [], compute: [] };
     byTick.set(tick, instant);
     return instant;
   };
-  schedule.period.forEach((period, task) => {
-    const { [task]: phase } = schedule.phase;
-    const { [task]: delay } = schedule.delay;
-    for (const tick of multiples(phase, period, from, to)) at(tick).compute.push(task);
-    if (delay > 0) for (const tick of multiples(phase + delay, period, from, to)) at(tick).deliver.push(task);
+  period.forEach((every, task) => {
+    for (const tick of multiples(phase[task], every, from, to)) at(tick).compute.push(task);
+  });
+  channels.forEach(({ task, delay }, channel) => {
+    if (delay === 0) return;
+    for (const tick of multiples(phase[task] + delay, period[task], from, to)) at(tick).deliver.push(channel);
   });
   return [...byTick.values()].sort((a, b) => a.tick - b.tick);
 }

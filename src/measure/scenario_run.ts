@@ -1,4 +1,4 @@
-import { type CompiledLoop, compileLoop } from '../kernel/compile.js';
+import { type CompiledLoop, compileLoop, rateOf } from '../kernel/compile.js';
 import { MovementChoice } from '../kernel/movement.js';
 import { standardNormal } from '../kernel/noise.js';
 import { runPlant, type TraceStore } from '../kernel/run_plant.js';
@@ -10,6 +10,7 @@ import { dependsOn, type Node } from '../loop/graph.js';
 import type { Loop } from '../loop/loop.js';
 import type { Schedule } from '../loop/schedule.js';
 import type { Scenario } from '../spec/spec.js';
+import { type Curve, curveOf } from './curve.js';
 import type { ScenarioEvents } from './scenario_events.js';
 
 /** Runs one scenario for plant after plant; what plants have in common is made once. */
@@ -18,17 +19,21 @@ export class ScenarioRun {
   private readonly choice: MovementChoice;
   private readonly noises: Float64Array[] = [];
   private shared: { schedule: Schedule; timeline: Timeline } | undefined;
+  /** The signals to follow, then the rates of those that move between instants. */
+  private readonly recorded: readonly string[];
 
-  /** @param traced names of the signals to follow, in this order. */
+  /** @param traced names of the signals to follow. */
   constructor(
     private readonly loop: Loop,
     readonly scenario: Scenario,
     private readonly events: ScenarioEvents,
-    readonly traced: readonly string[],
+    private readonly traced: readonly string[],
     private readonly seed: number,
     private readonly store: TraceStore,
   ) {
-    this.compiled = compileLoop(loop, traced);
+    const withRates = loopWithRates(loop, traced);
+    this.recorded = [...traced, ...withRates.rates];
+    this.compiled = compileLoop(withRates.loop, this.recorded);
     this.choice = new MovementChoice(this.compiled);
   }
 
@@ -43,9 +48,15 @@ export class ScenarioRun {
       timeline,
       movement: this.choice.of(start, halvings),
       noise: this.noise(schedule),
-      signals: this.traced.length,
+      signals: this.recorded.length,
       store: this.store,
     });
+  }
+
+  /** The curve of a followed signal in a run of this scenario. */
+  curve(run: Run, name: string): Curve {
+    const rate = this.recorded.indexOf(rateNamed(name));
+    return curveOf(run, this.recorded.indexOf(name), rate < 0 ? undefined : rate);
   }
 
   private timeline(parameters: Float64Array, schedule: Schedule): Timeline {
@@ -107,8 +118,30 @@ export class ScenarioRun {
   }
 }
 
+/** No signal of a spec has a name with blanks. */
+function rateNamed(signal: string): string {
+  return `the rate of ${signal}`;
+}
+
+/** The loop with the rates of moving signals as signals of their own: their records hold how the rate changes. */
+function loopWithRates(loop: Loop, traced: readonly string[]): { loop: Loop; rates: string[] } {
+  const signals = new Map(loop.signals);
+  const rates = traced.flatMap((name) => {
+    const signal = loop.signals.get(name)!;
+    if (signal.kind === 'sampled') return [];
+    const value = rateOf(loop, signal.value);
+    if (value.kind === 'number') return [];
+    signals.set(rateNamed(name), { kind: 'continuous', value, range: undefined });
+    return [rateNamed(name)];
+  });
+  return { loop: { ...loop, signals }, rates };
+}
+
 /** Whether a schedule is the same for every plant. */
 export function timingIsCommon(loop: Loop): boolean {
-  const nodes: Node[] = loop.tasks.flatMap(({ period, phase, delay }) => [period, phase, delay]);
+  const nodes: Node[] = [
+    ...loop.tasks.flatMap(({ period, phase }) => [period, phase]),
+    ...loop.channels.map(({ delay }) => delay),
+  ];
   return nodes.every((node) => !dependsOn(node, ['parameter']));
 }
