@@ -10,6 +10,8 @@ export interface CompiledLoop {
   layout: Layout;
   /** Moves the continuous states by one step of the classical fourth-order method (Kutta 1901), all else constant. */
   step: (m: Float64Array, h: number) => void;
+  /** Takes modes anew and corrects states, from the states as they are; undefined where the loop has neither. */
+  settle: ((m: Float64Array) => void) | undefined;
   /** For each task: samples its sensors. */
   sample: ((m: Float64Array) => void)[];
   /** For each task: computes its signals, its results into `pending`, and its memories. */
@@ -28,6 +30,10 @@ export function compileLoop(loop: Loop, traced: readonly string[]): CompiledLoop
     loop,
     layout,
     step: makeFunction('m, h', stepText(loop, layout)),
+    settle:
+      loop.modes.length + loop.corrections.length > 0
+        ? makeFunction('m', settleText(loop, layout))
+        : undefined,
     sample: tasks.map((task) => makeFunction('m', sampleText(loop, layout, task))),
     compute: tasks.map((task) => makeFunction('m', computeText(loop, layout, task, sampled))),
     record: makeFunction('m, records, at', recordText(loop, layout, signals, sampled)),
@@ -65,16 +71,30 @@ function stepText(loop: Loop, layout: Layout): string[] {
   return lines;
 }
 
-function sampleText(loop: Loop, layout: Layout, task: number): string[] {
-  const own = loop.readings
-    .map((reading, index) => ({ ...reading, index }))
-    .filter((reading) => reading.task === task);
+/** All new values from the old ones, then all at once. */
+function settleText(loop: Loop, layout: Layout): string[] {
+  const targets = [
+    ...loop.modes.map(({ next }, i) => ({ place: layout.mode + i, node: next })),
+    ...loop.corrections.map(({ state, value }) => ({ place: layout.state + state, node: value })),
+  ];
+  return assignments(targets, layout);
+}
+
+/** Computes all nodes, then puts each in its place. */
+function assignments(targets: { place: number; node: Node }[], layout: Layout): string[] {
   const { lines, results } = statements(
-    own.map(({ sampled }) => sampled),
+    targets.map(({ node }) => node),
     inArray(layout),
     'v',
   );
-  return [...lines, ...own.map(({ index }, at) => `m[${layout.reading + index}] = ${results[at]};`)];
+  return [...lines, ...targets.map(({ place }, at) => `m[${place}] = ${results[at]};`)];
+}
+
+function sampleText(loop: Loop, layout: Layout, task: number): string[] {
+  const targets = loop.readings.flatMap((reading, i) =>
+    reading.task === task ? [{ place: layout.reading + i, node: reading.sampled }] : [],
+  );
+  return assignments(targets, layout);
 }
 
 function computeText(
@@ -94,12 +114,7 @@ function computeText(
   sampled.forEach((signal, i) => {
     if (signal.task === task) targets.push({ place: layout.latest + i, node: signal.value });
   });
-  const { lines, results } = statements(
-    targets.map(({ node }) => node),
-    inArray(layout),
-    'v',
-  );
-  return [...lines, ...targets.map(({ place }, at) => `m[${place}] = ${results[at]};`)];
+  return assignments(targets, layout);
 }
 
 function recordText(

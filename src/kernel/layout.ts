@@ -16,6 +16,7 @@ export function layOut(loop: Loop, tracedSampled: number): Layout {
     parameter: loop.parameters.length,
     input: loop.inputs.length,
     state: loop.states.length,
+    mode: loop.modes.length,
     held: loop.held.length,
     memory: loop.memories.length,
     reading: loop.readings.length,

@@ -9,8 +9,8 @@ import type { CompiledLoop } from './compile.js';
 
 /** How the continuous states of one plant move: steps for each duration, and the movement of one step. */
 export interface Movement {
-  /** Number of equal steps in a segment of this duration (s). */
-  steps: (duration: number) => number;
+  /** Lengths (s) of the steps in a segment of this duration (s), in order; few are different. */
+  steps: (duration: number) => number[];
   /** Moves the states in `m` by one step of h (s). */
   move: (m: Float64Array, h: number) => void;
 }
@@ -18,7 +18,7 @@ export interface Movement {
 /** A step this long against the fastest rate (1/s) is where the first attempt starts; halving then checks it. */
 const firstStep = 0.4;
 /** An exact movement needs steps only for the shape of the trace between them. */
-const mostSteps = { exact: 16, integrated: 4096 };
+const mostSteps = { exact: 64, integrated: 4096 };
 
 /** Chooses for a loop how its plants move: exactly where the plant is linear, by small steps where it is not. */
 export class MovementChoice {
@@ -42,14 +42,21 @@ export class MovementChoice {
       parameter,
       input: part(layout.input, loop.inputs.length),
       state: part(layout.state, loop.states.length),
+      mode: part(layout.mode, loop.modes.length),
       held: part(layout.held, loop.held.length),
     });
     const rates = this.linearisation.slopes('derivative', 'state', evaluation);
-    const fastest = fastestRate(rates);
-    const most = this.linear ? mostSteps.exact : mostSteps.integrated;
-    const steps = (duration: number): number =>
-      Math.min(most, Math.max(1, Math.ceil((duration * fastest) / firstStep))) * 2 ** halvings;
-    return { steps, move: this.linear ? this.exactMove(rates, parameter) : this.compiled.step };
+    const modes = modesOf(rates);
+    if (this.linear) {
+      const steps = (duration: number): number[] => halved(gradedSteps(duration, modes), halvings);
+      return { steps, move: this.exactMove(rates, parameter) };
+    }
+    const fastest = Math.max(0, ...modes.map(({ speed }) => speed));
+    const steps = (duration: number): number[] => {
+      const count = Math.max(1, Math.ceil((duration * fastest) / firstStep));
+      return halved(equal(duration, Math.min(mostSteps.integrated, count)), halvings);
+    };
+    return { steps, move: this.compiled.step };
   }
 
   /** Movement of a linear plant under constant inputs by the matrix exponential; a table is kept for each length of step. */
@@ -105,11 +112,51 @@ function isLinear(linearisation: Linearisation): boolean {
   return (['state', 'held', 'input'] as const).every((columns) =>
     linearisation
       .entries('derivative', columns)
-      .every(({ slope }) => !dependsOn(slope, ['state', 'held', 'input', 'memory', 'reading'])),
+      .every(({ slope }) => !dependsOn(slope, ['state', 'mode', 'held', 'input'])),
   );
 }
 
-function fastestRate(rates: Matrix): number {
-  if (rates.rows === 0 || !rates.data.every(Number.isFinite)) return 0;
-  return Math.max(...eigenvalues(rates).map(magnitude));
+/** How fast a natural motion of the plant is, and how fast it dies out; 1/s. */
+interface PlantMode {
+  speed: number;
+  decay: number;
+}
+
+function modesOf(rates: Matrix): PlantMode[] {
+  if (rates.rows === 0 || !rates.data.every(Number.isFinite)) return [];
+  return eigenvalues(rates).map((pole) => ({ speed: magnitude(pole), decay: Math.max(0, -pole.real) }));
+}
+
+function equal(duration: number, count: number): number[] {
+  return new Array<number>(count).fill(duration / count);
+}
+
+function halved(lengths: number[], halvings: number): number[] {
+  return lengths.flatMap((length) => equal(length, 2 ** halvings));
+}
+
+/** The error of a trace between steps grows with this power of their length. */
+const order = 6;
+
+/**
+ * Steps over a segment at whose start something changed, each a power of two shorter than it: short while the fast motions
+ * last, longer when they have died out. A motion that would need more steps than the cap gets them longer.
+ */
+function gradedSteps(duration: number, modes: readonly PlantMode[]): number[] {
+  const felt = modes.map(({ speed, decay }) => {
+    const needed = (Math.min(duration, order / decay) * speed) / firstStep;
+    return { decay, speed: speed * Math.min(1, mostSteps.exact / needed) };
+  });
+  const steps: number[] = [];
+  const split = (from: number, length: number): void => {
+    const tooLong = felt.some(
+      ({ speed, decay }) => speed * length * Math.exp((-decay * from) / order) > firstStep,
+    );
+    if (tooLong) {
+      split(from, length / 2);
+      split(from + length / 2, length / 2);
+    } else steps.push(length);
+  };
+  split(0, duration);
+  return steps;
 }

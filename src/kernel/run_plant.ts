@@ -51,11 +51,13 @@ export function runPlant(request: RunRequest): Run {
   let end: RunEnd = { kind: 'complete' };
   for (let segment = 0; segment < timeline.action.length; segment++) {
     tasks.perform(timeline.actions[timeline.action[segment]]);
+    compiled.settle?.(m);
     let time = timeline.times[segment];
     for (const h of stepsOf[timeline.duration[segment]]) {
       times[piece] = time;
       compiled.record(m, records, 4 * piece);
       if (states > 0) movement.move(m, h);
+      compiled.settle?.(m);
       compiled.record(m, records, 4 * piece + 2);
       time += h;
       piece++;

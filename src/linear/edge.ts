@@ -9,6 +9,7 @@ import type { Node } from '../loop/graph.js';
 export function edgeOf(root: Node, evaluation: Evaluation): string | undefined {
   const seen = new Set<Node>();
   const visit = (node: Node): string | undefined => {
+    if (node.kind === 'leaf' && node.leaf === 'mode') return 'a backlash or relay, which has no single slope';
     if (node.kind !== 'operation' || seen.has(node)) return undefined;
     seen.add(node);
     const own = ownEdge(node, evaluation);

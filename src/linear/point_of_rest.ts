@@ -1,5 +1,5 @@
 import { Matrix as LibraryMatrix, SingularValueDecomposition } from 'ml-matrix';
-import { Evaluation, type LeafValues } from '../loop/evaluate.js';
+import { Evaluation } from '../loop/evaluate.js';
 import type { Loop } from '../loop/loop.js';
 import { type Linearisation, type RowGroup, withReadings } from './linearise.js';
 import { add, blockOf, identity, type Matrix, multiply, place, toRows, zeros } from './matrix.js';
@@ -9,22 +9,47 @@ export interface PointOfRest {
   state: number[];
   memory: number[];
   held: number[];
+  mode: number[];
 }
 
 /** The point of rest, or why there is none. */
 export type RestResult = { kind: 'rest'; point: PointOfRest } | { kind: 'none'; why: string };
 
 const mostRounds = 60;
+const mostModeChanges = 20;
 
 /**
- * Solves for the point where every rate is zero and every sampled value repeats, with quanta and noise off, by Newton's
- * method with the least move (pseudo-inverse), so that free integrators stay where they start.
+ * Solves for the point where every rate is zero and every sampled value repeats, with quanta and noise off. Modes start as
+ * they are stated and are taken anew at the point found, until they stand.
  * @param inputs SI values of the inputs, constant.
  */
 export function pointOfRest(
   linearisation: Linearisation,
   parameters: ArrayLike<number>,
   inputs: ArrayLike<number>,
+): RestResult {
+  const { loop } = linearisation;
+  let mode = loop.modes.map(({ start }) => start);
+  for (let change = 0; change < mostModeChanges; change++) {
+    const result = restWithModes(linearisation, { parameter: parameters, input: inputs, mode });
+    if (result.kind === 'none') return result;
+    const { point } = result;
+    const evaluation = new Evaluation({ parameter: parameters, input: inputs, ...point }, 'off');
+    const next = loop.modes.map((one) => evaluation.of(one.next));
+    if (next.every((value, i) => value === mode[i])) return result;
+    mode = next;
+  }
+  const names = loop.modes.map(({ name }) => `'${name}'`).join(', ');
+  return {
+    kind: 'none',
+    why: `no point of rest was found: ${names} changed ${mostModeChanges} times on the way`,
+  };
+}
+
+/** Newton's method with the least move (pseudo-inverse), so that free integrators stay where they start. */
+function restWithModes(
+  linearisation: Linearisation,
+  given: { parameter: ArrayLike<number>; input: ArrayLike<number>; mode: number[] },
 ): RestResult {
   const { loop } = linearisation;
   let unknowns = [
@@ -34,9 +59,8 @@ export function pointOfRest(
   ];
   let residual: number[] = [];
   for (let round = 0; round < mostRounds; round++) {
-    const point = split(loop, unknowns);
-    const leaves = withReadings(loop, { parameter: parameters, input: inputs, ...point });
-    const evaluation = new Evaluation(leaves, 'off');
+    const point = { ...split(loop, unknowns), mode: given.mode };
+    const evaluation = new Evaluation(withReadings(loop, { ...given, ...point }), 'off');
     residual = residuals(linearisation, evaluation, point);
     if (!residual.every(Number.isFinite)) break;
     if (residual.every((value) => value === 0)) return { kind: 'rest', point };
@@ -48,7 +72,7 @@ export function pointOfRest(
   return { kind: 'none', why: whyNone(loop, residual) };
 }
 
-function split(loop: Loop, unknowns: number[]): PointOfRest {
+function split(loop: Loop, unknowns: number[]): Omit<PointOfRest, 'mode'> {
   const memoryAt = loop.states.length;
   const heldAt = memoryAt + loop.memories.length;
   return {
@@ -116,14 +140,4 @@ function whyNone(loop: Loop, residual: number[]): string {
   );
   const value = residual[worst];
   return `no point of rest was found in ${mostRounds} rounds: ${names[worst]} still changes by ${value.toPrecision(3)}`;
-}
-
-/** The values at rest as leaves for an evaluation. */
-export function leavesAt(
-  loop: Loop,
-  parameters: ArrayLike<number>,
-  inputs: ArrayLike<number>,
-  point: PointOfRest,
-): LeafValues {
-  return withReadings(loop, { parameter: parameters, input: inputs, ...point });
 }

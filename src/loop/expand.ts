@@ -13,7 +13,7 @@ import { tracedSignals } from './traced_signals.js';
  * @throws {LoopError} where the build's numbers do not fit the spec, or the loop cannot be opened there.
  */
 export function expandLoop(spec: Spec, coefficients: CoefficientValues, openAt?: string): Loop {
-  const parts = new Parts(coefficients);
+  const parts = new Parts(spec.inputs, coefficients);
   const controllers = orderTasks(spec);
   const plant = new PlantRoom(spec, parts);
   const cut = new Cut(parts.graph, controllers, openAt);
@@ -27,9 +27,12 @@ export function expandLoop(spec: Spec, coefficients: CoefficientValues, openAt?:
   return {
     graph: parts.graph,
     parameters: spec.parameters.map(({ name }) => name),
-    inputs: spec.inputs.map(({ name }) => name),
-    inputRest: spec.inputs.map(({ rest }) => rest),
+    inputs: parts.inputs.map(({ name }) => name),
+    inputRest: parts.inputs.map(({ rest }) => rest),
     states: parts.states,
+    modes: parts.modes,
+    corrections: parts.corrections,
+    delayedSources: parts.delayedSources,
     memories: parts.memories,
     readings: parts.readings,
     held: parts.held,

@@ -1,5 +1,14 @@
 /** Values from outside an expression. `index` counts within its kind; see `Loop`. */
-export type LeafKind = 'parameter' | 'input' | 'state' | 'held' | 'memory' | 'reading' | 'noise' | 'injected';
+export type LeafKind =
+  | 'parameter'
+  | 'input'
+  | 'state'
+  | 'mode'
+  | 'held'
+  | 'memory'
+  | 'reading'
+  | 'noise'
+  | 'injected';
 
 /** What an operation does with its arguments. Comparisons give 1 or 0; angles are in rad. */
 export type OperationName =

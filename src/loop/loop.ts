@@ -8,6 +8,30 @@ export interface ContinuousState {
   start: number;
 }
 
+/**
+ * A value of the plant that changes by jumps (which side of a backlash is in contact, whether a relay is on): taken anew after
+ * every step of the movement from the states as they are then.
+ */
+export interface Mode {
+  name: string;
+  next: Node;
+  start: number;
+}
+
+/** After every step of the movement a state is brought to a value: a stop that it cannot pass, a reset. */
+export interface Correction {
+  state: number;
+  value: Node;
+}
+
+/** A copy of an input, or of a state that the scenario sets, for signals behind a dead time: as it was `delay` s ago. */
+export interface DelayedSource {
+  kind: 'input' | 'state';
+  index: number;
+  source: number;
+  delay: Node;
+}
+
 /** A number that a controller keeps from one sampling instant to the next. */
 export interface Memory {
   name: string;
@@ -78,10 +102,14 @@ export interface Opening {
 export interface Loop {
   graph: Graph;
   parameters: string[];
+  /** Inputs by name; copies for dead times come after those of the spec. */
   inputs: string[];
   /** Values of the inputs before anything happens. */
   inputRest: number[];
   states: ContinuousState[];
+  modes: Mode[];
+  corrections: Correction[];
+  delayedSources: DelayedSource[];
   memories: Memory[];
   readings: Reading[];
   held: Held[];

@@ -4,9 +4,12 @@ import { Graph, type Node } from './graph.js';
 import {
   type Channel,
   type ContinuousState,
+  type Correction,
+  type DelayedSource,
   type Held,
   LoopError,
   type Memory,
+  type Mode,
   type Reading,
 } from './loop.js';
 
@@ -21,7 +24,11 @@ export class Parts {
   readonly graph = new Graph();
   /** Expressions of the plant: SI, in the arithmetic of the simulation. */
   readonly plain = new TargetArithmetic(this.graph, 'float64');
+  readonly inputs: { name: string; rest: number }[];
   readonly states: ContinuousState[] = [];
+  readonly modes: Mode[] = [];
+  readonly corrections: Correction[] = [];
+  readonly delayedSources: DelayedSource[] = [];
   readonly memories: Memory[] = [];
   readonly readings: Reading[] = [];
   readonly held: Held[] = [];
@@ -29,7 +36,12 @@ export class Parts {
   readonly noises: number[] = [];
   private readonly deferred: (() => void)[] = [];
 
-  constructor(private readonly coefficients: CoefficientValues) {}
+  constructor(
+    inputs: readonly { name: string; rest: number }[],
+    private readonly coefficients: CoefficientValues,
+  ) {
+    this.inputs = inputs.map(({ name, rest }) => ({ name, rest }));
+  }
 
   addState(name: string, start: number, derivative: () => Node): Node {
     const state = { name, start, derivative: this.graph.number(0) };
@@ -37,6 +49,40 @@ export class Parts {
       state.derivative = derivative();
     });
     return this.graph.leaf('state', this.states.push(state) - 1);
+  }
+
+  /** A value that changes by jumps, taken anew after every step of the movement. */
+  addMode(name: string, start: number, next: () => Node): Node {
+    const mode = { name, start, next: this.graph.number(0) };
+    this.deferred.push(() => {
+      mode.next = next();
+    });
+    return this.graph.leaf('mode', this.modes.push(mode) - 1);
+  }
+
+  /** Brings a state to a value after every step of the movement. */
+  addCorrection(state: Node, value: () => Node): void {
+    if (state.kind !== 'leaf' || state.leaf !== 'state') throw new Error('only a state can be corrected');
+    const correction = { state: state.index, value: state as Node };
+    this.corrections.push(correction);
+    this.deferred.push(() => {
+      correction.value = value();
+    });
+  }
+
+  /** An input as it was some time ago. */
+  addDelayedInput(source: number, delay: Node): Node {
+    const { name, rest } = this.inputs[source];
+    const index = this.inputs.push({ name: `${name} delayed`, rest }) - 1;
+    this.delayedSources.push({ kind: 'input', index, source, delay });
+    return this.graph.leaf('input', index);
+  }
+
+  /** A held value that takes effect some time later than another. */
+  addDelayedHeld(source: number, delay: Node): Node {
+    const { name, channel } = this.held[source];
+    const { task, delay: first } = this.channels[channel];
+    return this.addHeld(`${name} delayed`, task, this.plain.add(first, delay), () => this.held[source].value);
   }
 
   addMemory(name: string, task: number, start: number, next: () => Node): Node {

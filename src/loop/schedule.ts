@@ -1,6 +1,6 @@
 import { Evaluation } from './evaluate.js';
 import { asFraction, type Fraction, leastCommonMultiple } from './fraction.js';
-import type { Node } from './graph.js';
+import { dependsOn, type Node } from './graph.js';
 import { type Loop, LoopError } from './loop.js';
 
 /** What happens at one instant. Readings of all computing tasks are sampled first, then the rest in this order. */
@@ -36,7 +36,8 @@ export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule 
   const timeOf = (task: number, word: string, node: Node): Fraction => {
     const time = evaluation.of(node);
     const least = word === 'sampling period' ? Number.MIN_VALUE : 0;
-    if (time >= least && Number.isFinite(time)) return asFraction(time);
+    if (time >= least && Number.isFinite(time))
+      return asFraction(dependsOn(node, ['parameter']) ? toNanosecond(time) : time);
     const { name, place } = loop.tasks[task];
     const expected = least === 0 ? '0 or more' : 'one above 0';
     throw new LoopError(`controller '${name}' has a ${word} of ${time} s, expected ${expected}`, place);
@@ -57,6 +58,11 @@ export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule 
     channels: loop.channels.map(({ task }, i) => ({ task, delay: inTicks(delays[i]) })),
     cycle: cycleOf(loop, period),
   };
+}
+
+/** Times that differ from plant to plant would else have no common tick with the others. */
+function toNanosecond(time: number): number {
+  return Math.round(time * 1e9) / 1e9;
 }
 
 function cycleOf({ tasks }: Loop, period: number[]): number {
