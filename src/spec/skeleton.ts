@@ -134,9 +134,6 @@ function blockValue(block: BlockDescription) {
   return whole === undefined ? mapping : z.union([direct, mapping]).describe(whole.meaning);
 }
 
-/** The keys that may stand beside the defining key of a signal. */
-export const signalKeys = ['of', 'unit', 'gain', 'range', 'slew', 'start'] as const;
-
 function signal(vocabulary: Vocabulary, room: Room) {
   const blocks = vocabulary.blocks.filter((block) => block.rooms.includes(room));
   const defining = Object.fromEntries(blocks.map((block) => [block.key, blockValue(block).optional()]));
@@ -204,20 +201,6 @@ const scenario = z
     start: text('rest or zero').optional(),
   })
   .describe('{ lasts: …, inputs: … }');
-
-/** The keys of every requirement, beside those of its measure. */
-export const requirementKeys = [
-  'name',
-  'measure',
-  'in',
-  'around',
-  'at_most',
-  'at_least',
-  'between',
-  'holds_for',
-  'scale',
-  'reason',
-] as const;
 
 function requirement(vocabulary: Vocabulary) {
   const keys = vocabulary.measures.flatMap((measure) => measure.keys);

@@ -1,4 +1,4 @@
-import { sameDimension } from './dimension.js';
+import { isPlain, sameDimension } from './dimension.js';
 import type { Dimension } from './spec.js';
 import { parseUnit } from './units.js';
 
@@ -10,16 +10,18 @@ const likely = ['s', 'm', 'rad', 'Hz', 'N', 'V', 'A', 'W', 'Pa', 'F', 'H', 'ohm'
  * nothing near has the expected dimension.
  */
 export function prefixHint(written: string, expected: Dimension): string {
-  const found = candidates(written).find((text) => {
+  const found = candidates(written, expected).find((text) => {
     const unit = parseUnit(text);
     return unit.kind === 'unit' && unit.law === undefined && sameDimension(unit.dimension, expected);
   });
   return found === undefined ? '' : `; was \`${found}\` meant?`;
 }
 
-function candidates(written: string): string[] {
+function candidates(written: string, expected: Dimension): string[] {
   const asPrefix = likely.map((unit) => `${written}${unit}`);
-  const cuts = Array.from({ length: Math.max(0, written.length - 1) }, (_, at) => at + 1);
+  const cuts = isPlain(expected)
+    ? []
+    : Array.from({ length: Math.max(0, written.length - 1) }, (_, at) => at + 1);
   const operators = cuts.flatMap((at) =>
     ['/', '*'].map((operator) => `${written.slice(0, at)}${operator}${written.slice(at)}`),
   );
