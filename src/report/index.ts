@@ -1,8 +1,10 @@
+export { type Annotation, annotationLines, annotationsOf, workflowCommand } from './annotations.js';
 export { caution } from './caution.js';
 export { coefficientTable } from './coefficient_table.js';
 export type { Fault } from './fault.js';
 export { htmlReport, type ReportExtras } from './html.js';
 export { junitOf, junitOfFault } from './junit.js';
+export { markdownSummary } from './markdown.js';
 export type * from './plots.js';
 export { runJson } from './run_json.js';
 export { type TerminalLook, terminalReport } from './terminal.js';

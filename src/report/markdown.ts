@@ -1,0 +1,103 @@
+import type { FinishedRun, RequirementRun, SpecRun } from '../verdict/run.js';
+import { caution } from './caution.js';
+import type { Fault } from './fault.js';
+import { counted, formatHeadroom, formatNumber, formatResultShort } from './format_value.js';
+import { markdownTable, markdownText } from './markdown_text.js';
+import { oneLine, shortened } from './plain_text.js';
+import { plantInWords } from './plant_in_words.js';
+import { claimsInWords, limitInWords, limitNumbers, measureWithSignal } from './requirement_in_words.js';
+import { runInWords, verdictSigns } from './verdict_words.js';
+
+/** A comment on a pull request holds 65,536 characters; so many leave room for what stands around it. */
+const mostCharacters = 60_000;
+const mostMessages = 10;
+
+/**
+ * The run for a comment on a pull request or a job's summary: the verdict, what blocks the merge with the plant it
+ * breaks on, the met requirements folded away, what may be claimed, and the caution.
+ */
+export function markdownSummary(run: FinishedRun, faults: readonly Fault[] = []): string {
+  const head = `## pawl: ${runInWords(run, faults.length)}`;
+  const parts = [head, ...faults.map(faultPart), ...run.specs.map(specPart)];
+  const foot = `<sub>${markdownText(caution)}</sub>\n`;
+  let room = mostCharacters - foot.length;
+  const shown = parts.filter((part) => {
+    room -= part.length + 2;
+    return room > 0;
+  });
+  const left = parts.length - shown.length;
+  if (left > 0) shown.push(`${counted(left, 'more spec')} did not fit here; see the full report.`);
+  return [...shown, foot].join('\n\n');
+}
+
+function faultPart({ specFile, messages }: Fault): string {
+  const lines = messages.slice(0, mostMessages).map((message) => `- ${said(message, 400)}`);
+  const left = messages.length - lines.length;
+  if (left > 0) lines.push(`- and ${left} more`);
+  return `### ${said(specFile, 120)} could not be run\n\n${lines.join('\n')}`;
+}
+
+function specPart(spec: SpecRun): string {
+  const { provenance } = spec;
+  const blocking = spec.requirements.filter(({ verdict }) => verdict.kind !== 'met');
+  const met = spec.requirements.filter(({ verdict }) => verdict.kind === 'met');
+  const plants = Object.values(spec.plants).reduce((sum, count) => sum + count, 0);
+  const image = provenance
+    ? `image ${said(provenance.image, 80)} (SHA-256 ${provenance.sha256.slice(0, 12)})${provenance.buildSkipped ? ', build skipped' : ''}`
+    : 'no image';
+  return [
+    `### ${said(spec.loop, 120)}`,
+    blocking.length > 0 ? blockingTable(blocking) : '',
+    met.length > 0 ? folded(`${counted(met.length, 'requirement')} met`, metTable(met)) : '',
+    claimsInWords(spec)
+      .map(({ names, claim }) => `- ${said(names.join(', '), 120)}: ${said(claim, 300)}`)
+      .join('\n'),
+    spec.merge === undefined ? '' : `Merge: ${said(spec.merge, 300)}.`,
+    `${said(spec.file, 120)}, ${image}, ${counted(plants, 'plant')} tried, seed ${spec.seed}, judged in ${formatNumber(spec.seconds, 3)} s`,
+  ]
+    .filter((part) => part !== '')
+    .join('\n\n');
+}
+
+function blockingTable(requirements: readonly RequirementRun[]): string {
+  const rows = requirements.map((one) => [
+    ...cells(one),
+    said(plantInWords(one.worst), 300),
+    said(why(one), 200),
+  ]);
+  return markdownTable([...headings, 'on the plant', 'why'], rows, numeric);
+}
+
+function metTable(requirements: readonly RequirementRun[]): string {
+  return markdownTable(headings, requirements.map(cells), numeric);
+}
+
+const headings = ['verdict', 'requirement', 'measure', 'limit', 'nominal', 'worst', 'headroom'];
+const numeric = [4, 5, 6];
+
+function cells(requirement: RequirementRun): string[] {
+  const { verdict, name, limit, nominal, worst } = requirement;
+  const limits = limitNumbers(limit);
+  return [
+    `${verdictSigns[verdict.kind]} **${verdict.kind}**`,
+    said(name, 60),
+    said(measureWithSignal(requirement), 80),
+    said(limitInWords(limit, requirement), 80),
+    said(formatResultShort(nominal.result, requirement, limits), 60),
+    said(formatResultShort(worst.result, requirement, limits), 60),
+    formatHeadroom(worst.headroom),
+  ];
+}
+
+function why({ verdict, reason }: RequirementRun): string {
+  const parts = verdict.kind === 'met' ? [] : [verdict.why];
+  return [...parts, ...(reason === undefined ? [] : [reason])].join('; ');
+}
+
+function folded(summary: string, content: string): string {
+  return `<details><summary>${summary}</summary>\n\n${content}\n\n</details>`;
+}
+
+function said(text: string, most: number): string {
+  return markdownText(shortened(oneLine(text), most));
+}
