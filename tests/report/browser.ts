@@ -2,12 +2,13 @@ import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';
 import { type Browser, chromium, type Page } from 'playwright-core';
 
-const executablePath = '/usr/bin/chromium';
+/** Where Debian puts it. */
+export const chromiumPath = '/usr/bin/chromium';
 
 /** A real Chromium without a window, cut off from everything but the page. */
 export function openBrowser(): Promise<Browser> {
   return chromium.launch({
-    executablePath,
+    executablePath: chromiumPath,
     args: [
       '--headless',
       '--no-sandbox',

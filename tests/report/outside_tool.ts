@@ -1,9 +1,10 @@
 import { accessSync, constants } from 'node:fs';
-import { delimiter, join } from 'node:path';
+import { delimiter, isAbsolute, join } from 'node:path';
 
-/** Whether a program is on the path. In CI it must be: there a missing one is an error, not a skipped test. */
+/** Whether a program, by name or by its whole path, can be run. In CI it must be: there a missing one is an error, not a skipped test. */
 export function hasTool(name: string, debianPackage: string): boolean {
-  const found = (process.env.PATH ?? '').split(delimiter).some((folder) => {
+  const folders = isAbsolute(name) ? [''] : (process.env.PATH ?? '').split(delimiter);
+  const found = folders.some((folder) => {
     try {
       accessSync(join(folder, name), constants.X_OK);
       return true;

@@ -4,13 +4,15 @@ import { html, type Markup } from '../html/markup.js';
 import { columnsOf, oneLine, shortened } from '../plain_text.js';
 import type { FrequencyCurve, MarginBracket, OpenLoopPlot } from '../plots.js';
 import { type AxisMark, axisBelow, axisLeft, type Box, drawing, extent } from './frame.js';
-import { bracketPath, type Point, pathThrough, px } from './shape.js';
+import { bracketPath, type Point, pathThrough, px, thinned } from './shape.js';
 import { sampled } from './trace_plot.js';
 
 const height = 420;
 const upper: Box = { left: 52, right: 462, top: 26, bottom: 190 };
 const lower: Box = { left: 52, right: 462, top: 226, bottom: 380 };
-const slices = 48;
+const slices = 36;
+/** So many points of a curve are finer than the drawing can show. */
+const mostPoints = 200;
 /** Of a label, px: the height of its row, and what a character takes at most. */
 const rowHeight = 17;
 const widthOfCharacter = 7.6;
@@ -63,8 +65,8 @@ function levelLines(
 
 function curve(plot: OpenLoopPlot, which: 'nominal' | 'worst', x: Scale, gain: Scale, phase: Scale): Markup {
   const { magnitude, phase: angle }: FrequencyCurve = plot[which];
-  const points = (y: (at: number) => number): Point[] =>
-    plot.frequencies.map((frequency, at) => [x(frequency), y(at)]);
+  const kept = thinned(magnitude, mostPoints);
+  const points = (y: (at: number) => number): Point[] => kept.map((at) => [x(plot.frequencies[at]), y(at)]);
   const upperPath = pathThrough(points((at) => gain(clampDecibels(decibels(magnitude[at])))));
   const lowerPath = pathThrough(points((at) => phase(degrees(angle[at]))));
   return html`<path class="${which}" d="${upperPath}${lowerPath}"/>`;

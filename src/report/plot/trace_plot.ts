@@ -9,8 +9,9 @@ import { fencePath, type Point, pathThrough, px, thinned } from './shape.js';
 
 const height = 290;
 const box: Box = { left: 52, right: 462, top: 26, bottom: 250 };
-const mostPoints = 320;
-const slices = 48;
+/** So many points of a curve are finer than the drawing can show. */
+const mostPoints = 220;
+const slices = 36;
 
 interface Scales {
   x: (time: number) => number;
@@ -57,7 +58,9 @@ export function traceDrawing(plot: TracePlot, id: string): Markup {
 
 function curves(plot: TracePlot, { x, y }: Scales): Markup {
   const { times, low, high } = plot;
-  const at = [...new Set([...thinned(low, mostPoints), ...thinned(high, mostPoints)])].sort((a, b) => a - b);
+  const at = [...new Set([...thinned(low, mostPoints / 2), ...thinned(high, mostPoints / 2)])].sort(
+    (a, b) => a - b,
+  );
   const band = area<number>()
     .defined((i) => Number.isFinite(low[i]) && Number.isFinite(high[i]))
     .x((i) => x(times[i]))
@@ -93,7 +96,7 @@ function hoverSlices(plot: TracePlot, { x, shown }: Scales): Markup {
   const places = plot.times.length === 0 ? [] : sampled(plot.times.length, slices);
   const width = (box.right - box.left) / Math.max(1, places.length);
   const rows = places.map((i) => {
-    const values = `t ${formatNumber(plot.times[i])} s: nominal ${shown(plot.nominal[i])}, worst ${shown(plot.worst[i])}, all plants ${shown(plot.low[i])} to ${shown(plot.high[i])}`;
+    const values = `at ${formatNumber(plot.times[i])} s: nominal ${shown(plot.nominal[i])}, worst ${shown(plot.worst[i])}, all ${shown(plot.low[i])} to ${shown(plot.high[i])}`;
     return html`<rect x="${px(x(plot.times[i]) - width / 2)}" y="${box.top}" width="${px(width)}" height="${box.bottom - box.top}"><title>${values}</title></rect>`;
   });
   return html`<g class="hover">${rows}</g>`;
