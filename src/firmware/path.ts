@@ -28,9 +28,10 @@ export function parsePath(text: string): CoefficientPath {
   const file = /^([^:<>[\]]+[^:]):(?!:)/.exec(trimmed);
   const rest = file ? trimmed.slice(file[0].length) : trimmed;
   const rootEnd = endOfRoot(rest);
-  const parts = splitScopes(rest.slice(0, rootEnd));
+  // What an anonymous namespace holds is named without it.
+  const parts = splitScopes(rest.slice(0, rootEnd)).filter((part) => part !== '(anonymous namespace)');
   const name = parts.pop() ?? '';
-  if (name === '' || parts.some((part) => part === ''))
+  if (name === '' || parts.some((part) => part === '') || /\s/.test(name.split('<')[0]))
     throw notAPath(text, rest === '' ? 'a name is missing' : `${quoted(rest)} does not begin with a name`);
   return {
     text: trimmed,
