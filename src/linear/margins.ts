@@ -97,7 +97,8 @@ function allPhaseCrossings(sweep: FrequencySweep, atInfinity: number | undefined
   return result;
 }
 
-function gainMarginOf(crossings: readonly PhaseCrossing[]): GainMargin {
+/** The nearest gain factors on either side of one, of all factors that bring a closed-loop pole to the boundary. */
+export function gainMarginOf(crossings: readonly { factor: number }[]): GainMargin {
   let up = Number.POSITIVE_INFINITY;
   let down = 0;
   for (const { factor } of crossings) {

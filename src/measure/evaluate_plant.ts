@@ -1,5 +1,5 @@
 import { TraceStore } from '../kernel/run_plant.js';
-import type { Run, SignalTrace } from '../kernel/trace.js';
+import type { Run } from '../kernel/trace.js';
 import { Linearisation } from '../linear/linearise.js';
 import { NumericFailure } from '../linear/numeric_failure.js';
 import { pointOfRest, type RestResult } from '../linear/point_of_rest.js';
@@ -11,9 +11,16 @@ import { lower } from '../loop/lower.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import { type Schedule, scheduleOf } from '../loop/schedule.js';
 import type { Expression, Requirement, Spec } from '../spec/spec.js';
+import type { Curve } from './curve.js';
 import { measureNamed } from './index.js';
-import { LoopPoint, type MarginsResult } from './loop_point.js';
-import { type MeasureResult, type TraceContext, type TraceMeasure, unformed } from './measure.js';
+import { LoopPoint, type LoopViewResult } from './loop_point.js';
+import {
+  type LoopMeasure,
+  type MeasureResult,
+  type TraceContext,
+  type TraceMeasure,
+  unformed,
+} from './measure.js';
 import { ScenarioEvents } from './scenario_events.js';
 import { ScenarioRun, timingIsCommon } from './scenario_run.js';
 
@@ -132,32 +139,48 @@ export class PlantEvaluator {
       for (const { index } of group.requirements) results[index] = unformed(run);
       return;
     }
+    const curves = new Map<string, Curve>();
+    const curve = (name: string): Curve => {
+      const found = curves.get(name) ?? group.run.curve(run, name);
+      curves.set(name, found);
+      return found;
+    };
     for (const { requirement, index, measure } of group.requirements) {
       results[index] =
-        endedEarly(run) ?? measure.measure(this.traceContext(group, requirement, parameters, run));
+        endedEarly(run) ??
+        measure.measure(this.traceContext(group, requirement, parameters, schedule, curve));
     }
   }
 
   private traceContext(
     { run, events }: TraceGroup,
-    requirement: Requirement,
+    { signals, quantities }: Requirement,
     parameters: Float64Array,
-    { times, records, pieces }: Run,
+    schedule: Schedule,
+    curve: (name: string) => Curve,
   ): TraceContext {
-    const trace = (name: string): SignalTrace => ({
-      times,
-      record: records[run.traced.indexOf(name)],
-      pieces,
-    });
-    const { of, to } = requirement.signals;
+    const { of, to } = signals;
+    const firstEvent = events.firstEvent(parameters);
     return {
-      of: trace(of),
-      to: to === undefined ? undefined : trace(to),
+      of: curve(of),
+      to: to === undefined ? undefined : curve(to),
       step: to === undefined ? undefined : events.stepOf(to, parameters),
       range: this.rangeOf(of, parameters),
-      firstEvent: events.firstEvent(parameters),
-      quantity: (name) => requirement.quantities[name],
+      period: this.periodOf(of, schedule),
+      firstEvent,
+      window: { from: quantities.from ?? firstEvent, until: quantities.until ?? run.scenario.lasts },
+      quantity: (name) => quantities[name],
     };
+  }
+
+  /** Time between the changes of a sampled or held signal, s. */
+  private periodOf(name: string, { period, ticksPerSecond }: Schedule): number | undefined {
+    const { held, channels, signals } = this.loop;
+    const signal = signals.get(name)!;
+    if (signal.kind === 'sampled') return period[signal.task] / ticksPerSecond;
+    const { value } = signal;
+    if (value.kind !== 'leaf' || value.leaf !== 'held') return undefined;
+    return period[channels[held[value.index].channel].task] / ticksPerSecond;
   }
 
   private rangeOf(name: string, parameters: Float64Array): TraceContext['range'] {
@@ -178,15 +201,25 @@ export class PlantEvaluator {
     schedule: Schedule,
     results: MeasureResult[],
   ): void {
-    const found: MarginsResult | string =
-      rest.kind === 'none' ? rest.why : numeric(() => point.margins(parameters, rest.point, schedule));
+    const found: LoopViewResult | string =
+      rest.kind === 'none' ? rest.why : numeric(() => point.view(parameters, rest.point, schedule));
     for (const { requirement, index } of requirements) {
       const measure = measureNamed(requirement.measure);
       if (isTraceMeasure(measure)) continue;
-      if (typeof found === 'string') results[index] = unformed(found);
-      else results[index] = found.kind === 'margins' ? measure.measure(found.margins) : unformed(found.why);
+      results[index] = loopResult(measure, found, requirement);
     }
   }
+}
+
+function loopResult(
+  { measure }: LoopMeasure,
+  found: LoopViewResult | string,
+  { quantities }: Requirement,
+): MeasureResult {
+  if (typeof found === 'string') return unformed(found);
+  if (found.kind === 'unformed') return unformed(found.why);
+  const result = numeric(() => measure({ loop: found.loop, quantity: (name) => quantities[name] }));
+  return typeof result === 'string' ? unformed(result) : result;
 }
 
 function isTraceMeasure(measure: ReturnType<typeof measureNamed>): measure is TraceMeasure {

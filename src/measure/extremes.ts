@@ -1,19 +1,25 @@
-import type { SignalTrace } from '../kernel/trace.js';
-import { pieceAt, sectionsOf, upperBound } from './sections.js';
+import { type Curve, pieceAt, pointsOfPiece, scaled, upperBound } from './curve.js';
+import { sectionsOf } from './sections.js';
 
-/** The largest value of a trace between two times, and when it is reached first. */
-export function largest(trace: SignalTrace, from: number, to: number): { value: number; time: number } {
+/** A value of a curve and when it is reached first. */
+export interface Extreme {
+  value: number;
+  time: number;
+}
+
+/** The largest value of a curve between two times, and when it is reached first. */
+export function largest(curve: Curve, from: number, to: number): Extreme {
   let best = { value: Number.NEGATIVE_INFINITY, time: from };
-  for (let piece = pieceAt(trace, from); piece < trace.pieces && trace.times[piece] < to; piece++) {
-    const bound = upperBound(trace, piece);
+  for (let piece = pieceAt(curve, from); piece < curve.pieces && curve.times[piece] < to; piece++) {
+    const bound = upperBound(curve, piece);
     if (bound <= best.value) continue;
-    const whole = trace.times[piece] >= from && trace.times[piece + 1] <= to;
-    const end = whole ? endThatReaches(trace, piece, bound) : undefined;
+    const whole = curve.times[piece] >= from && curve.times[piece + 1] <= to;
+    const end = whole ? endThatReaches(curve, piece, bound) : undefined;
     if (end) {
       best = end;
       continue;
     }
-    for (const section of sectionsOf(trace, piece, from, to)) {
+    for (const section of sectionsOf(curve, piece, from, to)) {
       if (Number.isNaN(section.first) || Number.isNaN(section.last))
         return { value: Number.NaN, time: section.from };
       if (section.first > best.value) best = { value: section.first, time: section.from };
@@ -24,31 +30,19 @@ export function largest(trace: SignalTrace, from: number, to: number): { value: 
 }
 
 /** The end of a piece where the signal reaches the piece's upper bound, which then is its largest value. */
-function endThatReaches(
-  { times, record }: SignalTrace,
-  piece: number,
-  bound: number,
-): { value: number; time: number } | undefined {
-  if (record[4 * piece] === bound) return { value: bound, time: times[piece] };
-  return record[4 * piece + 2] === bound ? { value: bound, time: times[piece + 1] } : undefined;
+function endThatReaches({ times, points }: Curve, piece: number, bound: number): Extreme | undefined {
+  const at = pointsOfPiece * piece;
+  if (points[at] === bound) return { value: bound, time: times[piece] };
+  return points[at + pointsOfPiece - 1] === bound ? { value: bound, time: times[piece + 1] } : undefined;
 }
 
-/** The smallest value of a trace between two times, and when it is reached first. */
-export function smallest(trace: SignalTrace, from: number, to: number): { value: number; time: number } {
-  const { value, time } = largest(scaled(trace, -1), from, to);
+/** The smallest value of a curve between two times, and when it is reached first. */
+export function smallest(curve: Curve, from: number, to: number): Extreme {
+  const { value, time } = largest(scaled(curve, -1), from, to);
   return { value: -value, time };
 }
 
-/** A trace with all values multiplied by a factor. */
-export function scaled(trace: SignalTrace, factor: number): SignalTrace {
-  const record = new Float64Array(4 * trace.pieces);
-  for (let i = 0; i < record.length; i++) record[i] = factor * trace.record[i];
-  return { ...trace, record };
-}
-
-/** One trace less another of the same run. */
-export function difference(a: SignalTrace, b: SignalTrace): SignalTrace {
-  const record = new Float64Array(4 * a.pieces);
-  for (let i = 0; i < record.length; i++) record[i] = a.record[i] - b.record[i];
-  return { ...a, record };
+/** The largest size of a curve between two times. */
+export function largestSize(curve: Curve, from: number, to: number): number {
+  return Math.max(largest(curve, from, to).value, -smallest(curve, from, to).value);
 }

@@ -1,4 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
+import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -7,13 +8,16 @@ export const gainMargin: LoopMeasure = {
   description: {
     name: 'gain_margin',
     basis: 'loop',
-    keys: [{ name: 'at', kind: 'loop_point', optional: false, meaning: 'where the loop is opened' }],
+    keys: [loopPointKey],
     dimension: () => plainNumber,
     ratio: true,
     better: 'higher',
     window: undefined,
     meaning:
-      'smallest factor above one by which the gain may be multiplied or divided, from L real and negative; a ratio or dB; infinite where there is none, 1 when the closed loop is unstable',
+      'smallest factor above one by which the gain may be multiplied or divided, from L real and negative (of several rates: from an eigenvalue of the lifted L); a ratio or dB; infinite where there is none, 1 when the closed loop is unstable',
   },
-  measure: (margins) => ofStableLoop(margins, 1, () => measured(margins.gainMargin.ratio)),
+  measure: ({ loop }) =>
+    ofStableLoop(loop, 1, () =>
+      measured(loop.changes === 1 ? loop.margins().gainMargin.ratio : loop.liftedMargins().gainMargin.ratio),
+    ),
 };

@@ -1,23 +1,99 @@
+import { absoluteDeviationIntegral } from './absolute_deviation_integral.js';
+import { activity } from './activity.js';
+import { bandwidth } from './bandwidth.js';
+import { complementaryPeak } from './complementary_peak.js';
+import { crossover } from './crossover.js';
+import { decayRatio } from './decay_ratio.js';
 import { delayMargin } from './delay_margin.js';
+import { delayTime } from './delay_time.js';
+import { discMargin } from './disc_margin.js';
+import { duty } from './duty.js';
 import { gainMargin } from './gain_margin.js';
+import { holdPhaseLoss } from './hold_phase_loss.js';
+import { inverseResponse } from './inverse_response.js';
+import { largestFollowingGain } from './largest_following_gain.js';
+import { largestLoopGain } from './largest_loop_gain.js';
+import { largestSensitivity } from './largest_sensitivity.js';
+import { largestValue } from './largest_value.js';
+import { lateDeviationIntegral } from './late_deviation_integral.js';
+import { leastDamping } from './least_damping.js';
+import { longestTimeAtLimit } from './longest_time_at_limit.js';
+import { lowestCrossover } from './lowest_crossover.js';
 import type { Measure } from './measure.js';
 import { modulusMargin } from './modulus_margin.js';
+import { oscillationAmplitude } from './oscillation_amplitude.js';
+import { oscillationFrequency } from './oscillation_frequency.js';
 import { overshoot } from './overshoot.js';
 import { peakDeviation } from './peak_deviation.js';
+import { peakEffort } from './peak_effort.js';
 import { phaseMargin } from './phase_margin.js';
+import { recoveryTime } from './recovery_time.js';
+import { reversalsPerSecond } from './reversals_per_second.js';
+import { riseTime } from './rise_time.js';
+import { rmsDeviation } from './rms_deviation.js';
+import { rmsEffort } from './rms_effort.js';
+import { samplingRatio } from './sampling_ratio.js';
 import { saturatedShare } from './saturated_share.js';
+import { sensitivityPeak } from './sensitivity_peak.js';
 import { settlingTime } from './settling_time.js';
+import { slewRate } from './slew_rate.js';
+import { smallestLoopGain } from './smallest_loop_gain.js';
+import { smallestValue } from './smallest_value.js';
+import { squaredDeviationIntegral } from './squared_deviation_integral.js';
+import { stability } from './stability.js';
+import { steadyStateError } from './steady_state_error.js';
+import { timeOfLargestValue } from './time_of_largest_value.js';
+import { timeOfSmallestValue } from './time_of_smallest_value.js';
+import { travel } from './travel.js';
 
 /** Every measure that a requirement can name. */
 export const measures: readonly Measure[] = [
   overshoot,
+  inverseResponse,
+  largestValue,
+  smallestValue,
+  timeOfLargestValue,
+  timeOfSmallestValue,
+  riseTime,
+  delayTime,
   settlingTime,
+  decayRatio,
   peakDeviation,
+  recoveryTime,
+  steadyStateError,
+  rmsDeviation,
+  absoluteDeviationIntegral,
+  squaredDeviationIntegral,
+  lateDeviationIntegral,
+  oscillationAmplitude,
+  oscillationFrequency,
+  peakEffort,
+  rmsEffort,
   saturatedShare,
+  longestTimeAtLimit,
+  duty,
+  travel,
+  reversalsPerSecond,
+  slewRate,
+  activity,
+  stability,
   gainMargin,
   phaseMargin,
   delayMargin,
   modulusMargin,
+  discMargin,
+  sensitivityPeak,
+  complementaryPeak,
+  crossover,
+  lowestCrossover,
+  bandwidth,
+  samplingRatio,
+  holdPhaseLoss,
+  largestLoopGain,
+  smallestLoopGain,
+  largestSensitivity,
+  largestFollowingGain,
+  leastDamping,
 ];
 
 const byName = new Map(measures.map((measure) => [measure.description.name, measure]));

@@ -1,6 +1,5 @@
 import { edgeOf } from '../linear/edge.js';
 import { Linearisation, withReadings } from '../linear/linearise.js';
-import { type LoopMargins, marginsOfLoop } from '../linear/margins.js';
 import { openedLoop } from '../linear/opened_loop.js';
 import type { PointOfRest } from '../linear/point_of_rest.js';
 import { Evaluation, type LeafValues } from '../loop/evaluate.js';
@@ -9,9 +8,10 @@ import { LoopError } from '../loop/loop.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import type { Schedule } from '../loop/schedule.js';
 import type { Requirement, Spec } from '../spec/spec.js';
+import { LoopView } from './loop_view.js';
 
-/** The margins of one plant, or why they cannot be formed. */
-export type MarginsResult = { kind: 'margins'; margins: LoopMargins } | { kind: 'unformed'; why: string };
+/** The opened loop of one plant, or why it cannot be formed. */
+export type LoopViewResult = { kind: 'loop'; loop: LoopView } | { kind: 'unformed'; why: string };
 
 /** The loop opened at one signal and linearised at one point, for plant after plant. */
 export class LoopPoint {
@@ -43,24 +43,21 @@ export class LoopPoint {
   }
 
   /** @param rest the closed loop's point of rest. */
-  margins(parameters: Float64Array, rest: PointOfRest, schedule: Schedule): MarginsResult {
+  view(parameters: Float64Array, rest: PointOfRest, schedule: Schedule): LoopViewResult {
     const leaves = this.leaves(parameters, rest);
     const why = this.edge(leaves);
     if (why) return { kind: 'unformed', why };
-    const opened = openedLoop(this.linearisation, schedule, leaves);
-    if (opened.b.columns !== 1) {
-      const at = this.linearisation.loop.opening?.at;
-      return {
-        kind: 'unformed',
-        why: `the signal '${at}' changes ${opened.b.columns} times in a cycle of all controllers; open the loop at a signal of the slowest controller`,
-      };
-    }
-    return { kind: 'margins', margins: marginsOfLoop(opened) };
+    return { kind: 'loop', loop: new LoopView(openedLoop(this.linearisation, schedule, leaves)) };
   }
 
   private leaves(parameters: Float64Array, rest: PointOfRest): LeafValues {
     const { loop } = this.linearisation;
-    const point = { state: [...rest.state], input: [...loop.inputRest], held: [...rest.held] };
+    const point = {
+      state: [...rest.state],
+      input: [...loop.inputRest],
+      held: [...rest.held],
+      mode: rest.mode,
+    };
     for (const { group, index, value } of this.overrides) point[group][index] = value;
     // The injected value stands at what the signal is at rest, so that the point is the closed loop's own.
     const closed = withReadings(loop, { parameter: parameters, memory: rest.memory, ...point });

@@ -1,6 +1,6 @@
-import type { SignalTrace } from '../kernel/trace.js';
-import type { LoopMargins } from '../linear/margins.js';
 import type { MeasureDescription } from '../spec/vocabulary.js';
+import type { Curve } from './curve.js';
+import type { LoopView } from './loop_view.js';
 
 /** What a measure gives for one plant; SI. */
 export type MeasureResult =
@@ -21,17 +21,27 @@ export interface TargetStep {
   until: number;
 }
 
+/** A stretch of a scenario, s. */
+export interface Window {
+  from: number;
+  until: number;
+}
+
 /** What a measure of a trace may look at. */
 export interface TraceContext {
-  of: SignalTrace;
-  /** The trace of `to`, where the measure has one. */
-  to: SignalTrace | undefined;
+  of: Curve;
+  /** The curve of `to`, where the measure has one. */
+  to: Curve | undefined;
   /** The step of `to`, where it makes exactly one. */
   step: TargetStep | undefined;
   /** Ends of the range of `of` and the size of one step of it (SI), where it has them. */
   range: { low: number; high: number; resolution: number } | undefined;
+  /** Time between the changes of `of`, s; undefined where it moves at any time. */
+  period: number | undefined;
   /** Time of the scenario's first event, s. */
   firstEvent: number;
+  /** From the key `from`, else the first event, to the key `until`, else the end of the scenario. */
+  window: Window;
   /** Values of the measure's own keys, SI. */
   quantity: (name: string) => number | undefined;
 }
@@ -42,10 +52,16 @@ export interface TraceMeasure {
   measure: (context: TraceContext) => MeasureResult;
 }
 
+/** What a measure of the loop may look at: the loop opened at a signal, and the values of the measure's own keys (SI). */
+export interface LoopContext {
+  loop: LoopView;
+  quantity: (name: string) => number | undefined;
+}
+
 /** A measure of the loop opened at a signal. */
 export interface LoopMeasure {
   description: MeasureDescription & { basis: 'loop' };
-  measure: (margins: LoopMargins) => MeasureResult;
+  measure: (context: LoopContext) => MeasureResult;
 }
 
 export type Measure = TraceMeasure | LoopMeasure;

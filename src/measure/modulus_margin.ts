@@ -1,4 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
+import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -7,12 +8,16 @@ export const modulusMargin: LoopMeasure = {
   description: {
     name: 'modulus_margin',
     basis: 'loop',
-    keys: [{ name: 'at', kind: 'loop_point', optional: false, meaning: 'where the loop is opened' }],
+    keys: [loopPointKey],
     dimension: () => plainNumber,
     ratio: true,
     better: 'higher',
     window: undefined,
-    meaning: 'min |1 + L| over frequency = 1 / max |S|; a plain number; 0 when the closed loop is unstable',
+    meaning:
+      'min |1 + L| over frequency = 1/max |S| (of several rates: one over the largest singular value of the lifted S); a plain number; 0 when the closed loop is unstable',
   },
-  measure: (margins) => ofStableLoop(margins, 0, () => measured(margins.modulusMargin)),
+  measure: ({ loop }) =>
+    ofStableLoop(loop, 0, () =>
+      measured(loop.changes === 1 ? loop.margins().modulusMargin : loop.liftedMargins().modulusMargin),
+    ),
 };

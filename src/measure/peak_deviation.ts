@@ -1,25 +1,22 @@
-import { difference, largest, smallest } from './extremes.js';
+import { difference } from './curve.js';
+import { largestSize } from './extremes.js';
+import { responseKey, targetKey, windowKeys } from './keys.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
 
-/** The largest distance of the response from the target from the scenario's first event on: max |of − to|. */
+/** The largest distance of the response from the target, the largest tracking error: max |of − to|. */
 export const peakDeviation: TraceMeasure = {
   description: {
     name: 'peak_deviation',
     basis: 'trace',
-    keys: [
-      { name: 'of', kind: 'signal', optional: false, meaning: 'the response' },
-      { name: 'to', kind: 'target', optional: false, meaning: 'what it should follow' },
-    ],
+    keys: [responseKey, targetKey, ...windowKeys],
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
     window: 'from_first_event',
-    meaning: 'max |of − to| from the first event of the scenario to its end; in the unit of `of`',
+    meaning: 'max |of − to| in the window: the largest tracking error; in the unit of `of`',
   },
-  measure: ({ of, to, firstEvent }) => {
+  measure: ({ of, to, window }) => {
     if (!to) return unformed('there is no target');
-    const gap = difference(of, to);
-    const end = gap.times[gap.pieces];
-    return measured(Math.max(largest(gap, firstEvent, end).value, -smallest(gap, firstEvent, end).value));
+    return measured(largestSize(difference(of, to), window.from, window.until));
   },
 };

@@ -1,19 +1,23 @@
 import { plainNumber } from '../spec/dimension.js';
+import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
-/** The phase (rad) that brings the loop to the edge of stability, the smallest in size over all gain crossovers. */
+/** The smallest phase change that brings the loop to the edge of stability, in size over all gain crossovers. */
 export const phaseMargin: LoopMeasure = {
   description: {
     name: 'phase_margin',
     basis: 'loop',
-    keys: [{ name: 'at', kind: 'loop_point', optional: false, meaning: 'where the loop is opened' }],
+    keys: [loopPointKey],
     dimension: () => plainNumber,
     ratio: false,
     better: 'higher',
     window: undefined,
     meaning:
-      'smallest |π + arg L| over all frequencies with |L| = 1; an angle; infinite without a crossover, 0 when the closed loop is unstable',
+      'smallest |π + arg L| over all frequencies with |L| = 1 (of several rates: with an eigenvalue of the lifted L of size 1); an angle; infinite without a crossover, 0 when the closed loop is unstable',
   },
-  measure: (margins) => ofStableLoop(margins, 0, () => measured(margins.phaseMargin)),
+  measure: ({ loop }) =>
+    ofStableLoop(loop, 0, () =>
+      measured(loop.changes === 1 ? loop.margins().phaseMargin : loop.liftedMargins().phaseMargin),
+    ),
 };

@@ -82,6 +82,7 @@ export class ScenarioRun {
     const m = new Float64Array(layout.length);
     m.set(parameters, layout.parameter);
     m.set(this.loop.inputRest, layout.input);
+    m.set(rest?.mode ?? this.loop.modes.map((mode) => mode.start), layout.mode);
     if (rest) {
       m.set(rest.state, layout.state);
       m.set(rest.memory, layout.memory);

@@ -1,18 +1,21 @@
 import { timeDimension } from '../spec/dimension.js';
+import type { Curve } from './curve.js';
+import { responseKey, stepKey } from './keys.js';
 import { lastEntry } from './last_entry.js';
-import { measured, type TraceMeasure, unformed } from './measure.js';
+import { type MeasureResult, measured, type TraceMeasure, unformed, type Window } from './measure.js';
 
 /**
  * Time from the step of the target to the response's last entry into after ± band·|after − before|, where it stays to the
- * end of the window. Zero when it never leaves the band; `never` when it is outside at the end of the window.
+ * end of the window; being exactly on the band counts as inside. Zero when it never leaves the band; `never` when it is
+ * outside at the end of the window.
  */
 export const settlingTime: TraceMeasure = {
   description: {
     name: 'settling_time',
     basis: 'trace',
     keys: [
-      { name: 'of', kind: 'signal', optional: false, meaning: 'the response' },
-      { name: 'to', kind: 'target', optional: false, meaning: 'the input that makes one step' },
+      responseKey,
+      stepKey,
       {
         name: 'band',
         kind: 'share',
@@ -25,16 +28,21 @@ export const settlingTime: TraceMeasure = {
     better: 'lower',
     window: 'single_step_outlasting_limit',
     meaning:
-      'from the step of `to` to the last entry of `of` into after ± band·|after − before|, staying inside to the end of the window; s',
+      'from the step of `to` to the last entry of `of` into after ± band·|after − before|, staying inside to the end of the window; s; 0 where it never leaves the band, never where it ends outside',
   },
   measure: ({ of, step, quantity }) => {
     if (!step) return unformed('the target makes no single step');
-    const band = quantity('band')! * Math.abs(step.after - step.before);
-    const entry = lastEntry(of, step.after - band, step.after + band, step.time, step.until);
-    if (entry.kind === 'not_a_number') return unformed('the response is not a number');
-    if (entry.kind === 'inside') return measured(entry.time - step.time);
-    const left = Math.abs(entry.value - step.after);
-    const span = Number((step.until - step.time).toPrecision(4));
-    return { kind: 'never', why: `longer than ${span} s: never stays in the band`, left };
+    const half = quantity('band')! * Math.abs(step.after - step.before);
+    return timeToStay(of, step.after, half, { from: step.time, until: step.until });
   },
 };
+
+/** Time from the start of a window to the last entry into centre ± half, where the curve stays to its end. */
+export function timeToStay(of: Curve, centre: number, half: number, { from, until }: Window): MeasureResult {
+  const entry = lastEntry(of, centre - half, centre + half, from, until);
+  if (entry.kind === 'not_a_number') return unformed('the response is not a number');
+  if (entry.kind === 'inside') return measured(entry.time - from);
+  const span = Number((until - from).toPrecision(4));
+  const left = Math.abs(entry.value - centre);
+  return { kind: 'never', why: `longer than ${span} s: never stays in the band`, left };
+}

@@ -1,3 +1,4 @@
+import { readAngularFrequency } from './read_angular_frequency.js';
 import { type ReadQuantity, readQuantity } from './read_quantity.js';
 import type { Reading } from './reading.js';
 import type { Dimension, Limit, Place, Unit } from './spec.js';
@@ -27,7 +28,10 @@ export function readLimit(
   const [entry] = given;
   const parts = entry.key === 'between' ? itemsOf(entry.value) : [entry.value];
   const bounds = parts.map((part) => {
-    const bound = readQuantity(part, dimension, `the limit of \`${measure.name}\``, reading);
+    const what = `the limit of \`${measure.name}\``;
+    const bound = measure.takesHertz
+      ? readAngularFrequency(part, what, reading)
+      : readQuantity(part, dimension, what, reading);
     return bound && checkedBound(bound, measure, reading);
   });
   if (bounds.length === 0 || bounds.some((bound) => bound === undefined)) return undefined;

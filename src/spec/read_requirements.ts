@@ -1,5 +1,6 @@
 import { plainNumber } from './dimension.js';
 import { suggestion } from './nearest.js';
+import { readAngularFrequency } from './read_angular_frequency.js';
 import { readAround } from './read_around.js';
 import { readLimit } from './read_limit.js';
 import { readQuantity, readShare } from './read_quantity.js';
@@ -144,9 +145,13 @@ function readQuantities(
 ): Record<string, number> {
   const quantities: Record<string, number> = {};
   for (const key of measure.keys) {
-    if (key.kind !== 'share' && key.kind !== 'quantity') continue;
+    if (key.kind !== 'share' && key.kind !== 'quantity' && key.kind !== 'frequency') continue;
     const dimension = key.kind === 'quantity' ? ofDimension && key.dimension(ofDimension) : plainNumber;
-    const quantity = readQuantity(childOf(item, key.name), dimension, `\`${key.name}\``, reading);
+    const [tree, what] = [childOf(item, key.name), `\`${key.name}\``];
+    const quantity =
+      key.kind === 'frequency'
+        ? readAngularFrequency(tree, what, reading)
+        : readQuantity(tree, dimension, what, reading);
     if (quantity === undefined) continue;
     if (quantity.value <= 0) reading.problems.add(quantity.place, `\`${key.name}\` must be above 0`);
     quantities[key.name] = quantity.value;

@@ -1,0 +1,117 @@
+import type { Complex } from './complex.js';
+import { magnitude } from './complex.js';
+import { type GainLoci, gainLoci } from './gain_loci.js';
+import { largestGain } from './largest_gain.js';
+import { type GainMargin, gainMarginOf } from './margins.js';
+import { add, identity, multiply, scale } from './matrix.js';
+import { modesOf } from './modes.js';
+import { polesOf, stabilityReserve } from './poles.js';
+import { solve } from './solve.js';
+import type { StateEquations } from './state_equations.js';
+
+/** The margins of a loop whose signal changes several times in a cycle. As `LoopMargins`, an unstable loop has none. */
+export interface LiftedMargins {
+  /** Whether all eigenvalues of the closed loop over one cycle (Floquet 1883) lie inside the unit circle. */
+  stable: boolean;
+  /** By which factors every change of the signal may be multiplied alike. */
+  gainMargin: GainMargin;
+  /** Smallest φ in rad for which e^{jφ} on every change of the signal brings the loop to the edge of stability. */
+  phaseMargin: number;
+  /** 1/‖S‖∞: by how much the returned may differ from what it is, over energy, whatever changes at whatever instant. */
+  modulusMargin: number;
+  /** ‖S‖∞ with S = (I + L)⁻¹: the largest ratio of energies over all signals. */
+  sensitivityPeak: number;
+  /** ‖L(I + L)⁻¹‖∞ */
+  complementaryPeak: number;
+  /** 1/‖S − I/2‖∞, the balanced disc margin. */
+  discMargin: number;
+  /** Decay rate of the slowest mode, 1/s. */
+  decayRate: number;
+}
+
+/**
+ * The margins of a lifted sampled loop transfer L with K inputs and K outputs, exact: with a scalar c on every change of
+ * the signal the loop is at the edge of stability where an eigenvalue of L is −1/c, so gain and phase margins are read from
+ * the loci of the eigenvalues; peaks are the largest singular values of the closed loop over frequency.
+ * @throws NumericFailure when the loop cannot be closed or an entry is not finite.
+ */
+export function liftedMargins(loop: StateEquations): LiftedMargins {
+  const sensitivity = liftedSensitivity(loop);
+  const poles = polesOf(sensitivity.a, loop.period);
+  const decayRate = modesOf(sensitivity.a, loop.period)[0]?.decayRate ?? Number.POSITIVE_INFINITY;
+  if (!(stabilityReserve(poles, loop.period) > 0)) return { ...unstable, decayRate };
+  const loci = gainLoci(loop, [...poles, ...polesOf(loop.a, loop.period)]);
+  const one = identity(loop.b.columns);
+  const sensitivityPeak = largestGain(sensitivity).value;
+  const complementary = {
+    ...sensitivity,
+    c: scale(sensitivity.c, -1),
+    d: add(one, sensitivity.d, -1),
+  };
+  return {
+    stable: true,
+    gainMargin: gainMarginOf(negativeCrossings(loci)),
+    phaseMargin: smallestPhase(loci),
+    modulusMargin: 1 / sensitivityPeak,
+    sensitivityPeak,
+    complementaryPeak: largestGain(complementary).value,
+    discMargin: 1 / largestGain({ ...sensitivity, d: add(sensitivity.d, one, -0.5) }).value,
+    decayRate,
+  };
+}
+
+const unstable = {
+  stable: false,
+  gainMargin: { up: 1, down: 1, ratio: 1 },
+  phaseMargin: 0,
+  modulusMargin: 0,
+  sensitivityPeak: Number.POSITIVE_INFINITY,
+  complementaryPeak: Number.POSITIVE_INFINITY,
+  discMargin: 0,
+};
+
+/** (I + L)⁻¹ = I − (I + L)⁻¹·L in state equations. */
+function liftedSensitivity(loop: StateEquations): StateEquations {
+  const { a, b, c, d, period } = loop;
+  const closing = solve(add(identity(d.rows), d), identity(d.rows));
+  const entered = multiply(b, closing);
+  return {
+    a: add(a, multiply(entered, c), -1),
+    b: entered,
+    c: scale(multiply(closing, c), -1),
+    d: closing,
+    period,
+  };
+}
+
+/** Beyond this gain, or below one over it, the sign of a small part is rounding and nothing counts as a crossing. */
+const largestCounted = 1e8;
+/** At zero frequency and half the frequency of the cycle a value with so small an imaginary part, as a share, is real. */
+const realShare = 1e-9;
+
+function negativeCrossings(loci: GainLoci): { factor: number }[] {
+  const crossed = loci.steps
+    .filter(({ from, to }) => from.value.imaginary * to.value.imaginary < 0)
+    .filter(({ from, to }) => from.value.real < 0 || to.value.real < 0)
+    .map((step) => loci.zeroWithin(step, ({ imaginary }) => imaginary).value);
+  const atEnds = loci.ends
+    .flatMap(({ values }) => values)
+    .filter(({ real, imaginary }) => Math.abs(imaginary) <= realShare * Math.abs(real));
+  return [...crossed, ...atEnds].filter(({ real }) => real < 0).flatMap(counted);
+}
+
+function counted(value: Complex): { factor: number }[] {
+  const factor = 1 / magnitude(value);
+  return factor < largestCounted && factor > 1 / largestCounted ? [{ factor }] : [];
+}
+
+function smallestPhase(loci: GainLoci): number {
+  const excess = (value: Complex): number => magnitude(value) - 1;
+  let least = Number.POSITIVE_INFINITY;
+  for (const step of loci.steps) {
+    if (!(excess(step.from.value) * excess(step.to.value) < 0)) continue;
+    const { real, imaginary } = loci.zeroWithin(step, excess).value;
+    least = Math.min(least, Math.abs(Math.atan2(-imaginary, -real)));
+  }
+  return least;
+}

@@ -1,0 +1,25 @@
+import { plainNumber } from '../spec/dimension.js';
+import { loopPointKey } from './keys.js';
+import { type LoopMeasure, measured } from './measure.js';
+import { ofStableLoop } from './stable_loop.js';
+
+/** The largest gain around the closed loop. */
+export const complementaryPeak: LoopMeasure = {
+  description: {
+    name: 'complementary_peak',
+    basis: 'loop',
+    keys: [loopPointKey],
+    dimension: () => plainNumber,
+    ratio: true,
+    better: 'lower',
+    window: undefined,
+    meaning:
+      'max |L/(1 + L)| over frequency (of several rates: the largest singular value of the lifted L/(1 + L)); a ratio or dB; infinite when the closed loop is unstable',
+  },
+  measure: ({ loop }) =>
+    ofStableLoop(loop, Number.POSITIVE_INFINITY, () =>
+      measured(
+        loop.changes === 1 ? loop.margins().complementaryPeak.value : loop.liftedMargins().complementaryPeak,
+      ),
+    ),
+};

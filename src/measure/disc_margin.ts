@@ -1,0 +1,23 @@
+import { plainNumber } from '../spec/dimension.js';
+import { loopPointKey } from './keys.js';
+import { type LoopMeasure, measured } from './measure.js';
+import { ofStableLoop } from './stable_loop.js';
+
+/** How far gain and phase may change at the same time. */
+export const discMargin: LoopMeasure = {
+  description: {
+    name: 'disc_margin',
+    basis: 'loop',
+    keys: [loopPointKey],
+    dimension: () => plainNumber,
+    ratio: false,
+    better: 'higher',
+    window: undefined,
+    meaning:
+      'α = 1/max |S − 1/2| over frequency (of several rates: of the lifted S): factors (1 + αδ/2)/(1 − αδ/2), |δ| < 1, on the loop leave it stable; a plain number; 0 when the closed loop is unstable',
+  },
+  measure: ({ loop }) =>
+    ofStableLoop(loop, 0, () =>
+      measured(loop.changes === 1 ? loop.discMargin().margin : loop.liftedMargins().discMargin),
+    ),
+};

@@ -1,0 +1,68 @@
+import { timeDimension } from '../spec/dimension.js';
+import type { MeasureKey } from '../spec/vocabulary.js';
+
+/** Keys that several measures share, so that one word means one thing. */
+export const responseKey: MeasureKey = {
+  name: 'of',
+  kind: 'signal',
+  optional: false,
+  meaning: 'the response',
+};
+
+export const signalKey: MeasureKey = { name: 'of', kind: 'signal', optional: false, meaning: 'the signal' };
+
+export const stepKey: MeasureKey = {
+  name: 'to',
+  kind: 'target',
+  optional: false,
+  meaning: 'the input that makes one step',
+};
+
+export const targetKey: MeasureKey = {
+  name: 'to',
+  kind: 'target',
+  optional: false,
+  meaning: 'what it should follow',
+};
+
+export const loopPointKey: MeasureKey = {
+  name: 'at',
+  kind: 'loop_point',
+  optional: false,
+  meaning: 'where the loop is opened',
+};
+
+/** The window of a measure: times of the scenario. */
+export const windowKeys: readonly MeasureKey[] = [
+  {
+    name: 'from',
+    kind: 'quantity',
+    dimension: () => timeDimension,
+    optional: true,
+    meaning: 'where the window begins, as a time of the scenario; its first event unless given',
+  },
+  {
+    name: 'until',
+    kind: 'quantity',
+    dimension: () => timeDimension,
+    optional: true,
+    meaning: 'where the window ends, as a time of the scenario; its end unless given',
+  },
+];
+
+/** The frequencies over which a response is looked at. */
+export const frequencyRangeKeys: readonly MeasureKey[] = [
+  { name: 'frequency', kind: 'frequency', optional: true, meaning: 'the one frequency' },
+  {
+    name: 'from_frequency',
+    kind: 'frequency',
+    optional: true,
+    meaning: 'where the range begins; zero frequency unless given',
+  },
+  {
+    name: 'to_frequency',
+    kind: 'frequency',
+    optional: true,
+    meaning: 'where the range ends; half the sampling frequency unless given',
+  },
+];

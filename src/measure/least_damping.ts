@@ -1,0 +1,20 @@
+import { plainNumber } from '../spec/dimension.js';
+import { loopPointKey } from './keys.js';
+import { type LoopMeasure, measured } from './measure.js';
+import { ofSingleRate } from './stable_loop.js';
+
+/** The damping ratio of the least damped mode of the closed loop. */
+export const leastDamping: LoopMeasure = {
+  description: {
+    name: 'least_damping',
+    basis: 'loop',
+    keys: [loopPointKey],
+    dimension: () => plainNumber,
+    ratio: false,
+    better: 'higher',
+    window: undefined,
+    meaning:
+      'least −Re s/|s| over the modes of the closed loop, s = ln(z)/T; a plain number from 1 (no oscillation) to 0; negative when unstable',
+  },
+  measure: ({ loop }) => ofSingleRate(loop, () => measured(loop.closedLoopDecay().dampingRatio)),
+};

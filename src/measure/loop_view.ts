@@ -1,0 +1,65 @@
+import { bandwidthOf } from '../linear/bandwidth.js';
+import { complementaryOf } from '../linear/closed_loop.js';
+import { type DiscMargin, discMarginOfLoop } from '../linear/disc_margin.js';
+import { type LiftedMargins, liftedMargins } from '../linear/lifted_margins.js';
+import { type LoopMargins, marginsOfLoop } from '../linear/margins.js';
+import { type ClosedLoopDecay, closedLoopDecay } from '../linear/modes.js';
+import type { StateEquations } from '../linear/state_equations.js';
+
+/**
+ * A loop opened at a signal, of which measures take what they need: each result is worked out once. A signal that changes
+ * more than once in a cycle of all controllers gives a lifted loop, with one input and output for each change.
+ */
+export class LoopView {
+  private single: LoopMargins | undefined;
+  private lifted: LiftedMargins | undefined;
+  private disc: DiscMargin | undefined;
+  private decay: ClosedLoopDecay | undefined;
+
+  /** @param equations the loop transfer L, −(returned / injected), over one cycle. */
+  constructor(readonly equations: StateEquations) {}
+
+  /** How often the signal changes in a cycle of all controllers. */
+  get changes(): number {
+    return this.equations.b.columns;
+  }
+
+  /** Time between two changes of the signal, s. */
+  get period(): number {
+    return this.equations.period! / this.changes;
+  }
+
+  /** Whether the closed loop is stable. */
+  get stable(): boolean {
+    return this.changes === 1 ? this.margins().stable : this.liftedMargins().stable;
+  }
+
+  /** Of a loop with one change a cycle. @throws NumericFailure as `marginsOfLoop`. */
+  margins(): LoopMargins {
+    this.single ??= marginsOfLoop(this.equations);
+    return this.single;
+  }
+
+  /** Of a loop with several changes a cycle. @throws NumericFailure as `liftedMargins`. */
+  liftedMargins(): LiftedMargins {
+    this.lifted ??= liftedMargins(this.equations);
+    return this.lifted;
+  }
+
+  /** Of a loop with one change a cycle. @throws NumericFailure as `discMarginOfLoop`. */
+  discMargin(): DiscMargin {
+    this.disc ??= discMarginOfLoop(this.equations);
+    return this.disc;
+  }
+
+  /** Of a loop with one change a cycle. @throws NumericFailure as `closedLoopDecay`. */
+  closedLoopDecay(): ClosedLoopDecay {
+    this.decay ??= closedLoopDecay(this.equations);
+    return this.decay;
+  }
+
+  /** Of a loop with one change a cycle, rad/s. @throws NumericFailure as `bandwidthOf`. */
+  bandwidth(): number {
+    return bandwidthOf(complementaryOf(this.equations));
+  }
+}

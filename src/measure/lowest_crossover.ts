@@ -1,0 +1,20 @@
+import { rateDimension } from '../spec/dimension.js';
+import { loopPointKey } from './keys.js';
+import { type LoopMeasure, measured } from './measure.js';
+import { ofSingleRate } from './stable_loop.js';
+
+/** The lowest frequency at which the loop gain is one. */
+export const lowestCrossover: LoopMeasure = {
+  description: {
+    name: 'lowest_crossover',
+    basis: 'loop',
+    keys: [loopPointKey],
+    dimension: () => rateDimension,
+    ratio: false,
+    better: 'higher',
+    window: undefined,
+    takesHertz: true,
+    meaning: 'lowest frequency with |L| = 1; rad/s or Hz; 0 without one',
+  },
+  measure: ({ loop }) => ofSingleRate(loop, () => measured(loop.margins().gainCrossings[0]?.frequency ?? 0)),
+};

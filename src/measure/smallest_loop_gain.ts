@@ -1,0 +1,22 @@
+import { LOOP_GAIN } from '../linear/band_extremes.js';
+import { plainNumber } from '../spec/dimension.js';
+import { extremeOverRange } from './frequency_range.js';
+import { frequencyRangeKeys, loopPointKey } from './keys.js';
+import type { LoopMeasure } from './measure.js';
+import { ofSingleRate } from './stable_loop.js';
+
+/** The smallest loop gain over a range of frequencies, as rejection of slow disturbances asks for. */
+export const smallestLoopGain: LoopMeasure = {
+  description: {
+    name: 'smallest_loop_gain',
+    basis: 'loop',
+    keys: [loopPointKey, ...frequencyRangeKeys],
+    dimension: () => plainNumber,
+    ratio: true,
+    better: 'higher',
+    window: undefined,
+    meaning: 'min |L| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB',
+  },
+  measure: ({ loop, quantity }) =>
+    ofSingleRate(loop, () => extremeOverRange(loop, LOOP_GAIN, 'smallest', quantity)),
+};
