@@ -79,10 +79,12 @@ export class ControllerRoom {
 
   private workshop({ start }: SignalDefinition, task: number): Workshop {
     return {
+      room: 'controller',
       arithmetic: this.arithmetic(task),
-      addState: () => {
-        throw new Error('a block of a controller asked for a continuous state');
-      },
+      addState: () => notHere('a continuous state'),
+      addMode: () => notHere('a mode'),
+      addCorrection: () => notHere('a correction of a state'),
+      delayed: () => notHere('a dead time'),
       addMemory: (name, next) => this.parts.addMemory(name, task, start ?? 0, next),
       period: () => this.arithmetic(task).take(this.plant.lower(this.controllers[task].every)),
     };
@@ -163,4 +165,8 @@ export class ControllerRoom {
     value = limited(value, sensor.range, this.plant.surroundings);
     return sensor.quantum ? graph.apply('quantise', value, this.plant.lower(sensor.quantum)) : value;
   }
+}
+
+function notHere(what: string): never {
+  throw new Error(`a block of a controller asked for ${what}`);
 }

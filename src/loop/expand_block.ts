@@ -6,7 +6,11 @@ import { LoopError } from './loop.js';
 import { lower, type Surroundings } from './lower.js';
 import type { Parts } from './parts.js';
 
-const blockByKey = new Map(blocks.map((block) => [block.description.key, block]));
+const blockByKey = new Map(
+  blocks.flatMap((block) =>
+    block.description.rooms.map((room) => [`${room} ${block.description.key}`, block]),
+  ),
+);
 
 /** Expands one signal's block into equations and returns the signal's value, kept in its range. */
 export function expandBlock(
@@ -15,7 +19,7 @@ export function expandBlock(
   workshop: Workshop,
   parts: Parts,
 ): Node {
-  const block = blockByKey.get(definition.block)!;
+  const block = blockByKey.get(`${workshop.room} ${definition.block}`)!;
   const use = blockUse(definition, around, parts);
   const node = block.expand(use, workshop);
   if (definition.slew) {

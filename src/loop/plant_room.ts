@@ -1,5 +1,6 @@
 import type { Expression, SensorDefinition, SignalDefinition, Spec } from '../spec/spec.js';
 import type { Workshop } from './blocks/block.js';
+import { DelayedCopies } from './delayed.js';
 import { expandBlock } from './expand_block.js';
 import type { Node } from './graph.js';
 import { lower, type Surroundings } from './lower.js';
@@ -12,11 +13,13 @@ export class PlantRoom {
   private readonly signals = new Map<string, Node>();
   private readonly measuredBySensor = new Map<string, Node>();
   private readonly actuators = new Map<string, Node>();
+  private readonly delayedCopies: DelayedCopies;
 
   constructor(
     private readonly spec: Spec,
     private readonly parts: Parts,
   ) {
+    this.delayedCopies = new DelayedCopies(parts);
     this.surroundings = {
       arithmetic: parts.plain,
       name: (use) => this.named(use),
@@ -90,16 +93,21 @@ export class PlantRoom {
     }
   }
 
-  private workshop(definition: SignalDefinition): Workshop {
+  private workshop({ start, place }: SignalDefinition): Workshop {
+    const { parts } = this;
     return {
-      arithmetic: this.parts.plain,
-      addState: (name, derivative) => this.parts.addState(name, definition.start ?? 0, derivative),
-      addMemory: () => {
-        throw new Error('a block of the plant asked for a sampled memory');
-      },
-      period: () => {
-        throw new Error('a block of the plant asked for a sampling period');
-      },
+      room: 'plant',
+      arithmetic: parts.plain,
+      addState: (name, derivative, own) => parts.addState(name, own ?? start ?? 0, derivative),
+      addMode: (name, next, own) => parts.addMode(name, own ?? start ?? 0, next),
+      addCorrection: (state, value) => parts.addCorrection(state, value),
+      delayed: (node, delay) => this.delayedCopies.of(node, delay, place),
+      addMemory: () => notHere('a sampled memory'),
+      period: () => notHere('a sampling period'),
     };
   }
+}
+
+function notHere(what: string): never {
+  throw new Error(`a block of the plant asked for ${what}`);
 }

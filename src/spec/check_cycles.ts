@@ -8,7 +8,9 @@ export function checkCycles(
   reading: Reading,
 ): void {
   const states = new Set(
-    reading.vocabulary.blocks.filter((block) => block.outputIsState).map((block) => block.key),
+    reading.vocabulary.blocks
+      .filter((block) => block.outputIsState && block.rooms.includes('plant'))
+      .map((block) => block.key),
   );
   report(
     new Map(plant.map((signal) => [signal.name, plantNeeds(signal, states)])),

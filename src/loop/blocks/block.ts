@@ -1,5 +1,5 @@
 import type { Place } from '../../spec/spec.js';
-import type { BlockDescription } from '../../spec/vocabulary.js';
+import type { BlockDescription, Room } from '../../spec/vocabulary.js';
 import type { TargetArithmetic } from '../arithmetic.js';
 import type { Node } from '../graph.js';
 
@@ -20,10 +20,17 @@ export interface BlockUse {
 
 /** What a block can add to the loop. Rates and next values are deferred, so that signals may refer to each other. */
 export interface Workshop {
+  room: Room;
   /** Builds expressions; in a controller as the target computes them. */
   arithmetic: TargetArithmetic;
-  /** Adds a continuous state and returns it. */
-  addState: (name: string, derivative: () => Node) => Node;
+  /** Adds a continuous state and returns it; it starts at the signal's `start:` unless said otherwise. Plant only. */
+  addState: (name: string, derivative: () => Node, start?: number) => Node;
+  /** Adds a value that jumps, taken anew after every step of the movement. Plant only. */
+  addMode: (name: string, next: () => Node, start?: number) => Node;
+  /** Brings a state to a value after every step of the movement. Plant only. */
+  addCorrection: (state: Node, value: () => Node) => void;
+  /** An expression of the plant as it was some time ago (s). Plant only. */
+  delayed: (node: Node, delay: Node) => Node;
   /** Adds a number kept between sampling instants and returns its value at the last one. */
   addMemory: (name: string, next: () => Node) => Node;
   /** The controller's sampling period in s, in the target's format. */

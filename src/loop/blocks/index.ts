@@ -1,9 +1,29 @@
+import { backlash } from './backlash.js';
 import { biquads } from './biquads.js';
 import type { Block } from './block.js';
+import { continuousLeadLag } from './continuous_lead_lag.js';
+import { deadBand } from './dead_band.js';
+import { deadTime } from './dead_time.js';
+import { friction } from './friction.js';
+import { hysteresis } from './hysteresis.js';
 import { integral } from './integral.js';
 import { lag } from './lag.js';
 import { pid } from './pid.js';
+import { secondOrderLag } from './second_order_lag.js';
 import { value } from './value.js';
 
 /** Every block that a spec can use. */
-export const blocks: readonly Block[] = [value, integral, lag, pid, biquads];
+export const blocks: readonly Block[] = [
+  value,
+  integral,
+  lag,
+  secondOrderLag,
+  continuousLeadLag,
+  deadTime,
+  deadBand,
+  backlash,
+  hysteresis,
+  friction,
+  pid,
+  biquads,
+];
