@@ -1,4 +1,4 @@
-import type { Expression, SignalDefinition } from './spec.js';
+import type { Expression, Setting, SignalDefinition } from './spec.js';
 
 /** A name that an expression needs, and whether it needs it at the same instant. */
 export interface Need {
@@ -24,11 +24,24 @@ export function needsOf(expression: Expression, atOnce = true): Need[] {
   }
 }
 
+/** The expressions in a setting; what is needed later only counts as standing in before(…). */
+function expressionsIn(setting: Setting): Expression[] {
+  if (setting.kind === 'names')
+    return setting.names.map((name) =>
+      before({ kind: 'name', role: 'signal', name, index: undefined, place: setting.place }),
+    );
+  const all =
+    setting.kind === 'expression' ? [setting.expression] : setting.kind === 'rows' ? setting.rows.flat() : [];
+  return 'late' in setting && setting.late ? all.map(before) : all;
+}
+
+function before(of: Expression): Expression {
+  return { kind: 'before', of, place: of.place };
+}
+
 /** The expressions of a signal: what drives its block, and the bounds that act on its output. */
 export function expressionsOf(signal: SignalDefinition): { drives: Expression[]; bounds: Expression[] } {
-  const settings = Object.values(signal.settings).flatMap((setting) =>
-    setting.kind === 'expression' ? [setting.expression] : [],
-  );
+  const settings = Object.values(signal.settings).flatMap(expressionsIn);
   const given = (list: (Expression | undefined)[]) => list.filter((one) => one !== undefined);
   return {
     drives: [...settings, ...given([signal.of, signal.gain])],

@@ -1,5 +1,6 @@
 import { plainNumber, quotientOf, timeDimension } from './dimension.js';
 import { suggestion } from './nearest.js';
+import { readCoefficientName } from './read_coefficient_name.js';
 import {
   type Free,
   fit,
@@ -10,15 +11,17 @@ import {
   type Surroundings,
 } from './read_expression.js';
 import { readCorner, readTimeConstant } from './read_frequency.js';
+import { readList } from './read_list.js';
 import { declaredUnit } from './read_named.js';
+import { readPair } from './read_pair.js';
 import { readPoint } from './read_quantity.js';
 import { missing, type Reading } from './reading.js';
 import type { Dimension, Expression, Setting, SignalDefinition, Unit } from './spec.js';
 import { childOf, entryOf, type MapEntry, type Tree, textOf } from './tree.js';
-import type { BlockDescription, Room, SettingDescription } from './vocabulary.js';
+import type { BlockDescription, Room, SettingDescription, SignalDimensions } from './vocabulary.js';
 
 /** What is known of a signal while its settings are read. */
-interface Workplace {
+export interface Workplace {
   block: BlockDescription;
   entry: MapEntry;
   unit: Unit | undefined;
@@ -41,6 +44,7 @@ export function readSignal(
   const unit = declaredUnit(entry, reading);
   const scale = around.room.si ? 1 : (unit?.scale ?? 1);
   const ofTree = childOf(entry.value, 'of');
+  const pair = block.takesPair ? readPair(ofTree, around, reading) : undefined;
   const place: Workplace = {
     block,
     entry,
@@ -48,7 +52,7 @@ export function readSignal(
     scale,
     around,
     reading,
-    input: readFree(ofTree, around, reading),
+    input: pair?.difference ?? readFree(ofTree, around, reading),
   };
   checkCompanions(place);
   const own: Slot = { dimension: unit?.dimension, scale, what: '`range`' };
@@ -59,6 +63,7 @@ export function readSignal(
     block: block.key,
     settings: readSettings(place),
     of: readOf(place),
+    ...(pair && { pair: { target: pair.target, measurement: pair.measurement } }),
     unit: unit!,
     gain: readExpression(childOf(entry.value, 'gain'), gainSlot(place), around, reading),
     range: readRange(childOf(entry.value, 'range'), own, around, reading),
@@ -101,6 +106,10 @@ function checkCompanions({ block, entry, reading }: Workplace): void {
       `\`${block.key}\` takes no \`of:\`; what it depends on stands in its expression`,
     );
   }
+  if (block.takesInput && !block.takesPair && of?.value.kind === 'map') {
+    reading.names.incomplete = true;
+    reading.problems.add(of.keyPlace, `\`${block.key}\` takes one signal, such as \`target - measurement\``);
+  }
   if (!block.takesGain && gain !== undefined) {
     reading.problems.add(gain.keyPlace, `\`${block.key}\` takes no \`gain:\` beside it`);
   }
@@ -136,7 +145,7 @@ function readSettings(place: Workplace): Record<string, Setting> {
   const given = childOf(entry.value, block.key)!;
   const settings: Record<string, Setting> = {};
   for (const description of block.settings) {
-    const direct = description.name === block.key && given.kind !== 'map';
+    const direct = description.name === (block.main ?? block.key) && given.kind !== 'map';
     const tree = direct ? given : childOf(given, description.name);
     const setting = tree && readSetting(tree, description, place);
     if (setting !== undefined) settings[description.name] = setting;
@@ -161,7 +170,8 @@ function readSetting(tree: Tree, description: SettingDescription, place: Workpla
   switch (description.kind) {
     case 'expression': {
       const slot = { ...settingSlot(description.dimension, place), what };
-      return { kind: 'expression', expression: readExpression(tree, slot, around, reading)! };
+      const late = description.late && { late: true };
+      return { kind: 'expression', expression: readExpression(tree, slot, around, reading)!, ...late };
     }
     case 'time_constant':
       return { kind: 'expression', expression: readTimeConstant(tree, what, around, reading)! };
@@ -169,6 +179,10 @@ function readSetting(tree: Tree, description: SettingDescription, place: Workpla
       return { kind: 'expression', expression: readCorner(tree, what, around, reading)! };
     case 'coefficients':
       return readCoefficientName(tree, what, reading);
+    case 'signals':
+    case 'estimates':
+    case 'matrix':
+      return readList(tree, description, place);
     case 'word':
       return readWord(tree, description.words, what, reading);
   }
@@ -179,39 +193,21 @@ function readSetting(tree: Tree, description: SettingDescription, place: Workpla
  * found by trying it on dimensions with a single exponent.
  */
 function settingSlot(
-  rule: (of: { output: Dimension; input: Dimension }) => Dimension,
-  { unit, input, scale, block }: Workplace,
+  rule: (of: SignalDimensions) => Dimension,
+  { unit, input, scale, block, entry }: Workplace,
 ): Omit<Slot, 'what'> {
   const inputDimension = block.takesInput ? input?.dimension : plainNumber;
   if (unit === undefined || inputDimension === undefined) return { dimension: undefined, scale: 1 };
+  const given = childOf(entry.value, block.key);
+  const word = (name: string): string | undefined => textOf(childOf(given, name))?.text;
   const probe = plainNumber.map((_, at) => (at === 0 ? 1 : 0));
-  const none = rule({ output: plainNumber, input: plainNumber })[0];
-  const ofOutput = rule({ output: probe, input: plainNumber })[0] - none;
-  const ofInput = rule({ output: plainNumber, input: probe })[0] - none;
+  const none = rule({ output: plainNumber, input: plainNumber, word })[0];
+  const ofOutput = rule({ output: probe, input: plainNumber, word })[0] - none;
+  const ofInput = rule({ output: plainNumber, input: probe, word })[0] - none;
   return {
-    dimension: rule({ output: unit.dimension, input: inputDimension }),
+    dimension: rule({ output: unit.dimension, input: inputDimension, word }),
     scale: scale ** ofOutput * (input?.scale ?? 1) ** ofInput,
   };
-}
-
-function readCoefficientName(tree: Tree, what: string, reading: Reading): Setting | undefined {
-  const text = textOf(tree);
-  if (text === undefined) return undefined;
-  reading.names.used.add(text.text);
-  if (reading.names.entries.get(text.text)?.kind === 'coefficient') {
-    return { kind: 'coefficients', name: text.text, place: text.place };
-  }
-  const known = [...reading.names.entries.values()].filter(({ kind }) => kind === 'coefficient');
-  const near = suggestion(
-    text.text,
-    known.map(({ name }) => name),
-  );
-  reading.names.incomplete = true;
-  reading.problems.add(
-    text.place,
-    `${what} must be the name of a coefficient, but is \`${text.text}\`${near}`,
-  );
-  return undefined;
 }
 
 function readWord(tree: Tree, words: readonly string[], what: string, reading: Reading): Setting | undefined {

@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import type { BlockDescription, Room, Vocabulary } from './vocabulary.js';
+import type { BlockDescription, Room, SettingDescription, Vocabulary } from './vocabulary.js';
 
 /** What is said of a slot in the JSON Schema and in the error when it is missing or of the wrong shape. */
 const text = (expected: string) => z.string().describe(expected);
@@ -117,13 +117,24 @@ const input = z
   .strictObject({ unit, rest: text('the value before anything happens').optional() })
   .describe('{ unit: … }');
 
+const lists = {
+  signals: (meaning: string) => z.union([text(meaning), z.array(text('a signal')).min(1)]),
+  estimates: () => z.array(text('the name of a signal')).min(1),
+  matrix: (meaning: string) =>
+    z.union([text(meaning), z.array(z.union([text('a number'), z.array(text('a number')).min(1)])).min(1)]),
+};
+
+function settingValue({ kind, meaning }: SettingDescription) {
+  return kind in lists ? lists[kind as keyof typeof lists](meaning).describe(meaning) : text(meaning);
+}
+
 function blockValue(block: BlockDescription) {
-  const whole = block.settings.find((setting) => setting.name === block.key);
-  const direct = text(whole?.meaning ?? `the settings of ${block.key}`);
+  const whole = block.settings.find((setting) => setting.name === (block.main ?? block.key));
+  const direct = whole === undefined ? text(`the settings of ${block.key}`) : settingValue(whole);
   if (whole !== undefined && block.settings.length === 1) return direct;
   const settings = Object.fromEntries(
     block.settings.map((setting) => {
-      const slot = text(setting.meaning);
+      const slot = settingValue(setting);
       return [setting.name, setting.optional || setting === whole ? slot.optional() : slot];
     }),
   );
@@ -134,13 +145,20 @@ function blockValue(block: BlockDescription) {
   return whole === undefined ? mapping : z.union([direct, mapping]).describe(whole.meaning);
 }
 
+const pair = z
+  .strictObject({ target: text('the wanted value'), measurement: text('the measured value') })
+  .describe('{ target: …, measurement: … }');
+
 function signal(vocabulary: Vocabulary, room: Room) {
   const blocks = vocabulary.blocks.filter((block) => block.rooms.includes(room));
   const defining = Object.fromEntries(blocks.map((block) => [block.key, blockValue(block).optional()]));
   return z
     .strictObject({
       ...defining,
-      of: expression,
+      of: z
+        .union([expression.unwrap(), pair])
+        .describe('an expression, or { target: …, measurement: … }')
+        .optional(),
       unit,
       gain: expression,
       range,

@@ -43,9 +43,14 @@ export type Expression =
   | { kind: 'call'; name: string; arguments: Expression[]; place: Place }
   | { kind: 'before'; of: Expression; place: Place };
 
-/** The value of one setting of a block, as its description asks for it. */
+/**
+ * The value of one setting of a block, as its description asks for it. What is `late` is not needed at the same instant.
+ * `rows`: a matrix row by row; a list is one row.
+ */
 export type Setting =
-  | { kind: 'expression'; expression: Expression }
+  | { kind: 'expression'; expression: Expression; late?: boolean }
+  | { kind: 'rows'; rows: Expression[][]; place: Place; late?: boolean }
+  | { kind: 'names'; names: string[]; place: Place }
   | { kind: 'coefficients'; name: string; place: Place }
   | { kind: 'word'; word: string; place: Place };
 
@@ -61,9 +66,11 @@ export interface SignalDefinition {
   place: Place;
   /** The defining key: the name of the block. */
   block: string;
-  /** By setting name; the value of the defining key itself, where it is not a mapping, is under the block's own name. */
+  /** By setting name; the value of the defining key itself, where it is not a mapping, is under the main setting's name. */
   settings: Record<string, Setting>;
   of: Expression | undefined;
+  /** Where `of` was given as target and measurement: both, in one unit; `of` is their difference. */
+  pair?: { target: Expression; measurement: Expression };
   unit: Unit;
   gain: Expression | undefined;
   range: Range | undefined;

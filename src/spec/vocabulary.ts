@@ -8,7 +8,15 @@ export interface SignalDimensions {
   output: Dimension;
   /** Of `of`; plain numbers where the block takes no input. */
   input: Dimension;
+  /** The word that the spec gives for a setting of the block, from which a dimension may follow too. */
+  word: (setting: string) => string | undefined;
 }
+
+/**
+ * What the rows or columns of a matrix stand for, from which the unit of each entry follows: plain numbers, the signal
+ * itself or what it takes (as many as are written), or the entries of a setting that is a list, one by one.
+ */
+export type Axis = 'plain' | 'output' | 'input' | { of: string };
 
 /**
  * One setting of a block.
@@ -17,19 +25,30 @@ export interface SignalDimensions {
  * `corner`: an angular frequency in rad/s, or a frequency in Hz which is multiplied by 2π, or nothing else.
  * `coefficients`: the name of a coefficient array of the build, or of one coefficient.
  * `word`: one of the stated words.
+ * `signals`: one expression or a list of them, each of a dimension of its own.
+ * `estimates`: a list of signals of the same controller.
+ * `matrix`: a list of rows, or one list where there is a single row or column, or a coefficient array row by row. An
+ * entry has the unit of its row divided by the unit of its column, or times it.
+ * `late`: what stands there is not needed before the next sampling instant, and so breaks a cycle of signals.
  */
-export type SettingDescription = { name: string; optional: boolean; meaning: string } & (
+export type SettingDescription = { name: string; optional: boolean; meaning: string; late?: boolean } & (
   | { kind: 'expression'; dimension: (of: SignalDimensions) => Dimension }
   | { kind: 'time_constant' | 'corner' | 'coefficients' }
   | { kind: 'word'; words: readonly string[] }
+  | { kind: 'signals' | 'estimates' }
+  | { kind: 'matrix'; rows: Axis; columns: Axis; entry: 'ratio' | 'product' }
 );
 
 /** What the spec reader must know of a block. A single setting with the block's own name means `key: value`. */
 export interface BlockDescription {
   key: string;
+  /** The setting that `key: value` gives, where it does not have the block's own name. */
+  main?: string;
   rooms: readonly Room[];
   /** Whether the block takes a signal by `of:`. */
   takesInput: boolean;
+  /** Whether `of` may be `{ target: …, measurement: … }`; the input is then their difference. */
+  takesPair?: boolean;
   /** Whether `gain:` may stand beside the key (it has dimension output/input). */
   takesGain: boolean;
   /**
@@ -51,10 +70,11 @@ export interface BlockDescription {
  * One key of a measure.
  * `signal`: any signal that has a trace; `target`: an input or signal to which the response is compared;
  * `loop_point`: a sensor, controller or actuator signal where the loop is opened; `quantity`: a number with a dimension;
- * `share`: a plain number such as `5 %`.
+ * `share`: a plain number such as `5 %`; `frequency`: an angular frequency in rad/s, or a frequency in Hz which is multiplied by
+ * 2π.
  */
 export type MeasureKey = { name: string; optional: boolean; meaning: string } & (
-  | { kind: 'signal' | 'target' | 'loop_point' | 'share' }
+  | { kind: 'signal' | 'target' | 'loop_point' | 'share' | 'frequency' }
   | { kind: 'quantity'; dimension: (of: Dimension) => Dimension }
 );
 
@@ -68,6 +88,8 @@ export interface MeasureDescription {
   dimension: (of: Dimension) => Dimension;
   /** Limits in dB are amplitude ratios: only where the result is a ratio. */
   ratio: boolean;
+  /** Limits of an angular frequency may be written in Hz, which is multiplied by 2π. */
+  takesHertz?: boolean;
   /** `lower`: a smaller value is better. */
   better: 'lower' | 'higher';
   /**
