@@ -4,6 +4,7 @@ import { type DataType, typeOf } from './dwarf/data_type.js';
 import { declaredAt, isLasting, pathWithFile } from './dwarf/find_variable.js';
 import { placeOf } from './dwarf/location.js';
 import { entryWith, isDefinition, qualifiedName, type Variable, variablesOf } from './dwarf/variables.js';
+import { allSymbols } from './elf/symbols.js';
 import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage } from './image.js';
 import { removedByLinker } from './symbol_check.js';
@@ -27,6 +28,8 @@ export function allVariables(image: ElfImage): ListedVariable[] {
       `${quoted(image.name)} has no debug information, so that its variables cannot be listed: build with -g and do not strip`,
     );
   }
+  // With all symbols at hand each variable's own is found at once.
+  allSymbols(image.symbolTable);
   const byPlace = new Map<string, Variable>();
   const origins = new Set<string>();
   for (const unit of image.debug.units()) {

@@ -2,7 +2,7 @@ import { Cursor } from './cursor.js';
 import { completeRecord } from './dwarf/complete_type.js';
 import { type DataType, type PointerType, sizeOf, typeOf } from './dwarf/data_type.js';
 import { dynamicAddress } from './elf/dynamic.js';
-import { allSymbols, isData } from './elf/symbols.js';
+import { dataSymbolsAt } from './elf/symbols.js';
 import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage } from './image.js';
 import type { PathStep } from './path.js';
@@ -116,13 +116,7 @@ function endOfTable(
   address: number,
   end: number,
 ): number | undefined {
-  const table = allSymbols(image.symbolTable).find(
-    (symbol) =>
-      isData(symbol) &&
-      symbol.size > 0 &&
-      address >= symbol.address &&
-      address < symbol.address + symbol.size,
-  );
+  const [table] = dataSymbolsAt(image.symbolTable, address);
   const tableEnd = table && table.address + table.size;
   if (table && tableEnd !== undefined && end > tableEnd) {
     throw new FirmwareError(

@@ -5,14 +5,14 @@ import { type DataType, sizeOf } from './dwarf/data_type.js';
 import { declaredAt } from './dwarf/find_variable.js';
 import { entryWith, type Variable } from './dwarf/variables.js';
 import { isPlaced } from './elf/memory.js';
-import { allSymbols, isData, symbolsNamed } from './elf/symbols.js';
+import { dataSymbolsAt, isData, symbolsNamed } from './elf/symbols.js';
 import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage } from './image.js';
 import type { CoefficientPath } from './path.js';
 
 /**
- * The error for a variable which the linker dropped: linkers mark that by an address of 0, −1 or −2, or leave one that lies
- * nowhere. Undefined when it is there.
+ * The error for a variable which the linker dropped: linkers mark that by an address of 0, −1 or −2, or leave one where nothing
+ * or something else stands. Undefined when it is there.
  */
 export function removedByLinker(
   image: ElfImage,
@@ -21,7 +21,9 @@ export function removedByLinker(
   address: number,
 ): FirmwareError | undefined {
   const isMark = address === 0 || address >= 2 ** (8 * variable.entry.unit.addressSize) - 2;
-  const isThere = isMark ? isCoveredBySymbol(image, address) : isPlaced(image.elf, address);
+  const isThere = isMark
+    ? hasOwnSymbol(image, variable, address)
+    : isPlaced(image.elf, address) && !isAnothers(image, variable, address);
   if (isThere) return undefined;
   const place = declaredAt(variable);
   return new FirmwareError(
@@ -31,13 +33,38 @@ export function removedByLinker(
   );
 }
 
-function isCoveredBySymbol(image: ElfImage, address: number): boolean {
-  return allSymbols(image.symbolTable).some(
-    (symbol) =>
-      isData(symbol) &&
-      symbol.name !== '' &&
-      address >= symbol.address &&
-      address < symbol.address + symbol.size,
+/** Whether the symbol table gives the address to another variable, and not to this one. */
+function isAnothers(image: ElfImage, variable: Variable, address: number): boolean {
+  if (symbolsNamed(image.symbolTable, symbolNameOf(variable)).some((symbol) => symbol.address === address))
+    return false;
+  const covering = dataSymbolsAt(image.symbolTable, address);
+  return (
+    covering.length > 0 &&
+    !covering.some((symbol) => isNameOf(symbol.name, variable.name) || mergedGlobals.test(symbol.name))
+  );
+}
+
+function hasOwnSymbol(image: ElfImage, variable: Variable, address: number): boolean {
+  return dataSymbolsAt(image.symbolTable, address).some((symbol) => isNameOf(symbol.name, variable.name));
+}
+
+/** A compiler may put several variables into one, under a name of its own. */
+const mergedGlobals = /MergedGlobals/;
+
+/** Whether a symbol's name is made from a variable's: `taps.0`, `update.taps`, `kp.lto_priv.1`, `_ZN2ns2kpE`. */
+function isNameOf(symbol: string, name: string): boolean {
+  return (
+    symbol.split('.').includes(name) ||
+    (symbol.startsWith('_Z') && symbol.includes(`${Buffer.byteLength(name)}${name}`))
+  );
+}
+
+/** What the symbol table calls the variable. */
+function symbolNameOf(variable: Variable): string {
+  const linked = entryWith(variable, at.linkageName) ?? entryWith(variable, at.mipsLinkageName);
+  return (
+    (linked && (textAttribute(linked, at.linkageName) ?? textAttribute(linked, at.mipsLinkageName))) ??
+    variable.name
   );
 }
 
@@ -52,11 +79,7 @@ export function checkedSymbol(
   address: number,
   type: DataType | undefined,
 ) {
-  const linked = entryWith(variable, at.linkageName) ?? entryWith(variable, at.mipsLinkageName);
-  const name =
-    (linked && (textAttribute(linked, at.linkageName) ?? textAttribute(linked, at.mipsLinkageName))) ??
-    variable.name;
-  const named = symbolsNamed(image.symbolTable, name).filter((symbol) => isData(symbol));
+  const named = symbolsNamed(image.symbolTable, symbolNameOf(variable)).filter((symbol) => isData(symbol));
   const symbol = named.find((candidate) => candidate.address === address);
   const isExternal = variable.chain.some((entry) => attribute(entry, at.external));
   const [only] = named;

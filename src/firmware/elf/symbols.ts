@@ -41,7 +41,16 @@ interface SymbolTable {
   extended: Cursor | undefined;
 }
 
-const keptTables = new WeakMap<ElfFile, { table: SymbolTable | undefined; all?: ElfSymbol[] }>();
+/** A table with what was made of it so far. */
+interface Kept {
+  table: SymbolTable | undefined;
+  all?: ElfSymbol[];
+  byName?: Map<string, ElfSymbol[]>;
+  /** Data symbols with a size, by address. */
+  byAddress?: ElfSymbol[];
+}
+
+const keptTables = new WeakMap<ElfFile, Kept>();
 
 /** Whether the file has a symbol table at all: a stripped one has none. */
 export function hasSymbols(elf: ElfFile): boolean {
@@ -77,6 +86,7 @@ export function symbolsNamed(elf: ElfFile, name: string): ElfSymbol[] {
   const kept = tableOf(elf);
   const { table } = kept;
   if (!table) return [];
+  if (kept.all) return namesOf(kept, kept.all).get(name) ?? [];
   const offsets = occurrences(table.texts.bytes, Buffer.from(`${name}\0`), 256);
   if (!offsets) return allSymbols(elf).filter((symbol) => symbol.name === name);
   if (offsets.length === 0) return [];
@@ -87,6 +97,39 @@ export function symbolsNamed(elf: ElfFile, name: string): ElfSymbol[] {
     if (wanted.has(nameOffset)) found.push(readSymbol(elf, table, index));
   }
   return found;
+}
+
+function namesOf(kept: Kept, all: ElfSymbol[]): Map<string, ElfSymbol[]> {
+  if (!kept.byName) {
+    kept.byName = new Map();
+    for (const symbol of all) {
+      const same = kept.byName.get(symbol.name);
+      if (same) same.push(symbol);
+      else kept.byName.set(symbol.name, [symbol]);
+    }
+  }
+  return kept.byName;
+}
+
+/** Aliases and parts which may lie before the symbol that covers an address. */
+const mostNested = 64;
+
+/** The data symbols whose bytes an address lies in. */
+export function dataSymbolsAt(elf: ElfFile, address: number): ElfSymbol[] {
+  const kept = tableOf(elf);
+  kept.byAddress ??= allSymbols(elf)
+    .filter((symbol) => isData(symbol) && symbol.name !== '' && symbol.size > 0)
+    .sort((a, b) => a.address - b.address);
+  const sorted = kept.byAddress;
+  let [low, high] = [0, sorted.length];
+  while (low < high) {
+    const middle = (low + high) >> 1;
+    if (sorted[middle].address <= address) low = middle + 1;
+    else high = middle;
+  }
+  return sorted
+    .slice(Math.max(0, low - mostNested), low)
+    .filter((symbol) => address < symbol.address + symbol.size);
 }
 
 /** Whether the symbol stands for data: an object, or a label that assembly gave no type. */
@@ -109,7 +152,7 @@ export function fileOfSymbol(elf: ElfFile, symbol: ElfSymbol): string | undefine
   return undefined;
 }
 
-function tableOf(elf: ElfFile): { table: SymbolTable | undefined; all?: ElfSymbol[] } {
+function tableOf(elf: ElfFile): Kept {
   let kept = keptTables.get(elf);
   if (!kept) {
     kept = { table: openTable(elf) };
