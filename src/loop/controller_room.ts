@@ -21,6 +21,7 @@ import type { PlantRoom } from './plant_room.js';
  */
 export class ControllerRoom {
   private readonly signals = new Map<string, Node>();
+  private readonly published = new Map<string, readonly Node[]>();
   private readonly seenReadings = new Map<string, Node>();
   private readonly delivered = new Map<string, Node>();
 
@@ -77,7 +78,8 @@ export class ControllerRoom {
     return new TargetArithmetic(this.parts.graph, this.controllers[task].arithmetic);
   }
 
-  private workshop({ start }: SignalDefinition, task: number): Workshop {
+  private workshop({ name, start }: SignalDefinition, task: number): Workshop {
+    const exactPeriod = (): Node => this.plant.lower(this.controllers[task].every);
     return {
       room: 'controller',
       arithmetic: this.arithmetic(task),
@@ -85,8 +87,14 @@ export class ControllerRoom {
       addMode: () => notHere('a mode'),
       addCorrection: () => notHere('a correction of a state'),
       delayed: () => notHere('a dead time'),
-      addMemory: (name, next) => this.parts.addMemory(name, task, start ?? 0, next),
-      period: () => this.arithmetic(task).take(this.plant.lower(this.controllers[task].every)),
+      addMemory: (own, next, begin) => this.parts.addMemory(own, task, begin ?? start ?? 0, next),
+      period: () => this.arithmetic(task).take(exactPeriod()),
+      exactPeriod,
+      publish: (values) => this.published.set(name, values),
+      published: (signal) => {
+        this.signal(signal);
+        return this.published.get(signal) ?? [];
+      },
     };
   }
 

@@ -1,4 +1,4 @@
-import type { Expression, SignalDefinition } from '../spec/spec.js';
+import type { Expression, Place, SignalDefinition } from '../spec/spec.js';
 import type { BlockUse, Workshop } from './blocks/block.js';
 import { blocks } from './blocks/index.js';
 import type { Node } from './graph.js';
@@ -35,8 +35,18 @@ export function limited(value: Node, range: SignalDefinition['range'], around: S
 }
 
 function blockUse(definition: SignalDefinition, around: Surroundings, parts: Parts): BlockUse {
-  const { name, place, settings, range } = definition;
+  const { name, place, settings, range, pair } = definition;
   const expression = (of: Expression | undefined): Node | undefined => of && lower(of, around);
+  const numbers = (of: { name: string; place: Place }): Node[] =>
+    parts.numbersOf(of.name, of.place).map((value) => around.arithmetic.number(value));
+  const inDoublePrecision: Surroundings = {
+    ...around,
+    arithmetic: parts.plain,
+    name: (use) =>
+      use.role === 'coefficient'
+        ? parts.graph.number(parts.numberOf(use.name, use.index, use.place))
+        : around.name(use),
+  };
   return {
     name,
     place,
@@ -52,9 +62,43 @@ function blockUse(definition: SignalDefinition, around: Surroundings, parts: Par
     },
     coefficients: (key) => {
       const setting = settings[key];
-      if (setting?.kind !== 'coefficients') return [];
-      return parts.numbersOf(setting.name, setting.place).map((value) => around.arithmetic.number(value));
+      return setting?.kind === 'coefficients' ? numbers(setting) : [];
+    },
+    design: (key) => {
+      const setting = settings[key];
+      return setting?.kind === 'expression' ? lower(setting.expression, inDoublePrecision) : undefined;
+    },
+    signals: (key) => {
+      const setting = settings[key];
+      return setting?.kind === 'rows' ? setting.rows.flat().map((one) => lower(one, around)) : [];
+    },
+    names: (key) => {
+      const setting = settings[key];
+      return setting?.kind === 'names' ? setting.names : [];
+    },
+    matrix: (key, columns) => {
+      const setting = settings[key];
+      if (setting?.kind === 'rows') return setting.rows.map((row) => row.map((one) => lower(one, around)));
+      if (setting?.kind !== 'coefficients') return undefined;
+      return rowsOf(key, numbers(setting), columns, setting.place);
+    },
+    pair: pair && {
+      target: () => lower(pair.target, around),
+      measurement: () => lower(pair.measurement, around),
     },
     range: range && { low: lower(range.low, around), high: lower(range.high, around) },
   };
+}
+
+function rowsOf(key: string, numbers: Node[], columns: number | undefined, place: Place): Node[][] {
+  if (columns === undefined) return [numbers];
+  if (numbers.length === 0 || numbers.length % columns !== 0) {
+    throw new LoopError(
+      `'${key}' got ${numbers.length} coefficients, expected whole rows of ${columns}`,
+      place,
+    );
+  }
+  return Array.from({ length: numbers.length / columns }, (_, row) =>
+    numbers.slice(row * columns, (row + 1) * columns),
+  );
 }

@@ -1,4 +1,5 @@
-import type { ControllerDefinition, Expression, Setting, Spec } from '../spec/spec.js';
+import { expressionsOf, needsOf } from '../spec/dependencies.js';
+import type { ControllerDefinition, Spec } from '../spec/spec.js';
 import { LoopError } from './loop.js';
 
 /**
@@ -31,26 +32,11 @@ export function orderTasks(spec: Spec): ControllerDefinition[] {
 }
 
 function namesReadAtOnce(controller: ControllerDefinition): string[] {
-  return controller.signals.flatMap(({ of, gain, settings }) =>
-    [of, gain, ...Object.values(settings).map(expressionOf)].flatMap((expression) => signalNames(expression)),
-  );
-}
-
-function expressionOf(setting: Setting): Expression | undefined {
-  return setting.kind === 'expression' ? setting.expression : undefined;
-}
-
-function signalNames(expression: Expression | undefined): string[] {
-  switch (expression?.kind) {
-    case 'name':
-      return expression.role === 'signal' ? [expression.name] : [];
-    case 'negate':
-      return signalNames(expression.of);
-    case 'operation':
-      return [...signalNames(expression.left), ...signalNames(expression.right)];
-    case 'call':
-      return expression.arguments.flatMap(signalNames);
-    default:
-      return [];
-  }
+  return controller.signals.flatMap((signal) => {
+    const { drives, bounds } = expressionsOf(signal);
+    return [...drives, ...bounds]
+      .flatMap((expression) => needsOf(expression))
+      .filter(({ atOnce }) => atOnce)
+      .map(({ name }) => name);
+  });
 }

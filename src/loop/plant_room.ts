@@ -99,11 +99,14 @@ export class PlantRoom {
       room: 'plant',
       arithmetic: parts.plain,
       addState: (name, derivative, own) => parts.addState(name, own ?? start ?? 0, derivative),
-      addMode: (name, next, own) => parts.addMode(name, own ?? start ?? 0, next),
+      addMode: (name, jumps, next, own) => parts.addMode(name, own ?? start ?? 0, jumps, next),
       addCorrection: (state, value) => parts.addCorrection(state, value),
       delayed: (node, delay) => this.delayedCopies.of(node, delay, place),
       addMemory: () => notHere('a sampled memory'),
       period: () => notHere('a sampling period'),
+      exactPeriod: () => notHere('a sampling period'),
+      publish: () => notHere('to publish values'),
+      published: () => notHere('published values'),
     };
   }
 }

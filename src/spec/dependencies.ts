@@ -26,13 +26,23 @@ export function needsOf(expression: Expression, atOnce = true): Need[] {
 
 /** The expressions in a setting; what is needed later only counts as standing in before(…). */
 function expressionsIn(setting: Setting): Expression[] {
-  if (setting.kind === 'names')
-    return setting.names.map((name) =>
-      before({ kind: 'name', role: 'signal', name, index: undefined, place: setting.place }),
-    );
-  const all =
-    setting.kind === 'expression' ? [setting.expression] : setting.kind === 'rows' ? setting.rows.flat() : [];
+  const all = allExpressions(setting);
   return 'late' in setting && setting.late ? all.map(before) : all;
+}
+
+function allExpressions(setting: Setting): Expression[] {
+  switch (setting.kind) {
+    case 'expression':
+      return [setting.expression];
+    case 'rows':
+      return setting.rows.flat();
+    case 'names': {
+      const { names, place } = setting;
+      return names.map((name) => ({ kind: 'name', role: 'signal', name, index: undefined, place }));
+    }
+    default:
+      return [];
+  }
 }
 
 function before(of: Expression): Expression {

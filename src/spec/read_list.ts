@@ -18,7 +18,7 @@ export function readList(
     case 'signals':
       return readSignals(tree, description.late === true, place);
     case 'estimates':
-      return readNames(tree, place);
+      return readNames(tree, description.late === true, place);
     case 'matrix':
       return readMatrix(tree, description, place);
   }
@@ -36,7 +36,7 @@ function readSignals(tree: Tree, late: boolean, { around, reading }: Workplace):
   return { kind: 'rows', rows: [row], place: tree.place, ...(late && { late }) };
 }
 
-function readNames(tree: Tree, { entry, reading }: Workplace): Setting {
+function readNames(tree: Tree, late: boolean, { entry, reading }: Workplace): Setting {
   const all = [...reading.names.entries.values()];
   const controller = reading.names.entries.get(entry.key)?.controller;
   const known = all.filter((one) => one.kind === 'controller signal' && one.controller === controller);
@@ -52,7 +52,7 @@ function readNames(tree: Tree, { entry, reading }: Workplace): Setting {
     }
     return text;
   });
-  return { kind: 'names', names, place: tree.place };
+  return { kind: 'names', names, place: tree.place, ...(late && { late }) };
 }
 
 /** What one row or column stands for: a unit as a dimension and its SI value. */

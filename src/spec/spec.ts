@@ -1,3 +1,5 @@
+import type { BoundPoint, Statement } from './statement.js';
+
 /** A place in a text file; line and column count from 1. */
 export interface Place {
   file: string;
@@ -50,7 +52,7 @@ export type Expression =
 export type Setting =
   | { kind: 'expression'; expression: Expression; late?: boolean }
   | { kind: 'rows'; rows: Expression[][]; place: Place; late?: boolean }
-  | { kind: 'names'; names: string[]; place: Place }
+  | { kind: 'names'; names: string[]; place: Place; late?: boolean }
   | { kind: 'coefficients'; name: string; place: Place }
   | { kind: 'word'; word: string; place: Place };
 
@@ -209,6 +211,10 @@ export interface Requirement {
   in: string | undefined;
   /** Numbers by key (`band` …) in SI. */
   quantities: Record<string, number>;
+  /** What it says of signals over time, for a measure that asks for it. */
+  statement?: Statement | undefined;
+  /** Corners of bounds over time by key, for a measure that has some. */
+  bounds?: Record<string, BoundPoint[]>;
   /** Signal values (SI) at which the loop is linearised, if not at rest. */
   around: { name: string; value: number; place: Place }[];
   limit: Limit;

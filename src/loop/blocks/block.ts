@@ -14,6 +14,23 @@ export interface BlockUse {
   /** A setting's expression, or undefined where the spec leaves it out. */
   setting: (name: string) => Node | undefined;
   word: (name: string) => string | undefined;
+  /**
+   * A setting's expression in double precision, for constants that are worked out off the target and rounded once when they
+   * are taken into its format.
+   */
+  design: (name: string) => Node | undefined;
+  /** The entries of a setting that is a list of signals; none where it is left out. */
+  signals: (name: string) => Node[];
+  /** The names in a setting that is a list of them; none where it is left out. */
+  names: (name: string) => readonly string[];
+  /**
+   * The rows of a matrix, or undefined where it is left out. A coefficient array is cut into rows of so many columns; one
+   * row without.
+   * @throws {LoopError} where the array does not come out even.
+   */
+  matrix: (name: string, columns?: number) => Node[][] | undefined;
+  /** Both parts of the input where `of` gives them apart. */
+  pair: { target: () => Node; measurement: () => Node } | undefined;
   coefficients: (name: string) => Node[];
   range: { low: Node; high: Node } | undefined;
 }
@@ -25,16 +42,28 @@ export interface Workshop {
   arithmetic: TargetArithmetic;
   /** Adds a continuous state and returns it; it starts at the signal's `start:` unless said otherwise. Plant only. */
   addState: (name: string, derivative: () => Node, start?: number) => Node;
-  /** Adds a value that jumps, taken anew after every step of the movement. Plant only. */
-  addMode: (name: string, next: () => Node, start?: number) => Node;
+  /**
+   * Adds a value that is taken anew after every step of the movement. Plant only.
+   * @param jumps whether the plant jumps when it changes: a relay does, the play of a backlash does not.
+   */
+  addMode: (name: string, jumps: boolean, next: () => Node, start?: number) => Node;
   /** Brings a state to a value after every step of the movement. Plant only. */
   addCorrection: (state: Node, value: () => Node) => void;
   /** An expression of the plant as it was some time ago (s). Plant only. */
   delayed: (node: Node, delay: Node) => Node;
-  /** Adds a number kept between sampling instants and returns its value at the last one. */
-  addMemory: (name: string, next: () => Node) => Node;
+  /**
+   * Adds a number kept between sampling instants and returns its value at the last one; it starts at the signal's `start:`
+   * unless said otherwise.
+   */
+  addMemory: (name: string, next: () => Node, start?: number) => Node;
   /** The controller's sampling period in s, in the target's format. */
   period: () => Node;
+  /** The same in double precision; see `design`. */
+  exactPeriod: () => Node;
+  /** Gives values beside the signal's own, for other signals of the controller. */
+  publish: (values: readonly Node[]) => void;
+  /** What another signal of the controller publishes; none where it does not. */
+  published: (signal: string) => readonly Node[];
 }
 
 /** A block: what the spec reader must know of it, and how it expands into equations. */
