@@ -11,6 +11,7 @@ import { verdictBadge } from './html/sign.js';
 import { style } from './html/style.js';
 import { summaryTable } from './html/summary.js';
 import { oneLine, shortened } from './plain_text.js';
+import { plantsTried } from './plants_in_words.js';
 import type { ReportPlots, SpecPlots } from './plots.js';
 import { blockingFirst, mayMerge, runInWords } from './verdict_words.js';
 
@@ -43,7 +44,7 @@ export function htmlReport(run: FinishedRun, { plots, faults = [] }: ReportExtra
 }
 
 function lead({ specs }: FinishedRun): Markup {
-  const plants = specs.reduce((sum, spec) => sum + Object.values(spec.plants).reduce((a, b) => a + b, 0), 0);
+  const plants = specs.reduce((sum, spec) => sum + plantsTried(spec), 0);
   return html`<p class="lead">${counted(specs.length, 'spec')}, ${counted(plants, 'plant')} tried.</p>`;
 }
 

@@ -6,6 +6,7 @@ import { counted, formatHeadroom, formatResult } from './format_value.js';
 import { parameterTable } from './parameter_table.js';
 import { oneLine, visible } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
+import { plantsTried } from './plants_in_words.js';
 import {
   evidenceInWords,
   findingOnOneLine,
@@ -58,7 +59,6 @@ function addSpec(builder: Builder, spec: SpecRun, version: string): void {
 
 function addProperties(suite: TestSuite, spec: SpecRun, version: string): void {
   const { provenance } = spec;
-  const plants = Object.values(spec.plants).reduce((sum, count) => sum + count, 0);
   const properties: Record<string, string | undefined> = {
     'pawl version': version,
     spec: spec.file,
@@ -68,7 +68,7 @@ function addProperties(suite: TestSuite, spec: SpecRun, version: string): void {
     'build skipped': provenance?.buildSkipped ? 'yes' : undefined,
     compilers: provenance?.compilers.join('; ') || undefined,
     seed: String(spec.seed),
-    plants: String(plants),
+    plants: String(plantsTried(spec)),
     merge: spec.merge,
     caution,
   };

@@ -5,6 +5,7 @@ import { counted, formatHeadroom, formatNumber, formatResultShort } from './form
 import { markdownTable, markdownText } from './markdown_text.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
+import { plantsTried } from './plants_in_words.js';
 import { claimsInWords, limitInWords, limitNumbers, measureWithSignal } from './requirement_in_words.js';
 import { runInWords, verdictSigns } from './verdict_words.js';
 
@@ -41,7 +42,6 @@ function specPart(spec: SpecRun): string {
   const { provenance } = spec;
   const blocking = spec.requirements.filter(({ verdict }) => verdict.kind !== 'met');
   const met = spec.requirements.filter(({ verdict }) => verdict.kind === 'met');
-  const plants = Object.values(spec.plants).reduce((sum, count) => sum + count, 0);
   const image = provenance
     ? `image ${said(provenance.image, 80)} (SHA-256 ${provenance.sha256.slice(0, 12)})${provenance.buildSkipped ? ', build skipped' : ''}`
     : 'no image';
@@ -53,7 +53,7 @@ function specPart(spec: SpecRun): string {
       .map(({ names, claim }) => `- ${said(names.join(', '), 120)}: ${said(claim, 300)}`)
       .join('\n'),
     spec.merge === undefined ? '' : `Merge: ${said(spec.merge, 300)}.`,
-    `${said(spec.file, 120)}, ${image}, ${counted(plants, 'plant')} tried, seed ${spec.seed}, judged in ${formatNumber(spec.seconds, 3)} s`,
+    `${said(spec.file, 120)}, ${image}, ${counted(plantsTried(spec), 'plant')} tried, seed ${spec.seed}, judged in ${formatNumber(spec.seconds, 3)} s`,
   ]
     .filter((part) => part !== '')
     .join('\n\n');

@@ -4,6 +4,7 @@ import type { Fault } from './fault.js';
 import { counted, formatNumber, formatResult } from './format_value.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
+import { plantsTried } from './plants_in_words.js';
 import { claimsInWords, evidenceInWords, holdsForInWords, limitNumbers } from './requirement_in_words.js';
 import { type Painter, painter } from './terminal_colour.js';
 import { type RowWidths, rowLines, rowWidths, terminalHeadings, terminalRow } from './terminal_row.js';
@@ -62,8 +63,7 @@ function specLines(spec: SpecRun, width: number, paint: Painter): string[] {
 }
 
 function about(spec: SpecRun): string[] {
-  const { provenance, coefficients, plants, scenarios } = spec;
-  const tried = Object.values(plants).reduce((sum, count) => sum + count, 0);
+  const { provenance, coefficients, scenarios } = spec;
   const image = provenance
     ? `image ${shortened(oneLine(provenance.image), 60)} (SHA-256 ${provenance.sha256.slice(0, 12)})`
     : 'no image';
@@ -71,7 +71,7 @@ function about(spec: SpecRun): string[] {
   return [
     shortened(oneLine(spec.file), 200),
     image + skipped,
-    `${counted(coefficients.length, 'coefficient')}, ${counted(tried, 'plant')} tried in ${counted(scenarios.length, 'scenario')}, seed ${spec.seed}`,
+    `${counted(coefficients.length, 'coefficient')}, ${counted(plantsTried(spec), 'plant')} tried in ${counted(scenarios.length, 'scenario')}, seed ${spec.seed}`,
   ];
 }
 

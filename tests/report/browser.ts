@@ -29,7 +29,7 @@ export async function accessibilityFaults(page: Page): Promise<string[]> {
   await page.evaluate(axeSource);
   return page.evaluate(async () => {
     // biome-ignore lint/suspicious/noExplicitAny: the checker puts itself there when it is loaded.
-    const { violations } = await (globalThis as any).axe.run();
+    const { violations } = await (globalThis as any).axe.run(document, { resultTypes: ['violations'] });
     return violations.flatMap(
       ({ id, nodes }: { id: string; nodes: { html: string; failureSummary: string }[] }) =>
         nodes.map((node) => `${id}: ${node.html.slice(0, 200)} ${node.failureSummary}`),

@@ -1,5 +1,6 @@
 import type { SpecRun } from '../../verdict/run.js';
 import { formatCount, formatNumber, formatShare } from '../format_value.js';
+import { plantsInWords } from '../plants_in_words.js';
 import { claimsInWords } from '../requirement_in_words.js';
 import { runAgain } from '../run_again.js';
 import { termList } from './data_table.js';
@@ -23,10 +24,7 @@ ${termList([
   ['build', provenance?.buildSkipped ? 'skipped: the image was taken as it is' : undefined],
   ['pawl', version],
   ['seed', String(spec.seed)],
-  [
-    'plants',
-    `${plants.nominal} nominal, ${plants.single} with one parameter at a bound, ${formatCount(plants.corner)} corners, ${formatCount(plants.independent)} independent, ${plants.edge_biased} near edges`,
-  ],
+  ['plants', plantsInWords(plants)],
   ['scenarios', scenarios.map(({ name, lasts }) => `${name} (${formatNumber(lasts)} s)`).join(', ')],
   ['step', `halved ${spec.halvings} ${spec.halvings === 1 ? 'time' : 'times'}`],
   ['merge', spec.merge],
