@@ -89,10 +89,12 @@ export class Declarations implements Meaning {
 
   private declarationOrSkip(reader: TokenReader): void {
     const start = reader.position;
+    const { scopes } = this;
     try {
       this.declaration(reader);
     } catch (error) {
       if (!(error instanceof FirmwareError)) throw error;
+      this.scopes = scopes;
       reader.position = start;
       passDeclaration(reader);
     }
