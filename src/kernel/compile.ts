@@ -1,8 +1,8 @@
 import { Derivative } from '../loop/derivative.js';
-import { type Node, roundHalfAway } from '../loop/graph.js';
+import type { Node } from '../loop/graph.js';
 import type { Loop, TracedSignal } from '../loop/loop.js';
 import { type Layout, layOut } from './layout.js';
-import { inArray, statements } from './source.js';
+import { helpers, inArray, statements } from './source.js';
 
 /** A loop's equations as compiled functions over the array `m` which `layout` describes. */
 export interface CompiledLoop {
@@ -43,9 +43,8 @@ export function compileLoop(loop: Loop, traced: readonly string[]): CompiledLoop
 /** The only place where source text becomes a function; the text is written from the graph's own nodes. */
 // biome-ignore lint/suspicious/noExplicitAny: a compiled function has whatever arguments its text says
 function makeFunction(parameters: string, body: string[]): any {
-  return new Function('round', `'use strict'; return (${parameters}) => {\n${body.join('\n')}\n};`)(
-    roundHalfAway,
-  );
+  const text = `'use strict'; return (${parameters}) => {\n${body.join('\n')}\n};`;
+  return new Function(...Object.keys(helpers), text)(...Object.values(helpers));
 }
 
 /** Four stages; stage k sees the states moved along the rates of the stage before. */

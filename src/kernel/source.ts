@@ -1,5 +1,10 @@
-import { inOrder, type Node, type OperationName } from '../loop/graph.js';
+import { fit, fitQuotient, fitSum } from '../loop/fixed_point.js';
+import { fusedMultiplyAdd } from '../loop/fused.js';
+import { inOrder, type Node, type OperationName, roundHalfAway } from '../loop/graph.js';
 import type { Layout } from './layout.js';
+
+/** Functions that the written text calls by these names. */
+export const helpers = { round: roundHalfAway, fusedMultiplyAdd, fit, fitSum, fitQuotient };
 
 /** Each operation as source text; the same meaning as `operations` in the graph. */
 const asText: Partial<Record<OperationName, (...x: string[]) => string>> = {
@@ -17,6 +22,10 @@ const asText: Partial<Record<OperationName, (...x: string[]) => string>> = {
   limit: (x, low, high) => `${x} < ${low} ? ${low} : ${x} > ${high} ? ${high} : ${x}`,
   quantise: (x, step) => `round(${x} / ${step}) * ${step}`,
   single: (x) => `Math.fround(${x})`,
+  fused_multiply_add: (...x) => `fusedMultiplyAdd(${x})`,
+  fit: (...x) => `fit(${x})`,
+  fit_sum: (...x) => `fitSum(${x})`,
+  fit_quotient: (...x) => `fitQuotient(${x})`,
   round: (x) => `round(${x})`,
   ln: (x) => `Math.log(${x})`,
 };

@@ -1,6 +1,9 @@
 import type { Evaluation } from '../loop/evaluate.js';
 import type { Node } from '../loop/graph.js';
 
+/** Which arguments say where a fixed-point format begins and how large it is. */
+const formatAt = { fit: [3, 4], fit_sum: [2, 3], fit_quotient: [3, 4] } as const;
+
 /**
  * Where an expression has no derivative at a point: at the end of a range, in a relay, at the tip of an absolute value or
  * at the change from one branch to another. Only what counts at the point is looked at.
@@ -34,6 +37,10 @@ function ownEdge(node: Extract<Node, { kind: 'operation' }>, evaluation: Evaluat
   switch (node.name) {
     case 'limit':
       return a <= b || a >= c ? `the end of a range (${a} in ${b} … ${c})` : undefined;
+    case 'fit':
+    case 'fit_sum':
+    case 'fit_quotient':
+      return formatEdge(node, evaluation);
     case 'less':
     case 'less_or_equal':
     case 'equal':
@@ -51,4 +58,13 @@ function ownEdge(node: Extract<Node, { kind: 'operation' }>, evaluation: Evaluat
     default:
       return undefined;
   }
+}
+
+/** Past the ends of a number format a result is held at them, or wraps. */
+function formatEdge(node: Extract<Node, { kind: 'operation' }>, evaluation: Evaluation): string | undefined {
+  const [low, size] = formatAt[node.name as keyof typeof formatAt].map((at) => evaluation.of(node.of[at]));
+  const x = evaluation.of(node);
+  return x <= low || x >= low + size
+    ? `the end of a number format (${x} in ${low} … ${low + size})`
+    : undefined;
 }

@@ -1,4 +1,4 @@
-import type { Graph, Node, OperationName } from './graph.js';
+import { firstTerm, type Graph, type Node, type OperationName } from './graph.js';
 
 /**
  * Exact partial derivatives of expressions, as expressions in the same graph.
@@ -55,11 +55,9 @@ export class Derivative {
       case 'subtract':
         return this.difference(d[0], d[1]);
       case 'multiply':
-        return this.sum(this.product(d[0], b), this.product(a, d[1]));
-      case 'divide': {
-        const numerator = this.difference(d[0], this.product(node, d[1]));
-        return numerator === this.zero ? this.zero : this.graph.apply('divide', numerator, b);
-      }
+        return this.ofProducts(of, d);
+      case 'divide':
+        return this.ofQuotient(node, b, d);
       case 'power':
         return this.ofPower(node, a, b, d);
       case 'negate':
@@ -83,10 +81,33 @@ export class Derivative {
         );
       case 'quantise':
       case 'single':
+      case 'fit':
         return d[0];
+      case 'fused_multiply_add':
+        return this.sum(this.ofProducts(of.slice(0, 2), d), d[2]);
+      case 'fit_sum':
+        return this.ofProducts(of.slice(firstTerm), d.slice(firstTerm));
+      case 'fit_quotient':
+        return this.ofQuotient(this.graph.apply('divide', a, b), b, d);
       default:
         return this.product(this.slope(name, node, a), d[0]);
     }
+  }
+
+  /** Of the sum of products of neighbours. */
+  private ofProducts(of: readonly Node[], d: readonly Node[]): Node {
+    let sum = this.zero;
+    for (let at = 0; at < of.length; at += 2) {
+      const product = this.sum(this.product(d[at], of[at + 1]), this.product(of[at], d[at + 1]));
+      sum = this.sum(sum, product);
+    }
+    return sum;
+  }
+
+  /** d(a/b) = (da − (a/b)·db)/b */
+  private ofQuotient(quotient: Node, b: Node, d: readonly Node[]): Node {
+    const numerator = this.difference(d[0], this.product(quotient, d[1]));
+    return numerator === this.zero ? this.zero : this.graph.apply('divide', numerator, b);
   }
 
   /** d(a^b) = a^(b−1)·(b·da) + a^b·ln(a)·db, each part only where it is needed. */

@@ -1,4 +1,4 @@
-import { type LeafKind, type Node, operations } from './graph.js';
+import { type LeafKind, type Node, operations, unrounded } from './graph.js';
 
 /** Numbers for the leaves, by kind and index; a kind that is not given counts as all zero. */
 export type LeafValues = Partial<Record<LeafKind, ArrayLike<number>>>;
@@ -27,11 +27,10 @@ export class Evaluation {
 
   private operation(node: Extract<Node, { kind: 'operation' }>): number {
     if (node.name === 'choose') return this.of(node.of[0]) !== 0 ? this.of(node.of[1]) : this.of(node.of[2]);
-    if (this.rounding === 'off' && (node.name === 'quantise' || node.name === 'single'))
-      return this.of(node.of[0]);
-    const [a, b, c] = node.of;
-    const operate = operations[node.name];
+    const [a, b, c, ...more] = node.of;
+    const operate = (this.rounding === 'off' && unrounded[node.name]) || operations[node.name];
     if (b === undefined) return operate(this.of(a));
-    return c === undefined ? operate(this.of(a), this.of(b)) : operate(this.of(a), this.of(b), this.of(c));
+    if (c === undefined) return operate(this.of(a), this.of(b));
+    return operate(this.of(a), this.of(b), this.of(c), ...more.map((one) => this.of(one)));
   }
 }

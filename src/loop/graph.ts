@@ -1,3 +1,7 @@
+import type { Place } from '../spec/spec.js';
+import { fit, fitQuotient, fitSum } from './fixed_point.js';
+import { fusedMultiplyAdd } from './fused.js';
+
 /** Values from outside an expression. `index` counts within its kind; see `Loop`. */
 export type LeafKind =
   | 'parameter'
@@ -30,6 +34,14 @@ export type OperationName =
   | 'quantise'
   /** The nearest float32. */
   | 'single'
+  /** fused_multiply_add(x, y, z): x·y + z rounded once, to the nearest float32. */
+  | 'fused_multiply_add'
+  /** fit(x, step, rounding, low, size, overflow): x in a fixed-point format; see `fixed_point`. */
+  | 'fit'
+  /** fit_sum(step, rounding, low, size, overflow, unit, low and size of the accumulator, x₀, y₀, x₁, y₁ …) */
+  | 'fit_sum'
+  /** fit_quotient(x, y, step, low, size, overflow) */
+  | 'fit_quotient'
   | 'abs'
   | 'sign'
   | 'sqrt'
@@ -51,9 +63,20 @@ export type OperationName =
   | 'round'
   | 'hypot';
 
+/** Where a number comes from that the build holds, and in which format it is there. */
+export interface StoredNumber {
+  /** As the spec names it: `kp`, or `notch[2]`. */
+  name: string;
+  place: Place;
+  /** Such as Q2.14 or float32; undefined where it is not known. */
+  format: string | undefined;
+  /** Of a fixed-point number or an integer; undefined for others. */
+  fractionalBits: number | undefined;
+}
+
 /** A node of the expression graph. Equal expressions are the same object; `id` grows from arguments to results. */
 export type Node =
-  | { readonly kind: 'number'; readonly id: number; readonly value: number }
+  | { readonly kind: 'number'; readonly id: number; readonly value: number; readonly stored?: StoredNumber }
   | { readonly kind: 'leaf'; readonly id: number; readonly leaf: LeafKind; readonly index: number }
   | {
       readonly kind: 'operation';
@@ -84,6 +107,10 @@ export const operations: Record<OperationName, (...x: number[]) => number> = {
   limit: (x, low, high) => (x < low ? low : x > high ? high : x),
   quantise: (x, step) => roundHalfAway(x / step) * step,
   single: Math.fround,
+  fused_multiply_add: fusedMultiplyAdd,
+  fit,
+  fit_sum: fitSum,
+  fit_quotient: fitQuotient,
   abs: Math.abs,
   sign: Math.sign,
   sqrt: Math.sqrt,
@@ -106,6 +133,23 @@ export const operations: Record<OperationName, (...x: number[]) => number> = {
   hypot: Math.hypot,
 };
 
+/** Where the terms of a `fit_sum` begin. */
+export const firstTerm = 8;
+
+/** What operations give when quanta and number formats are left out. */
+export const unrounded: Partial<typeof operations> = {
+  quantise: (x) => x,
+  single: (x) => x,
+  fused_multiply_add: (x, y, z) => x * y + z,
+  fit: (x) => x,
+  fit_sum: (...x) => {
+    let sum = 0;
+    for (let at = firstTerm; at < x.length; at += 2) sum += x[at] * x[at + 1];
+    return sum;
+  },
+  fit_quotient: (x, y) => x / y,
+};
+
 /** Builds expression nodes; equal ones are shared, and operations on numbers alone are computed at once. */
 export class Graph {
   private readonly known = new Map<string, Node>();
@@ -121,6 +165,12 @@ export class Graph {
   number(value: number): Node {
     const key = Object.is(value, -0) ? 'n-0' : `n${value}`;
     return this.share(key, (id) => ({ kind: 'number', id, value }));
+  }
+
+  /** A number that the build holds; what is computed from it does not remember that. */
+  stored(value: number, stored: StoredNumber): Node {
+    const key = `${stored.name}${stored.place.line},${stored.place.column}=${value}`;
+    return this.share(key, (id) => ({ kind: 'number', id, value, stored }));
   }
 
   leaf(leaf: LeafKind, index: number): Node {
