@@ -20,9 +20,22 @@ export function eigenvalues(a: Matrix): Complex[] {
     );
   }
   const h = a.data.slice();
+  const size = powerOfTwoNear(h);
+  for (let i = 0; i < h.length; i++) h[i] /= size;
   balance(h, a.rows);
   reduceToHessenberg(h, a.rows);
-  return eigenvaluesOfHessenberg(h, a.rows);
+  const found = eigenvaluesOfHessenberg(h, a.rows);
+  return size === 1
+    ? found
+    : found.map(({ real, imaginary }) => ({ real: size * real, imaginary: size * imaginary }));
+}
+
+/** 1, or a power of two near the largest entry where that is so large or small that products of entries leave the range. */
+function powerOfTwoNear(entries: Float64Array): number {
+  let largest = 0;
+  for (const entry of entries) largest = Math.max(largest, Math.abs(entry));
+  if (largest === 0 || (largest > 1e-60 && largest < 1e60)) return 1;
+  return 2 ** Math.max(-1000, Math.min(1000, Math.round(Math.log2(largest))));
 }
 
 /** Most QR steps for one eigenvalue. Two or three are usual. */
@@ -106,11 +119,18 @@ function shiftedStep(h: Float64Array, n: number, first: number, last: number, ex
   let x = h[last * n + last];
   let y = h[(last - 1) * n + last - 1];
   let w = h[last * n + last - 1] * h[(last - 1) * n + last];
+  const half = (y - x) / 2;
+  const square = half * half + w;
   if (exceptional) {
     // A shift out of the ordinary breaks the rare cycles (Wilkinson, 1965).
     const size = Math.abs(h[last * n + last - 1]) + Math.abs(h[(last - 1) * n + last - 2]);
     x = y = h[last * n + last] + 0.75 * size;
     w = -0.4375 * size * size;
+  } else if (square >= 0) {
+    // Of two real shifts the one nearer to the corner is taken twice: with both the step can stand still.
+    x -= half === 0 ? -Math.sqrt(w) : w / (half + (half < 0 ? -Math.sqrt(square) : Math.sqrt(square)));
+    y = x;
+    w = 0;
   }
   let p = 0;
   let q = 0;

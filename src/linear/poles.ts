@@ -21,7 +21,7 @@ export function areStable(poles: readonly Complex[], period: number | undefined)
 }
 
 /** How far the poles are inside the boundary of stability: −Re s, or 1 − |z| for poles given as z − 1. Positive when stable. */
-function stabilityReserve(poles: readonly Complex[], period: number | undefined): number {
+export function stabilityReserve(poles: readonly Complex[], period: number | undefined): number {
   let least = Number.POSITIVE_INFINITY;
   for (const { real, imaginary } of poles) {
     const reserve = period === undefined ? -real : oneLessModulus(real, imaginary);

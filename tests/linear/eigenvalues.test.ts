@@ -130,40 +130,32 @@ describe('eigenvalues', () => {
     expect(mismatch(eigenvalues(scaled), eigenvalues(plain))).toBeLessThan(1e-13);
   });
 
-  it('of a matrix whose diagonal is nothing but rounding are found nevertheless', () => {
-    // Found by the property below: no entry is negligible against such neighbours, only against the whole matrix.
-    const h = zeros(8, 8);
-    const entries: [number, number, number][] = [
-      [0, 3, -0.9990162853856807],
-      [1, 0, 0.7502441369027653],
-      [4, 6, -0.9999921229733888],
-      [4, 7, 5.054343298598147e-34],
-      [6, 2, -0.000015479051857047087],
-      [7, 1, -0.9997503812218663],
-      [7, 3, 0.000006886551968858713],
-    ];
-    for (const [i, j, value] of entries) h.data[i * 8 + j] = value;
-    const basis = scale(identity(8), 24);
-    basis.data[3 * 8] = 1.5356709190086008e-61;
-    basis.data[3 * 8 + 3] = 24;
-    basis.data[3 * 8 + 5] = -0.9375609309499662;
-    const turned = solve(basis, multiply(h, basis));
-    // All eight are zero in exact arithmetic; a chain of m zeros spreads by the m-th root of the rounding error.
-    for (const { real, imaginary } of eigenvalues(turned))
-      expect(Math.hypot(real, imaginary)).toBeLessThan(0.02);
+  it('are found when entries are so small that products of them are zero', () => {
+    // Found by the property below: against such neighbours no entry ever counts as negligible, only against the whole matrix.
+    const a = fromRows([
+      [5.314303379606131e-185, -1.0738725584583691e-190, 0],
+      [2.025642943041036e-229, 0, 0],
+      [0, 0, 0],
+    ]);
+    const basis = fromRows([
+      [9, 0, 0],
+      [0, 9, -1.4370166593971313e-23],
+      [-9.595192433333902e-80, 0, 9],
+    ]);
+    const values = eigenvalues(solve(basis, multiply(a, basis)));
+    for (const { real, imaginary } of values) expect(Math.hypot(real, imaginary)).toBeLessThan(1e-184);
   });
 
-  it('keep their digits with a diagonal large against the couplings on one side', () => {
-    const plain = fromRows([
-      [0.9, 0.3, 0],
-      [-0.3, 0.9, 1],
-      [0.2, 0, 0.1],
-    ]);
-    const units = [1e-6, 1e6, 1e3];
-    const scaled = fromRows(
-      [0, 1, 2].map((i) => [0, 1, 2].map((j) => (plain.data[3 * i + j] * units[j]) / units[i])),
-    );
-    expect(mismatch(eigenvalues(scaled), eigenvalues(plain))).toBeLessThan(1e-14);
+  it('keep their digits where the diagonal is large against the couplings on one side', () => {
+    const plain = [
+      [0.95, 0.32, 0, 0],
+      [-0.32, 0.95, 0, 0],
+      [0, 0, 0.14, 0.99],
+      [0.07, 0.39, -0.99, 0.14],
+    ];
+    const units = [1, 1e3, 1e6, 1e-6];
+    const scaled = plain.map((row, i) => row.map((entry, j) => (entry * units[j]) / units[i]));
+    expect(mismatch(eigenvalues(fromRows(scaled)), eigenvalues(fromRows(plain)))).toBeLessThan(1e-14);
   });
 
   it('refuses a matrix that is not square or not finite, and names the entry', () => {

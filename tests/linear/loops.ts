@@ -121,7 +121,7 @@ export function randomLoop(order: number, random: () => number): StateEquations 
     const degree = left >= 2 && random() < 0.6 ? 2 : 1;
     const numerator = randomNumerator(random() < 0.5 ? degree : Math.floor(random() * (degree + 1)), random);
     const radius = 1 - 10 ** (-3.5 * random());
-    if (degree === 2) sections.push({ numerator, radius, angle: Math.PI * random() ** 2 });
+    if (degree === 2) sections.push({ numerator, radius, angle: 0.01 + 3.12 * random() ** 2 });
     else if (random() < 0.15) sections.push({ numerator, radius: 1, angle: undefined });
     else sections.push({ numerator, radius: random() < 0.85 ? radius : -radius, angle: undefined });
     left -= degree;

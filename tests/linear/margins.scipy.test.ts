@@ -40,7 +40,9 @@ describe.skipIf(!available)('margins against scipy (Virtanen and others, 2020)',
         period,
       })),
     );
-    const { stdout } = await execa(PYTHON, [script], { input });
+    // The matrices are small: more than one thread would only wait.
+    const env = { OPENBLAS_NUM_THREADS: '1', OMP_NUM_THREADS: '1' };
+    const { stdout } = await execa(PYTHON, [script], { input, env });
     const references: Reference[] = JSON.parse(stdout);
     expect(references.length).toBe(300);
     const stableCount = references.filter(({ stable }) => stable).length;

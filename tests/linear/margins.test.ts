@@ -259,11 +259,11 @@ describe('laws of margins', () => {
         const original = marginsOfLoop(loop);
         expectSameMargins(marginsOfLoop(inBasis(loop, units)), original, 1e-6);
         const slower = marginsOfLoop({ ...loop, period: loop.period! * factor });
-        expectClose(slower.delayMargin / factor, original.delayMargin, 1e-9);
-        expectClose(slower.phaseMargin, original.phaseMargin, 1e-9);
-        expectClose(slower.modulusMargin, original.modulusMargin, 1e-9);
+        expectClose(slower.delayMargin / factor, original.delayMargin, 1e-6);
+        expectClose(slower.phaseMargin, original.phaseMargin, 1e-6);
+        expectClose(slower.modulusMargin, original.modulusMargin, 1e-6);
         slower.gainCrossings.forEach(({ frequency }, i) => {
-          expectClose(frequency * factor, original.gainCrossings[i].frequency, 1e-9);
+          expectClose(frequency * factor, original.gainCrossings[i].frequency, 1e-6);
         });
       }),
       runs,
