@@ -2,9 +2,11 @@ import { plainNumber } from './dimension.js';
 import { suggestion } from './nearest.js';
 import { readAngularFrequency } from './read_angular_frequency.js';
 import { readAround } from './read_around.js';
+import { readBound } from './read_bound.js';
 import { readLimit } from './read_limit.js';
 import { readQuantity, readShare } from './read_quantity.js';
 import { readSignalKeys } from './read_signal_keys.js';
+import { readStatement } from './read_statement.js';
 import type { Reading } from './reading.js';
 import type { Dimension, HoldsFor, Requirement, Scenario, SensorDefinition } from './spec.js';
 import { childOf, entriesOf, entryOf, itemsOf, type MapTree, type Tree, textOf } from './tree.js';
@@ -80,6 +82,7 @@ function readRequirement(
     signals,
     in: readScenarioName(item, measure, referred.scenarios, reading),
     quantities: readQuantities(item, measure, ofDimension, reading),
+    ...readStatements(item, measure, ofDimension, reading),
     around: readAround(entryOf(item, 'around'), measure, reading),
     limit: limit?.limit ?? { at_most: Number.NaN },
     limitPlace: limit?.place ?? place,
@@ -157,6 +160,24 @@ function readQuantities(
     quantities[key.name] = quantity.value;
   }
   return quantities;
+}
+
+/** What a measure over time is told: a statement, or the corners of bounds. */
+function readStatements(
+  item: MapTree,
+  measure: MeasureDescription,
+  ofDimension: Dimension | undefined,
+  reading: Reading,
+): Pick<Requirement, 'statement' | 'bounds'> {
+  const result: Pick<Requirement, 'statement' | 'bounds'> = {};
+  for (const { name, kind } of measure.keys) {
+    const tree = childOf(item, name);
+    if (tree === undefined) continue;
+    if (kind === 'statement') result.statement = readStatement(tree, reading);
+    if (kind === 'bound')
+      result.bounds = { ...result.bounds, [name]: readBound(tree, ofDimension, `\`${name}\``, reading) };
+  }
+  return result;
 }
 
 /** `all` unless said otherwise. */

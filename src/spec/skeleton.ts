@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import type { BlockDescription, Room, SettingDescription, Vocabulary } from './vocabulary.js';
+import type { BlockDescription, MeasureKey, Room, SettingDescription, Vocabulary } from './vocabulary.js';
 
 /** What is said of a slot in the JSON Schema and in the error when it is missing or of the wrong shape. */
 const text = (expected: string) => z.string().describe(expected);
@@ -220,9 +220,51 @@ const scenario = z
   })
   .describe('{ lasts: …, inputs: … }');
 
+const statementSlot = () => z.union([text('a comparison such as angle < 2 mrad'), statement]);
+
+/** A statement over time: which keys go together is checked when it is read. */
+const statement = z
+  .strictObject({
+    that: text('a comparison such as angle < 2 mrad').optional(),
+    get throughout() {
+      return statementSlot().optional();
+    },
+    get at_some_time() {
+      return statementSlot().optional();
+    },
+    get holds_up_to() {
+      return statementSlot().optional();
+    },
+    get holds() {
+      return statementSlot().optional();
+    },
+    get when() {
+      return statementSlot().optional();
+    },
+    get all_of() {
+      return z.array(statementSlot()).optional();
+    },
+    get one_of() {
+      return z.array(statementSlot()).optional();
+    },
+    from: text('a time such as 0.5 s').optional(),
+    to: text('a time such as 2 s').optional(),
+    scale: text('a quantity that counts as a headroom of 100 %').optional(),
+  })
+  .describe('a statement such as { throughout: angle < 2 mrad, from: 1 s, to: 3 s, scale: 1 mrad }');
+
+const bound = z
+  .array(z.tuple([text('a time'), text('a value')]).describe('a time and a value, such as [0 s, 1 V]'))
+  .describe('corners in brackets, such as [[0 s, 1 V], [2 s, 1.1 V]]');
+
+function measureSlot(key: MeasureKey) {
+  if (key.kind === 'statement') return statementSlot().describe(key.meaning);
+  return key.kind === 'bound' ? bound : text(key.meaning);
+}
+
 function requirement(vocabulary: Vocabulary) {
   const keys = vocabulary.measures.flatMap((measure) => measure.keys);
-  const slots = Object.fromEntries(keys.map((key) => [key.name, text(key.meaning).optional()]));
+  const slots = Object.fromEntries(keys.map((key) => [key.name, measureSlot(key).optional()]));
   return z
     .strictObject({
       ...slots,

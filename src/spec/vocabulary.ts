@@ -71,10 +71,11 @@ export interface BlockDescription {
  * `signal`: any signal that has a trace; `target`: an input or signal to which the response is compared;
  * `loop_point`: a sensor, controller or actuator signal where the loop is opened; `quantity`: a number with a dimension;
  * `share`: a plain number such as `5 %`; `frequency`: an angular frequency in rad/s, or a frequency in Hz which is multiplied by
- * 2π.
+ * 2π; `statement`: a comparison of signals, or a mapping that says when it holds; `bound`: corners of a bound, each a time and
+ * a value of the dimension of `of`.
  */
 export type MeasureKey = { name: string; optional: boolean; meaning: string } & (
-  | { kind: 'signal' | 'target' | 'loop_point' | 'share' | 'frequency' }
+  | { kind: 'signal' | 'target' | 'loop_point' | 'share' | 'frequency' | 'statement' | 'bound' }
   | { kind: 'quantity'; dimension: (of: Dimension) => Dimension }
 );
 
