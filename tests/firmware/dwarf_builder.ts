@@ -90,8 +90,8 @@ const sizes: Record<number, number> = {
 };
 
 /** A location expression of one fixed address. */
-export function addressOf(address: number): Uint8Array {
-  return new ByteWriter().u8(0x03).u64(address).result;
+export function addressOf(address: number, littleEndian = true): Uint8Array {
+  return new ByteWriter(littleEndian).u8(0x03).u64(address).result;
 }
 
 /** A base type of C. */

@@ -116,7 +116,10 @@ class NameReader {
     if (length === 0 || name.length < length) throw new NotUnderstood();
     this.position += length;
     // An ABI tag is no part of the written name.
-    while (this.accept('B')) this.position += this.digits();
+    while (this.accept('B')) {
+      const tagLength = this.digits();
+      this.position += tagLength;
+    }
     return name;
   }
 
