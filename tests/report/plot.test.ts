@@ -1,6 +1,7 @@
+import { scaleLinear } from 'd3-scale';
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { extent, spread } from '../../src/report/plot/frame.js';
+import { extent, extentAround, spread } from '../../src/report/plot/frame.js';
 import { limitStrip } from '../../src/report/plot/limit_strip.js';
 import { locusDrawing } from '../../src/report/plot/locus_plot.js';
 import { openLoopDrawing } from '../../src/report/plot/open_loop_plot.js';
@@ -49,6 +50,24 @@ describe('extent', () => {
       { seed: 52, numRuns: 300 },
     );
     expect(extent([Number.POSITIVE_INFINITY])).toEqual([0, 1]);
+  });
+
+  it('can be marked, however near or far the values are', () => {
+    fc.assert(
+      fc.property(fc.array(fc.double({ noNaN: true }), { maxLength: 4 }), (values) => {
+        const [low, high] = extent(values);
+        const ticks = scaleLinear([low, high], [0, 1]).ticks(5);
+        expect(ticks.length).toBeGreaterThan(0);
+        expect(ticks.length).toBeLessThan(20);
+      }),
+      { seed: 53, numRuns: 500 },
+    );
+  });
+
+  it('is not blown up by a plant that runs away, but grows for one that goes a little further', () => {
+    expect(extentAround([0, 1], [1e9])[1]).toBeLessThan(4);
+    expect(extentAround([0, 1], [1.5, -0.5])).toEqual(extent([extent([0, 1])[0], 1.5, -0.5]));
+    expect(extentAround([], [])).toEqual(extent([0, 1]));
   });
 });
 

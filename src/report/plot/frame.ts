@@ -58,16 +58,35 @@ export function spread(heights: readonly number[], least: number): number[] {
   return placed;
 }
 
-/** The smallest interval that holds all finite values, opened by a twentieth at both ends; [0, 1] where there is none. */
+/** Numbers beyond this are drawn at it, those below its inverse at zero: axes need room to compute. */
+const mostSize = 1e150;
+
+/**
+ * The smallest interval that holds all finite values, opened by a twentieth at both ends and by a millionth of their
+ * size at least, so that it can be marked; [0, 1] where there is none.
+ */
 export function extent(values: readonly number[]): [number, number] {
   let low = Number.POSITIVE_INFINITY;
   let high = Number.NEGATIVE_INFINITY;
   for (const value of values) {
     if (!Number.isFinite(value)) continue;
-    low = Math.min(low, value);
-    high = Math.max(high, value);
+    const held = Math.abs(value) < 1 / mostSize ? 0 : Math.min(mostSize, Math.max(-mostSize, value));
+    low = Math.min(low, held);
+    high = Math.max(high, held);
   }
   if (low > high) return [0, 1];
-  const opening = (high - low) / 20 || Math.abs(low) / 10 || 1;
+  if (low === high) return low === 0 ? [-1, 1] : [low - Math.abs(low) / 10, high + Math.abs(low) / 10];
+  const size = Math.max(Math.abs(low), Math.abs(high));
+  const opening = Math.max((high - low) / 20, size / 1e6);
   return [low - opening, high + opening];
+}
+
+/**
+ * As `extent`, for values that matter and others that may run away: these are held only as far as twice the width of
+ * those that matter beyond them.
+ */
+export function extentAround(matter: readonly number[], others: readonly number[]): [number, number] {
+  const [low, high] = extent(matter);
+  const room = 2 * (high - low);
+  return extent([low, high, ...others.map((value) => Math.min(high + room, Math.max(low - room, value)))]);
 }

@@ -1,6 +1,6 @@
 import { scaleLinear } from 'd3-scale';
 import type { JudgedPlant, RequirementRun } from '../../verdict/run.js';
-import { formatLimit, formatNumber, formatResult, inWrittenUnit } from '../format_value.js';
+import { formatLimit, formatNumber, formatResult, formatValue, inWrittenUnit } from '../format_value.js';
 import { html, type Markup } from '../html/markup.js';
 import { limitInWords, limitNumbers } from '../requirement_in_words.js';
 import { type Box, drawing, extent } from './frame.js';
@@ -15,7 +15,7 @@ const middle = (box.top + box.bottom) / 2;
 /** A requirement's number on a line: the limit as a fence, the nominal plant as a ring, the worst as a diamond. */
 export function limitStrip(requirement: RequirementRun, id: string): Markup {
   const { limit, nominal, worst } = requirement;
-  const written = (value: number): number => inWrittenUnit(value, requirement);
+  const written = (value: number): number => onTheLine(value, requirement);
   const limits = limitNumbers(limit).map(written);
   const values = [nominal, worst].flatMap(({ result }) =>
     result.kind === 'value' ? [written(result.value)] : [],
@@ -58,11 +58,17 @@ function point(
   if (result.kind === 'unformed') return undefined;
   const title = `${which}: ${formatResult(result, requirement, limitNumbers(requirement.limit))}`;
   const [end] = offTheLine(requirement, plant, x);
-  const at = end || result.kind !== 'value' ? end.at : x(inWrittenUnit(result.value, requirement));
+  const at = end || result.kind !== 'value' ? end.at : x(onTheLine(result.value, requirement));
   if (which === 'nominal') {
     return html`<circle class="nominal-point" cx="${px(at)}" cy="${middle}" r="6"><title>${title}</title></circle>`;
   }
   return html`<path class="worst-point" d="M${px(at)} ${middle - 7}l7 7l-7 7l-7 -7z"><title>${title}</title></path>`;
+}
+
+/** A value in its unit; a ratio below zero has no decibels and lies below all of them. */
+function onTheLine(value: number, requirement: RequirementRun): number {
+  const own = inWrittenUnit(value, requirement);
+  return Number.isNaN(own) ? Number.NEGATIVE_INFINITY : own;
 }
 
 /** The end of the line and a word for it, for a result that has no place between the ends. */
@@ -75,9 +81,9 @@ function offTheLine(
   const brokenEnd = 'at_least' in requirement.limit ? low : high;
   if (result.kind === 'unformed') return [];
   if (result.kind !== 'value') return [{ at: brokenEnd, text: result.kind }];
-  const value = inWrittenUnit(result.value, requirement);
+  const value = onTheLine(result.value, requirement);
   if (Number.isFinite(value)) return [];
-  return [{ at: value > 0 ? high : low, text: formatNumber(value) }];
+  return [{ at: value > 0 ? high : low, text: formatValue(result.value, requirement) }];
 }
 
 function describe(requirement: RequirementRun): string {

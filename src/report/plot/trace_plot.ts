@@ -4,7 +4,7 @@ import { formatNumber, unitText } from '../format_value.js';
 import { html, type Markup } from '../html/markup.js';
 import { oneLine, shortened } from '../plain_text.js';
 import type { Fence, TracePlot } from '../plots.js';
-import { axisBelow, axisLeft, type Box, drawing, extent, spread } from './frame.js';
+import { axisBelow, axisLeft, type Box, drawing, extentAround, spread } from './frame.js';
 import { fencePath, type Point, pathThrough, px, thinned } from './shape.js';
 
 const height = 290;
@@ -32,11 +32,9 @@ export function traceDrawing(plot: TracePlot, id: string): Markup {
   const written = { unit: plot.unit, inDecibels: false };
   const scale = plot.unit.scale;
   const levels = plot.fences.flatMap(({ from, to }) => [from.value, to.value]);
-  const series = [plot.low, plot.high, plot.nominal, plot.worst, plot.target ?? []];
-  const y = scaleLinear(extent([...series.flat(), ...levels].map((value) => value / scale)), [
-    box.bottom,
-    box.top,
-  ]);
+  const matter = [plot.nominal, plot.target ?? [], levels].flat().map((value) => value / scale);
+  const others = [plot.low, plot.high, plot.worst].flat().map((value) => value / scale);
+  const y = scaleLinear(extentAround(matter, others), [box.bottom, box.top]);
   const x = scaleLinear([plot.times[0] ?? 0, plot.times.at(-1) ?? 1], [box.left, box.right]);
   const unit = unitText(written);
   const scales: Scales = {
@@ -50,7 +48,7 @@ export function traceDrawing(plot: TracePlot, id: string): Markup {
   return drawing(id, height, `${plot.signal} in ${plot.scenario}`, describe(plot, scales), [
     axisLeft(box, marksY, name),
     axisBelow(box, marksX, 'time (s)'),
-    curves(plot, scales),
+    html`<clipPath id="${id}-c"><rect x="${box.left}" y="${box.top}" width="${box.right - box.left}" height="${box.bottom - box.top}"/></clipPath><g clip-path="url(#${id}-c)">${curves(plot, scales)}</g>`,
     fences(plot.fences, scales),
     hoverSlices(plot, scales),
   ]);
