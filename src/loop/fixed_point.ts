@@ -1,8 +1,4 @@
-/** How a product loses the bits that its format does not have; the place in this list is what operations are given. */
-export const roundings = ['truncate', 'toward_zero', 'nearest', 'half_even'] as const;
-
-/** What becomes of a result outside the format; the place in this list is what operations are given. */
-export const overflows = ['saturate', 'wrap'] as const;
+import { overflows, roundings } from '../spec/fixed_formats.js';
 
 /** Added to the code of an overflow rule: the operation then gives the number of its overflows instead of its result. */
 export const counting = overflows.length;

@@ -2,6 +2,7 @@ import { quotientOf, timeDimension } from './dimension.js';
 import { formatMismatch } from './format_dimension.js';
 import { aKind, controllerRoom, plantRoom, settingRoom, timingRoom } from './names.js';
 import { suggestion } from './nearest.js';
+import { readArithmetic } from './read_arithmetic.js';
 import {
   type Free,
   fit,
@@ -19,7 +20,6 @@ import { missing, type Reading } from './reading.js';
 import { sameUnit } from './same_unit.js';
 import type {
   ActuatorDefinition,
-  Arithmetic,
   ControllerDefinition,
   Expression,
   SensorDefinition,
@@ -128,19 +128,6 @@ function positive(period: Expression | undefined, reading: Reading): Expression 
     reading.problems.add(period.place, 'a sampling period must be above 0');
   }
   return period;
-}
-
-const arithmetics: readonly Arithmetic[] = ['float64', 'float32'];
-
-/** `float64` unless said otherwise. */
-function readArithmetic(tree: Tree | undefined, reading: Reading): Arithmetic {
-  const text = textOf(tree);
-  const found = arithmetics.find((known) => known === text?.text);
-  if (text !== undefined && found === undefined) {
-    const near = suggestion(text.text, arithmetics);
-    reading.problems.add(text.place, `unknown arithmetic \`${text.text}\`${near}`);
-  }
-  return found ?? 'float64';
 }
 
 /** `actuators:` from a controller's signal to what the plant feels; settings in SI. */

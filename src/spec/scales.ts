@@ -45,7 +45,7 @@ function factorBetween(from: number, to: number): number {
 
 /**
  * Brings an expression to a scale: literals adapt when the spec is read; anything else is multiplied at run time,
- * which a float32 controller would feel: there it is an error.
+ * which only a float64 controller does not feel: in others it is an error.
  */
 export function toScale(of: Checked, scale: number, place: Place, context: CheckContext): Checked {
   if (sameScale(of.scale, scale) || of.zero) return { ...of, scale };
@@ -54,7 +54,7 @@ export function toScale(of: Checked, scale: number, place: Place, context: Check
   if (!context.convertsFreely && of.dimension !== undefined) {
     context.problems.add(
       of.expression.place,
-      `this would be multiplied by ${factor} to fit its unit, which float32 arithmetic does not do by itself; declare both in one unit, or write the factor that the firmware has`,
+      `this would be multiplied by ${factor} to fit its unit, which the controller's arithmetic does not do by itself; declare both in one unit, or write the factor that the firmware has`,
     );
   }
   return { ...of, scale, expression: multiplied(of.expression, factor, place), adapt: undefined };

@@ -1,4 +1,5 @@
 import { z } from 'zod';
+import { overflows, roundings } from './fixed_formats.js';
 import type { BlockDescription, MeasureKey, Room, SettingDescription, Vocabulary } from './vocabulary.js';
 
 /** What is said of a slot in the JSON Schema and in the error when it is missing or of the wrong shape. */
@@ -181,13 +182,25 @@ const sensor = z
   })
   .describe('{ of: …, unit: … }');
 
+const arithmetic = z
+  .union([
+    text('float64, float32 or float32_fused'),
+    z.strictObject({
+      format: text('a format such as Q1.15 or int32'),
+      rounding: text(roundings.join(', ')),
+      overflow: text(overflows.join(' or ')),
+      accumulator: text('a width such as 64 bit').optional(),
+    }),
+  ])
+  .describe('float64, float32 or float32_fused, or { format: …, rounding: …, overflow: … }');
+
 function controller(vocabulary: Vocabulary) {
   return z
     .strictObject({
       every: text('the sampling period, such as 1 ms or 1 kHz'),
       phase: text('a time').optional(),
       delay: text('a time').optional(),
-      arithmetic: text('float64 or float32').optional(),
+      arithmetic: arithmetic.optional(),
       signals: z.record(z.string(), signal(vocabulary, 'controller')).describe(mappingOf('signals')),
     })
     .describe('{ every: …, signals: … }');

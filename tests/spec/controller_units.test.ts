@@ -68,7 +68,7 @@ test('under float64 a term in another unit is multiplied, and the result is brou
 
 test('under float32 that would be an operation which the firmware does not do', () => {
   expect(refusal('k*(goal - seen)', 'V')).toEqual([
-    'a.pawl.yaml:22:36: this would be multiplied by 0.001 to fit its unit, which float32 arithmetic does not do by itself; declare both in one unit, or write the factor that the firmware has',
+    "a.pawl.yaml:22:36: this would be multiplied by 0.001 to fit its unit, which the controller's arithmetic does not do by itself; declare both in one unit, or write the factor that the firmware has",
   ]);
   expect(refusal('k*seen + 0*goal*(1 1/V)*seen', 'V')).toEqual([
     expect.stringContaining('22:33: this would be multiplied by 0.001'),
