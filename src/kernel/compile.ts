@@ -1,8 +1,10 @@
 import { Derivative } from '../loop/derivative.js';
 import type { Node } from '../loop/graph.js';
 import type { Loop, TracedSignal } from '../loop/loop.js';
+import { rateOf } from '../loop/rate.js';
 import { type Layout, layOut } from './layout.js';
 import { helpers, inArray, statements } from './source.js';
+import { stiffStep } from './stiff_step.js';
 
 /** A loop's equations as compiled functions over the array `m` which `layout` describes. */
 export interface CompiledLoop {
@@ -10,8 +12,12 @@ export interface CompiledLoop {
   layout: Layout;
   /** Moves the continuous states by one step of the classical fourth-order method (Kutta 1901), all else constant. */
   step: (m: Float64Array, h: number) => void;
+  /** The same by a method for fast poles next to slow ones. */
+  stiffStep: (m: Float64Array, h: number) => void;
   /** Takes modes anew and corrects states, from the states as they are; undefined where the loop has neither. */
   settle: ((m: Float64Array) => void) | undefined;
+  /** Whether settling would now make the plant jump: 1 or 0; undefined where nothing jumps. */
+  jumps: ((m: Float64Array) => number) | undefined;
   /** For each task: samples its sensors. */
   sample: ((m: Float64Array) => void)[];
   /** For each task: computes its signals, its results into `pending`, and its memories. */
@@ -30,10 +36,19 @@ export function compileLoop(loop: Loop, traced: readonly string[]): CompiledLoop
     loop,
     layout,
     step: makeFunction('m, h', stepText(loop, layout)),
+    stiffStep: stiffStep(
+      {
+        rates: makeFunction('m, rates', ratesText(loop, layout)),
+        slopes: makeFunction('m, slopes', slopesText(loop, layout)),
+      },
+      layout.state,
+      loop.states.length,
+    ),
     settle:
       loop.modes.length + loop.corrections.length > 0
         ? makeFunction('m', settleText(loop, layout))
         : undefined,
+    jumps: jumpConditions(loop).length > 0 ? makeFunction('m', jumpsText(loop, layout)) : undefined,
     sample: tasks.map((task) => makeFunction('m', sampleText(loop, layout, task))),
     compute: tasks.map((task) => makeFunction('m', computeText(loop, layout, task, sampled))),
     record: makeFunction('m, records, at', recordText(loop, layout, signals, sampled)),
@@ -68,6 +83,38 @@ function stepText(loop: Loop, layout: Layout): string[] {
     lines.push(`m[${layout.state + i}] = x${i} + h / 6 * (a${i} + 2 * (b${i} + c${i}) + d${i});`);
   });
   return lines;
+}
+
+function ratesText(loop: Loop, layout: Layout): string[] {
+  const { lines, results } = statements(
+    loop.states.map(({ derivative }) => derivative),
+    inArray(layout),
+    'v',
+  );
+  return [...lines, ...results.map((result, i) => `rates[${i}] = ${result};`)];
+}
+
+function slopesText(loop: Loop, layout: Layout): string[] {
+  const derivative = new Derivative(loop.graph);
+  const slopes = loop.states.flatMap((row) =>
+    loop.states.map((_, column) => derivative.of(row.derivative, loop.graph.leaf('state', column))),
+  );
+  const { lines, results } = statements(slopes, inArray(layout), 'v');
+  return [...lines, ...results.map((result, i) => `slopes[${i}] = ${result};`)];
+}
+
+/** Pairs of values that differ when the plant is about to jump. */
+function jumpConditions({ graph, modes, corrections }: Loop): [Node, Node][] {
+  return [
+    ...modes.flatMap(({ jumps, next }, i): [Node, Node][] => (jumps ? [[graph.leaf('mode', i), next]] : [])),
+    ...corrections.map(({ state, value }): [Node, Node] => [graph.leaf('state', state), value]),
+  ];
+}
+
+function jumpsText(loop: Loop, layout: Layout): string[] {
+  const { lines, results } = statements(jumpConditions(loop).flat(), inArray(layout), 'v');
+  const pairs = results.flatMap((result, i) => (i % 2 === 0 ? [`${result} !== ${results[i + 1]}`] : []));
+  return [...lines, `return ${pairs.join(' || ')} ? 1 : 0;`];
 }
 
 /** All new values from the old ones, then all at once. */
@@ -124,7 +171,7 @@ function recordText(
 ): string[] {
   const zero = loop.graph.number(0);
   const roots = signals.flatMap((signal) =>
-    signal.kind === 'sampled' ? [zero, zero] : [signal.value, rateOf(loop, signal.value)],
+    signal.kind === 'sampled' ? [zero, zero] : [signal.value, rateOf(loop.graph, loop.states, signal.value)],
   );
   const { lines, results } = statements(roots, inArray(layout), 'v');
   signals.forEach((signal, i) => {
@@ -133,19 +180,4 @@ function recordText(
     lines.push(`const r${i} = records[${i}]; r${i}[at] = ${value}; r${i}[at + 1] = ${results[2 * i + 1]};`);
   });
   return lines;
-}
-
-/** Rate of an expression along the motion of the states. */
-export function rateOf(loop: Loop, value: Node): Node {
-  const derivative = new Derivative(loop.graph);
-  const zero = loop.graph.number(0);
-  return loop.states.reduce((sum, state, i) => {
-    const slope = derivative.of(value, loop.graph.leaf('state', i));
-    if (slope === zero) return sum;
-    const part =
-      slope.kind === 'number' && slope.value === 1
-        ? state.derivative
-        : loop.graph.apply('multiply', slope, state.derivative);
-    return sum === zero ? part : loop.graph.apply('add', sum, part);
-  }, zero);
 }

@@ -3,8 +3,8 @@ import { eigenvalues } from '../linear/eigenvalues.js';
 import { discretise } from '../linear/exponential.js';
 import { Linearisation } from '../linear/linearise.js';
 import { type Matrix, place, zeros } from '../linear/matrix.js';
+import { allAffine } from '../loop/affine.js';
 import { Evaluation } from '../loop/evaluate.js';
-import { dependsOn } from '../loop/graph.js';
 import type { CompiledLoop } from './compile.js';
 
 /** How the continuous states of one plant move: steps for each duration, and the movement of one step. */
@@ -18,7 +18,8 @@ export interface Movement {
 /** A step this long against the fastest rate (1/s) is where the first attempt starts; halving then checks it. */
 const firstStep = 0.4;
 /** An exact movement needs steps only for the shape of the trace between them. */
-const mostSteps = { exact: 64, integrated: 4096 };
+const mostTables = 256;
+const mostSteps = { exact: 64, integrated: 256 };
 
 /** Chooses for a loop how its plants move: exactly where the plant is linear, by small steps where it is not. */
 export class MovementChoice {
@@ -27,14 +28,15 @@ export class MovementChoice {
 
   constructor(private readonly compiled: CompiledLoop) {
     this.linearisation = new Linearisation(compiled.loop);
-    this.linear = isLinear(this.linearisation);
+    this.linear = allAffine(this.linearisation.roots.derivative);
   }
 
   /**
    * @param start the array at the point of rest; its parameters make the plant.
+   * @param longest the longest segment, s: with very many steps in it the plant counts as stiff.
    * @param halvings every step is halved so many times against the first attempt.
    */
-  of(start: Float64Array, halvings: number): Movement {
+  of(start: Float64Array, longest: number, halvings: number): Movement {
     const { loop, layout } = this.compiled;
     const part = (from: number, length: number): Float64Array => start.slice(from, from + length);
     const parameter = part(layout.parameter, loop.parameters.length);
@@ -52,10 +54,13 @@ export class MovementChoice {
       return { steps, move: this.exactMove(rates, parameter) };
     }
     const fastest = Math.max(0, ...modes.map(({ speed }) => speed));
-    const steps = (duration: number): number[] => {
-      const count = Math.max(1, Math.ceil((duration * fastest) / firstStep));
-      return halved(equal(duration, Math.min(mostSteps.integrated, count)), halvings);
-    };
+    const stepsNeeded = (duration: number): number =>
+      Math.max(1, Math.ceil((duration * fastest) / firstStep));
+    if (stepsNeeded(longest) > mostSteps.integrated) {
+      const steps = (duration: number): number[] => halved(gradedSteps(duration, modes), halvings);
+      return { steps, move: this.compiled.stiffStep };
+    }
+    const steps = (duration: number): number[] => halved(equal(duration, stepsNeeded(duration)), halvings);
     return { steps, move: this.compiled.step };
   }
 
@@ -74,7 +79,8 @@ export class MovementChoice {
       let table = tables.get(duration);
       if (!table) {
         table = joined(discretise(rates, input, duration));
-        tables.set(duration, table);
+        // Steps that end at a jump are all different and never come again.
+        if (tables.size < mostTables) tables.set(duration, table);
       }
       let at = 0;
       for (let i = 0; i < moved.length; i++) {
@@ -105,15 +111,6 @@ function joined({ phi, gamma }: { phi: Matrix; gamma: Matrix }): Float64Array {
   place(table, phi, 0, 0);
   place(table, gamma, 0, phi.columns);
   return table.data;
-}
-
-/** Whether every rate is a sum of states, held values and inputs with factors that only parameters set. */
-function isLinear(linearisation: Linearisation): boolean {
-  return (['state', 'held', 'input'] as const).every((columns) =>
-    linearisation
-      .entries('derivative', columns)
-      .every(({ slope }) => !dependsOn(slope, ['state', 'mode', 'held', 'input'])),
-  );
 }
 
 /** How fast a natural motion of the plant is, and how fast it dies out; 1/s. */

@@ -1,5 +1,6 @@
 import type { Schedule } from '../loop/schedule.js';
 import type { CompiledLoop } from './compile.js';
+import { JumpFinder } from './jump_finder.js';
 import type { Movement } from './movement.js';
 import { TaskRunner } from './task_runner.js';
 import type { Timeline } from './timeline.js';
@@ -8,16 +9,22 @@ import type { Run, RunEnd } from './trace.js';
 /** Arrays for traces, grown as needed and used again from run to run, so that memory stays flat. */
 export class TraceStore {
   times = new Float64Array(0);
-  records: Float64Array[] = [];
+  readonly records: Float64Array[] = [];
 
-  /** Makes room for so many signals and pieces. */
+  /** Makes room for so many signals and pieces, and keeps what is there. */
   reserve(signals: number, pieces: number): void {
-    if (this.times.length < pieces + 1) this.times = new Float64Array(pieces + 1);
+    if (this.times.length < pieces + 1) this.times = grown(this.times, pieces + 1);
     while (this.records.length < signals) this.records.push(new Float64Array(0));
     for (let i = 0; i < signals; i++) {
-      if (this.records[i].length < 4 * pieces) this.records[i] = new Float64Array(4 * pieces);
+      if (this.records[i].length < 4 * pieces) this.records[i] = grown(this.records[i], 4 * pieces);
     }
   }
+}
+
+function grown(array: Float64Array, length: number): Float64Array<ArrayBuffer> {
+  const larger = new Float64Array(length);
+  larger.set(array);
+  return larger;
 }
 
 /** Everything one run needs. */
@@ -36,17 +43,16 @@ export interface RunRequest {
 
 /** Follows one plant through one scenario. */
 export function runPlant(request: RunRequest): Run {
-  const { compiled, timeline, movement, store } = request;
+  const { compiled, timeline, movement, store, signals } = request;
   const m = request.start.slice();
   const tasks = new TaskRunner(compiled, request.schedule, request.noise, m);
   const stepsOf = timeline.durations.map((duration) => movement.steps(duration));
   store.reserve(
-    request.signals,
+    signals,
     timeline.duration.reduce((sum, index) => sum + stepsOf[index].length, 0),
   );
-  const { times, records } = store;
-  const { state } = compiled.layout;
-  const states = compiled.loop.states.length;
+  const finder = compiled.jumps && new JumpFinder(compiled, movement);
+  const advance = advanceOf(compiled, movement, finder);
   let piece = 0;
   let end: RunEnd = { kind: 'complete' };
   for (let segment = 0; segment < timeline.action.length; segment++) {
@@ -54,27 +60,54 @@ export function runPlant(request: RunRequest): Run {
     compiled.settle?.(m);
     let time = timeline.times[segment];
     for (const h of stepsOf[timeline.duration[segment]]) {
-      times[piece] = time;
-      compiled.record(m, records, 4 * piece);
-      if (states > 0) movement.move(m, h);
-      compiled.settle?.(m);
-      compiled.record(m, records, 4 * piece + 2);
-      time += h;
-      piece++;
+      for (let left = h; left > 0; piece++) {
+        if (piece >= store.times.length - 1) store.reserve(signals, 2 * piece + 16);
+        store.times[piece] = time;
+        compiled.record(m, store.records, 4 * piece);
+        const moved = advance(m, left, left === h);
+        compiled.record(m, store.records, 4 * piece + 2);
+        finder?.cross(m);
+        compiled.settle?.(m);
+        time += moved;
+        left -= moved;
+      }
     }
-    const bad = firstBad(m, state, states);
-    if (bad >= 0) {
-      const kind = Number.isNaN(m[state + bad]) ? 'not_a_number' : 'overflow';
-      end = { kind, time: timeline.times[segment + 1], state: compiled.loop.states[bad].name };
+    const bad = badState(compiled, m);
+    if (bad) {
+      end = { ...bad, time: timeline.times[segment + 1] };
       break;
     }
   }
-  times[piece] = timeline.times[timeline.times.length - 1];
-  return { times, records, pieces: piece, end };
+  store.times[piece] = timeline.times[timeline.times.length - 1];
+  return { times: store.times, records: store.records, pieces: piece, end };
 }
 
-/** The first state that left the finite numbers, or −1. A state beyond 1e100 is on its way out of them. */
-function firstBad(m: Float64Array, from: number, count: number): number {
-  for (let i = 0; i < count; i++) if (!(Math.abs(m[from + i]) < 1e100)) return i;
-  return -1;
+/** Moves by at most h (s) and returns how far; `fresh` says that a step of the movement begins. */
+type Advance = (m: Float64Array, h: number, fresh: boolean) => number;
+
+function advanceOf(compiled: CompiledLoop, movement: Movement, finder: JumpFinder | undefined): Advance {
+  if (compiled.loop.states.length === 0) return (_, h) => h;
+  if (!finder) {
+    return (m, h) => {
+      movement.move(m, h);
+      return h;
+    };
+  }
+  return (m, h, fresh) => {
+    if (fresh) finder.newStep();
+    return finder.move(m, h);
+  };
+}
+
+/** The first state that left the finite numbers. One beyond 1e100 is on its way out of them. */
+function badState(
+  { layout, loop }: CompiledLoop,
+  m: Float64Array,
+): { kind: 'not_a_number' | 'overflow'; state: string } | undefined {
+  for (let i = 0; i < loop.states.length; i++) {
+    const value = m[layout.state + i];
+    if (Math.abs(value) < 1e100) continue;
+    return { kind: Number.isNaN(value) ? 'not_a_number' : 'overflow', state: loop.states[i].name };
+  }
+  return undefined;
 }

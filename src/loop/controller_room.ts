@@ -85,6 +85,7 @@ export class ControllerRoom {
       arithmetic: this.arithmetic(task),
       addState: () => notHere('a continuous state'),
       addMode: () => notHere('a mode'),
+      rateOf: () => notHere('a rate'),
       addCorrection: () => notHere('a correction of a state'),
       delayed: () => notHere('a dead time'),
       addMemory: (own, next, begin) => this.parts.addMemory(own, task, begin ?? start ?? 0, next),

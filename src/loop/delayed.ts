@@ -60,7 +60,9 @@ export class DelayedCopies {
       }
       case 'mode': {
         const original = parts.modes[index];
-        return parts.addMode(`${original.name} delayed`, original.start, () => later(original.next));
+        return parts.addMode(`${original.name} delayed`, original.start, original.jumps, () =>
+          later(original.next),
+        );
       }
       case 'held':
         return parts.addDelayedHeld(index, delay);

@@ -16,6 +16,8 @@ export interface Mode {
   name: string;
   next: Node;
   start: number;
+  /** Whether the time of a change must be found (a relay that switches, a gap that closes). */
+  jumps: boolean;
 }
 
 /** After every step of the movement a state is brought to a value: a stop that it cannot pass, a reset. */

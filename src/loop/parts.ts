@@ -12,6 +12,7 @@ import {
   type Mode,
   type Reading,
 } from './loop.js';
+import { rateOf } from './rate.js';
 
 /** The numbers that the build holds, by the spec's name for them; one for a scalar. */
 export type CoefficientValues = ReadonlyMap<string, readonly number[]>;
@@ -35,6 +36,8 @@ export class Parts {
   readonly channels: Channel[] = [];
   readonly noises: number[] = [];
   private readonly deferred: (() => void)[] = [];
+  /** Work that looks at the finished rates of the states. */
+  private readonly late: (() => void)[] = [];
 
   constructor(
     inputs: readonly { name: string; rest: number }[],
@@ -52,12 +55,17 @@ export class Parts {
   }
 
   /** A value that changes by jumps, taken anew after every step of the movement. */
-  addMode(name: string, start: number, next: () => Node): Node {
-    const mode = { name, start, next: this.graph.number(0) };
-    this.deferred.push(() => {
+  addMode(name: string, start: number, jumps: boolean, next: () => Node): Node {
+    const mode = { name, start, jumps, next: this.graph.number(0) };
+    this.late.push(() => {
       mode.next = next();
     });
     return this.graph.leaf('mode', this.modes.push(mode) - 1);
+  }
+
+  /** Rate of an expression along the motion of the plant; only when the rates of all states are finished. */
+  rateOf(value: Node): Node {
+    return rateOf(this.graph, this.states, value);
   }
 
   /** Brings a state to a value after every step of the movement. */
@@ -118,7 +126,8 @@ export class Parts {
 
   /** Does the deferred work, and what it defers in turn. */
   finish(): void {
-    for (let work = this.deferred.shift(); work; work = this.deferred.shift()) work();
+    const next = (): (() => void) | undefined => this.deferred.shift() ?? this.late.shift();
+    for (let work = next(); work; work = next()) work();
   }
 
   /** All numbers of a coefficient. */

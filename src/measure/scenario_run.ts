@@ -1,4 +1,4 @@
-import { type CompiledLoop, compileLoop, rateOf } from '../kernel/compile.js';
+import { type CompiledLoop, compileLoop } from '../kernel/compile.js';
 import { MovementChoice } from '../kernel/movement.js';
 import { standardNormal } from '../kernel/noise.js';
 import { runPlant, type TraceStore } from '../kernel/run_plant.js';
@@ -8,6 +8,7 @@ import type { PointOfRest } from '../linear/point_of_rest.js';
 import { Evaluation } from '../loop/evaluate.js';
 import { dependsOn, type Node } from '../loop/graph.js';
 import type { Loop } from '../loop/loop.js';
+import { rateOf } from '../loop/rate.js';
 import type { Schedule } from '../loop/schedule.js';
 import type { Scenario } from '../spec/spec.js';
 import { type Curve, curveOf } from './curve.js';
@@ -46,7 +47,7 @@ export class ScenarioRun {
       start,
       schedule,
       timeline,
-      movement: this.choice.of(start, halvings),
+      movement: this.choice.of(start, Math.max(...timeline.durations), halvings),
       noise: this.noise(schedule),
       signals: this.recorded.length,
       store: this.store,
@@ -130,7 +131,7 @@ function loopWithRates(loop: Loop, traced: readonly string[]): { loop: Loop; rat
   const rates = traced.flatMap((name) => {
     const signal = loop.signals.get(name)!;
     if (signal.kind === 'sampled') return [];
-    const value = rateOf(loop, signal.value);
+    const value = rateOf(loop.graph, loop.states, signal.value);
     if (value.kind === 'number') return [];
     signals.set(rateNamed(name), { kind: 'continuous', value, range: undefined });
     return [rateNamed(name)];

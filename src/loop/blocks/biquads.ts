@@ -1,58 +1,55 @@
-import type { TargetArithmetic } from '../arithmetic.js';
-import type { Node } from '../graph.js';
 import { LoopError } from '../loop.js';
-import type { Block, Workshop } from './block.js';
+import type { Block } from './block.js';
+import { filtered, type Structure, structureSetting } from './difference_equation.js';
 
-/** Second-order sections one after another, direct form 1. */
+/** Second-order sections one after another. */
 export const biquads: Block = {
   description: {
     key: 'biquads',
+    main: 'sections',
     rooms: ['controller'],
     takesInput: true,
     takesGain: false,
     inputLikeOutput: true,
     settings: [
       {
-        name: 'biquads',
-        kind: 'coefficients',
+        name: 'sections',
+        kind: 'matrix',
+        rows: 'plain',
+        columns: 'plain',
+        entry: 'ratio',
         optional: false,
         meaning: 'array of b0 b1 b2 a1 a2 for each section, a0 = 1',
+      },
+      structureSetting,
+      {
+        name: 'feedback_sign',
+        kind: 'word',
+        words: ['minus', 'plus'],
+        optional: true,
+        meaning: 'plus where a1 and a2 are stored negated and their products are added; minus by default',
       },
     ],
     meaning: 'each section: y = b0·x + b1·x₁ + b2·x₂ − a1·y₁ − a2·y₂, summed from left to right',
   },
   keepsRange: false,
   expand: (use, workshop) => {
-    const coefficients = use.coefficients('biquads');
+    const coefficients = use.matrix('sections')!.flat();
     if (coefficients.length % 5 !== 0) {
       throw new LoopError(
         `biquads of '${use.name}' got ${coefficients.length} coefficients, expected 5 for each section (b0 b1 b2 a1 a2)`,
         use.place,
       );
     }
+    const structure = (use.word('structure') ?? 'direct_1') as Structure;
+    const feedback = use.word('feedback_sign') === 'plus' ? 'plus' : 'minus';
     let signal = use.input();
     for (let first = 0; first < coefficients.length; first += 5) {
       const name = `${use.name} section ${first / 5 + 1}`;
-      signal = section(name, signal, coefficients.slice(first, first + 5), workshop);
+      const [b0, b1, b2, a1, a2] = coefficients.slice(first, first + 5);
+      const section = { name, forward: [b0, b1, b2], back: [a1, a2], structure, feedback } as const;
+      signal = filtered(section, signal, workshop);
     }
     return signal;
   },
 };
-
-/** One section; the four kept values are the last two inputs and outputs. */
-function section(name: string, input: Node, [b0, b1, b2, a1, a2]: Node[], workshop: Workshop): Node {
-  const { arithmetic, addMemory } = workshop;
-  const input1 = addMemory(`${name} x1`, () => input);
-  const input2 = addMemory(`${name} x2`, () => input1);
-  const output1: Node = addMemory(`${name} y1`, () => output);
-  const output2 = addMemory(`${name} y2`, () => output1);
-  const forward = sumOfProducts(arithmetic, [b0, b1, b2], [input, input1, input2]);
-  const once = arithmetic.subtract(forward, arithmetic.multiply(a1, output1));
-  const output = arithmetic.subtract(once, arithmetic.multiply(a2, output2));
-  return output;
-}
-
-function sumOfProducts(arithmetic: TargetArithmetic, factors: Node[], values: Node[]): Node {
-  const products = factors.map((factor, at) => arithmetic.multiply(factor, values[at]));
-  return products.reduce((sum, product) => arithmetic.add(sum, product));
-}

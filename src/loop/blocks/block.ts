@@ -44,9 +44,11 @@ export interface Workshop {
   addState: (name: string, derivative: () => Node, start?: number) => Node;
   /**
    * Adds a value that is taken anew after every step of the movement. Plant only.
-   * @param jumps whether the plant jumps when it changes: a relay does, the play of a backlash does not.
+   * @param jumps whether the time of a change must be found: for a relay, not for a value that drifts.
    */
   addMode: (name: string, jumps: boolean, next: () => Node, start?: number) => Node;
+  /** Rate of an expression along the motion of the plant; only from a mode's deferred function. Plant only. */
+  rateOf: (value: Node) => Node;
   /** Brings a state to a value after every step of the movement. Plant only. */
   addCorrection: (state: Node, value: () => Node) => void;
   /** An expression of the plant as it was some time ago (s). Plant only. */

@@ -60,7 +60,7 @@ export const hysteresis: Block = {
     };
     const name = `${use.name} is on`;
     const last: Node =
-      room === 'plant' ? addMode(name, () => switched(), start) : addMemory(name, () => switched());
+      room === 'plant' ? addMode(name, true, () => switched(), start) : addMemory(name, () => switched());
     return a.apply('choose', switched(), use.setting('on')!, use.setting('off')!);
   },
 };

@@ -1,0 +1,276 @@
+import { describe, expect, it } from 'vitest';
+import { expectPublished, publishedCase } from '../published.js';
+import { measured, resultsOf } from './measured.js';
+
+/** A plant driven by one input that steps to `size` at 0, with requirements on its signals. */
+function driven(plant: string, requirements: string, size = '1 m', lasts = '40 s'): string {
+  return `
+inputs: { target: { unit: m } }
+plant:
+${plant}
+scenarios: { jump: { lasts: ${lasts}, inputs: { target: { step: ${size}, at: 0 s } } } }
+requirements:
+${requirements}
+`;
+}
+
+const requirement = (name: string, measure: string, more: string): string =>
+  `  - { name: ${name}, measure: ${measure}, in: jump, ${more} }`;
+
+describe('second_order_lag', () => {
+  // Ogata, 'Modern Control Engineering', 2010: closed forms of the standard second-order system.
+  for (const id of ['A01', 'A03', 'A05', 'A08']) {
+    const { given } = publishedCase(id);
+    it(`steps as the published system with damping ${given.damping_ratio} (${id})`, () => {
+      const results = measured(
+        driven(
+          `  y: { second_order_lag: { corner: ${given.natural_frequency_rad_per_s} rad/s, damping: ${given.damping_ratio} }, of: target, unit: m }`,
+          [
+            requirement('overshoot', 'overshoot', 'of: y, to: target, at_most: 300 %'),
+            requirement('rise', 'rise_time', 'of: y, to: target, at_most: 10 s'),
+            requirement('settling', 'settling_time', 'of: y, to: target, band: 5 %, at_most: 26 s'),
+          ].join('\n'),
+        ),
+        { halvings: 3 },
+      );
+      expectPublished(id, 'overshoot', 100 * results.overshoot);
+      expectPublished(id, 'rise_time_10_90', results.rise);
+      expectPublished(id, 'settling_time_5_percent', results.settling);
+    });
+  }
+});
+
+describe('lead_lag in the plant', () => {
+  it('jumps by the ratio of its time constants and settles at its gain', () => {
+    // y(t) = gain·(1 + (T₁/T₂ − 1)·e^{−t/T₂}), from partial fractions.
+    const results = measured(
+      driven(
+        '  y: { lead_lag: { lead: 3 s, lag: 2 s }, of: target, gain: 2, unit: m }',
+        [
+          requirement('top', 'largest_value', 'of: y, at_most: 9 m'),
+          requirement('settling', 'settling_time', 'of: y, to: target, band: 110 %, at_most: 20 s'),
+        ].join('\n'),
+      ),
+      { halvings: 2 },
+    );
+    expect(results.top).toBeCloseTo(3, 12);
+    expect(results.settling).toBeCloseTo(2 * Math.log(1 / 0.1), 9);
+  });
+});
+
+describe('dead_time', () => {
+  const sampled = (plant: string, delay: string, sensor: string): string => `
+parameters: { late: { nominal: 7.3 ms, from: 1 ms, to: 20 ms } }
+inputs: { target: { unit: rad } }
+plant:
+  speed: { integral: (30 1/s^2)*${plant} - (2 1/s)*speed, unit: rad/s }
+  angle: { integral: speed, unit: rad }
+  late_angle: { dead_time: late, of: angle, unit: rad }
+sensors: { encoder: { of: ${sensor}, filter: 4 ms, unit: rad } }
+controllers: { axis: { every: 10 ms, delay: ${delay}, signals: { push: { value: 0.8*(target - encoder), unit: rad } } } }
+actuators: { drive: { of: push, unit: rad } }
+scenarios: { jump: { lasts: 20 s, inputs: { target: { step: 1 rad, at: 0 s } } } }
+requirements:
+  - { name: top, measure: overshoot, of: angle, to: target, in: jump, at_most: 90 % }
+  - { name: gain, measure: gain_margin, at: drive, at_least: 1.1 }
+  - { name: phase, measure: phase_margin, at: push, at_least: 1 deg }
+  - { name: modulus, measure: modulus_margin, at: encoder, at_least: 0.1 }
+  - { name: late, measure: largest_value, of: late_angle, in: jump, at_most: 5 rad }
+`;
+
+  it('before a sensor, behind an actuator and as the delay of a controller is one and the same loop', () => {
+    const inSensor = measured(sampled('drive', '2 ms', 'late_angle'));
+    const inController = measured(sampled('drive', '9.3 ms', 'angle'));
+    for (const name of ['gain', 'phase', 'modulus']) {
+      expect(inSensor[name]).toBeCloseTo(inController[name], 9);
+    }
+    // Only the reference sees the difference: the sensor's dead time lies in the feedback, the controller's in the path.
+    const inPlant = sampled('pushed', '2 ms', 'angle').replace(
+      'plant:',
+      'plant:\n  pushed: { dead_time: late, of: drive, unit: rad }',
+    );
+    const behindActuator = measured(inPlant);
+    for (const name of ['top', 'gain', 'phase', 'modulus', 'late']) {
+      expect(behindActuator[name], name).toBeCloseTo(inController[name], 9);
+    }
+  });
+
+  it('shows a signal exactly as it was: the same peak, later by the dead time', () => {
+    const text = sampled('drive', '2 ms', 'angle')
+      .replace(
+        'requirements:',
+        'requirements:\n  - { name: when, measure: time_of_largest_value, of: angle, in: jump, at_most: 9 s }',
+      )
+      .replace(
+        'requirements:',
+        'requirements:\n  - { name: late when, measure: time_of_largest_value, of: late_angle, in: jump, at_most: 9 s }',
+      )
+      .replace(
+        'requirements:',
+        'requirements:\n  - { name: peak, measure: largest_value, of: angle, in: jump, at_most: 9 rad }',
+      );
+    const results = measured(text, { halvings: 2 });
+    expect(results.late).toBeCloseTo(results.peak, 10);
+    expect(results['late when'] - results.when).toBeCloseTo(0.0073, 7);
+  });
+
+  it('shifts an input by the dead time, events included', () => {
+    const results = measured(
+      driven(
+        '  y: { dead_time: 1.37 s, of: target, gain: 2, unit: m }',
+        requirement('delay', 'delay_time', 'of: y, to: target, at_most: 20 s'),
+      ),
+    );
+    expect(results.delay).toBeCloseTo(1.37, 12);
+  });
+
+  it('inside a continuous loop is refused at its place, with what to do', () => {
+    const spec = driven(
+      '  y: { lag: 1 s, of: target - late, unit: m }\n  late: { dead_time: 0.2 s, of: y, unit: m }',
+      requirement('top', 'largest_value', 'of: y, at_most: 9 m'),
+    );
+    expect(() => resultsOf(spec)).toThrow('this dead time lies in a continuous loop');
+  });
+});
+
+describe('dead_band', () => {
+  it('takes its half width off both sides', () => {
+    for (const [size, top, low] of [
+      ['3 m', 2.5, 2.5],
+      ['-3 m', -2.5, -2.5],
+      ['0.4 m', 0, 0],
+    ] as const) {
+      const results = measured(
+        driven(
+          '  y: { dead_band: 0.5 m, of: target, unit: m }',
+          [
+            requirement('top', 'largest_value', 'of: y, at_most: 9 m'),
+            requirement('low', 'smallest_value', 'of: y, at_least: -9 m'),
+          ].join('\n'),
+          size,
+        ),
+      );
+      expect(results.top).toBeCloseTo(top, 12);
+      expect(results.low).toBeCloseTo(low, 12);
+    }
+  });
+});
+
+describe('backlash', () => {
+  // The play operator (M. A. Krasnosel'skii and A. V. Pokrovskii, 'Systems with Hysteresis', 1989): driven by a vibration of
+  // amplitude A around 0, a gap of width b leaves an output of amplitude A − b/2.
+  it('leaves the play’s share of a vibration', () => {
+    const results = measured(
+      driven(
+        `  swing: { integral: (2 1/s)*pull, start: 0 m, unit: m }
+  pull: { integral: -(2 1/s)*(swing - target), start: 0 m, unit: m }
+  y: { backlash: 0.6 m, of: swing, unit: m }`,
+        [
+          requirement('top', 'largest_value', 'of: y, at_most: 9 m'),
+          requirement('low', 'smallest_value', 'of: y, at_least: -9 m'),
+          requirement('whole', 'largest_value', 'of: swing, at_most: 9 m'),
+        ].join('\n'),
+        '1 m',
+        '12 s',
+      ),
+      { halvings: 2 },
+    );
+    // The swing goes from 0 to 2 around the target of 1, the output from 0.3 to 1.7; it starts in the middle of the gap, at 0.
+    expect(results.whole).toBeCloseTo(2, 8);
+    expect(results.top).toBeCloseTo(1.7, 8);
+    expect(results.low).toBe(0);
+  });
+
+  it('has no margin', () => {
+    const results = resultsOf(`
+inputs: { target: { unit: rad } }
+plant:
+  motor: { integral: drive, unit: rad }
+  angle: { backlash: 1 mrad, of: motor, unit: rad }
+sensors: { encoder: { of: angle, unit: rad } }
+controllers: { axis: { every: 10 ms, signals: { push: { value: "(2 1/s)*(target - encoder)", unit: rad/s } } } }
+actuators: { drive: { of: push, unit: rad/s } }
+scenarios: { jump: { lasts: 20 s, inputs: { target: { step: 1 rad, at: 0 s } } } }
+requirements: [{ name: gain, measure: gain_margin, at: drive, at_least: 1.1 }]
+`);
+    expect(results.gain).toMatchObject({
+      kind: 'unformed',
+      why: "at the point of linearisation 'encoder' is at a backlash or relay, which has no single slope",
+    });
+  });
+});
+
+describe('hysteresis', () => {
+  it('makes the published relay oscillation of 1/(s+1)^3 (J06)', () => {
+    const { given } = publishedCase('J06');
+    const level = given.relay_level;
+    const results = measured(
+      driven(
+        `  relay: { hysteresis: { on_above: 1 nm, off_below: -1 nm, on: ${level} m, off: -${level} m }, of: target - c, unit: m }
+  a: { lag: 1 s, of: relay, unit: m }
+  b: { lag: 1 s, of: a, unit: m }
+  c: { lag: 1 s, of: b, unit: m }`,
+        [
+          requirement('f', 'oscillation_frequency', 'of: c, from: 30 s, until: 58 s, at_most: 1 Hz'),
+          requirement('amplitude', 'oscillation_amplitude', 'of: c, from: 30 s, until: 58 s, at_most: 1 m'),
+        ].join('\n'),
+        '1 nm',
+        '60 s',
+      ).replace('lasts:', 'start: zero, lasts:'),
+      { halvings: 6 },
+    );
+    // The band of the relay and the rest of the transient are what is left.
+    expectPublished('J06', 'exact_period', 1 / results.f, 1e-6);
+    expectPublished('J06', 'exact_amplitude', results.amplitude, 1e-5);
+  });
+});
+
+describe('integral with stops', () => {
+  it('rests at the stop and leaves it at once when the rate turns', () => {
+    const results = measured(
+      `
+inputs: { push: { unit: m/s } }
+plant: { place: { integral: { integral: push, high_stop: 2 m, low_stop: -1 m }, unit: m } }
+scenarios: { there: { lasts: 20 s, inputs: { push: [{ pulse: 0.5 m/s, at: 1 s, for: 8 s }, { pulse: -1 m/s, at: 10 s, for: 0.75 s }] } } }
+requirements:
+  - { name: top, measure: largest_value, of: place, in: there, at_most: 9 m }
+  - { name: low, measure: smallest_value, of: place, in: there, at_least: -9 m }
+  - { name: end, measure: steady_state_error, of: place, to: push, in: there, at_most: 9 m }
+`.replace(/ {2}- \{ name: end.*\n/, ''),
+      { halvings: 3 },
+    );
+    expect(results.top).toBeCloseTo(2, 10);
+    expect(results.low).toBe(0);
+  });
+});
+
+describe('friction', () => {
+  it('is its stated sum, at rest and sliding', () => {
+    // A load that pulls with P against friction alone settles where friction equals P: the formula solved for the speed.
+    const text = (pull: number): string =>
+      `
+inputs: { target: { unit: m/s }, pull: { unit: N } }
+plant:
+  drag: { friction: { viscous: 4 N*s/m, coulomb: 3 N, static: 5 N, stribeck_speed: 0.1 m/s, smoothing_speed: 1 mm/s }, of: speed, unit: N }
+  speed: { integral: (pull - drag)/(2 kg), unit: m/s }
+scenarios: { jump: { lasts: 60 s, inputs: { pull: { step: ${pull} N, at: 0 s } } } }
+requirements: [{ name: top, measure: largest_value, of: speed, in: jump, at_most: 90 m/s }]
+`.replace('target: { unit: m/s }, ', '');
+    expect(measured(text(11), { halvings: 4 }).top).toBeCloseTo((11 - 3) / 4, 6);
+    // Below break-away it creeps: tanh(v/v₀) = P/S, with the Stribeck part still whole.
+    const creep = measured(text(2.5), { halvings: 4 }).top;
+    const force = (v: number): number => (3 + 2 * Math.exp(-((v / 0.1) ** 2))) * Math.tanh(v / 1e-3) + 4 * v;
+    expect(force(creep)).toBeCloseTo(2.5, 6);
+  });
+
+  it('needs the static part and its speed together', () => {
+    expect(() =>
+      resultsOf(
+        driven(
+          '  drag: { friction: { coulomb: 3 N, static: 5 N, smoothing_speed: 1 mm/s }, of: target/(1 s), unit: N }',
+          requirement('top', 'largest_value', 'of: drag, at_most: 9 N'),
+        ),
+      ),
+    ).toThrow("friction 'drag' needs 'static' and 'stribeck_speed' together, or neither");
+  });
+});
