@@ -11,6 +11,7 @@ import { lower } from '../loop/lower.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import { type Schedule, scheduleOf } from '../loop/schedule.js';
 import type { Expression, Requirement, Spec } from '../spec/spec.js';
+import { signalsOfStatement } from '../spec/statement.js';
 import type { Curve } from './curve.js';
 import { measureNamed } from './index.js';
 import { LoopPoint, type LoopViewResult } from './loop_point.js';
@@ -20,6 +21,7 @@ import {
   type TraceContext,
   type TraceMeasure,
   unformed,
+  type Window,
 } from './measure.js';
 import { ScenarioEvents } from './scenario_events.js';
 import { ScenarioRun, timingIsCommon } from './scenario_run.js';
@@ -82,9 +84,7 @@ export class PlantEvaluator {
           : [];
       });
       if (requirements.length === 0) return [];
-      const traced = [
-        ...new Set(requirements.flatMap(({ requirement }) => Object.values(requirement.signals))),
-      ];
+      const traced = [...new Set(requirements.flatMap(({ requirement }) => followedBy(requirement)))];
       const events = new ScenarioEvents(this.spec, scenario, (expression) => this.lowerPlain(expression));
       const seed = this.spec.perturbation.seed + scenarioIndex;
       return [
@@ -146,15 +146,15 @@ export class PlantEvaluator {
       return found;
     };
     for (const { requirement, index, measure } of group.requirements) {
+      const context = this.traceContext(group, requirement, parameters, schedule, curve);
       results[index] =
-        endedEarly(run) ??
-        measure.measure(this.traceContext(group, requirement, parameters, schedule, curve));
+        endedEarly(run) ?? windowFault(context.window, group.run.scenario.lasts) ?? measure.measure(context);
     }
   }
 
   private traceContext(
     { run, events }: TraceGroup,
-    { signals, quantities }: Requirement,
+    { signals, quantities, bounds, statement }: Requirement,
     parameters: Float64Array,
     schedule: Schedule,
     curve: (name: string) => Curve,
@@ -162,7 +162,9 @@ export class PlantEvaluator {
     const { of, to } = signals;
     const firstEvent = events.firstEvent(parameters);
     return {
-      of: curve(of),
+      get of() {
+        return curve(of);
+      },
       to: to === undefined ? undefined : curve(to),
       step: to === undefined ? undefined : events.stepOf(to, parameters),
       range: this.rangeOf(of, parameters),
@@ -170,13 +172,18 @@ export class PlantEvaluator {
       firstEvent,
       window: { from: quantities.from ?? firstEvent, until: quantities.until ?? run.scenario.lasts },
       quantity: (name) => quantities[name],
+      bounds: bounds ?? {},
+      statement,
+      signal: curve,
+      parameter: (name) => parameters[this.loop.parameters.indexOf(name)],
     };
   }
 
   /** Time between the changes of a sampled or held signal, s. */
   private periodOf(name: string, { period, ticksPerSecond }: Schedule): number | undefined {
     const { held, channels, signals } = this.loop;
-    const signal = signals.get(name)!;
+    const signal = signals.get(name);
+    if (!signal) return undefined;
     if (signal.kind === 'sampled') return period[signal.task] / ticksPerSecond;
     const { value } = signal;
     if (value.kind !== 'leaf' || value.leaf !== 'held') return undefined;
@@ -220,6 +227,17 @@ function loopResult(
   if (found.kind === 'unformed') return unformed(found.why);
   const result = numeric(() => measure({ loop: found.loop, quantity: (name) => quantities[name] }));
   return typeof result === 'string' ? unformed(result) : result;
+}
+
+function windowFault({ from, until }: Window, lasts: number): MeasureResult | undefined {
+  if (until > lasts)
+    return unformed(`the window ends at ${until} s, after the scenario, which lasts ${lasts} s`);
+  return from < until ? undefined : unformed(`the window from ${from} s to ${until} s is empty`);
+}
+
+/** The signals whose traces a requirement needs. */
+function followedBy({ signals, statement }: Requirement): string[] {
+  return [...Object.values(signals), ...(statement ? signalsOfStatement(statement) : [])];
 }
 
 function isTraceMeasure(measure: ReturnType<typeof measureNamed>): measure is TraceMeasure {

@@ -2,6 +2,7 @@ import { absoluteDeviationIntegral } from './absolute_deviation_integral.js';
 import { activity } from './activity.js';
 import { bandwidth } from './bandwidth.js';
 import { complementaryPeak } from './complementary_peak.js';
+import { corridorClearance } from './corridor_clearance.js';
 import { crossover } from './crossover.js';
 import { decayRatio } from './decay_ratio.js';
 import { delayMargin } from './delay_margin.js';
@@ -23,6 +24,7 @@ import type { Measure } from './measure.js';
 import { modulusMargin } from './modulus_margin.js';
 import { oscillationAmplitude } from './oscillation_amplitude.js';
 import { oscillationFrequency } from './oscillation_frequency.js';
+import { overTime } from './over_time.js';
 import { overshoot } from './overshoot.js';
 import { peakDeviation } from './peak_deviation.js';
 import { peakEffort } from './peak_effort.js';
@@ -76,6 +78,8 @@ export const measures: readonly Measure[] = [
   reversalsPerSecond,
   slewRate,
   activity,
+  corridorClearance,
+  overTime,
   stability,
   gainMargin,
   phaseMargin,

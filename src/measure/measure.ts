@@ -1,3 +1,4 @@
+import type { BoundPoint, Statement } from '../spec/statement.js';
 import type { MeasureDescription } from '../spec/vocabulary.js';
 import type { Curve } from './curve.js';
 import type { LoopView } from './loop_view.js';
@@ -29,6 +30,7 @@ export interface Window {
 
 /** What a measure of a trace may look at. */
 export interface TraceContext {
+  /** The curve of `of`, for a measure that has it. */
   of: Curve;
   /** The curve of `to`, where the measure has one. */
   to: Curve | undefined;
@@ -44,6 +46,14 @@ export interface TraceContext {
   window: Window;
   /** Values of the measure's own keys, SI. */
   quantity: (name: string) => number | undefined;
+  /** Corners of the measure's bounds by key. */
+  bounds: Record<string, readonly BoundPoint[]>;
+  /** What the requirement says of signals over time, where the measure has a statement. */
+  statement: Statement | undefined;
+  /** Any signal in the statement. */
+  signal: (name: string) => Curve;
+  /** Value of a parameter in this plant, SI. */
+  parameter: (name: string) => number;
 }
 
 /** A measure of a trace in a scenario. */
