@@ -21,7 +21,7 @@ import type { PlantRoom } from './plant_room.js';
  */
 export class ControllerRoom {
   private readonly signals = new Map<string, Node>();
-  private readonly published = new Map<string, readonly Node[]>();
+  private readonly published = new Map<string, ReadonlyMap<string, Node>>();
   private readonly seenReadings = new Map<string, Node>();
   private readonly delivered = new Map<string, Node>();
 
@@ -94,7 +94,7 @@ export class ControllerRoom {
       publish: (values) => this.published.set(name, values),
       published: (signal) => {
         this.signal(signal);
-        return this.published.get(signal) ?? [];
+        return this.published.get(signal) ?? new Map();
       },
     };
   }

@@ -70,7 +70,7 @@ function blockUse(definition: SignalDefinition, around: Surroundings, parts: Par
     },
     signals: (key) => {
       const setting = settings[key];
-      return setting?.kind === 'rows' ? setting.rows.flat().map((one) => lower(one, around)) : [];
+      return setting?.kind === 'rows' ? setting.rows.flat().map((one) => () => lower(one, around)) : [];
     },
     names: (key) => {
       const setting = settings[key];

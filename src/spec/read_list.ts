@@ -108,12 +108,12 @@ function axisUnits(axis: Axis, { block, entry, unit, scale, input, around, readi
   return { counted: true, units };
 }
 
-/** One list is a row, or a column where there is one column only. */
+/** One list is a row, or a column where there must be several rows and there can be one column. */
 function shaped(tree: Tree, rows: AxisUnits, columns: AxisUnits): Tree[][] {
   if (tree.kind !== 'list') return [[tree]];
   const nested = tree.items.filter((item): item is ListTree => item.kind === 'list');
   if (nested.length === tree.items.length) return nested.map((row) => [...itemsOf(row)]);
-  const column = rows.counted && columns.counted && columns.units.length === 1;
+  const column = rows.counted && rows.units.length !== 1 && (!columns.counted || columns.units.length === 1);
   return column ? tree.items.map((item) => [item]) : [tree.items];
 }
 

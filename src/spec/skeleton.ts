@@ -120,7 +120,7 @@ const input = z
 
 const lists = {
   signals: (meaning: string) => z.union([text(meaning), z.array(text('a signal')).min(1)]),
-  estimates: () => z.array(text('the name of a signal')).min(1),
+  estimates: (meaning: string) => z.union([text(meaning), z.array(text('the name of a signal')).min(1)]),
   matrix: (meaning: string) =>
     z.union([text(meaning), z.array(z.union([text('a number'), z.array(text('a number')).min(1)])).min(1)]),
 };

@@ -19,8 +19,8 @@ export interface BlockUse {
    * are taken into its format.
    */
   design: (name: string) => Node | undefined;
-  /** The entries of a setting that is a list of signals; none where it is left out. */
-  signals: (name: string) => Node[];
+  /** The entries of a setting that is a list of signals, each to be called as `input` is; none where it is left out. */
+  signals: (name: string) => (() => Node)[];
   /** The names in a setting that is a list of them; none where it is left out. */
   names: (name: string) => readonly string[];
   /**
@@ -62,10 +62,10 @@ export interface Workshop {
   period: () => Node;
   /** The same in double precision; see `design`. */
   exactPeriod: () => Node;
-  /** Gives values beside the signal's own, for other signals of the controller. */
-  publish: (values: readonly Node[]) => void;
+  /** Gives values by name beside the signal's own, for other signals of the controller. */
+  publish: (values: ReadonlyMap<string, Node>) => void;
   /** What another signal of the controller publishes; none where it does not. */
-  published: (signal: string) => readonly Node[];
+  published: (signal: string) => ReadonlyMap<string, Node>;
 }
 
 /** A block: what the spec reader must know of it, and how it expands into equations. */

@@ -11,7 +11,8 @@ export const structureSetting: SettingDescription = {
   kind: 'word',
   words: ['direct_1', 'direct_2', 'transposed_2'],
   optional: true,
-  meaning: 'direct_1 keeps past inputs and outputs, direct_2 one shared line, transposed_2 partial sums; direct_1 by default',
+  meaning:
+    'direct_1 keeps past inputs and outputs, direct_2 one shared line, transposed_2 partial sums; direct_1 by default',
 };
 
 /** A linear difference equation. Index k stands for a delay of k sampling instants. */
@@ -100,7 +101,12 @@ function joined(
   return sum ? arithmetic.subtract(sum, part) : arithmetic.apply('negate', part);
 }
 
-function feedBack({ back, feedback }: DifferenceEquation, from: Node, line: Node[], workshop: Workshop): Node {
+function feedBack(
+  { back, feedback }: DifferenceEquation,
+  from: Node,
+  line: Node[],
+  workshop: Workshop,
+): Node {
   return back.reduce(
     (sum, factor, at) => joined(sum, workshop.arithmetic.multiply(factor, line[at]), feedback, workshop),
     from,

@@ -11,7 +11,8 @@ export const lagRuleSetting: SettingDescription = {
   kind: 'word',
   words: ['backward', 'forward', 'trapezoid', 'exact'],
   optional: true,
-  meaning: 'summation rule of the lag; exact is that of an input which is held between instants; backward by default',
+  meaning:
+    'summation rule of the lag; exact is that of an input which is held between instants; backward by default',
 };
 
 /**

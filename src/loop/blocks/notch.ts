@@ -34,13 +34,20 @@ export const notch: Block = {
       },
       structureSetting,
     ],
-    meaning: 'one section with β = tan(width·T/2): (1 + depth·β, −2 cos(frequency·T), 1 − depth·β)/(1 + β) over (1, b1, (1 − β)/(1 + β))',
+    meaning:
+      'one section with β = tan(width·T/2): (1 + depth·β, −2 cos(frequency·T), 1 − depth·β)/(1 + β) over (1, b1, (1 − β)/(1 + β))',
   },
   keepsRange: false,
   expand: (use, workshop) => {
     const [b0, b1, b2, a2] = section(use, workshop).map((number) => workshop.arithmetic.take(number));
     const structure = (use.word('structure') ?? 'direct_1') as Structure;
-    const equation = { name: use.name, forward: [b0, b1, b2], back: [b1, a2], structure, feedback: 'minus' } as const;
+    const equation = {
+      name: use.name,
+      forward: [b0, b1, b2],
+      back: [b1, a2],
+      structure,
+      feedback: 'minus',
+    } as const;
     return filtered(equation, use.input(), workshop);
   },
 };
@@ -54,6 +61,11 @@ function section(use: BlockUse, { arithmetic: { graph }, exactPeriod }: Workshop
   const deep = graph.apply('multiply', use.design('depth') ?? graph.number(0), beta);
   const whole = graph.apply('add', one, beta);
   const centre = graph.apply('multiply', graph.number(-2), graph.apply('cos', angle));
-  const parts = [graph.apply('add', one, deep), centre, graph.apply('subtract', one, deep), graph.apply('subtract', one, beta)];
+  const parts = [
+    graph.apply('add', one, deep),
+    centre,
+    graph.apply('subtract', one, deep),
+    graph.apply('subtract', one, beta),
+  ];
   return parts.map((part) => graph.apply('divide', part, whole));
 }

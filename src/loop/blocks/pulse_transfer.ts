@@ -27,7 +27,8 @@ export const pulseTransfer: Block = {
         columns: 'plain',
         entry: 'ratio',
         optional: false,
-        meaning: 'coefficients in descending powers of z; all are divided by the first, in double precision, where it is not 1',
+        meaning:
+          'coefficients in descending powers of z; all are divided by the first, in double precision, where it is not 1',
       },
       structureSetting,
     ],

@@ -1,0 +1,191 @@
+import type { SettingDescription } from '../../spec/vocabulary.js';
+import type { Node } from '../graph.js';
+import { LoopError } from '../loop.js';
+import type { Block, BlockUse, Workshop } from './block.js';
+import { steadyGain } from './steady_gain.js';
+
+const states = { of: 'states' };
+const measured = { of: 'measured' };
+
+function matrix(
+  name: string,
+  rows: { of: string },
+  columns: { of: string },
+  meaning: string,
+  entry: 'ratio' | 'product' = 'ratio',
+  optional = true,
+): SettingDescription {
+  return { name, kind: 'matrix', rows, columns, entry, optional, meaning };
+}
+
+/**
+ * A model of the plant that runs beside it and is corrected by what is measured (Luenberger 1964; Kalman 1960). x̄ is what
+ * was predicted for this instant, y what is measured, u what drives the plant from now on; sums go from left to right:
+ *
+ *     this_sample   x̂ = x̄ + L·(y − C·x̄),  predicted next: A·x̂ + B·u
+ *     last_sample   x̂ = x̄,                predicted next: (A·x̄ + B·u) + L·(y − C·x̄)
+ *
+ * The signal itself is the first entry of y − C·x̄; the estimates are other signals of the controller, `estimate`.
+ */
+export const observer: Block = {
+  description: {
+    key: 'observer',
+    rooms: ['controller'],
+    takesInput: false,
+    takesGain: false,
+    settings: [
+      {
+        name: 'states',
+        kind: 'estimates',
+        late: true,
+        optional: false,
+        meaning: 'the signals of this controller that are its estimates, in the order of the matrices',
+      },
+      { name: 'measured', kind: 'signals', optional: false, meaning: 'what is measured, y' },
+      {
+        name: 'driven_by',
+        kind: 'signals',
+        late: true,
+        optional: true,
+        meaning: 'what drives the plant from this instant to the next, u',
+      },
+      matrix('state_matrix', states, states, 'A: from one instant to the next', 'ratio', false),
+      matrix('input_matrix', states, { of: 'driven_by' }, 'B: what u adds from one instant to the next'),
+      matrix('output_matrix', measured, states, 'C: what is measured of the states', 'ratio', false),
+      matrix('gain', states, measured, 'L, for the rule that uses says'),
+      matrix(
+        'process_covariance',
+        states,
+        states,
+        'in place of a gain: of what disturbs the states at each instant',
+        'product',
+      ),
+      matrix(
+        'measurement_covariance',
+        measured,
+        measured,
+        'in place of a gain: of the noise of what is measured',
+        'product',
+      ),
+      {
+        name: 'uses',
+        kind: 'word',
+        words: ['this_sample', 'last_sample'],
+        optional: false,
+        meaning: 'whether the estimates already use what is measured at their own instant',
+      },
+    ],
+    meaning:
+      'its value is y − C·x̄ of the first measured; x̂ = x̄ + L·(y − C·x̄) and next A·x̂ + B·u with this_sample, x̂ = x̄ and next (A·x̄ + B·u) + L·(y − C·x̄) with last_sample',
+  },
+  keepsRange: false,
+  expand: (use, workshop) => {
+    const names = use.names('states');
+    const model = modelOf(use, names.length, workshop);
+    const atOnce = use.word('uses') === 'this_sample';
+    const predicted: Node[] = names.map((name, row) =>
+      workshop.addMemory(`${name} predicted`, () => next(row), 0),
+    );
+    const surprise = difference(
+      workshop,
+      valuesOf(use, 'measured'),
+      times(workshop, model.output, predicted),
+    );
+    const correction = times(workshop, model.gain, surprise);
+    const estimate = atOnce ? sum(workshop, predicted, correction) : predicted;
+    workshop.publish(new Map(names.map((name, row) => [name, estimate[row]])));
+    return surprise[0];
+
+    function next(row: number): Node {
+      const moved = times(workshop, [model.state[row]], estimate);
+      const driven = model.input
+        ? sum(workshop, moved, times(workshop, [model.input[row]], valuesOf(use, 'driven_by')))
+        : moved;
+      return atOnce ? driven[0] : workshop.arithmetic.add(driven[0], correction[row]);
+    }
+  },
+};
+
+function valuesOf(use: BlockUse, name: string): Node[] {
+  return use.signals(name).map((signal) => signal());
+}
+
+interface Model {
+  state: Node[][];
+  input: Node[][] | undefined;
+  output: Node[][];
+  gain: Node[][];
+}
+
+function modelOf(use: BlockUse, order: number, workshop: Workshop): Model {
+  const outputs = use.signals('measured').length;
+  const inputs = use.signals('driven_by').length;
+  const state = sized(use, 'state_matrix', order, order)!;
+  const output = sized(use, 'output_matrix', outputs, order)!;
+  const input = inputs > 0 ? sized(use, 'input_matrix', order, inputs) : undefined;
+  if (inputs > 0 && !input) fail(use, 'has driven_by and needs an input_matrix');
+  const gain = sized(use, 'gain', order, outputs);
+  const disturbed = sized(use, 'process_covariance', order, order);
+  const noise = sized(use, 'measurement_covariance', outputs, outputs);
+  if (gain && (disturbed || noise)) fail(use, 'has both a gain and covariances; expected one of them');
+  if (gain) return { state, input, output, gain };
+  if (!disturbed || !noise) {
+    fail(use, 'needs a gain, or process_covariance and measurement_covariance to work it out from');
+  }
+  return { state, input, output, gain: workedOut(use, { state, output, disturbed, noise }, workshop) };
+}
+
+function sized(use: BlockUse, name: string, rows: number, columns: number): Node[][] | undefined {
+  const found = use.matrix(name, columns);
+  if (found && (found.length !== rows || found[0].length !== columns)) {
+    fail(use, `has a ${name} of ${found.length} × ${found[0].length}; expected ${rows} × ${columns}`);
+  }
+  return found;
+}
+
+function fail(use: BlockUse, fault: string): never {
+  throw new LoopError(`observer '${use.name}' ${fault}`, use.place);
+}
+
+function workedOut(
+  use: BlockUse,
+  of: { state: Node[][]; output: Node[][]; disturbed: Node[][]; noise: Node[][] },
+  { arithmetic }: Workshop,
+): Node[][] {
+  const numbers = (name: string, rows: Node[][]): number[][] =>
+    rows.map((row) =>
+      row.map((entry) =>
+        entry.kind === 'number'
+          ? entry.value
+          : fail(
+              use,
+              `has a ${name} that changes while it runs, so that no steady gain follows; give a gain`,
+            ),
+      ),
+    );
+  const result = steadyGain({
+    state: numbers('state_matrix', of.state),
+    output: numbers('output_matrix', of.output),
+    disturbed: numbers('process_covariance', of.disturbed),
+    noise: numbers('measurement_covariance', of.noise),
+    uses: use.word('uses') as 'this_sample' | 'last_sample',
+  });
+  if (result.kind === 'none') fail(use, `has no steady gain: ${result.why}`);
+  return result.gain.map((row) => row.map((entry) => arithmetic.number(entry)));
+}
+
+function times({ arithmetic }: Workshop, rows: Node[][], column: Node[]): Node[] {
+  return rows.map((row) =>
+    row
+      .map((entry, at) => arithmetic.multiply(entry, column[at]))
+      .reduce((one, other) => arithmetic.add(one, other)),
+  );
+}
+
+function sum({ arithmetic }: Workshop, one: Node[], other: Node[]): Node[] {
+  return one.map((entry, at) => arithmetic.add(entry, other[at]));
+}
+
+function difference({ arithmetic }: Workshop, one: Node[], other: Node[]): Node[] {
+  return one.map((entry, at) => arithmetic.subtract(entry, other[at]));
+}
