@@ -60,26 +60,41 @@ export function expressionsOf(signal: SignalDefinition): { drives: Expression[];
 }
 
 /**
- * A cycle in a graph, as the names along it, or undefined. Depth first without recursion; each name is entered once.
+ * The cycles met on one walk through a graph, each as the names along it: none where the graph has an order, but not every
+ * one of a knot. Depth first without recursion; each name is entered once.
  */
 export function cyclesOf(graph: ReadonlyMap<string, readonly string[]>): string[][] {
   const done = new Set<string>();
   const cycles: string[][] = [];
   for (const start of graph.keys()) {
-    const path: { name: string; next: number }[] = done.has(start) ? [] : [{ name: start, next: 0 }];
-    while (path.length > 0) {
-      const top = path.at(-1)!;
-      const follower = graph.get(top.name)?.[top.next];
-      top.next += 1;
-      if (follower === undefined) {
-        done.add(top.name);
-        path.pop();
-        continue;
-      }
-      const met = path.findIndex(({ name }) => name === follower);
-      if (met >= 0) cycles.push(path.slice(met).map(({ name }) => name));
-      else if (!done.has(follower) && graph.has(follower)) path.push({ name: follower, next: 0 });
-    }
+    if (!done.has(start)) walk(start, graph, done, cycles);
   }
   return cycles;
+}
+
+function walk(
+  start: string,
+  graph: ReadonlyMap<string, readonly string[]>,
+  done: Set<string>,
+  cycles: string[][],
+): void {
+  const path = [{ name: start, next: 0 }];
+  const depths = new Map([[start, 0]]);
+  for (let top = path.at(-1); top !== undefined; top = path.at(-1)) {
+    const follower = graph.get(top.name)?.[top.next];
+    top.next += 1;
+    if (follower === undefined) {
+      done.add(top.name);
+      depths.delete(top.name);
+      path.pop();
+      continue;
+    }
+    const met = depths.get(follower);
+    if (met !== undefined) {
+      cycles.push(path.slice(met).map(({ name }) => name));
+    } else if (!done.has(follower) && graph.has(follower)) {
+      depths.set(follower, path.length);
+      path.push({ name: follower, next: 0 });
+    }
+  }
 }
