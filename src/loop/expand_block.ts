@@ -5,6 +5,7 @@ import type { Node } from './graph.js';
 import { LoopError } from './loop.js';
 import { lower, type Surroundings } from './lower.js';
 import type { Parts } from './parts.js';
+import { slewed } from './slew.js';
 
 const blockByKey = new Map(
   blocks.flatMap((block) =>
@@ -21,11 +22,14 @@ export function expandBlock(
 ): Node {
   const block = blockByKey.get(`${workshop.room} ${definition.block}`)!;
   const use = blockUse(definition, around, parts);
-  const node = block.expand(use, workshop);
-  if (definition.slew) {
-    throw new LoopError(`'slew' of '${definition.name}' is not available yet`, definition.place);
+  const bounded = (node: Node): Node => limited(node, definition.range, around);
+  const expanded = block.expand(use, workshop);
+  const node = block.keepsRange ? expanded : bounded(expanded);
+  if (!definition.slew) return node;
+  if (workshop.room === 'controller') {
+    return slewed(definition.name, node, lower(definition.slew, around), bounded, workshop);
   }
-  return block.keepsRange ? node : limited(node, definition.range, around);
+  throw new LoopError(`'slew' of '${definition.name}' is not available yet`, definition.place);
 }
 
 /** A value kept inside a range, where there is one. */

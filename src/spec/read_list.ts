@@ -85,7 +85,10 @@ function readMatrix(
     return undefined;
   }
   const entry = (item: Tree, i: number, j: number): Expression => {
-    const slot = entrySlot(unitAt(rows, i), unitAt(columns, j), description.entry, what);
+    const slot = {
+      ...entrySlot(unitAt(rows, i), unitAt(columns, j), description.entry, what),
+      size: description.columns !== 'plain',
+    };
     return readExpression(item, slot, place.around, reading) ?? missing(item.place);
   };
   return {
@@ -141,6 +144,5 @@ function entrySlot(row: AxisUnit, column: AxisUnit, entry: 'ratio' | 'product', 
     dimension: known ? join(row.dimension!, column.dimension!) : undefined,
     scale: entry === 'ratio' ? row.scale / column.scale : row.scale * column.scale,
     what: `an entry of ${what}`,
-    size: true,
   };
 }

@@ -20,6 +20,7 @@ import { sampledLeadLag } from './sampled_lead_lag.js';
 import { secondOrderLag } from './second_order_lag.js';
 import { stateFeedback } from './state_feedback.js';
 import { switchBlock } from './switch.js';
+import { table } from './table.js';
 import { value } from './value.js';
 
 /** Every block that a spec can use. */
@@ -46,4 +47,5 @@ export const blocks: readonly Block[] = [
   observer,
   estimate,
   switchBlock,
+  table,
 ];

@@ -1,0 +1,21 @@
+import type { Workshop } from './blocks/block.js';
+import type { Node } from './graph.js';
+
+/**
+ * A controller's signal that changes by no more than a rate allows: y = x, but not below y₁ − s·T and not above y₁ + s·T.
+ * @param rate s, in the signal's unit a second; the same both ways.
+ * @param bounded keeps the result in the signal's range, which may have moved since the last instant.
+ */
+export function slewed(
+  name: string,
+  value: Node,
+  rate: Node,
+  bounded: (node: Node) => Node,
+  { arithmetic, addMemory, period }: Workshop,
+): Node {
+  const last: Node = addMemory(`${name} last output`, () => output);
+  const most = arithmetic.multiply(rate, period());
+  const [low, high] = [arithmetic.subtract(last, most), arithmetic.add(last, most)];
+  const output = bounded(arithmetic.apply('limit', value, low, high));
+  return output;
+}
