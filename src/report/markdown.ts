@@ -47,8 +47,8 @@ function specPart(spec: SpecRun): string {
     : 'no image';
   return [
     `### ${said(spec.loop, 120)}`,
-    blocking.length > 0 ? blockingTable(blocking) : '',
-    met.length > 0 ? folded(`${counted(met.length, 'requirement')} met`, metTable(met)) : '',
+    blocking.length > 0 ? `${table(blocking)}\n\n${blocking.map(detail).join('\n')}` : '',
+    met.length > 0 ? folded(`${counted(met.length, 'requirement')} met`, table(met)) : '',
     claimsInWords(spec)
       .map(({ names, claim }) => `- ${said(names.join(', '), 120)}: ${said(claim, 300)}`)
       .join('\n'),
@@ -59,20 +59,25 @@ function specPart(spec: SpecRun): string {
     .join('\n\n');
 }
 
-function blockingTable(requirements: readonly RequirementRun[]): string {
-  const rows = requirements.map((one) => [
-    ...cells(one),
-    said(plantInWords(one.worst), 300),
-    said(why(one), 200),
-  ]);
-  return markdownTable([...headings, 'on the plant', 'why'], rows, numeric);
-}
-
-function metTable(requirements: readonly RequirementRun[]): string {
+function table(requirements: readonly RequirementRun[]): string {
   return markdownTable(headings, requirements.map(cells), numeric);
 }
 
-const headings = ['verdict', 'requirement', 'measure', 'limit', 'nominal', 'worst', 'headroom'];
+/** What is asked next of a requirement that blocks: where it is written, why, on which plant, and what it is for. */
+function detail(requirement: RequirementRun): string {
+  const { name, place, verdict, worst, reason } = requirement;
+  const why = verdict.kind === 'met' ? [] : [verdict.why];
+  if (worst.result.kind !== 'value' && !why.includes(worst.result.why)) why.push(worst.result.why);
+  if (worst.result.kind === 'value' && worst.result.note !== undefined) why.push(worst.result.note);
+  const parts = [
+    ...why.map((text) => said(text, 300)),
+    `plant: ${said(plantInWords(worst), 400)}`,
+    ...(reason === undefined ? [] : [`reason: ${said(reason, 300)}`]),
+  ];
+  return `- **${said(name, 60)}** (${said(place.file, 120)}, line ${place.line}): ${parts.join('; ')}`;
+}
+
+const headings = ['verdict', 'name', 'measure', 'limit', 'nominal', 'worst', 'headroom'];
 const numeric = [4, 5, 6];
 
 function cells(requirement: RequirementRun): string[] {
@@ -87,11 +92,6 @@ function cells(requirement: RequirementRun): string[] {
     said(formatResultShort(worst.result, requirement, limits), 60),
     formatHeadroom(worst.headroom),
   ];
-}
-
-function why({ verdict, reason }: RequirementRun): string {
-  const parts = verdict.kind === 'met' ? [] : [verdict.why];
-  return [...parts, ...(reason === undefined ? [] : [reason])].join('; ');
 }
 
 function folded(summary: string, content: string): string {

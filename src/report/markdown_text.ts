@@ -12,7 +12,7 @@ const special = /[\\`*_{}[\]<>()#+!|&~$:@]/g;
 export function markdownText(text: string): string {
   return oneLine(text)
     .replace(special, (character) => `&#${character.charCodeAt(0)};${/[@#]/.test(character) ? '\u2060' : ''}`)
-    .replace(/^[-= ]|(?<=^\d+)[.)]/g, (character) => `&#${character.charCodeAt(0)};`)
+    .replace(/^[-= ]|(?<=^\d+)[.)](?= |$)/g, (character) => `&#${character.charCodeAt(0)};`)
     .replace(/\b(www)\./gi, '$1&#46;')
     .replace(/\b(GH)-(?=\d)/gi, '$1-\u2060');
 }

@@ -31,8 +31,15 @@ const most: RowWidths = {
   headroom: 8,
 };
 
-/** What a narrow terminal takes from the columns, in this order, and how much it leaves them. */
-const leastWidths: Partial<RowWidths> = { measure: 15, limit: 10, worst: 9, nominal: 9, name: 5 };
+/** What a narrow terminal takes from the columns, in this order, and how much it leaves them each time. */
+const leastWidths: readonly (readonly [keyof TerminalRow, number])[] = [
+  ['limit', 14],
+  ['measure', 15],
+  ['limit', 10],
+  ['worst', 9],
+  ['nominal', 9],
+  ['name', 5],
+];
 
 /** The headings of the rows. */
 export const terminalHeadings: TerminalRow = {
@@ -67,7 +74,7 @@ export function rowWidths(rows: readonly TerminalRow[], width: number): RowWidth
     keys.map((key) => [key, Math.min(most[key], Math.max(0, ...rows.map((row) => columnsOf(row[key]))))]),
   ) as RowWidths;
   const gaps = gap * (keys.length - 1);
-  for (const [key, least] of Object.entries(leastWidths) as [keyof TerminalRow, number][]) {
+  for (const [key, least] of leastWidths) {
     const over = keys.reduce((sum, one) => sum + widths[one], gaps) - width;
     if (over > 0) widths[key] = Math.max(Math.min(widths[key], least), widths[key] - over);
   }

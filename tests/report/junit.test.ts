@@ -107,6 +107,49 @@ describe('junitOf', () => {
     expect(values['image SHA-256']).toHaveLength(64);
   });
 
+  it('shares the time of a spec over its cases, and says nothing of time where nothing ran', async () => {
+    const suite = await suiteOf(junitOf(sampleRun({ seconds: 3 })));
+    expect(suite.testcase!.map(({ time }) => time)).toEqual(Array(6).fill(0.5));
+    expect(junitOfFault('a', ['x'])).not.toContain('time=');
+  });
+
+  it('keeps names from run to run: nothing of a name comes from a measured number', async () => {
+    const names = async (text: string) =>
+      (await suiteOf(text)).testcase!.map(({ name, classname }) => [name, classname]);
+    const other = sampleRun();
+    other.specs[0].requirements = other.specs[0].requirements.map((one) => ({
+      ...one,
+      worst: { ...one.nominal, parameters: [] },
+      verdict: { kind: 'unjudged', why: 'something else' },
+    }));
+    expect(await names(junitOf(other))).toEqual(await names(junitOf(sampleRun())));
+  });
+
+  it.each([
+    ['specs/heliostat/azimuth.pawl.yaml', 'specs.heliostat.azimuth'],
+    ['./azimuth.pawl.yml', 'azimuth'],
+    ['/repo/specs/azimuth.pawl.yaml', 'repo.specs.azimuth'],
+    ['specs\\azimuth.pawl.yaml', 'specs.azimuth'],
+    ['azimuth.yaml', 'azimuth.yaml'],
+  ])('groups the cases of %s under %s', async (file, className) => {
+    expect((await suiteOf(junitOf(sampleRun({ file })))).testcase![0].classname).toBe(className);
+  });
+
+  it('says the line of the requirement, for servers that lead to it', () => {
+    expect(junitOf(sampleRun())).toMatch(
+      /name="AZ-3 peak deviation" file="specs\/heliostat\/azimuth\.pawl\.yaml">\s*<properties>\s*<property name="line" value="61"\/>/,
+    );
+  });
+
+  it('says when the build was skipped', () => {
+    const skipped = { ...sampleRun().specs[0].provenance!, buildSkipped: true };
+    expect(junitOf(sampleRun({ provenance: skipped }))).toContain(
+      '<property name="build skipped" value="yes"/>',
+    );
+    expect(junitOf(sampleRun())).not.toContain('build skipped');
+    expect(junitOf(sampleRun({ provenance: undefined }))).not.toContain('SHA-256');
+  });
+
   it('does not carry one run over into the next', async () => {
     expect(junitOf(metRun())).toBe(junitOf(metRun()));
     expect(await suites(junitOf(metRun()))).toHaveLength(1);

@@ -14,7 +14,7 @@ import { limitStrip } from '../../src/report/plot/limit_strip.js';
 import { anyFaults, anyRequirement, anyRun } from './arbitrary_run.js';
 import { harmful } from './hostile.js';
 
-const settings = { seed: 91, numRuns: 120 };
+const settings = { seed: 91, numRuns: 60 };
 
 /** Laws that hold for every run whatever is in it: a report is never missing because something in it is odd. */
 describe('every report', () => {

@@ -5,7 +5,7 @@ import { columnsOf } from '../../src/report/plain_text.js';
 import { terminalReport } from '../../src/report/terminal.js';
 import { harmful, hostileNames } from './hostile.js';
 import { hostileRun } from './hostile_run.js';
-import { metRun, sampleRun } from './sample_run.js';
+import { metRun, plant, requirement, sampleRun } from './sample_run.js';
 
 const look = { colour: false, width: 100 };
 const lineOf = (text: string, name: string) => text.split('\n').find((line) => line.includes(` ${name} `))!;
@@ -64,6 +64,41 @@ describe('terminalReport', () => {
         expect(columnsOf(line)).toBeLessThanOrEqual(Math.min(width, 100));
       }
     }
+  });
+
+  it('lets nothing through while a spec could not be run', () => {
+    const text = terminalReport(metRun(), look, [{ specFile: 'b.pawl.yaml', messages: ['x'] }]);
+    expect(text).toContain('┣╱┫ merge blocked: 1 spec could not be run, 3 met');
+  });
+
+  it('says for which plants a requirement must hold where that is not every one', () => {
+    const share = requirement({
+      holdsFor: 0.99,
+      verdict: { kind: 'unjudged', why: '20 plants are too few' },
+    });
+    const text = terminalReport(sampleRun({ requirements: [share] }), look);
+    expect(text).toContain('tried 1,108 plants; must hold for 99 % of plants');
+    expect(text).toContain('20 plants are too few');
+    expect(text).toContain('reason: The image must stay inside the receiver aperture while slewing.');
+  });
+
+  it('tells what a reader should know of the number, and that the build was skipped', () => {
+    const noted = requirement({
+      verdict: { kind: 'broken', headroom: -1, why: 'a plant within the bounds breaks it' },
+      worst: plant({ kind: 'value', value: 0, note: 'the closed loop is unstable' }, -1, true),
+    });
+    const provenance = { ...sampleRun().specs[0].provenance!, buildSkipped: true };
+    const text = terminalReport(sampleRun({ requirements: [noted], provenance }), look);
+    expect(text).toContain('    the closed loop is unstable\n');
+    expect(text).toContain('taken as it is: the build was skipped');
+    expect(terminalReport(sampleRun({ provenance: undefined }), look)).toContain('no image');
+  });
+
+  it('makes one statement for all requirements where they share it', () => {
+    const shared = sampleRun({ requirements: [requirement(), requirement({ name: 'AZ-9' })] });
+    expect(terminalReport(shared, look)).toContain(
+      'each requirement: in 1,000 independent plants none failed',
+    );
   });
 
   it('says the same with and without colour', () => {

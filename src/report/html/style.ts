@@ -1,7 +1,7 @@
 /** The page's only style sheet: petrol and brick on ink and slate, for light, dark, print and narrow screens. */
 export const style = `
-:root{color-scheme:light dark;--ground:#fbfaf7;--sheet:#fff;--ink:#17212b;--slate:#4a5560;--line:#c9ced3;--hair:#e6e8ea;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030;--on:#fff}
-@media(prefers-color-scheme:dark){:root{--ground:#10161c;--sheet:#171f27;--ink:#e6ebef;--slate:#a9b4bf;--line:#3c4854;--hair:#27313b;--petrol:#62b6c4;--brick:#e58d72;--band:#a9b4bf38;--on:#10161c}}
+:root{color-scheme:light dark;--ground:#fbfaf7;--sheet:#fff;--ink:#17212b;--slate:#4a5560;--line:#c9ced3;--hair:#e6e8ea;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030}
+@media(prefers-color-scheme:dark){:root{--ground:#10161c;--sheet:#171f27;--ink:#e6ebef;--slate:#a9b4bf;--line:#3c4854;--hair:#27313b;--petrol:#62b6c4;--brick:#e58d72;--band:#a9b4bf38}}
 *{box-sizing:border-box}
 html{scroll-behavior:smooth;-webkit-text-size-adjust:100%}
 body{margin:0;background:var(--ground);color:var(--ink);font:16px/1.5 "Source Sans 3","Segoe UI",Roboto,"Noto Sans",sans-serif;overflow-wrap:anywhere}
