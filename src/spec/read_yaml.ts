@@ -49,11 +49,10 @@ export function readYaml(text: string, file: string, problems: Problems): Tree |
   for (const fault of faults) problems.add(placeOf(fault.offset), fault.message);
   if (faults.some((fault) => fault.fatal)) return undefined;
   const source = { text, placeOf, problems };
-  if (document.contents === null) {
-    problems.add(placeOf(0), 'the file is empty; a spec starts with `pawl: 1`');
-    return undefined;
-  }
-  return treeOf(document.contents, source, 0);
+  const tree = document.contents === null ? undefined : treeOf(document.contents, source, 0);
+  if (tree !== undefined && tree.kind !== 'empty') return tree;
+  problems.add(placeOf(0), 'the file is empty; a spec starts with `pawl: 1`');
+  return undefined;
 }
 
 /** Scalars stay text: a spec knows quantities, not YAML's numbers, dates and truth values. */
