@@ -4,6 +4,7 @@ import { blocks } from './blocks/index.js';
 import type { Node } from './graph.js';
 import { LoopError } from './loop.js';
 import { lower, type Surroundings } from './lower.js';
+import { placed } from './number_rules.js';
 import type { Parts } from './parts.js';
 import { slewed } from './slew.js';
 
@@ -13,8 +14,29 @@ const blockByKey = new Map(
   ),
 );
 
-/** Expands one signal's block into equations and returns the signal's value, kept in its range. */
+/**
+ * Expands one signal's block into equations and returns the signal's value, kept in its range.
+ * @throws {LoopError} where the block cannot be made of what the spec and the build give.
+ */
 export function expandBlock(
+  definition: SignalDefinition,
+  around: Surroundings,
+  workshop: Workshop,
+  parts: Parts,
+): Node {
+  const { arithmetic } = around;
+  const named: Surroundings = {
+    ...around,
+    name: (use) => (use.role === 'coefficient' ? parts.coefficient(use, arithmetic) : around.name(use)),
+  };
+  const placedWorkshop: Workshop = {
+    ...workshop,
+    addMemory: (name, next, start) => workshop.addMemory(name, () => placed(definition.place, next), start),
+  };
+  return placed(definition.place, () => arithmetic.keep(expanded(definition, named, placedWorkshop, parts)));
+}
+
+function expanded(
   definition: SignalDefinition,
   around: Surroundings,
   workshop: Workshop,
@@ -23,8 +45,8 @@ export function expandBlock(
   const block = blockByKey.get(`${workshop.room} ${definition.block}`)!;
   const use = blockUse(definition, around, parts);
   const bounded = (node: Node): Node => limited(node, definition.range, around);
-  const expanded = block.expand(use, workshop);
-  const node = block.keepsRange ? expanded : bounded(expanded);
+  const value = block.expand(use, workshop);
+  const node = block.keepsRange ? value : bounded(value);
   if (!definition.slew) return node;
   if (workshop.room === 'controller') {
     return slewed(definition.name, node, lower(definition.slew, around), bounded, workshop);
@@ -42,7 +64,9 @@ function blockUse(definition: SignalDefinition, around: Surroundings, parts: Par
   const { name, place, settings, range, pair } = definition;
   const expression = (of: Expression | undefined): Node | undefined => of && lower(of, around);
   const numbers = (of: { name: string; place: Place }): Node[] =>
-    parts.numbersOf(of.name, of.place).map((value) => around.arithmetic.number(value));
+    parts
+      .numbersOf(of.name, of.place)
+      .map((_, index) => parts.coefficient({ ...of, index }, around.arithmetic));
   const inDoublePrecision: Surroundings = {
     ...around,
     arithmetic: parts.plain,

@@ -14,8 +14,17 @@ import {
 } from './loop.js';
 import { rateOf } from './rate.js';
 
+/** Numbers of a build with the format in which it holds them. */
+export interface StoredNumbers {
+  values: readonly number[];
+  /** Such as Q2.14 or float32. */
+  format: string;
+  /** Of fixed-point numbers and integers; undefined for others. */
+  fractionalBits: number | undefined;
+}
+
 /** The numbers that the build holds, by the spec's name for them; one for a scalar. */
-export type CoefficientValues = ReadonlyMap<string, readonly number[]>;
+export type CoefficientValues = ReadonlyMap<string, readonly number[] | StoredNumbers>;
 
 /**
  * The growing equations of a loop. Rates, next values and held values are deferred until every signal has a node, because
@@ -132,9 +141,21 @@ export class Parts {
 
   /** All numbers of a coefficient. */
   numbersOf(name: string, place: Place): readonly number[] {
-    const values = this.coefficients.get(name);
-    if (values) return values;
+    const found = this.coefficients.get(name);
+    if (found) return isStored(found) ? found.values : found;
     throw new LoopError(`coefficient '${name}' was not read from the build`, place);
+  }
+
+  /** A number of a coefficient as a controller computes with it. */
+  coefficient(
+    { name, index, place }: { name: string; index: number | undefined; place: Place },
+    arithmetic: TargetArithmetic,
+  ): Node {
+    const value = this.numberOf(name, index, place);
+    const found = this.coefficients.get(name);
+    const { format, fractionalBits } = isStored(found) ? found : {};
+    const shown = index === undefined ? name : `${name}[${index}]`;
+    return arithmetic.coefficient(value, { name: shown, place, format, fractionalBits });
   }
 
   /** One number of a coefficient: the scalar, or the element of an array at `index`. */
@@ -153,4 +174,8 @@ export class Parts {
       place,
     );
   }
+}
+
+function isStored(of: readonly number[] | StoredNumbers | undefined): of is StoredNumbers {
+  return of !== undefined && 'format' in of;
 }
