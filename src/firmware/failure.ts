@@ -32,11 +32,16 @@ export class FirmwareError extends Error {
   requestName?: string;
 
   constructor(code: FirmwareErrorCode, message: string, requestName?: string) {
-    super(message.replace(/\s*[\r\n]+\s*/g, ' '));
+    super(oneLine(message));
     this.name = 'FirmwareError';
     this.code = code;
     this.requestName = requestName;
   }
+}
+
+/** Whatever a name in an image holds, it moves no cursor and breaks no line. */
+function oneLine(message: string): string {
+  return message.replace(/\s*[\r\n]+\s*/g, ' ').replace(/[^\x20-\x7e\u00a0-\ud7ff\ue000-\ufffd]/g, '?');
 }
 
 /** Names from an image are untrusted text: printable, quoted and of bounded length. */

@@ -5,7 +5,7 @@ import { type DataType, sizeOf } from './dwarf/data_type.js';
 import { declaredAt } from './dwarf/find_variable.js';
 import { entryWith, type Variable } from './dwarf/variables.js';
 import { isPlaced } from './elf/memory.js';
-import { dataSymbolsAt, isData, symbolsNamed } from './elf/symbols.js';
+import { commonSection, dataSymbolsAt, isData, symbolsNamed } from './elf/symbols.js';
 import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage } from './image.js';
 import type { CoefficientPath } from './path.js';
@@ -25,11 +25,23 @@ export function removedByLinker(
     ? hasOwnSymbol(image, variable, address)
     : isPlaced(image.elf, address) && !isAnothers(image, variable, address);
   if (isThere) return undefined;
+  const isCommon = symbolsNamed(image.symbolTable, symbolNameOf(variable)).some(
+    (symbol) => symbol.section === commonSection,
+  );
+  if (isCommon) return commonData(image, path);
   const place = declaredAt(variable);
   return new FirmwareError(
     'garbage_collected',
     `${quoted(path)}${place ? `, declared in ${place.file}:${place.line},` : ''} is not in ${quoted(image.name)}: the linker dropped it since nothing uses it ` +
       '(--gc-sections); use it, or mark it __attribute__((used)) and KEEP its section',
+  );
+}
+
+/** The error for data to which the linker gives memory, cleared, but no value. */
+export function commonData(image: ElfImage, path: string): FirmwareError {
+  return new FirmwareError(
+    'no_contents',
+    `${quoted(path)} in ${quoted(image.name)} is common data without a value; initialise it in the source`,
   );
 }
 

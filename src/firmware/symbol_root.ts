@@ -17,6 +17,7 @@ import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage } from './image.js';
 import type { CoefficientPath } from './path.js';
 import type { Root } from './root.js';
+import { commonData } from './symbol_check.js';
 
 /**
  * The symbol that a path without a definition in the debug information means.
@@ -67,12 +68,7 @@ function compact(name: string): string {
 
 /** A variable of which only the symbol table knows. @throws FirmwareError for common data, which has no value */
 export function rootOfSymbol(image: ElfImage, path: CoefficientPath, symbol: ElfSymbol): Root {
-  if (symbol.section === commonSection) {
-    throw new FirmwareError(
-      'no_contents',
-      `${quoted(path.text)} in ${quoted(image.name)} is common data without a value; initialise it in the source`,
-    );
-  }
+  if (symbol.section === commonSection) throw commonData(image, path.text);
   return {
     steps: symbol.name === path.text ? [] : path.steps,
     type: undefined,

@@ -396,9 +396,67 @@ describe('compressed sections', () => {
     );
   });
 
+  test('Zstandard is read where Node offers it, and refused with the cure where it does not', () => {
+    const zlib = process.getBuiltinModule('node:zlib') as {
+      zstdCompressSync?: (bytes: Uint8Array) => Uint8Array;
+    };
+    const packed = packedInfo(info.length, 2, zlib.zstdCompressSync?.(info));
+    if (zlib.zstdCompressSync) expect(readPacked(packed).elements[0].value).toBe(1.25);
+    else
+      expect(failure(() => readPacked(packed)).message).toMatch(
+        /Zstandard.*Node 22\.15 or newer, or build with -gz=zlib/,
+      );
+  });
+
   test('a method that is not known says which to use', () => {
     const error = failure(() => readPacked(packedInfo(info.length, 9)));
     expect(error.code).toBe('unsupported');
     expect(error.message).toMatch(/method 9, which is not known: build with -gz=zlib/);
+  });
+});
+
+test('a name that moves the cursor of a terminal is made harmless', () => {
+  const evil = baseType('evil', 'long\u001b[2J\u0007\r\ndouble', 16, encoding.float);
+  const error = failure(() => read([evil, variable('kp', 'evil', 0x1000)]));
+  expect(error.message).toMatch(/^[\x20-\x7e\u00a0-\uffff]+$/);
+  expect(error.message).toContain('long?[2J? double');
+});
+
+describe('what is no image', () => {
+  test.each([
+    [[], /“x” is empty/],
+    [[0x7f, 0x45, 0x4c, 0x47], /begins with 7f 45 4c 47; a raw binary needs its base address/],
+    [[...Buffer.from('#!/bin/sh')], /is not an ELF file \(7f 45 4c 46\), Intel HEX or S-records/],
+  ])('%j', (bytes, message) => {
+    const error = failure(() => openImage(Uint8Array.from(bytes), 'x'));
+    expect(error.code).toBe('not_an_image');
+    expect(error.message).toMatch(message);
+  });
+
+  test.each([
+    [4, 3, /ELF class 3, expected 1 \(32 bit\) or 2 \(64 bit\)/],
+    [5, 0, /ELF byte order 0, expected 1 \(little\) or 2 \(big\)/],
+    [16, 4, /ELF type 4; an executable, shared or relocatable file is expected/],
+    [58, 8, /rows of 8 bytes, expected 64/],
+    [60, 0xff, /\d+ sections do not fit the file|is damaged/],
+  ])('an ELF header whose byte %i is %i', (offset, value, message) => {
+    const bytes = elfOf({ sections: [data] });
+    bytes[offset] = value;
+    if (offset === 60) bytes[61] = 0xfe;
+    expect(failure(() => openImage(bytes, 'x')).message).toMatch(message);
+  });
+
+  test('every beginning of an image is an error', () => {
+    const bytes = elfOf({
+      sections: [data, ...debugSections({ entries: [float, variable('kp', 'float', 0x1000)] })],
+      symbols: [{ name: 'kp', address: 0x1000, size: 4 }],
+    });
+    // The last field of the last row of the section table is not read.
+    for (let length = 1; length < bytes.length - 8; length++) {
+      expect(failure(() => openImage(bytes.subarray(0, length), 'cut')).message).not.toBe('');
+    }
+    expect(readCoefficient(openImage(bytes, 'whole'), { name: 'gain', at: 'kp' }).elements[0].value).toBe(
+      1.25,
+    );
   });
 });

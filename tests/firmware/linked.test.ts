@@ -222,6 +222,7 @@ describe.skipIf(
       );
       expect(errorOf(whole, 'opaque_pointer').message).toMatch(/a pointer is no coefficient/);
       expect(errorOf(whole, 'kept_gain.x').message).toMatch(/is of type float and has no member “x”/);
+      expect(errorOf(whole, 'kept_gain[0]').code).toBe('index_out_of_range');
       expect(errorOf(whole, 'kept_gain[0]').message).toMatch(/not an array: leave out \[0\]/);
       expect(errorOf(whole, 'kept_gain->x').message).toMatch(/is no pointer: write kept_gain\.x/);
     });
@@ -230,6 +231,7 @@ describe.skipIf(
       expect(errorOf(whole, 'kept_gain', 'Q2.14').message).toMatch(
         /is float: format Q2\.14 cannot be meant for a float; leave it out/,
       );
+      expect(errorOf(whole, 'kept_gain', 'float64').code).toBe('format_mismatch');
       expect(errorOf(whole, 'kept_gain', 'float64').message).toMatch(
         /64 bits wide, stored are 32; nearest is float32/,
       );

@@ -44,7 +44,7 @@ function makeImage() {
     });
     return `${name}.o`;
   };
-  const padding = `const char padding[${15 * megabyte}] = {1};\n`;
+  const padding = `const char padding[${5 * megabyte}] = {1};\n`;
   const wantedSource = `struct gains { float kp, ki; };\nconst struct gains azimuth = {1.25f, 0.5f};\n${padding}void _start(void) {}\n`;
   const main = compile('azimuth', wantedSource);
   const units = Array.from({ length: kinds }, (_, kind) => compile(`unit${kind}`, unitSource(kind)));

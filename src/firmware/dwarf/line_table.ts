@@ -1,3 +1,4 @@
+import { posix } from 'node:path';
 import type { Cursor } from '../cursor.js';
 import { numberAttribute, textAttribute, textOf } from './attributes.js';
 import { at } from './codes.js';
@@ -40,11 +41,15 @@ function isAbsolute(path: string): boolean {
   return path.startsWith('/') || /^[A-Za-z]:[\\/]/.test(path);
 }
 
+/** A file beside the folder is written from there too, so that it reads the same on every machine. */
 function below(folder: string, path: string): string {
-  const start = folder.endsWith('/') ? folder : `${folder}/`;
-  const inside = folder !== '' && path.startsWith(start) ? path.slice(start.length) : path;
-  return inside.replace(/^(\.\/)+/, '');
+  if (!folder.startsWith('/') || !path.startsWith('/')) return path.replace(/^(\.\/)+/, '');
+  const inside = posix.relative(folder, path);
+  return inside.startsWith('../'.repeat(farthestFolders + 1)) ? path : inside;
 }
+
+/** A path that goes up further than this is rather written in full. */
+const farthestFolders = 3;
 
 function readNames(unit: Unit): FileNames {
   const root = rootOf(unit);

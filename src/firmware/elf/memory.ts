@@ -2,7 +2,7 @@ import { hex } from '../cursor.js';
 import { FirmwareError, quoted } from '../failure.js';
 import { contentsOf } from './contents.js';
 import { type ElfFile, type ElfSection, type ElfSegment, sectionFlag, sectionType } from './elf_file.js';
-import { relocatedOffsets } from './relocate.js';
+import { isRelocated } from './relocate.js';
 
 const loadedSegment = 1;
 
@@ -100,9 +100,7 @@ function refuseRelocated(
   size: number,
   options: ReadOptions,
 ): void {
-  // No relocation of data is wider than 8 bytes.
-  const touched = relocatedOffsets(elf, section).some((at) => at > offset - 8 && at < offset + size);
-  if (!touched) return;
+  if (!isRelocated(elf, section, offset, size)) return;
   throw new FirmwareError(
     'needs_relocation',
     `${options.what}: its bytes in ${quoted(elf.name)} are set by the linker only; give the linked image`,

@@ -91,9 +91,13 @@ export function relocated(elf: ElfFile, section: ElfSection, contents: Uint8Arra
 
 const executable = 0x4;
 
-/** Offsets in the section which the linker will still change. */
-export function relocatedOffsets(elf: ElfFile, section: ElfSection): number[] {
-  return relocationsOf(elf, section).map((row) => row.offset);
+/** Whether the linker will still change one of these bytes of the section. */
+export function isRelocated(elf: ElfFile, section: ElfSection, offset: number, size: number): boolean {
+  const word = elf.bits / 8;
+  return relocationsOf(elf, section).some((row) => {
+    const width = actions[elf.machine]?.[row.type]?.size || word;
+    return row.offset < offset + size && row.offset + width > offset;
+  });
 }
 
 /** The row of a relocation table which changes this place, as a loader does it. */
