@@ -1,5 +1,5 @@
 import { productOf, timeDimension } from '../spec/dimension.js';
-import { difference } from './curve.js';
+import { difference } from './curve_arithmetic.js';
 import { absoluteIntegral } from './integrals.js';
 import { responseKey, targetKey, windowKeys } from './keys.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';

@@ -1,4 +1,5 @@
 import type { Run } from '../kernel/trace.js';
+import { valueAt } from './bernstein.js';
 
 /** Control points of one piece of a curve: it is of degree five. */
 export const pointsOfPiece = 6;
@@ -64,11 +65,6 @@ export function lessConstant(curve: Curve, amount: number): Curve {
   return { ...curve, points: curve.points.map((point) => point - amount) };
 }
 
-/** One curve less another of the same run. */
-export function difference(a: Curve, b: Curve): Curve {
-  return { ...a, points: a.points.map((point, i) => point - b.points[i]) };
-}
-
 /** The piece that is under way at a time, or the last one: the later one where two meet. */
 export function pieceAt({ times, pieces }: Curve, time: number): number {
   let [low, high] = [0, pieces - 1];
@@ -90,4 +86,12 @@ export function upperBound({ points }: Curve, piece: number): number {
 export function lowerBound({ points }: Curve, piece: number): number {
   const at = pointsOfPiece * piece;
   return Math.min(points[at], points[at + 1], points[at + 2], points[at + 3], points[at + 4], points[at + 5]);
+}
+
+/** The value that a curve comes to a time with, before a jump there; at its very start the value that it starts with. */
+export function valueBefore(curve: Curve, time: number): number {
+  const piece = pieceAt(curve, time);
+  const { times, points } = curve;
+  if (times[piece] === time) return points[Math.max(0, pointsOfPiece * piece - 1)];
+  return valueAt(pieceOf(curve, piece), (time - times[piece]) / (times[piece + 1] - times[piece]));
 }

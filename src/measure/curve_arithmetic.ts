@@ -1,5 +1,5 @@
 import { differences, integralOf, partOf, signChanges } from './bernstein.js';
-import { type Curve, pieceAt, pieceOf, pointsOfPiece } from './curve.js';
+import { type Curve, pieceAt, pieceOf, pointsOfPiece, scaled } from './curve.js';
 
 /** Collects pieces, one after another, to a curve. */
 export class CurveBuilder {
@@ -39,6 +39,18 @@ export function sumOf(a: Curve, b: Curve, factor: number): Curve {
       Array.from(p, (point, i) => point + factor * q[i]),
     );
   });
+}
+
+/** One curve less another, over the time that both have. */
+export function difference(a: Curve, b: Curve): Curve {
+  // Curves of one run have their times in common, and most have the same pieces.
+  if (a.times !== b.times) return sumOf(a, b, -1);
+  return { ...a, points: a.points.map((point, i) => point - b.points[i]) };
+}
+
+/** The smaller of two curves at every time that both have. */
+export function smallerOf(a: Curve, b: Curve): Curve {
+  return scaled(largerOf(scaled(a, -1), scaled(b, -1)), -1);
 }
 
 /** The larger of two curves at every time that both have. */

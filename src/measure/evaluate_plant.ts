@@ -55,7 +55,7 @@ export class PlantEvaluator {
     const nominal = Float64Array.from(spec.parameters, (parameter) => parameter.nominal);
     const schedule = scheduleOf(this.loop, nominal);
     this.commonSchedule = timingIsCommon(this.loop) ? schedule : undefined;
-    this.traceGroups = this.groupByScenario();
+    this.traceGroups = this.groupByScenario(coefficients);
     this.loopGroups = this.groupByLoopPoint(coefficients);
   }
 
@@ -74,7 +74,7 @@ export class PlantEvaluator {
     return results;
   }
 
-  private groupByScenario(): TraceGroup[] {
+  private groupByScenario(coefficients: CoefficientValues): TraceGroup[] {
     const store = new TraceStore();
     return this.spec.scenarios.flatMap((scenario, scenarioIndex) => {
       const requirements = this.spec.requirements.flatMap((requirement, index) => {
@@ -85,22 +85,10 @@ export class PlantEvaluator {
       });
       if (requirements.length === 0) return [];
       const traced = [...new Set(requirements.flatMap(({ requirement }) => followedBy(requirement)))];
-      const events = new ScenarioEvents(this.spec, scenario, (expression) => this.lowerPlain(expression));
+      const loop = expandLoop(this.spec, coefficients, { scenario });
+      const events = new ScenarioEvents(loop, scenario);
       const seed = this.spec.perturbation.seed + scenarioIndex;
-      return [
-        { run: new ScenarioRun(this.loop, scenario, events, traced, seed, store), events, requirements },
-      ];
-    });
-  }
-
-  private lowerPlain(expression: Expression): ReturnType<typeof lower> {
-    const { graph } = this.loop;
-    return lower(expression, {
-      arithmetic: new TargetArithmetic(graph, 'float64'),
-      name: ({ name }) => graph.leaf('parameter', this.loop.parameters.indexOf(name)),
-      before: () => {
-        throw new Error('before() in a scenario passed the spec reader');
-      },
+      return [{ run: new ScenarioRun(loop, scenario, events, traced, seed, store), events, requirements }];
     });
   }
 

@@ -1,5 +1,5 @@
 import { timeDimension } from '../spec/dimension.js';
-import { difference } from './curve.js';
+import { difference } from './curve_arithmetic.js';
 import { responseKey, targetKey, windowKeys } from './keys.js';
 import { type TraceMeasure, unformed } from './measure.js';
 import { timeToStay } from './settling_time.js';

@@ -1,4 +1,4 @@
-import { difference } from './curve.js';
+import { difference } from './curve_arithmetic.js';
 import { rootMeanSquare } from './integrals.js';
 import { responseKey, targetKey, windowKeys } from './keys.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';

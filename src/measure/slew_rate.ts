@@ -1,6 +1,6 @@
 import { productOf, rateDimension } from '../spec/dimension.js';
 import { differences, signChanges, valueAt } from './bernstein.js';
-import type { Curve } from './curve.js';
+import { type Curve, valueBefore } from './curve.js';
 import { partsOf } from './integrals.js';
 import { signalKey, windowKeys } from './keys.js';
 import { measured, type TraceMeasure, type Window } from './measure.js';
@@ -27,9 +27,9 @@ export const slewRate: TraceMeasure = {
 
 function largestJump(of: Curve, window: Window): number {
   let most = 0;
-  let last: number | undefined;
+  let last = valueBefore(of, window.from);
   for (const { points } of partsOf(of, window)) {
-    if (last !== undefined) most = Math.max(most, Math.abs(points[0] - last));
+    most = Math.max(most, Math.abs(points[0] - last));
     last = points[points.length - 1];
   }
   return most;
@@ -40,10 +40,10 @@ const sameValue = 1e-9;
 
 function fastest(of: Curve, window: Window): number {
   let most = 0;
-  let last: number | undefined;
+  let last = valueBefore(of, window.from);
   for (const { from, to, points } of partsOf(of, window)) {
-    const size = Math.max(Math.abs(points[0]), Math.abs(last ?? 0));
-    if (last !== undefined && Math.abs(points[0] - last) > sameValue * size) return Number.POSITIVE_INFINITY;
+    const size = Math.max(Math.abs(points[0]), Math.abs(last));
+    if (Math.abs(points[0] - last) > sameValue * size) return Number.POSITIVE_INFINITY;
     last = points[points.length - 1];
     const rate = differences(points).map((change) => ((points.length - 1) * change) / (to - from));
     const places = [0, ...signChanges(differences(rate)), 1];

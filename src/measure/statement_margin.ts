@@ -1,7 +1,7 @@
 import type { Expression } from '../spec/spec.js';
 import type { Statement } from '../spec/statement.js';
 import { type Curve, endOf, scaled } from './curve.js';
-import { constantLike, largerOf, largestSoFar, sumOf } from './curve_arithmetic.js';
+import { constantLike, largerOf, largestSoFar, smallerOf, sumOf } from './curve_arithmetic.js';
 import { largest, smallest } from './extremes.js';
 import { slidingLargest, slidingSmallest } from './sliding_extremes.js';
 
@@ -88,10 +88,6 @@ function marginOverTime(statement: Statement, sources: StatementSources): Curve 
     case 'one_of':
       return statement.statements.map(inner).reduce(largerOf);
   }
-}
-
-function smallerOf(a: Curve, b: Curve): Curve {
-  return scaled(largerOf(scaled(a, -1), scaled(b, -1)), -1);
 }
 
 /** A combination of signals as a curve, or a number where no signal stands in it. */

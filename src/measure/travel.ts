@@ -1,4 +1,4 @@
-import type { Curve } from './curve.js';
+import { type Curve, valueBefore } from './curve.js';
 import { signalKey, windowKeys } from './keys.js';
 import { measured, type TraceMeasure, type Window } from './measure.js';
 import { allSections } from './sections.js';
@@ -13,16 +13,17 @@ export const travel: TraceMeasure = {
     ratio: false,
     better: 'lower',
     window: 'from_first_event',
-    meaning: 'sum of all ways up and down of `of` in the window, jumps included; in the unit of `of`',
+    meaning:
+      'sum of all ways up and down of `of` in the window, jumps included, also one at its beginning; in the unit of `of`',
   },
   measure: ({ of, window }) => measured(wayOf(of, window)),
 };
 
 function wayOf(of: Curve, { from, until }: Window): number {
   let way = 0;
-  let last: number | undefined;
+  let last = valueBefore(of, from);
   for (const section of allSections(of, from, until)) {
-    if (last !== undefined) way += Math.abs(section.first - last);
+    way += Math.abs(section.first - last);
     way += Math.abs(section.last - section.first);
     last = section.last;
   }

@@ -1,4 +1,4 @@
-import type { Curve } from './curve.js';
+import { type Curve, valueBefore } from './curve.js';
 import type { Window } from './measure.js';
 import { allSections } from './sections.js';
 
@@ -33,6 +33,7 @@ export function turningPoints(curve: Curve, { from, until }: Window, least: numb
       low = high;
     }
   };
+  meet(from, valueBefore(curve, from));
   for (const section of allSections(curve, from, until)) {
     meet(section.from, section.first);
     meet(section.to, section.last);
