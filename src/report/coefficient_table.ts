@@ -21,8 +21,8 @@ export const coefficientHeadings = [
 
 /** Coefficients as a table of plain text: one row for each number, an array's rows below one another. */
 export function coefficientTable(coefficients: readonly CoefficientRead[]): string {
-  if (coefficients.length === 0) return 'no coefficients';
-  return textTable([coefficientHeadings, ...coefficients.flatMap((one) => coefficientRows(one))]);
+  if (coefficients.length === 0) return 'no coefficients\n';
+  return `${textTable([coefficientHeadings, ...coefficients.flatMap((one) => coefficientRows(one))])}\n`;
 }
 
 /** The rows of one coefficient, cells as in the headings. */

@@ -10,6 +10,7 @@ const place = requirement().place;
 describe('coefficientTable', () => {
   it('shows name, path, value, type, stored bits, address and place', () => {
     const [headings, scalar, first, second] = coefficientTable(specRun().coefficients)
+      .trimEnd()
       .split('\n')
       .map((line) => line.split(/ {2,}/));
     expect(headings).toEqual([
@@ -61,13 +62,13 @@ describe('coefficientTable', () => {
     expect(coefficientTable([odd])).toContain('not a number s (erased)');
     const named = { ...kp, elements: [{ ...kp.elements[0], enumerator: 'FAST' }] };
     expect(coefficientTable([{ ...odd, coefficient: named }])).toContain('0.3 s (FAST)');
-    expect(coefficientTable([])).toBe('no coefficients');
+    expect(coefficientTable([])).toBe('no coefficients\n');
   });
 
   it.each(Object.entries(hostileNames))('is not harmed by a hostile name: %s', (_, name) => {
     const text = coefficientTable(hostileRun(name).specs[0].coefficients);
     expect(text).not.toMatch(harmful);
-    expect(text.split('\n')).toHaveLength(2);
+    expect(text.split('\n')).toHaveLength(3);
   });
 });
 
