@@ -1,4 +1,3 @@
-import { plainNumber } from '../../spec/dimension.js';
 import type { Node } from '../graph.js';
 import { LoopError } from '../loop.js';
 import type { Block, BlockUse } from './block.js';
