@@ -1,5 +1,6 @@
 import type { SettingDescription } from '../../spec/vocabulary.js';
 import type { Node } from '../graph.js';
+import type { Term } from '../number_rules.js';
 import type { Workshop } from './block.js';
 
 /** In which values a difference equation keeps its past. */
@@ -60,7 +61,10 @@ function directOne(equation: DifferenceEquation, input: Node, workshop: Workshop
   const { name, forward, back } = equation;
   const inputs = past(`${name} x`, () => input, forward.length - 1, workshop);
   const outputs: Node[] = past(`${name} y`, () => output, back.length, workshop);
-  const output = feedBack(equation, sumOfProducts(forward, [input, ...inputs], workshop), outputs, workshop);
+  const output = workshop.arithmetic.sum([
+    ...ahead(forward, [input, ...inputs]),
+    ...behind(equation, back, outputs),
+  ]);
   return output;
 }
 
@@ -68,57 +72,37 @@ function directTwo(equation: DifferenceEquation, input: Node, workshop: Workshop
   const { name, forward, back } = equation;
   const depth = Math.max(forward.length - 1, back.length);
   const line: Node[] = past(`${name} w`, () => newest, depth, workshop);
-  const newest = feedBack(equation, input, line, workshop);
-  return sumOfProducts(forward, [newest, ...line], workshop);
+  const newest = workshop.arithmetic.sum([{ value: input }, ...behind(equation, back, line)]);
+  return workshop.arithmetic.sum(ahead(forward, [newest, ...line]));
 }
 
 function transposedTwo(equation: DifferenceEquation, input: Node, workshop: Workshop): Node {
-  const { name, forward, back, feedback } = equation;
+  const { name, forward, back } = equation;
   const { arithmetic, addMemory } = workshop;
   const depth = Math.max(forward.length - 1, back.length);
   const sums: Node[] = [];
   for (let k = 1; k <= depth; k++) sums.push(addMemory(`${name} s${k}`, () => next(k)));
-  const direct = forward[0] && arithmetic.multiply(forward[0], input);
-  const output = direct && sums[0] ? arithmetic.add(direct, sums[0]) : (direct ?? sums[0]);
+  const output = arithmetic.sum([...ahead(forward.slice(0, 1), [input]), ...kept(0)]);
   return output;
 
+  function kept(k: number): Term[] {
+    return k < depth ? [{ value: sums[k] }] : [];
+  }
+
   function next(k: number): Node {
-    const ahead = forward[k] && arithmetic.multiply(forward[k], input);
-    const behind = back[k - 1] && arithmetic.multiply(back[k - 1], output);
-    const signed = behind && joined(ahead, behind, feedback, workshop);
-    const own = signed ?? ahead ?? arithmetic.number(0);
-    return k < depth ? arithmetic.add(own, sums[k]) : own;
+    const own = [
+      ...ahead(forward.slice(k, k + 1), [input]),
+      ...behind(equation, back.slice(k - 1, k), [output]),
+      ...kept(k),
+    ];
+    return own.length > 0 ? arithmetic.sum(own) : arithmetic.number(0);
   }
 }
 
-function joined(
-  sum: Node | undefined,
-  part: Node,
-  feedback: DifferenceEquation['feedback'],
-  { arithmetic }: Workshop,
-): Node {
-  if (feedback === 'plus') return sum ? arithmetic.add(sum, part) : part;
-  return sum ? arithmetic.subtract(sum, part) : arithmetic.apply('negate', part);
+function ahead(factors: readonly (Node | undefined)[], values: readonly Node[]): Term[] {
+  return factors.flatMap((factor, at) => (factor ? [{ factor, value: values[at] }] : []));
 }
 
-function feedBack(
-  { back, feedback }: DifferenceEquation,
-  from: Node,
-  line: Node[],
-  workshop: Workshop,
-): Node {
-  return back.reduce(
-    (sum, factor, at) => joined(sum, workshop.arithmetic.multiply(factor, line[at]), feedback, workshop),
-    from,
-  );
-}
-
-function sumOfProducts(
-  factors: readonly (Node | undefined)[],
-  values: readonly Node[],
-  { arithmetic }: Workshop,
-): Node {
-  return factors
-    .flatMap((factor, at) => (factor ? [arithmetic.multiply(factor, values[at])] : []))
-    .reduce((sum, product) => arithmetic.add(sum, product));
+function behind({ feedback }: DifferenceEquation, factors: readonly Node[], values: readonly Node[]): Term[] {
+  return factors.map((factor, at) => ({ factor, value: values[at], minus: feedback === 'minus' }));
 }

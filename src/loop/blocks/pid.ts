@@ -10,7 +10,8 @@ import { pidSettings } from './pid_settings.js';
  * Proportional, integral and derivative action as difference equations (Åström and Wittenmark, 'Computer-Controlled
  * Systems', 1997, chapter 8; Åström and Hägglund, 'Advanced PID Control', 2006, for forms, weights and windup; from
  * memory). e is the given signal, T the period, ω the derivative's corner, a subscript 1 the value at the last instant;
- * every operation rounds as the target does, in the order written.
+ * every operation rounds as the target does, in the order written; each line is one expression of the firmware, but the
+ * increment of i is one of its own under `hold_integral`, which asks for its sign.
  *
  *     p = kp·e
  *     i = i₁ + (ki·T)·e         backward     (ki·T)·e₁  forward     (ki·T)·((e + e₁)·0.5)  trapezoid
@@ -50,12 +51,17 @@ function sumOfActions(use: BlockUse, workshop: Workshop, gains: PidGains, inputs
   const { arithmetic } = workshop;
   const proportional = gains.kp && arithmetic.multiply(gains.kp, inputs.proportional);
   const derivative = gains.derivative && derivativeAction(use, workshop, gains.derivative, inputs);
-  if (!gains.integralStep) return inRange(use, workshop, sum(workshop, [proportional, derivative]));
+  const total = (integral: Node | undefined): Node =>
+    arithmetic.sum([
+      ...(gains.kp ? [{ factor: gains.kp, value: inputs.proportional }] : []),
+      ...[integral, derivative].flatMap((value) => (value ? [{ value }] : [])),
+    ]);
+  if (!gains.integralStep) return inRange(use, workshop, total(undefined));
   return integralAction(use, workshop, gains.integralStep, {
     taken: inputs.error,
     last: () => inputs.last(inputs.error),
     others: [proportional, derivative].filter((part) => part !== undefined),
-    total: (integral) => sum(workshop, [proportional, integral, derivative]),
+    total,
     started: inputs.started,
   });
 }
@@ -66,19 +72,16 @@ function interacting(use: BlockUse, workshop: Workshop, gains: PidGains, inputs:
   const derivative = gains.derivative && derivativeAction(use, workshop, gains.derivative, inputs);
   const led = (node: Node): Node => (derivative ? arithmetic.add(node, derivative) : node);
   const taken = led(inputs.error);
-  const proportional = arithmetic.multiply(gains.kp!, led(inputs.proportional));
+  const driven = led(inputs.proportional);
+  const proportional = arithmetic.multiply(gains.kp!, driven);
   if (!gains.integralStep) return inRange(use, workshop, proportional);
   return integralAction(use, workshop, gains.integralStep, {
     taken,
     last: () => inputs.last(taken),
     others: [proportional],
-    total: (integral) => arithmetic.add(proportional, integral),
+    total: (integral) => arithmetic.sum([{ factor: gains.kp!, value: driven }, { value: integral }]),
     started: inputs.started,
   });
-}
-
-function sum({ arithmetic }: Workshop, parts: (Node | undefined)[]): Node {
-  return parts.filter((part) => part !== undefined).reduce((one, other) => arithmetic.add(one, other));
 }
 
 function inRange(use: BlockUse, { arithmetic }: Workshop, node: Node): Node {

@@ -13,31 +13,27 @@ export function derivativeAction(
   const { arithmetic } = workshop;
   const change = arithmetic.subtract(inputs.derivative, inputs.last(inputs.derivative));
   if (!filter) return arithmetic.multiply(gain, period ? arithmetic.divide(change, period) : change);
-  const { drive, turn } = filter;
+  const { drive, corner, period: filterPeriod } = filter;
   const last: Node = workshop.addMemory(`${use.name} derivative`, () => derivative, 0);
   const derivative = filtered();
   return derivative;
 
   function filtered(): Node {
-    const [one, two] = [arithmetic.number(1), arithmetic.number(2)];
+    const two = arithmetic.number(2);
+    const turned = (from: Node, minus: boolean): Node =>
+      arithmetic.sum([{ value: from }, { factor: corner, value: filterPeriod, minus }]);
     switch (use.word('sum_by')) {
       case 'forward':
-        return arithmetic.add(
-          arithmetic.multiply(arithmetic.subtract(one, turn), last),
-          arithmetic.multiply(drive, change),
-        );
+        return arithmetic.sumOfProducts([turned(arithmetic.number(1), true), drive], [last, change]);
       case 'trapezoid':
         return arithmetic.divide(
-          arithmetic.add(
-            arithmetic.multiply(arithmetic.subtract(two, turn), last),
-            arithmetic.multiply(arithmetic.multiply(two, drive), change),
-          ),
-          arithmetic.add(two, turn),
+          arithmetic.sumOfProducts([turned(two, true), arithmetic.multiply(two, drive)], [last, change]),
+          turned(two, false),
         );
       default:
         return arithmetic.divide(
-          arithmetic.add(last, arithmetic.multiply(drive, change)),
-          arithmetic.add(one, turn),
+          arithmetic.sumOfProducts([drive], [change], last),
+          turned(arithmetic.number(1), false),
         );
     }
   }

@@ -6,8 +6,8 @@ import type { BlockUse, Workshop } from './block.js';
 export interface DerivativeGain {
   /** kd, in seconds or samples. */
   gain: Node;
-  /** kd·ω and ω·T of the filter. */
-  filter: { drive: Node; turn: Node } | undefined;
+  /** kd·ω, ω and T of the filter. */
+  filter: { drive: Node; corner: Node; period: Node } | undefined;
   /** By what the change of the input is divided where there is no filter; nothing where the gain counts samples. */
   period: Node | undefined;
 }
@@ -107,6 +107,7 @@ function derivativeGain(use: BlockUse, workshop: Workshop, gain: Node): Derivati
   const corner = use.setting('derivative_corner');
   const period = lawPeriod(use, workshop);
   if (!corner) return { gain, filter: undefined, period };
-  const turn = arithmetic.multiply(corner, periodOf(use, workshop));
-  return { gain, period, filter: { turn, drive: arithmetic.multiply(gain, period ? corner : turn) } };
+  const filterPeriod = periodOf(use, workshop);
+  const drive = arithmetic.multiply(gain, period ? corner : arithmetic.multiply(corner, filterPeriod));
+  return { gain, period, filter: { drive, corner, period: filterPeriod } };
 }

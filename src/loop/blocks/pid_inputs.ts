@@ -49,5 +49,8 @@ function weighted(use: BlockUse, { arithmetic }: Workshop, name: string, error: 
       use.place,
     );
   }
-  return arithmetic.subtract(arithmetic.multiply(weight, use.pair.target()), use.pair.measurement());
+  return arithmetic.sum([
+    { factor: weight, value: use.pair.target() },
+    { value: use.pair.measurement(), minus: true },
+  ]);
 }

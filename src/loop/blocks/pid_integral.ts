@@ -24,8 +24,8 @@ export function integralAction(
 ): Node {
   const { arithmetic, addMemory } = workshop;
   const last: Node = addMemory(`${use.name} integral`, () => kept);
-  const step = increment(use, workshop, perSample, around);
-  const integral = set(use, workshop, around, wound(use, workshop, last, step, around));
+  const gained = increment(use, workshop, around);
+  const integral = set(use, workshop, around, wound(use, workshop, last, [perSample, gained], around));
   const sum = around.total(integral);
   const output = use.range ? arithmetic.apply('limit', sum, use.range.low, use.range.high) : sum;
   const kept = use.word('anti_windup') === 'pull_back' ? pulledBack() : integral;
@@ -41,25 +41,20 @@ export function integralAction(
     }
     const excess = arithmetic.subtract(output, sum);
     const period = lawPeriod(use, workshop);
-    const back = period
-      ? arithmetic.multiply(arithmetic.divide(period, time), excess)
-      : arithmetic.divide(excess, time);
-    return arithmetic.add(integral, back);
+    if (!period) return arithmetic.add(integral, arithmetic.divide(excess, time));
+    return arithmetic.sumOfProducts([arithmetic.divide(period, time)], [excess], integral);
   }
 }
 
-/** What the integral gains at one instant. */
-function increment(use: BlockUse, { arithmetic }: Workshop, perSample: Node, around: AroundIntegral): Node {
+/** What the integral gains at one instant, for a gain a sample of one. */
+function increment(use: BlockUse, { arithmetic }: Workshop, around: AroundIntegral): Node {
   switch (use.word('sum_by')) {
     case 'forward':
-      return arithmetic.multiply(perSample, around.last());
+      return around.last();
     case 'trapezoid':
-      return arithmetic.multiply(
-        perSample,
-        arithmetic.multiply(arithmetic.add(around.taken, around.last()), arithmetic.number(0.5)),
-      );
+      return arithmetic.multiply(arithmetic.add(around.taken, around.last()), arithmetic.number(0.5));
     default:
-      return arithmetic.multiply(perSample, around.taken);
+      return around.taken;
   }
 }
 
@@ -68,16 +63,19 @@ function wound(
   use: BlockUse,
   { arithmetic }: Workshop,
   last: Node,
-  step: Node,
+  [perSample, gained]: [Node, Node],
   { total }: AroundIntegral,
 ): Node {
   const { graph } = arithmetic;
-  const candidate = arithmetic.add(last, step);
   const rule = use.word('anti_windup');
-  if (!use.range) return candidate;
+  if (rule !== 'hold_integral' || !use.range) {
+    const sum = arithmetic.sumOfProducts([perSample], [gained], last);
+    if (rule !== 'bound_integral' || !use.range) return sum;
+    return arithmetic.apply('limit', sum, use.range.low, use.range.high);
+  }
   const { low, high } = use.range;
-  if (rule === 'bound_integral') return arithmetic.apply('limit', candidate, low, high);
-  if (rule !== 'hold_integral') return candidate;
+  const step = arithmetic.multiply(perSample, gained);
+  const candidate = arithmetic.add(last, step);
   const zero = graph.number(0);
   const hold = (outside: Node, outward: Node, otherwise: Node): Node =>
     graph.apply('choose', outside, graph.apply('choose', outward, last, candidate), otherwise);
