@@ -110,6 +110,7 @@ describe.runIf(hasBrowser)('the page in a browser', () => {
       expect(await page.evaluate('getComputedStyle(document.querySelector(".scroll")).overflowX')).toBe(
         'visible',
       );
+      expect(await page.evaluate('document.documentElement.scrollWidth')).toBeLessThanOrEqual(700);
       expect((await page.pdf({ format: 'A4' })).length).toBeGreaterThan(20_000);
     });
   });

@@ -69,5 +69,5 @@ footer{border-top:3px solid var(--ink);margin-top:48px;padding-top:14px;padding-
 .worst-line-key::before{border-top:2.5px dashed var(--brick)}
 .target-key::before{border-top:2px dotted var(--slate)}
 @media(max-width:640px){header,main,footer{padding:0 14px}.wide{display:none}h1{font-size:1.45rem}.requirement{padding:2px 12px 12px}th,td{padding-right:9px}th,td{font-size:.92rem}.verdict{gap:5px}.sign{width:27px}dl>div{gap:8px}.drawing{font-size:16px}}
-@media print{:root{--ground:#fff;--sheet:#fff;--ink:#000;--slate:#333;--line:#999;--hair:#ccc;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030}body{font-size:10.5pt}.scroll,pre{overflow:visible;max-height:none}figure,.requirement h3,tr{break-inside:avoid}h2,h3{break-after:avoid}a{color:inherit;text-decoration:none}.skip{display:none}}
+@media print{:root{--ground:#fff;--sheet:#fff;--ink:#000;--slate:#333;--line:#999;--hair:#ccc;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030}body{font-size:10pt}.summary tbody td{white-space:normal}.summary .verdict{white-space:nowrap}th,td{font-size:9pt;padding-right:8px}figure{max-width:420px}.scroll,pre{overflow:visible;max-height:none}figure,.requirement h3,tr{break-inside:avoid}h2,h3{break-after:avoid}a{color:inherit;text-decoration:none}.skip{display:none}}
 `;
