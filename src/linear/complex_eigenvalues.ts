@@ -87,11 +87,14 @@ function qrStep(a: Complex[][], size: number, shift: Complex): void {
   for (let i = 0; i < size; i++) a[i][i] = plus(a[i][i], shift);
 }
 
+/** Below this an entry counts as zero: its digits would be lost in the sizes of a rotation. */
+const negligible = 1e-200;
+
 /** Cosine and sine that turn (x, y) into (r, 0); undefined where y is zero already. */
 function rotationFor(x: Complex, y: Complex): { c: number; s: Complex } | undefined {
   const [below, above] = [sizeOf(y), sizeOf(x)];
-  if (below === 0) return undefined;
-  if (above === 0) return { c: 0, s: { real: y.real / below, imaginary: -y.imaginary / below } };
+  if (below < negligible) return undefined;
+  if (above < negligible) return { c: 0, s: { real: y.real / below, imaginary: -y.imaginary / below } };
   const length = Math.hypot(above, below);
   const unit = { real: x.real / above, imaginary: x.imaginary / above };
   const s = times(unit, { real: y.real / length, imaginary: -y.imaginary / length });

@@ -1,7 +1,6 @@
 import type { Complex } from './complex.js';
 import { complexEigenvalues } from './complex_eigenvalues.js';
 import { frequencyGrid } from './frequency_grid.js';
-import { NumericFailure } from './numeric_failure.js';
 import { prepareResponseMatrix } from './response.js';
 import { rootBetween } from './root_finding.js';
 import type { StateEquations } from './state_equations.js';
@@ -23,32 +22,31 @@ const farthest = 0.2;
 const mostHalvings = 12;
 
 /**
- * The loci of the eigenvalues of a sampled loop transfer with several inputs and outputs over all frequencies, in short
- * steps (characteristic loci; MacFarlane and Postlethwaite, 1977).
- * @param features poles near which the steps are short, z − 1.
+ * The loci of the eigenvalues of a sampled loop transfer L with several inputs and outputs over all frequencies, in short
+ * steps (characteristic loci; MacFarlane and Postlethwaite, 1977). They are taken from S = (I + L)⁻¹, which is finite at
+ * every frequency where L may have a pole: an eigenvalue σ of S belongs to 1/σ − 1 of L.
  */
-export function gainLoci(loop: StateEquations, features: readonly Complex[]): GainLoci {
-  return new GainLoci(loop, features);
-}
-
-/** See `gainLoci`. */
 export class GainLoci {
   readonly steps: LocusStep[] = [];
   /** At zero frequency and half the frequency of the cycle, where every value is real or one of a conjugate pair. */
   readonly ends: Spectrum[] = [];
   private readonly response: (frequency: number) => Complex[][];
 
-  constructor(loop: StateEquations, features: readonly Complex[]) {
-    this.response = prepareResponseMatrix(loop);
-    const end = Math.PI / loop.period!;
-    let before = this.spectrumAtRest();
-    if (before) this.ends.push(before);
-    for (const frequency of [...frequencyGrid(features, loop.period), end]) {
+  /**
+   * @param sensitivity S of a stable loop.
+   * @param features poles of L and S, z − 1, near which the steps are short.
+   */
+  constructor(sensitivity: StateEquations, features: readonly Complex[]) {
+    this.response = prepareResponseMatrix(sensitivity);
+    const end = Math.PI / sensitivity.period!;
+    let before = this.spectrum(0);
+    this.ends.push(before);
+    for (const frequency of [...frequencyGrid(features, sensitivity.period), end]) {
       const here = this.spectrum(frequency);
-      if (before) this.join(before, here, 0);
+      this.join(before, here, 0);
       before = here;
     }
-    this.ends.push(before!);
+    this.ends.push(before);
   }
 
   /** The frequency within a step at which a real function of the locus is zero; it has different signs at the ends. */
@@ -71,17 +69,7 @@ export class GainLoci {
   }
 
   private spectrum(frequency: number): Spectrum {
-    return { frequency, values: complexEigenvalues(this.response(frequency)) };
-  }
-
-  /** Undefined with an integrator in the loop. */
-  private spectrumAtRest(): Spectrum | undefined {
-    try {
-      return this.spectrum(0);
-    } catch (error) {
-      if (error instanceof NumericFailure) return undefined;
-      throw error;
-    }
+    return { frequency, values: complexEigenvalues(this.response(frequency)).map(loopValue) };
   }
 
   private join(before: Spectrum, after: Spectrum, depth: number): void {
@@ -100,6 +88,14 @@ export class GainLoci {
       });
     });
   }
+}
+
+/** Stands for a loop gain without bound, at a pole of L. */
+const unbounded = { real: 1e300, imaginary: 0 };
+
+function loopValue({ real, imaginary }: Complex): Complex {
+  const square = real * real + imaginary * imaginary;
+  return square > 0 ? { real: real / square - 1, imaginary: -imaginary / square } : unbounded;
 }
 
 /** For each of the values the one that follows it: the nearest pairs first. */

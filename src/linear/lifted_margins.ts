@@ -1,6 +1,6 @@
 import type { Complex } from './complex.js';
 import { magnitude } from './complex.js';
-import { type GainLoci, gainLoci } from './gain_loci.js';
+import { GainLoci } from './gain_loci.js';
 import { largestGain } from './largest_gain.js';
 import { type GainMargin, gainMarginOf } from './margins.js';
 import { add, identity, multiply, scale } from './matrix.js';
@@ -40,7 +40,7 @@ export function liftedMargins(loop: StateEquations): LiftedMargins {
   const poles = polesOf(sensitivity.a, loop.period);
   const decayRate = modesOf(sensitivity.a, loop.period)[0]?.decayRate ?? Number.POSITIVE_INFINITY;
   if (!(stabilityReserve(poles, loop.period) > 0)) return { ...unstable, decayRate };
-  const loci = gainLoci(loop, [...poles, ...polesOf(loop.a, loop.period)]);
+  const loci = new GainLoci(sensitivity, [...poles, ...polesOf(loop.a, loop.period)]);
   const one = identity(loop.b.columns);
   const sensitivityPeak = largestGain(sensitivity).value;
   const complementary = {
