@@ -29,9 +29,9 @@ export class TaskRunner {
     );
   }
 
-  perform({ inputs, deliver, compute }: Action): void {
+  perform({ changes, deliver, compute }: Action): void {
     const { m, compiled } = this;
-    for (const { input, value } of inputs) m[compiled.layout.input + input] = value;
+    for (const { kind, index, value } of changes) m[compiled.layout[kind] + index] = value;
     for (const task of compute) this.sample(task);
     for (const channel of deliver) this.channels[channel].deliver(m);
     for (const task of compute) {

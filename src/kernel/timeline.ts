@@ -1,15 +1,16 @@
 import { instantsBetween, type Schedule } from '../loop/schedule.js';
 
-/** A change of an input: from `time` (s) on it is `value` (SI). */
-export interface InputChange {
-  input: number;
+/** A change by the scenario: from `time` (s) on an input, or a state of the scenario's own, is `value` (SI). */
+export interface ScenarioChange {
+  kind: 'input' | 'state';
+  index: number;
   time: number;
   value: number;
 }
 
 /** What happens together at one time, in the order of the fields. */
 export interface Action {
-  inputs: { input: number; value: number }[];
+  changes: Omit<ScenarioChange, 'time'>[];
   deliver: number[];
   compute: number[];
 }
@@ -30,23 +31,23 @@ export interface Timeline {
 const sameInstant = 1e-6;
 
 /** Cuts the time from 0 to `lasts` (s) at every instant of the schedule and every change of an input. */
-export function timelineOf(schedule: Schedule, changes: readonly InputChange[], lasts: number): Timeline {
+export function timelineOf(schedule: Schedule, changes: readonly ScenarioChange[], lasts: number): Timeline {
   const rate = schedule.ticksPerSecond;
   const end = lasts * rate;
   const byTick = new Map<number, Action>();
   const at = (tick: number): Action => {
-    const action = byTick.get(tick) ?? { inputs: [], deliver: [], compute: [] };
+    const action = byTick.get(tick) ?? { changes: [], deliver: [], compute: [] };
     byTick.set(tick, action);
     return action;
   };
   at(0);
   for (const { tick, deliver, compute } of instantsBetween(schedule, 0, end))
     Object.assign(at(tick), { deliver, compute });
-  for (const { input, time, value } of changes) {
+  for (const { time, ...change } of changes) {
     if (time >= lasts) continue;
     const tick = time * rate;
     const whole = Math.round(tick);
-    at(Math.abs(tick - whole) < sameInstant ? whole : tick).inputs.push({ input, value });
+    at(Math.abs(tick - whole) < sameInstant ? whole : tick).changes.push(change);
   }
   const ticks = [...byTick.keys()].sort((a, b) => a - b);
   const actions = new Indexed<Action>((action) => JSON.stringify(action));

@@ -54,10 +54,8 @@ export class DelayedCopies {
     const { parts } = this;
     const later = (node: Node): Node => this.of(node, delay, place);
     switch (kind) {
-      case 'state': {
-        const original = parts.states[index];
-        return parts.addState(`${original.name} delayed`, original.start, () => later(original.derivative));
-      }
+      case 'state':
+        return parts.addDelayedState(index, delay, () => later(parts.states[index].derivative));
       case 'mode': {
         const original = parts.modes[index];
         return parts.addMode(`${original.name} delayed`, original.start, original.jumps, () =>

@@ -1,4 +1,4 @@
-import type { Spec } from '../spec/spec.js';
+import type { Scenario, Spec } from '../spec/spec.js';
 import { ControllerRoom } from './controller_room.js';
 import { Cut } from './cut.js';
 import type { Loop } from './loop.js';
@@ -10,12 +10,17 @@ import { tracedSignals } from './traced_signals.js';
 /**
  * Expands a spec with its coefficients into the loop's equations. With `openAt` every consumer of that sensor, controller or
  * actuator signal sees an injected value instead.
+ * The equations of a `scenario` have what its inputs do; without one all inputs are constant.
  * @throws {LoopError} where the build's numbers do not fit the spec, or the loop cannot be opened there.
  */
-export function expandLoop(spec: Spec, coefficients: CoefficientValues, openAt?: string): Loop {
+export function expandLoop(
+  spec: Spec,
+  coefficients: CoefficientValues,
+  { openAt, scenario }: { openAt?: string; scenario?: Scenario } = {},
+): Loop {
   const parts = new Parts(spec.inputs, coefficients);
   const controllers = orderTasks(spec);
-  const plant = new PlantRoom(spec, parts);
+  const plant = new PlantRoom(spec, parts, scenario);
   const cut = new Cut(parts.graph, controllers, openAt);
   const room = new ControllerRoom(spec, controllers, parts, plant, cut);
   for (const actuator of spec.actuators) room.addActuator(actuator);
@@ -32,7 +37,7 @@ export function expandLoop(spec: Spec, coefficients: CoefficientValues, openAt?:
     states: parts.states,
     modes: parts.modes,
     corrections: parts.corrections,
-    delayedSources: parts.delayedSources,
+    program: plant.inputs.finished(parts.delayedSources),
     memories: parts.memories,
     readings: parts.readings,
     held: parts.held,

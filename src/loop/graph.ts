@@ -173,8 +173,9 @@ export class Graph {
     return this.share(key, (id) => ({ kind: 'number', id, value, stored }));
   }
 
-  leaf(leaf: LeafKind, index: number): Node {
-    return this.share(`${leaf}${index}`, (id) => ({ kind: 'leaf', id, leaf, index }));
+  leaf(leaf: LeafKind, index: number): Extract<Node, { kind: 'leaf' }> {
+    const node = this.share(`${leaf}${index}`, (id) => ({ kind: 'leaf', id, leaf, index }));
+    return node as Extract<Node, { kind: 'leaf' }>;
   }
 
   /** One operation on its arguments, in order. */

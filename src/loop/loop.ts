@@ -1,4 +1,5 @@
 import type { Place } from '../spec/spec.js';
+import type { Evaluation } from './evaluate.js';
 import type { Graph, Node } from './graph.js';
 
 /** A continuous state: SI value, rate of change, and where it starts when rest leaves it free. */
@@ -32,6 +33,17 @@ export interface DelayedSource {
   index: number;
   source: number;
   delay: Node;
+}
+
+/** What a scenario does to an input or to a state of its own: from each time (s) on a new value, or so much more. */
+export interface ProgrammedChange {
+  kind: 'input' | 'state';
+  index: number;
+  how: 'add' | 'set';
+  /** Whether it is the same for every plant. */
+  common: boolean;
+  /** For a plant, from its parameters. */
+  changes: (plant: Evaluation) => { time: number; value: number }[];
 }
 
 /** A number that a controller keeps from one sampling instant to the next. */
@@ -111,7 +123,8 @@ export interface Loop {
   states: ContinuousState[];
   modes: Mode[];
   corrections: Correction[];
-  delayedSources: DelayedSource[];
+  /** What the scenario does; empty where the loop was expanded without one. */
+  program: ProgrammedChange[];
   memories: Memory[];
   readings: Reading[];
   held: Held[];

@@ -55,7 +55,7 @@ export class Parts {
     this.inputs = inputs.map(({ name, rest }) => ({ name, rest }));
   }
 
-  addState(name: string, start: number, derivative: () => Node): Node {
+  addState(name: string, start: number, derivative: () => Node): Extract<Node, { kind: 'leaf' }> {
     const state = { name, start, derivative: this.graph.number(0) };
     this.deferred.push(() => {
       state.derivative = derivative();
@@ -87,12 +87,25 @@ export class Parts {
     });
   }
 
+  /** A quantity from outside beside those of the spec. */
+  addInput(name: string, rest: number): Extract<Node, { kind: 'leaf' }> {
+    return this.graph.leaf('input', this.inputs.push({ name, rest }) - 1);
+  }
+
   /** An input as it was some time ago. */
   addDelayedInput(source: number, delay: Node): Node {
     const { name, rest } = this.inputs[source];
-    const index = this.inputs.push({ name: `${name} delayed`, rest }) - 1;
-    this.delayedSources.push({ kind: 'input', index, source, delay });
-    return this.graph.leaf('input', index);
+    const copy = this.addInput(`${name} delayed`, rest);
+    this.delayedSources.push({ kind: 'input', index: copy.index, source, delay });
+    return copy;
+  }
+
+  /** A state as it was some time ago; it is set, where a scenario sets it, as much later. */
+  addDelayedState(source: number, delay: Node, derivative: () => Node): Node {
+    const { name, start } = this.states[source];
+    const copy = this.addState(`${name} delayed`, start, derivative);
+    this.delayedSources.push({ kind: 'state', index: copy.index, source, delay });
+    return copy;
   }
 
   /** A held value that takes effect some time later than another. */

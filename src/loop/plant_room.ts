@@ -1,8 +1,9 @@
-import type { Expression, SensorDefinition, SignalDefinition, Spec } from '../spec/spec.js';
+import type { Expression, Scenario, SensorDefinition, SignalDefinition, Spec } from '../spec/spec.js';
 import type { Workshop } from './blocks/block.js';
 import { DelayedCopies } from './delayed.js';
 import { expandBlock } from './expand_block.js';
 import type { Node } from './graph.js';
+import { InputProgram } from './input_program.js';
 import { lower, type Surroundings } from './lower.js';
 import type { Parts } from './parts.js';
 
@@ -14,10 +15,13 @@ export class PlantRoom {
   private readonly measuredBySensor = new Map<string, Node>();
   private readonly actuators = new Map<string, Node>();
   private readonly delayedCopies: DelayedCopies;
+  /** What the inputs do. */
+  readonly inputs: InputProgram;
 
   constructor(
     private readonly spec: Spec,
     private readonly parts: Parts,
+    scenario: Scenario | undefined,
   ) {
     this.delayedCopies = new DelayedCopies(parts);
     this.surroundings = {
@@ -27,6 +31,7 @@ export class PlantRoom {
         throw new Error('before() in a plant expression passed the spec reader');
       },
     };
+    this.inputs = new InputProgram(spec, scenario, parts, (expression) => this.lower(expression));
   }
 
   /** Tells what the plant sees of an actuator. */
@@ -40,11 +45,9 @@ export class PlantRoom {
 
   /** An input or a parameter, SI. */
   outer(role: 'input' | 'parameter', name: string): Node {
-    const list = role === 'input' ? this.spec.inputs : this.spec.parameters;
-    return this.parts.graph.leaf(
-      role,
-      list.findIndex((one) => one.name === name),
-    );
+    const named = (one: { name: string }): boolean => one.name === name;
+    if (role === 'input') return this.inputs.value(this.spec.inputs.findIndex(named));
+    return this.parts.graph.leaf('parameter', this.spec.parameters.findIndex(named));
   }
 
   signal(name: string): Node {

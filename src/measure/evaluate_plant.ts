@@ -3,14 +3,12 @@ import type { Run } from '../kernel/trace.js';
 import { Linearisation } from '../linear/linearise.js';
 import { NumericFailure } from '../linear/numeric_failure.js';
 import { pointOfRest, type RestResult } from '../linear/point_of_rest.js';
-import { TargetArithmetic } from '../loop/arithmetic.js';
 import { Evaluation } from '../loop/evaluate.js';
 import { expandLoop } from '../loop/expand.js';
 import type { Loop } from '../loop/loop.js';
-import { lower } from '../loop/lower.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import { type Schedule, scheduleOf } from '../loop/schedule.js';
-import type { Expression, Requirement, Spec } from '../spec/spec.js';
+import type { Requirement, Spec } from '../spec/spec.js';
 import { signalsOfStatement } from '../spec/statement.js';
 import type { Curve } from './curve.js';
 import { measureNamed } from './index.js';
@@ -28,6 +26,8 @@ import { ScenarioRun, timingIsCommon } from './scenario_run.js';
 
 interface TraceGroup {
   run: ScenarioRun;
+  /** Where the scenario has states of its own: for the point of rest with them. */
+  ownStates: Linearisation | undefined;
   events: ScenarioEvents;
   requirements: { requirement: Requirement; index: number; measure: TraceMeasure }[];
 }
@@ -88,7 +88,9 @@ export class PlantEvaluator {
       const loop = expandLoop(this.spec, coefficients, { scenario });
       const events = new ScenarioEvents(loop, scenario);
       const seed = this.spec.perturbation.seed + scenarioIndex;
-      return [{ run: new ScenarioRun(loop, scenario, events, traced, seed, store), events, requirements }];
+      const run = new ScenarioRun(loop, scenario, events, traced, seed, store);
+      const ownStates = loop.states.length > this.loop.states.length ? new Linearisation(loop) : undefined;
+      return [{ run, ownStates, events, requirements }];
     });
   }
 
@@ -111,12 +113,15 @@ export class PlantEvaluator {
   private traceResults(
     group: TraceGroup,
     parameters: Float64Array,
-    rest: RestResult,
+    common: RestResult,
     schedule: Schedule,
     halvings: number,
     results: MeasureResult[],
   ): void {
     const fromRest = group.run.scenario.start === 'rest';
+    const rest = group.ownStates
+      ? pointOfRest(group.ownStates, parameters, group.ownStates.loop.inputRest)
+      : common;
     if (fromRest && rest.kind === 'none') {
       for (const { index } of group.requirements) results[index] = unformed(rest.why);
       return;

@@ -20,7 +20,7 @@ export class LoopPoint {
 
   constructor(spec: Spec, coefficients: CoefficientValues, { signals, around }: Requirement) {
     const at = sensorFedBy(spec, signals.at) ?? signals.at;
-    this.linearisation = new Linearisation(expandLoop(spec, coefficients, at));
+    this.linearisation = new Linearisation(expandLoop(spec, coefficients, { openAt: at }));
     this.overrides = around.map(({ name, value, place }) => ({ ...this.leafNamed(name, place), value }));
   }
 

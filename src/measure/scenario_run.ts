@@ -1,17 +1,17 @@
 import { type CompiledLoop, compileLoop } from '../kernel/compile.js';
 import { MovementChoice } from '../kernel/movement.js';
-import { standardNormal } from '../kernel/noise.js';
 import { runPlant, type TraceStore } from '../kernel/run_plant.js';
-import { type InputChange, type Timeline, timelineOf } from '../kernel/timeline.js';
+import { type ScenarioChange, type Timeline, timelineOf } from '../kernel/timeline.js';
 import type { Run } from '../kernel/trace.js';
 import type { PointOfRest } from '../linear/point_of_rest.js';
 import { Evaluation } from '../loop/evaluate.js';
 import { dependsOn, type Node } from '../loop/graph.js';
 import type { Loop } from '../loop/loop.js';
-import { rateOf } from '../loop/rate.js';
 import type { Schedule } from '../loop/schedule.js';
+import { standardNormal } from '../loop/standard_normal.js';
 import type { Scenario } from '../spec/spec.js';
-import { type Curve, curveOf } from './curve.js';
+import type { Curve } from './curve.js';
+import { RecordedSignals } from './recorded_signals.js';
 import type { ScenarioEvents } from './scenario_events.js';
 
 /** Runs one scenario for plant after plant; what plants have in common is made once. */
@@ -20,21 +20,19 @@ export class ScenarioRun {
   private readonly choice: MovementChoice;
   private readonly noises: Float64Array[] = [];
   private shared: { schedule: Schedule; timeline: Timeline } | undefined;
-  /** The signals to follow, then the rates of those that move between instants. */
-  private readonly recorded: readonly string[];
+  private readonly recorded: RecordedSignals;
 
   /** @param traced names of the signals to follow. */
   constructor(
     private readonly loop: Loop,
     readonly scenario: Scenario,
     private readonly events: ScenarioEvents,
-    private readonly traced: readonly string[],
+    traced: readonly string[],
     private readonly seed: number,
     private readonly store: TraceStore,
   ) {
-    const withRates = loopWithRates(loop, traced);
-    this.recorded = [...traced, ...withRates.rates];
-    this.compiled = compileLoop(withRates.loop, this.recorded);
+    this.recorded = new RecordedSignals(loop, traced);
+    this.compiled = compileLoop(this.recorded.loop, this.recorded.names);
     this.choice = new MovementChoice(this.compiled);
   }
 
@@ -49,20 +47,19 @@ export class ScenarioRun {
       timeline,
       movement: this.choice.of(start, Math.max(...timeline.durations), halvings),
       noise: this.noise(schedule),
-      signals: this.recorded.length,
+      signals: this.recorded.names.length,
       store: this.store,
     });
   }
 
   /** The curve of a followed signal in a run of this scenario. */
   curve(run: Run, name: string): Curve {
-    const rate = this.recorded.indexOf(rateNamed(name));
-    return curveOf(run, this.recorded.indexOf(name), rate < 0 ? undefined : rate);
+    return this.recorded.curve(run, name);
   }
 
   private timeline(parameters: Float64Array, schedule: Schedule): Timeline {
     if (this.shared?.schedule === schedule) return this.shared.timeline;
-    const changes: InputChange[] = this.events.changes(parameters);
+    const changes: ScenarioChange[] = this.events.changes(parameters);
     const timeline = timelineOf(schedule, changes, this.scenario.lasts);
     if (this.events.sameForAllPlants) this.shared = { schedule, timeline };
     return timeline;
@@ -111,32 +108,13 @@ export class ScenarioRun {
       },
       'off',
     );
-    this.traced
-      .map((name) => this.loop.signals.get(name)!)
+    this.recorded.names
+      .map((name) => this.recorded.loop.signals.get(name)!)
       .filter(({ kind }) => kind === 'sampled')
       .forEach(({ value }, i) => {
         m[layout.latest + i] = evaluation.of(value);
       });
   }
-}
-
-/** No signal of a spec has a name with blanks. */
-function rateNamed(signal: string): string {
-  return `the rate of ${signal}`;
-}
-
-/** The loop with the rates of moving signals as signals of their own: their records hold how the rate changes. */
-function loopWithRates(loop: Loop, traced: readonly string[]): { loop: Loop; rates: string[] } {
-  const signals = new Map(loop.signals);
-  const rates = traced.flatMap((name) => {
-    const signal = loop.signals.get(name)!;
-    if (signal.kind === 'sampled') return [];
-    const value = rateOf(loop.graph, loop.states, signal.value);
-    if (value.kind === 'number') return [];
-    signals.set(rateNamed(name), { kind: 'continuous', value, range: undefined });
-    return [rateNamed(name)];
-  });
-  return { loop: { ...loop, signals }, rates };
 }
 
 /** Whether a schedule is the same for every plant. */

@@ -42,16 +42,29 @@ function stepWindow(requirement: Requirement, scenario: Scenario, reading: Readi
     );
     return undefined;
   }
+  const other = events.find(({ shape }) => !changesOnce(shape, reading));
+  if (other !== undefined) {
+    reading.problems.add(
+      requirement.place,
+      `\`${measure}\` needs a step of \`${to}\`, but scenario \`${name}\` gives it a ${other.shape}`,
+    );
+    return undefined;
+  }
   return windowOf(events, scenario.lasts, reading);
+}
+
+/** A pulse too is a step, up to its end. */
+function changesOnce(shape: string, reading: Reading): boolean {
+  const description = reading.vocabulary.shapes.find(({ key }) => key === shape);
+  return description === undefined || description.isStep;
 }
 
 function windowOf(events: InputEvent[], lasts: number, reading: Reading): Window | undefined {
   const times = events.flatMap((event) => {
     const at = nominalValue(event.at, reading.names);
-    const length = event.kind === 'pulse' ? nominalValue(event.lasts, reading.names) : undefined;
-    return event.kind === 'pulse'
-      ? [at, at === undefined || length === undefined ? undefined : at + length]
-      : [at];
+    if (event.lasts === undefined) return [at];
+    const length = nominalValue(event.lasts, reading.names);
+    return [at, at === undefined || length === undefined ? undefined : at + length];
   });
   if (Number.isNaN(lasts) || times.some((time) => time === undefined)) return undefined;
   const [from, until = lasts] = (times as number[]).sort((a, b) => a - b);

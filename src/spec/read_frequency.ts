@@ -48,6 +48,15 @@ export function readPeriod(tree: Tree | undefined, what: string, around: Surroun
   return readTurned(tree, `${what} must be a time, or a rate in Hz`, turns, around, reading);
 }
 
+/** Reads a frequency in Hz: a frequency, or the time of its period (1/T). */
+export function readFrequency(tree: Tree | undefined, what: string, around: Surroundings, reading: Reading) {
+  const turns: [Dimension, Turn][] = [
+    [frequencyDimension, asIs],
+    [timeDimension, inverse],
+  ];
+  return readTurned(tree, `${what} must be a frequency in Hz, or its period`, turns, around, reading);
+}
+
 /** A coefficient without a unit takes the first of the accepted ones. */
 function readTurned(
   tree: Tree | undefined,

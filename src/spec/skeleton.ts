@@ -1,6 +1,13 @@
 import { z } from 'zod';
 import { overflows, roundings } from './fixed_formats.js';
-import type { BlockDescription, MeasureKey, Room, SettingDescription, Vocabulary } from './vocabulary.js';
+import type {
+  BlockDescription,
+  MeasureKey,
+  Room,
+  SettingDescription,
+  ShapeDescription,
+  Vocabulary,
+} from './vocabulary.js';
 
 /** What is said of a slot in the JSON Schema and in the error when it is missing or of the wrong shape. */
 const text = (expected: string) => z.string().describe(expected);
@@ -57,7 +64,7 @@ function newSkeleton(vocabulary: Vocabulary) {
       sensors: named(sensor, 'sensors'),
       controllers: named(controller(vocabulary), 'controllers'),
       actuators: named(actuator, 'actuators'),
-      scenarios: named(scenario, 'scenarios'),
+      scenarios: named(scenario(vocabulary), 'scenarios'),
       requirements: z.array(requirement(vocabulary)).min(1).describe('a list of at least one requirement'),
       perturbation: perturbation.optional(),
       merge: merge.optional(),
@@ -210,28 +217,41 @@ const actuator = z
   .strictObject({ of: text('a controller signal'), unit, resolution: expression, range })
   .describe('{ of: … }');
 
-const event = z
-  .strictObject({
-    step: text('an amount').optional(),
-    pulse: text('an amount').optional(),
-    at: text('a time such as 0.2 s'),
-    for: text('a time such as 0.6 s').optional(),
-  })
-  .describe('an event such as { step: 1 V, at: 0.2 s }');
+function shapeValue({ key, settings, meaning }: ShapeDescription) {
+  const [first] = settings;
+  if (settings.length === 1 && first.name === key) return text(first.meaning).describe(meaning);
+  const slots = settings.map(({ name, optional, meaning: what }) => [
+    name,
+    optional ? text(what).optional() : text(what),
+  ]);
+  return z.strictObject(Object.fromEntries(slots)).describe(meaning);
+}
 
-const scenario = z
-  .strictObject({
-    lasts: text('a time such as 4 s'),
-    inputs: z
-      .record(
-        z.string(),
-        z.union([event, z.array(event)]).describe('an event such as { step: 1 V, at: 0.2 s }, or a list'),
-      )
-      .describe(mappingOf('events'))
-      .optional(),
-    start: text('rest or zero').optional(),
-  })
-  .describe('{ lasts: …, inputs: … }');
+function scenario(vocabulary: Vocabulary) {
+  const shapes = Object.fromEntries(
+    vocabulary.shapes.map((shape) => [shape.key, shapeValue(shape).optional()]),
+  );
+  const event = z
+    .strictObject({
+      ...shapes,
+      at: text('a time such as 0.2 s'),
+      for: text('a time such as 0.6 s').optional(),
+    })
+    .describe('an event such as { step: 1 V, at: 0.2 s }');
+  return z
+    .strictObject({
+      lasts: text('a time such as 4 s'),
+      inputs: z
+        .record(
+          z.string(),
+          z.union([event, z.array(event)]).describe('an event such as { step: 1 V, at: 0.2 s }, or a list'),
+        )
+        .describe(mappingOf('events'))
+        .optional(),
+      start: text('rest or zero').optional(),
+    })
+    .describe('{ lasts: …, inputs: … }');
+}
 
 const statementSlot = () => z.union([text('a comparison such as angle < 2 mrad'), statement]);
 

@@ -143,10 +143,17 @@ export interface ActuatorDefinition {
   range: Range | undefined;
 }
 
-/** Something that an input does in a scenario. Amounts in SI, added to the input's rest value; times in s. */
-export type InputEvent =
-  | { kind: 'step'; amount: Expression; at: Expression; place: Place }
-  | { kind: 'pulse'; amount: Expression; at: Expression; lasts: Expression; place: Place };
+/** Something that an input does in a scenario: a shape, added to the input's rest value. Amounts in SI, times in s. */
+export interface InputEvent {
+  /** The defining key: the name of the shape. */
+  shape: string;
+  /** By setting name; the value of the defining key itself, where it is no mapping, is under the shape's own name. */
+  settings: Record<string, Expression>;
+  at: Expression;
+  /** Undefined where the shape needs none and the spec gives none. */
+  lasts: Expression | undefined;
+  place: Place;
+}
 
 /** Inputs over time, from t = 0 to `lasts` (s). */
 export interface Scenario {

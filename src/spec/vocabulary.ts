@@ -101,8 +101,30 @@ export interface MeasureDescription {
   meaning: string;
 }
 
-/** Blocks, measures and functions that a spec may use; handed to the reader by who knows them. */
+/** One setting of a shape; `dimension` follows from that of the input. */
+export interface ShapeSetting {
+  name: string;
+  optional: boolean;
+  /** `frequency`: in Hz, or a time that is its period. */
+  kind: 'expression' | 'frequency';
+  dimension: (input: Dimension) => Dimension;
+  meaning: string;
+}
+
+/** What the spec reader must know of something that an input can do. A single setting with the shape's own name means `key: value`. */
+export interface ShapeDescription {
+  key: string;
+  settings: readonly ShapeSetting[];
+  /** Whether `for:` stands beside it. */
+  length: 'none' | 'optional' | 'needed';
+  /** Whether it starts with one change to a value that stays for a while, which step measures need. */
+  isStep: boolean;
+  meaning: string;
+}
+
+/** Blocks, measures and input shapes that a spec may use; handed to the reader by who knows them. */
 export interface Vocabulary {
   blocks: readonly BlockDescription[];
+  shapes: readonly ShapeDescription[];
   measures: readonly MeasureDescription[];
 }

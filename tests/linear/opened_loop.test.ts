@@ -107,7 +107,7 @@ actuators: { drive: { of: push, unit: rad/s^2 } }
 ${step}
 requirements: [{ name: gain, measure: gain_margin, at: drive, at_least: 1.1 }]
 `);
-        const loop = expandLoop(spec, new Map(), 'drive');
+        const loop = expandLoop(spec, new Map(), { openAt: 'drive' });
         const linearisation = new Linearisation(loop);
         const opened = openedLoop(linearisation, scheduleOf(loop, []), { input: [0] });
         const numerator = expected[`numerator_${names[i]}`].value as number[];
@@ -161,7 +161,7 @@ actuators: { duty: { of: share } }
 scenarios: { jump: { lasts: 20 s, inputs: { target: { step: 1 rad, at: 0 s } } } }
 requirements:
   - { name: margin, measure: gain_margin, at: wanted, at_least: 1.1 }
-  - { name: left, measure: settling_time, of: angle, to: target, in: jump, band: 0.1 %, at_most: 10 s }
+  - { name: left, measure: settling_time, of: angle, to: target, in: jump, band: 5 %, at_most: 10 s }
 `),
       new Map(),
     );
@@ -172,9 +172,9 @@ requirements:
     const [margin] = cascade(8).evaluate(nominal, 0);
     const limit = 8 * (margin as { value: number }).value;
     expect(limit).toBeGreaterThan(8);
-    expect(cascade(0.98 * limit).evaluate(nominal, 0)[1].kind).toBe('value');
-    expect(cascade(1.02 * limit).evaluate(nominal, 0)[1].kind).not.toBe('value');
-    expect(cascade(1.02 * limit).evaluate(nominal, 0)[0]).toMatchObject({
+    expect(cascade(0.9 * limit).evaluate(nominal, 0)[1].kind).toBe('value');
+    expect(cascade(1.1 * limit).evaluate(nominal, 0)[1].kind).not.toBe('value');
+    expect(cascade(1.1 * limit).evaluate(nominal, 0)[0]).toMatchObject({
       value: 1,
       note: 'the closed loop is unstable',
     });

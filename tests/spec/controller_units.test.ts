@@ -91,6 +91,8 @@ test('a factor written with a unit takes the conversion upon itself, a bare numb
   expect(value('k*goal*(3 mV/V)', 'V', 'float32', 'k: k')).toBe('((k * goal) * 0.003)');
   expect(value('k*goal*(3 mV/V)', 'mV', 'float32')).toBe('((k * goal) * 3)');
   expect(value('k*goal/(3 V/mV)', 'V', 'float32')).toBe('((k * goal) / 3000)');
+  expect(value('k*goal/(3 mA)', 'ohm', 'float32')).toBe('((k * goal) / 0.003)');
+  expect(value('k*goal/(3 mA)', 'kohm', 'float32')).toBe('((k * goal) / 3)');
   expect(value('2*k*goal', 'mV')).toBe('(((2 * k) * goal) * 1000)');
   expect(refusal('2*k*goal', 'mV')).toEqual([expect.stringContaining('this would be multiplied by 1000')]);
 });

@@ -150,12 +150,16 @@ const cases: [title: string, pieces: Pieces, errors: string[]][] = [
   [
     'a step and a pulse in one',
     { inputsOfStep: 'goal: { step: 1 V, pulse: 2 V, at: 0.1 s }' },
-    ['28:13: this event has both step and pulse; expected one of them'],
+    [
+      '28:13: this event has `step` and `pulse`; expected one of step, pulse, ramp, sine, chirp, square, staircase, noise',
+    ],
   ],
   [
     'neither a step nor a pulse',
     { inputsOfStep: 'goal: { at: 0.1 s}' },
-    ['28:13: this event has neither step nor pulse; expected one of them'],
+    [
+      '28:13: this event has no shape; expected one of step, pulse, ramp, sine, chirp, square, staircase, noise',
+    ],
   ],
   [
     'a pulse without its length',
@@ -175,12 +179,17 @@ const cases: [title: string, pieces: Pieces, errors: string[]][] = [
   [
     'a step with a length',
     { inputsOfStep: 'goal: { step: 2 V, at: 0.1 s, for: 1 s }' },
-    ['28:37: a step stays and has no `for:`; a change that ends is a pulse'],
+    ['28:37: a step has no `for:`; a change that ends is a pulse'],
   ],
   [
     'an event after the end',
     { inputsOfStep: 'goal: { step: 2 V, at: 5 s }' },
     ['28:30: this event at 5 s lies outside the scenario, which runs from 0 s to 1 s'],
+  ],
+  [
+    'an event at the very end',
+    { inputsOfStep: 'goal: { step: 2 V, at: 1 s }' },
+    ['28:30: this event at 1 s lies outside the scenario, which runs from 0 s to 1 s'],
   ],
   [
     'an event before the start',
@@ -378,6 +387,16 @@ const cases: [title: string, pieces: Pieces, errors: string[]][] = [
     'limits the wrong way round',
     { requirements: '- { name: R, measure: overshoot, of: out, to: goal, in: step, between: [10 %, 5 %] }' },
     ['30:75: the lower limit comes first and must be below the upper one'],
+  ],
+  [
+    'two equal limits',
+    { requirements: '- { name: R, measure: overshoot, of: out, to: goal, in: step, between: [5 %, 0.05] }' },
+    ['30:75: the lower limit comes first and must be below the upper one'],
+  ],
+  [
+    'a zero in another unit',
+    { requirements: '- { name: R, measure: peak_deviation, of: out, in: step, at_most: 0 A }' },
+    ['30:69: the limit of `peak_deviation` must be in V, but this is A'],
   ],
   [
     'between of one limit',

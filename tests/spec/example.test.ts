@@ -107,9 +107,9 @@ test('scenarios: events of inputs in SI', () => {
       name: 'slew',
       lasts: 4,
       start: 'rest',
-      inputs: { target: [{ kind: 'step', amount: { value: 0.05 } }] },
+      inputs: { target: [{ shape: 'step', settings: { step: { value: 0.05 } } }] },
     },
-    { name: 'squall', inputs: { gust: [{ kind: 'pulse', at: { value: 0.5 }, lasts: { value: 0.6 } }] } },
+    { name: 'squall', inputs: { gust: [{ shape: 'pulse', at: { value: 0.5 }, lasts: { value: 0.6 } }] } },
   ]);
 });
 

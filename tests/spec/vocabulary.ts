@@ -1,3 +1,4 @@
+import { shapes } from '../../src/loop/inputs/index.js';
 import {
   plainNumber,
   productOf,
@@ -128,6 +129,7 @@ function measure(
 /** Blocks and measures enough for the example and for every rule of the reader. */
 export const vocabulary: Vocabulary = {
   blocks,
+  shapes: shapes.map(({ description }) => description),
   measures: [
     measure('overshoot', 'trace', [of, to], { window: 'single_step' }),
     measure('settling_time', 'trace', [of, to, band], {

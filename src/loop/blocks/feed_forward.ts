@@ -1,6 +1,6 @@
 import type { Node } from '../graph.js';
 import type { Block, Workshop } from './block.js';
-import { halfTangent, type LagRule, sampledLag } from './first_order.js';
+import { halfTangent, type LagRule, lagSettings, sampledLag } from './first_order.js';
 
 /**
  * A signal ahead of its time by a lead: the inverse of a lag. Without a filter it is the exact inverse of a `low_pass` with
@@ -42,7 +42,7 @@ export const feedForward: Block = {
     const last = addMemory(`${use.name} last input`, () => drive);
     const output = arithmetic.add(drive, arithmetic.multiply(ahead, arithmetic.subtract(drive, last)));
     const lag = use.design('lag');
-    return lag ? sampledLag(use.name, output, lag, rule, workshop) : output;
+    return lag ? sampledLag(use.name, output, lagSettings(use, 'lag'), workshop) : output;
   },
 };
 

@@ -1,6 +1,7 @@
 import type { SettingDescription } from '../../spec/vocabulary.js';
 import type { Graph, Node } from '../graph.js';
-import type { Workshop } from './block.js';
+import { LoopError } from '../loop.js';
+import type { BlockUse, Workshop } from './block.js';
 
 /** How a first-order lag becomes a difference equation. */
 export type LagRule = 'backward' | 'forward' | 'trapezoid' | 'exact';
@@ -15,6 +16,40 @@ export const lagRuleSetting: SettingDescription = {
     'summation rule of the lag; exact is that of an input which is held between instants; backward by default',
 };
 
+/** The setting that bends the trapezoid rule. */
+export const exactAtSetting: SettingDescription = {
+  name: 'exact_at',
+  kind: 'corner',
+  optional: true,
+  meaning:
+    'frequency ω at which the trapezoid rule has the response of the continuous lag: 2·tan(ω·T/2)/ω stands for T in c',
+};
+
+/** A lag as a spec gives it, in double precision. */
+export interface LagSettings {
+  /** In s. */
+  timeConstant: Node;
+  rule: LagRule;
+  /** In rad/s. */
+  exactAt: Node | undefined;
+}
+
+/**
+ * A lag by one of a block's settings and its rule.
+ * @throws {LoopError} where `exact_at` stands beside another rule than the trapezoid.
+ */
+export function lagSettings(use: BlockUse, name: string): LagSettings {
+  const rule = (use.word('sum_by') ?? 'backward') as LagRule;
+  const exactAt = use.design('exact_at');
+  if (exactAt && rule !== 'trapezoid') {
+    throw new LoopError(
+      `'${use.name}' has exact_at with sum_by: ${rule}; it bends the trapezoid rule alone`,
+      use.place,
+    );
+  }
+  return { timeConstant: use.design(name)!, rule, exactAt };
+}
+
 /**
  * A lag of gain one as a difference equation; c is formed in double precision and rounded once (Franklin, Powell and
  * Workman, 'Digital Control of Dynamic Systems', 1998, from memory). τ is the time constant, T the period:
@@ -23,20 +58,12 @@ export const lagRuleSetting: SettingDescription = {
  *     y = y₁ + c·(x₁ − y₁)               c = T/τ                forward
  *     y = y₁ + c·((x + x₁)·0.5 − y₁)     c = T/(τ + T/2)        trapezoid
  *     y = y₁ + c·(x₁ − y₁)               c = 1 − e^(−T/τ)       exact
- *
- * @param timeConstant in s, in double precision.
  */
-export function sampledLag(
-  name: string,
-  input: Node,
-  timeConstant: Node,
-  rule: LagRule,
-  workshop: Workshop,
-): Node {
+export function sampledLag(name: string, input: Node, lag: LagSettings, workshop: Workshop): Node {
   const { arithmetic, addMemory } = workshop;
-  const share = arithmetic.take(shareOf(timeConstant, rule, workshop));
+  const share = arithmetic.take(shareOf(lag, workshop));
   const last = (): Node => addMemory(`${name} last input`, () => input);
-  switch (rule) {
+  switch (lag.rule) {
     case 'backward':
       return approach(name, input, share, workshop);
     case 'forward':
@@ -56,7 +83,7 @@ export function approach(name: string, input: Node, share: Node, { arithmetic, a
   return output;
 }
 
-function shareOf(timeConstant: Node, rule: LagRule, { arithmetic, exactPeriod }: Workshop): Node {
+function shareOf({ timeConstant, rule, exactAt }: LagSettings, { arithmetic, exactPeriod }: Workshop): Node {
   const { graph } = arithmetic;
   const period = exactPeriod();
   switch (rule) {
@@ -65,8 +92,9 @@ function shareOf(timeConstant: Node, rule: LagRule, { arithmetic, exactPeriod }:
     case 'forward':
       return graph.apply('divide', period, timeConstant);
     case 'trapezoid': {
-      const half = graph.apply('multiply', period, graph.number(0.5));
-      return graph.apply('divide', period, graph.apply('add', timeConstant, half));
+      const bent = exactAt ? bentPeriod(exactAt, period, graph) : period;
+      const half = graph.apply('multiply', bent, graph.number(0.5));
+      return graph.apply('divide', bent, graph.apply('add', timeConstant, half));
     }
     case 'exact': {
       const t = halfTangent(timeConstant, period, graph);
@@ -80,4 +108,9 @@ function shareOf(timeConstant: Node, rule: LagRule, { arithmetic, exactPeriod }:
 export function halfTangent(timeConstant: Node, period: Node, graph: Graph): Node {
   const turns = graph.apply('divide', period, timeConstant);
   return graph.apply('tanh', graph.apply('multiply', turns, graph.number(0.5)));
+}
+
+function bentPeriod(exactAt: Node, period: Node, graph: Graph): Node {
+  const half = graph.apply('divide', graph.apply('multiply', exactAt, period), graph.number(2));
+  return graph.apply('divide', graph.apply('multiply', graph.number(2), graph.apply('tan', half)), exactAt);
 }

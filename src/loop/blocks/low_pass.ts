@@ -1,7 +1,7 @@
 import { plainNumber } from '../../spec/dimension.js';
 import { LoopError } from '../loop.js';
 import type { Block } from './block.js';
-import { approach, type LagRule, lagRuleSetting, sampledLag } from './first_order.js';
+import { approach, exactAtSetting, lagRuleSetting, lagSettings, sampledLag } from './first_order.js';
 
 /** A first-order filter of gain one. */
 export const lowPass: Block = {
@@ -27,6 +27,7 @@ export const lowPass: Block = {
         meaning: 'c itself, as the firmware has it, in place of a time constant; y = y₁ + c·(x − y₁)',
       },
       lagRuleSetting,
+      exactAtSetting,
     ],
     meaning:
       'y = y₁ + c·(x − y₁), c = T/(τ + T) backward; x₁ for x, c = T/τ forward and 1 − e^(−T/τ) exact; (x + x₁)·0.5 for x, c = T/(τ + T/2) trapezoid',
@@ -39,7 +40,6 @@ export const lowPass: Block = {
       throw new LoopError(`low_pass of '${use.name}' has ${given}; expected one of them`, use.place);
     }
     if (weight) return approach(use.name, use.input(), weight, workshop);
-    const rule = (use.word('sum_by') ?? 'backward') as LagRule;
-    return sampledLag(use.name, use.input(), timeConstant!, rule, workshop);
+    return sampledLag(use.name, use.input(), lagSettings(use, 'time_constant'), workshop);
   },
 };

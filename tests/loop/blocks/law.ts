@@ -52,17 +52,18 @@ function expanded(law: Law, openAt?: string) {
   return expandLoop(specOf(specText(law)), new Map(Object.entries(law.coefficients ?? {})), { openAt });
 }
 
-/** Runs a law sample by sample from power-up. A row is the value of `x` and of the further inputs, in declared units and SI. */
-export function run(law: Law, rows: readonly (number | readonly number[])[], signals = ['out']): number[][] {
+/** One sample: the value of `x` and of the further inputs; the first in its declared unit, the others in SI. */
+export type Row = number | readonly number[];
+
+/** A law from power-up: each call is one sampling instant and gives the named signals, in SI. */
+export function stepper(law: Law, signals = ['out']): (row: Row) => number[] {
   const loop = expanded(law);
   const { layout, compute } = compileLoop(loop, signals);
   const m = new Float64Array(layout.length);
   loop.memories.forEach(({ start }, at) => {
     m[layout.memory + at] = start;
   });
-  const scale = signals.map((name) => loop.signals.get(name)!);
-  if (scale.some((signal) => signal.kind !== 'sampled')) throw new Error('a law has sampled signals only');
-  return rows.map((row) => {
+  return (row) => {
     const [x, ...others] = typeof row === 'number' ? [row] : row;
     m[layout.reading] = x;
     others.forEach((value, at) => {
@@ -70,12 +71,13 @@ export function run(law: Law, rows: readonly (number | readonly number[])[], sig
     });
     compute[0](m);
     return signals.map((_, at) => m[layout.latest + at]);
-  });
+  };
 }
 
-/** The same with the values of `out` alone. */
-export function outputs(law: Law, rows: readonly (number | readonly number[])[]): number[] {
-  return run(law, rows).map(([value]) => value);
+/** The output of a law from power-up. */
+export function outputs(law: Law, rows: readonly Row[]): number[] {
+  const step = stepper(law);
+  return rows.map((row) => step(row)[0]);
 }
 
 /** A complex number as real and imaginary part. */
