@@ -26,16 +26,19 @@ function definitionIn(unit: Unit, name: string, wanted: number): RecordType | un
 }
 
 function search(parent: Entry, name: string, wanted: number, depth: number): RecordType | undefined {
-  for (const entry of childrenOf(parent)) {
+  for (const entry of childrenOf(parent, isScopeOrRecord)) {
     if (entry.tag === wanted && textAttribute(entry, at.name) === name) {
       const type = describeType(entry);
       if (type.kind === 'record' && type.size !== undefined) return type;
     }
-    const isScope = entry.tag === tag.namespace || recordTags.includes(entry.tag);
-    if (isScope && entry.hasChildren && depth < deepest) {
+    if (entry.hasChildren && depth < deepest) {
       const inner = search(entry, name, wanted, depth + 1);
       if (inner) return inner;
     }
   }
   return undefined;
+}
+
+function isScopeOrRecord(code: number): boolean {
+  return code === tag.namespace || recordTags.includes(code);
 }

@@ -34,17 +34,14 @@ export function readEntry(unit: Unit, offset: number): Entry | undefined {
 function readEntryAt(unit: Unit, cursor: Cursor): Entry | undefined {
   const offset = cursor.position;
   const abbreviation = readCode(unit, cursor);
-  if (!abbreviation) return undefined;
+  return abbreviation && readRest(unit, cursor, offset, abbreviation);
+}
+
+function readRest(unit: Unit, cursor: Cursor, offset: number, abbreviation: Abbreviation): Entry {
   const attributes: Attribute[] = [];
   for (const shape of abbreviation.attributes) attributes.push(readAttribute(cursor, shape, unit));
-  return {
-    unit,
-    offset,
-    tag: abbreviation.tag,
-    hasChildren: abbreviation.hasChildren,
-    attributes,
-    end: cursor.position,
-  };
+  const { tag, hasChildren } = abbreviation;
+  return { unit, offset, tag, hasChildren, attributes, end: cursor.position };
 }
 
 function readCode(unit: Unit, cursor: Cursor): Abbreviation | undefined {
@@ -65,17 +62,26 @@ export function rootOf(unit: Unit): Entry | undefined {
   return root;
 }
 
-/** The direct children of an entry; grandchildren are passed over without reading them where a sibling is named. */
-export function* childrenOf(parent: Entry): Generator<Entry> {
+/**
+ * The direct children of an entry, or those of some kinds; grandchildren are passed over without reading them.
+ * @param wanted says of a tag whether such entries are read at all
+ */
+export function* childrenOf(parent: Entry, wanted?: (tag: number) => boolean): Generator<Entry> {
   if (!parent.hasChildren) return;
   const { unit } = parent;
   const cursor = unitCursor(unit, parent.end);
   while (cursor.position < unit.end) {
-    const child = readEntryAt(unit, cursor);
-    if (!child) return;
-    const next = cursor.position;
+    const offset = cursor.position;
+    const abbreviation = readCode(unit, cursor);
+    if (!abbreviation) return;
+    if (wanted && !wanted(abbreviation.tag)) {
+      passAttributes(abbreviation, unit, cursor);
+      if (abbreviation.hasChildren) passNested(unit, cursor);
+      continue;
+    }
+    const child = readRest(unit, cursor, offset, abbreviation);
     yield child;
-    cursor.moveTo(next);
+    cursor.moveTo(child.end);
     if (child.hasChildren) passChildren(child, cursor);
   }
 }
@@ -90,15 +96,24 @@ function passChildren(entry: Entry, cursor: Cursor): void {
     cursor.moveTo(next);
     return;
   }
+  passNested(entry.unit, cursor);
+}
+
+/** Moves the cursor behind a list of entries, whatever is nested in it. */
+function passNested(unit: Unit, cursor: Cursor): void {
   let depth = 1;
-  while (depth > 0 && cursor.position < entry.unit.end) {
-    const abbreviation = readCode(entry.unit, cursor);
+  while (depth > 0 && cursor.position < unit.end) {
+    const abbreviation = readCode(unit, cursor);
     if (!abbreviation) depth--;
     else {
-      if (abbreviation.fixedSize !== undefined) cursor.skip(abbreviation.fixedSize);
-      else for (const { form } of abbreviation.attributes) skipForm(cursor, form, entry.unit);
+      passAttributes(abbreviation, unit, cursor);
       if (abbreviation.hasChildren && ++depth > deepest)
         throw cursor.failure(`nesting deeper than ${deepest}`);
     }
   }
+}
+
+function passAttributes(abbreviation: Abbreviation, unit: Unit, cursor: Cursor): void {
+  if (abbreviation.fixedSize !== undefined) cursor.skip(abbreviation.fixedSize);
+  else for (const { form } of abbreviation.attributes) skipForm(cursor, form, unit);
 }

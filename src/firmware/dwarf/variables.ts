@@ -93,7 +93,7 @@ function* entriesIn(
   depth: number,
 ): Generator<Surroundings & { entry: Entry }> {
   if (depth > deepestScope) return;
-  for (const entry of childrenOf(parent)) {
+  for (const entry of childrenOf(parent, isOfInterest)) {
     if (entry.tag === tag.variable || (entry.tag === tag.member && isStaticMember(entry))) {
       yield { entry, scopes, inFunction };
     } else if (entry.hasChildren && isScope(entry.tag)) {
@@ -101,6 +101,10 @@ function* entriesIn(
       yield* entriesIn(entry, [...scopes, ...scopeOf(entry)], inside, depth + 1);
     }
   }
+}
+
+function isOfInterest(code: number): boolean {
+  return code === tag.variable || code === tag.member || isScope(code);
 }
 
 function isScope(code: number): boolean {
