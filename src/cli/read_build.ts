@@ -2,14 +2,16 @@ import { readFile } from 'node:fs/promises';
 import { dirname, resolve } from 'node:path';
 import {
   type BuildRecord,
+  type Coefficient,
   describeImage,
   FirmwareError,
   type FirmwareImage,
+  formatText,
   openImage,
   readCoefficients,
   runBuild,
 } from '../firmware/index.js';
-import type { CoefficientValues } from '../loop/parts.js';
+import type { CoefficientValues, StoredNumbers } from '../loop/parts.js';
 import { formatSpecError } from '../spec/index.js';
 import type { Firmware, Place, Spec } from '../spec/spec.js';
 import type { CoefficientRead, Provenance } from '../verdict/run.js';
@@ -134,10 +136,14 @@ function provenanceOf(
 
 /** The numbers by the spec's names for them. */
 export function valuesOf(build: BuildRead | undefined): CoefficientValues {
-  return new Map(
-    build?.coefficients.map(({ name, coefficient }) => [
-      name,
-      coefficient.elements.map(({ value }) => value),
-    ]),
-  );
+  return new Map(build?.coefficients.map(({ name, coefficient }) => [name, storedNumbers(coefficient)]));
+}
+
+/** Scaled numbers are no longer those of their format. */
+function storedNumbers({ elements, format, scaling }: Coefficient): readonly number[] | StoredNumbers {
+  const values = elements.map(({ value }) => value);
+  if (scaling) return values;
+  const fractionalBits =
+    format.kind === 'fixed' ? format.fractionalBits : format.kind === 'integer' ? 0 : undefined;
+  return { values, format: formatText(format), fractionalBits };
 }
