@@ -62,6 +62,19 @@ def steady_gain(q):
     return gain if q['uses'] == 'this_sample' else a @ gain
 
 
-questions = {f.__name__: f for f in (filtered, sections, discretised, response, notch, table, surface, steady_gain)}
+def observed(q):
+    """The output of an observer with state feedback, as one system from what is measured to what drives the plant."""
+    a, b, c, gain = (np.array(q[k], dtype=float) for k in ('state', 'input', 'output', 'gain'))
+    k = np.array([q['feedback']], dtype=float)
+    if q['uses'] == 'this_sample':
+        seen = np.eye(len(a)) - gain @ c
+        system = ((a - b @ k) @ seen, (a - b @ k) @ gain, -k @ seen, -k @ gain, 1.0)
+    else:
+        system = (a - b @ k - gain @ c, gain, -k, np.zeros((1, 1)), 1.0)
+    return signal.dlsim(system, np.array(q['input_signal']))[1].ravel()
+
+
+questions = {f.__name__: f for f in (filtered, sections, discretised, response, notch, table, surface, steady_gain,
+                                   observed)}
 for line in sys.stdin:
     print(json.dumps([np.asarray(questions[q['ask']](q)).tolist() for q in json.loads(line)]), flush=True)
