@@ -17,9 +17,13 @@ export interface Movement {
 
 /** A step this long against the fastest rate (1/s) is where the first attempt starts; halving then checks it. */
 const firstStep = 0.4;
-/** An exact movement needs steps only for the shape of the trace between them. */
+/**
+ * An exact movement needs steps only for the shape of the trace between them: with this length the times of crossings and
+ * extremes are good to 1e-6, and halving shows it.
+ */
+const exactStep = 0.3;
 const mostTables = 256;
-const mostSteps = { exact: 64, integrated: 256 };
+const mostSteps = { exact: 256, stiff: 64, integrated: 256 };
 
 /** Chooses for a loop how its plants move: exactly where the plant is linear, by small steps where it is not. */
 export class MovementChoice {
@@ -50,14 +54,16 @@ export class MovementChoice {
     const rates = this.linearisation.slopes('derivative', 'state', evaluation);
     const modes = modesOf(rates);
     if (this.linear) {
-      const steps = (duration: number): number[] => halved(gradedSteps(duration, modes), halvings);
+      const steps = (duration: number): number[] =>
+        halved(gradedSteps(duration, modes, exactStep, mostSteps.exact), halvings);
       return { steps, move: this.exactMove(rates, parameter) };
     }
     const fastest = Math.max(0, ...modes.map(({ speed }) => speed));
     const stepsNeeded = (duration: number): number =>
       Math.max(1, Math.ceil((duration * fastest) / firstStep));
     if (stepsNeeded(longest) > mostSteps.integrated) {
-      const steps = (duration: number): number[] => halved(gradedSteps(duration, modes), halvings);
+      const steps = (duration: number): number[] =>
+        halved(gradedSteps(duration, modes, firstStep, mostSteps.stiff), halvings);
       return { steps, move: this.compiled.stiffStep };
     }
     const steps = (duration: number): number[] => halved(equal(duration, stepsNeeded(duration)), halvings);
@@ -137,17 +143,18 @@ const order = 6;
 
 /**
  * Steps over a segment at whose start something changed, each a power of two shorter than it: short while the fast motions
- * last, longer when they have died out. A motion that would need more steps than the cap gets them longer.
+ * last, longer when they have died out. A motion that would need more than `most` steps gets them longer.
+ * @param longest length of a step against the speed of a motion that lasts.
  */
-function gradedSteps(duration: number, modes: readonly PlantMode[]): number[] {
+function gradedSteps(duration: number, modes: readonly PlantMode[], longest: number, most: number): number[] {
   const felt = modes.map(({ speed, decay }) => {
-    const needed = (Math.min(duration, order / decay) * speed) / firstStep;
-    return { decay, speed: speed * Math.min(1, mostSteps.exact / needed) };
+    const needed = (Math.min(duration, order / decay) * speed) / longest;
+    return { decay, speed: speed * Math.min(1, most / needed) };
   });
   const steps: number[] = [];
   const split = (from: number, length: number): void => {
     const tooLong = felt.some(
-      ({ speed, decay }) => speed * length * Math.exp((-decay * from) / order) > firstStep,
+      ({ speed, decay }) => speed * length * Math.exp((-decay * from) / order) > longest,
     );
     if (tooLong) {
       split(from, length / 2);

@@ -72,7 +72,9 @@ function readRequirement(
   const ofDimension = needsOf ? reading.names.entries.get(signals.of ?? '')?.unit?.dimension : plainNumber;
   const dimension = ofDimension && measure.dimension(ofDimension);
   const limit = readLimit(item, measure, dimension, reading);
-  const scale = readQuantity(childOf(item, 'scale'), dimension, '`scale`', reading);
+  const scale = measure.takesHertz
+    ? readAngularFrequency(childOf(item, 'scale'), '`scale`', reading)
+    : readQuantity(childOf(item, 'scale'), dimension, '`scale`', reading);
   if (scale !== undefined && scale.value <= 0) reading.problems.add(scale.place, '`scale` must be above 0');
   const place = textOf(childOf(item, 'name'))?.place ?? item.place;
   return {
