@@ -1,11 +1,13 @@
 import { upperBoundOfShare } from '../perturb/binomial_bound.js';
-import type { Judgement } from './judge.js';
+import type { IndependentCount } from './tally.js';
 
 /** What the independent plants alone allow to be said, in words a reviewer can quote. */
-export function claimOf(independent: readonly Judgement[], confidence: number): string | undefined {
-  const tried = independent.length;
+export function claimOf(
+  { tried, broken, unjudged }: IndependentCount,
+  confidence: number,
+): string | undefined {
   if (tried === 0) return undefined;
-  const failed = independent.filter(({ kind }) => kind !== 'met').length;
+  const failed = broken + unjudged;
   const bound = upperBoundOfShare(failed, tried, confidence);
   const plants = `${tried.toLocaleString('en')} independent plants`;
   const found =

@@ -1,9 +1,8 @@
 import { availableParallelism } from 'node:os';
 import type { Tinypool } from 'tinypool';
 import type { CoefficientValues } from '../loop/parts.js';
-import { PlantEvaluator } from '../measure/evaluate_plant.js';
 import type { Spec } from '../spec/spec.js';
-import { answersOf, type PlantAnswer, type PlantTask } from './plant_answers.js';
+import { type PlantAnswer, PlantMeasurer, type PlantTask } from './plant_answers.js';
 
 /** Plants for one worker at a time: enough to hide the cost of handing them over, few enough to share evenly. */
 const batch = 16;
@@ -16,7 +15,7 @@ const mostWorkers = 16;
  * so nothing depends on how many workers there are.
  */
 export class Crew {
-  private readonly evaluator: PlantEvaluator;
+  private readonly measurer: PlantMeasurer;
   private pool: Tinypool | undefined;
 
   /**
@@ -28,16 +27,27 @@ export class Crew {
     private readonly coefficients: CoefficientValues,
     private readonly workers = Math.min(mostWorkers, availableParallelism()),
   ) {
-    this.evaluator = new PlantEvaluator(spec, coefficients);
+    this.measurer = new PlantMeasurer(spec, coefficients);
   }
 
-  async measure(plants: Float64Array[], halvings: number, settle: boolean): Promise<PlantAnswer[]> {
+  /**
+   * @param settle whether to halve the steps on until no measure changes any more, from `halvings` on.
+   * @param wanted places of the requirements to measure; all of them where not given.
+   * @returns the answers in the order of the plants.
+   */
+  async measure(
+    plants: Float64Array[],
+    halvings: number,
+    settle: boolean,
+    wanted?: readonly number[],
+  ): Promise<PlantAnswer[]> {
     const inline = this.workers < 2 || (plants.length < worthSharing && !this.pool);
-    if (inline) return answersOf(this.evaluator, this.spec.requirements, { plants, halvings, settle });
+    if (inline) return this.measurer.answers({ plants, halvings, settle, wanted });
     const pool = await this.startedPool();
+    const size = Math.min(batch, Math.max(1, Math.ceil(plants.length / this.workers)));
     const tasks: PlantTask[] = [];
-    for (let first = 0; first < plants.length; first += batch) {
-      tasks.push({ plants: plants.slice(first, first + batch), halvings, settle });
+    for (let first = 0; first < plants.length; first += size) {
+      tasks.push({ plants: plants.slice(first, first + size), halvings, settle, wanted });
     }
     const answers: PlantAnswer[][] = await Promise.all(tasks.map((task) => pool.run(task)));
     return answers.flat();

@@ -1,6 +1,7 @@
-import type { PlantEvaluator } from '../measure/evaluate_plant.js';
+import type { CoefficientValues } from '../loop/parts.js';
+import { PlantEvaluator } from '../measure/evaluate_plant.js';
 import type { MeasureResult } from '../measure/measure.js';
-import type { Requirement } from '../spec/spec.js';
+import type { Requirement, Spec } from '../spec/spec.js';
 import { settleSteps } from './settle_steps.js';
 
 /** Plants to measure at so many halvings of the step; `settle` then halves on until no measure changes any more. */
@@ -8,23 +9,50 @@ export interface PlantTask {
   plants: Float64Array[];
   halvings: number;
   settle: boolean;
+  /** Places of the requirements that are asked for; all of them where not given. */
+  wanted?: readonly number[];
 }
 
-/** The results of one plant, one for each requirement, and the halvings that they stand for. */
+/** The results of one plant, one for each requirement asked for, and the halvings that they stand for. */
 export interface PlantAnswer {
   results: MeasureResult[];
   halvings: number;
 }
 
-/** Measures the plants of a task one after another. */
-export function answersOf(
-  evaluator: PlantEvaluator,
-  requirements: readonly Requirement[],
-  { plants, halvings, settle }: PlantTask,
-): PlantAnswer[] {
-  return plants.map((values) =>
-    settle
-      ? settleSteps(requirements, (finer) => evaluator.evaluate(values, finer), halvings)
-      : { results: evaluator.evaluate(values, halvings), halvings },
-  );
+/** Measures plants against all requirements of a spec, or against some of them alone, which then is all that is run. */
+export class PlantMeasurer {
+  private readonly parts = new Map<
+    string,
+    { evaluator: PlantEvaluator; requirements: readonly Requirement[] }
+  >();
+
+  /** @throws {LoopError} where the build's numbers do not fit the spec. */
+  constructor(
+    private readonly spec: Spec,
+    private readonly coefficients: CoefficientValues,
+  ) {
+    this.part(undefined);
+  }
+
+  /** Measures the plants of a task one after another. */
+  answers({ plants, halvings, settle, wanted }: PlantTask): PlantAnswer[] {
+    const { evaluator, requirements } = this.part(wanted);
+    return plants.map((values) =>
+      settle
+        ? settleSteps(requirements, (finer) => evaluator.evaluate(values, finer), halvings)
+        : { results: evaluator.evaluate(values, halvings), halvings },
+    );
+  }
+
+  private part(wanted: readonly number[] | undefined) {
+    const key = wanted?.join() ?? 'all';
+    let part = this.parts.get(key);
+    if (!part) {
+      const requirements = wanted?.map((index) => this.spec.requirements[index]) ?? this.spec.requirements;
+      const evaluator = new PlantEvaluator({ ...this.spec, requirements }, this.coefficients);
+      part = { evaluator, requirements };
+      this.parts.set(key, part);
+    }
+    return part;
+  }
 }

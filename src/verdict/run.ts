@@ -1,6 +1,7 @@
 import type { Coefficient } from '../firmware/coefficient.js';
 import type { MeasureResult } from '../measure/measure.js';
 import type { PlantOrigin } from '../perturb/plants.js';
+import type { Reach } from '../perturb/reach.js';
 import type { HoldsFor, Limit, Place, Unit } from '../spec/spec.js';
 
 /** What a run says of a requirement. Only `met` lets a merge through. */
@@ -32,6 +33,25 @@ export interface JudgedPlant {
 /** How many plants stand behind a verdict. */
 export type Evidence = { kind: 'nominal_only' } | { kind: 'tried'; plants: number };
 
+/** Runs of one requirement on one plant, beyond the plants that all requirements are tried on. */
+export interface Effort {
+  /** By the search for the worst. */
+  searched: number;
+  /** To bring a counterexample near to nominal. */
+  shrinking: number;
+  /** To find how far the bounds may grow. */
+  reach: number;
+}
+
+/** How much a parameter matters to a requirement. */
+export interface ParameterEffect {
+  name: string;
+  /** Mean size of the change of headroom (share of the limit) when the parameter goes from one bound to the other. */
+  headroom: number;
+  /** Standard deviation of that change: large where it depends on the other parameters. */
+  spread: number;
+}
+
 export interface RequirementRun {
   name: string;
   place: Place;
@@ -52,6 +72,16 @@ export interface RequirementRun {
   counts: { tried: number; broken: number; unjudged: number };
   /** What may be claimed from the independent plants alone, in words. */
   claim: string | undefined;
+  /**
+   * The counterexample as near to nominal as it was found to break: few parameters moved, round numbers. Undefined where no
+   * plant broke the requirement.
+   */
+  shrunk?: JudgedPlant;
+  /** How far the bounds may grow, or must shrink, before a break was found; for requirements that hold for all plants. */
+  reach?: Reach;
+  /** The parameters, what matters most first. */
+  effects?: ParameterEffect[];
+  effort?: Effort;
 }
 
 /** A coefficient as read from the build, under the spec's name for it. */
@@ -84,8 +114,10 @@ export interface SpecRun {
   provenance: Provenance | undefined;
   coefficients: CoefficientRead[];
   requirements: RequirementRun[];
-  /** Plants tried, by why they were tried. */
-  plants: Record<PlantOrigin, number>;
+  /** Plants that every requirement was tried on, by why they were tried. */
+  plants: Record<Exclude<PlantOrigin, 'searched'>, number>;
+  /** What searching, shrinking and reach took on top of it, for all requirements together. */
+  effort?: Effort;
   scenarios: { name: string; lasts: number }[];
   /** How often the first step of the integration was halved for all plants. */
   halvings: number;

@@ -2,6 +2,7 @@ import { plantsNeeded, upperBoundOfShare } from '../perturb/binomial_bound.js';
 import type { Requirement } from '../spec/spec.js';
 import type { Judgement } from './judge.js';
 import type { Verdict } from './run.js';
+import type { IndependentCount } from './tally.js';
 
 /**
  * The verdict on a requirement from the nominal plant, the worst one, and the independent ones.
@@ -11,7 +12,7 @@ export function verdictOf(
   requirement: Requirement,
   nominal: Judgement,
   worst: Judgement,
-  independent: readonly Judgement[],
+  independent: IndependentCount,
   confidence: number,
 ): Verdict {
   const { holdsFor } = requirement;
@@ -34,18 +35,17 @@ function ofOne(judgement: Judgement, why: string): Verdict {
 function ofShare(
   share: number,
   worst: Judgement,
-  independent: readonly Judgement[],
+  independent: IndependentCount,
   confidence: number,
 ): Verdict {
-  const unjudged = independent.find((one) => one.kind === 'unjudged');
-  if (unjudged?.kind === 'unjudged') return { kind: 'unjudged', why: unjudged.why };
+  const { tried, broken, why: unjudged } = independent;
+  if (unjudged !== undefined) return { kind: 'unjudged', why: unjudged };
   const headroom = worst.kind === 'unjudged' ? undefined : worst.headroom;
-  const broken = independent.filter(({ kind }) => kind === 'broken').length;
-  const bound = 1 - upperBoundOfShare(broken, independent.length, confidence);
+  const bound = 1 - upperBoundOfShare(broken, tried, confidence);
   if (bound >= share) return { kind: 'met', headroom };
   const needed = plantsNeeded(1 - share, confidence);
   if (broken === 0) {
-    const why = `${independent.length} independent plants are too few for ${share * 100} %: at least ${needed} are needed`;
+    const why = `${tried} independent plants are too few for ${share * 100} %: at least ${needed} are needed`;
     return { kind: 'unjudged', why };
   }
   const shown = `only ${(bound * 100).toPrecision(4)} % of plants can be said to meet it, ${share * 100} % are asked for`;
