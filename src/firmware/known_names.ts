@@ -28,13 +28,20 @@ export function noSuchSymbol(image: ElfImage, path: CoefficientPath): FirmwareEr
       `no variable ${quoted(wanted)} can be found in ${quoted(image.name)}: it has neither symbols nor debug information; build with -g and do not strip`,
     );
   }
-  const near = nearestNames(wanted, knownNames(image));
+  const near = nearNames(image, path, wanted);
   const offered = near.length > 0 ? `; nearest: ${near.map(quoted).join(', ')}` : '';
   const where = path.file === undefined ? '' : ` of ${quoted(path.file)}`;
   return new FirmwareError(
     'no_such_symbol',
     `${quoted(image.name)} has no variable ${quoted(wanted)}${where}${offered}`,
   );
+}
+
+/** Names a few letters apart, and those which have the same last part in another scope. */
+function nearNames(image: ElfImage, path: CoefficientPath, wanted: string): string[] {
+  const known = knownNames(image);
+  const elsewhere = [...known].filter((name) => name.endsWith(`::${path.name}`)).slice(0, 3);
+  return [...new Set([...nearestNames(wanted, known), ...elsewhere])].slice(0, 3);
 }
 
 /** Why the debug information is elsewhere, and how to give it. */

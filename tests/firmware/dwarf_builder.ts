@@ -17,15 +17,26 @@ export interface UnitSpec {
   version?: 2 | 3 | 4 | 5;
   littleEndian?: boolean;
   entries: EntrySpec[];
+  /** Attributes of the unit's own entry, besides its name. */
+  attributes?: [name: number, form: number, value: Value][];
 }
 
-/** `.debug_info` and `.debug_abbrev` of one compile unit around the entries; every entry has an abbreviation of its own. */
-export function debugSections(unit: UnitSpec): SectionSpec[] {
-  const { version = 4, littleEndian = true } = unit;
+/** `.debug_info` and `.debug_abbrev` of compile units around the entries; every entry has an abbreviation of its own. */
+export function debugSections(...units: UnitSpec[]): SectionSpec[] {
+  const littleEndian = units[0].littleEndian ?? true;
   const info = new ByteWriter(littleEndian);
   const abbreviations = new ByteWriter(littleEndian);
+  for (const [i, unit] of units.entries()) writeUnit(unit, i, info, abbreviations);
+  return [
+    { name: '.debug_info', bytes: info.result },
+    { name: '.debug_abbrev', bytes: abbreviations.result },
+  ];
+}
+
+function writeUnit(unit: UnitSpec, index: number, info: ByteWriter, abbreviations: ByteWriter): void {
   const labels = new Map<string, number>();
   const fixes: { at: number; to: string }[] = [];
+  const start = info.length;
   let code = 0;
 
   const write = (entry: EntrySpec) => {
@@ -34,7 +45,7 @@ export function debugSections(unit: UnitSpec): SectionSpec[] {
       .uleb(code)
       .uleb(entry.tag)
       .u8(entry.children ? 1 : 0);
-    if (entry.label) labels.set(entry.label, info.length);
+    if (entry.label) labels.set(entry.label, info.length - start);
     info.uleb(code);
     for (const [name, formCode, value] of entry.attributes) {
       abbreviations.uleb(name).uleb(formCode);
@@ -47,17 +58,15 @@ export function debugSections(unit: UnitSpec): SectionSpec[] {
     info.u8(0);
   };
 
+  const { version = 4 } = unit;
   info.u32(0).u16(version);
-  if (version === 5) info.u8(1).u8(8).u32(0);
-  else info.u32(0).u8(8);
-  write({ tag: tag.compileUnit, attributes: [[at.name, form.string, 'built.c']], children: unit.entries });
-  info.patch(0, info.length - 4, 4);
+  if (version === 5) info.u8(1).u8(8).u32(abbreviations.length);
+  else info.u32(abbreviations.length).u8(8);
+  const name: [number, number, Value] = [at.name, form.string, index === 0 ? 'built.c' : `built${index}.c`];
+  write({ tag: tag.compileUnit, attributes: [name, ...(unit.attributes ?? [])], children: unit.entries });
+  info.patch(start, info.length - start - 4, 4);
   for (const fix of fixes) info.patch(fix.at, labels.get(fix.to) ?? 0xfffff, 4);
   abbreviations.u8(0);
-  return [
-    { name: '.debug_info', bytes: info.result },
-    { name: '.debug_abbrev', bytes: abbreviations.result },
-  ];
 }
 
 function writeValue(
@@ -87,6 +96,8 @@ const sizes: Record<number, number> = {
   [form.addr]: 8,
   [form.flag]: 1,
   [form.refSig8]: 8,
+  [form.strx1]: 1,
+  [form.addrx1]: 1,
 };
 
 /** A location expression of one fixed address. */
