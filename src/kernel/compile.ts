@@ -1,5 +1,5 @@
 import { Derivative } from '../loop/derivative.js';
-import type { Node } from '../loop/graph.js';
+import { inOrder, type Node } from '../loop/graph.js';
 import type { Loop, TracedSignal } from '../loop/loop.js';
 import { rateOf } from '../loop/rate.js';
 import { type Layout, layOut } from './layout.js';
@@ -157,6 +157,11 @@ function computeText(
   loop.memories.forEach((memory, i) => {
     if (memory.task === task) targets.push({ place: layout.memory + i, node: memory.next });
   });
+  // Counting costs time, and so only what is asked for is counted.
+  for (const node of inOrder(sampled.map(({ value }) => value))) {
+    if (node.kind !== 'leaf' || node.leaf !== 'counter' || loop.counters[node.index].task !== task) continue;
+    targets.push({ place: layout.counter + node.index, node: loop.counters[node.index].next });
+  }
   sampled.forEach((signal, i) => {
     if (signal.task === task) targets.push({ place: layout.latest + i, node: signal.value });
   });

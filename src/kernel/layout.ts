@@ -19,6 +19,7 @@ export function layOut(loop: Loop, tracedSampled: number): Layout {
     mode: loop.modes.length,
     held: loop.held.length,
     memory: loop.memories.length,
+    counter: loop.counters.length,
     reading: loop.readings.length,
     noise: loop.noises.length,
     pending: loop.held.length,

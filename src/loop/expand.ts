@@ -1,5 +1,6 @@
 import type { Scenario, Spec } from '../spec/spec.js';
 import { ControllerRoom } from './controller_room.js';
+import { countersOf } from './counters.js';
 import { Cut } from './cut.js';
 import type { Loop } from './loop.js';
 import { orderTasks } from './order_tasks.js';
@@ -28,6 +29,7 @@ export function expandLoop(
   for (const { name } of controllers.flatMap(({ signals }) => signals)) room.signal(name);
   parts.finish();
   const signals = tracedSignals(spec, controllers, parts, plant, room);
+  const counted = countersOf(controllers, parts, room);
   const asked = spec.requirements.find((requirement) => requirement.signals.at === openAt);
   return {
     graph: parts.graph,
@@ -39,17 +41,19 @@ export function expandLoop(
     corrections: parts.corrections,
     program: plant.inputs.finished(parts.delayedSources),
     memories: parts.memories,
+    counters: counted.counters,
     readings: parts.readings,
     held: parts.held,
     channels: parts.channels,
-    tasks: controllers.map(({ name, place, every, phase }) => ({
+    tasks: controllers.map(({ name, place, every, phase, jitter }) => ({
       name,
       place,
       period: plant.lower(every),
       phase: phase ? plant.lower(phase) : parts.graph.number(0),
+      jitter: jitter ? plant.lower(jitter) : parts.graph.number(0),
     })),
     noises: parts.noises,
-    signals,
+    signals: new Map([...signals, ...counted.signals]),
     opening: cut.opening(asked?.place ?? controllers[0].place),
   };
 }

@@ -1,5 +1,5 @@
 import type { Place } from '../spec/spec.js';
-import { fit, fitQuotient, fitSum } from './fixed_point.js';
+import { counting, fit, fitQuotient, fitSum } from './fixed_point.js';
 import { fusedMultiplyAdd } from './fused.js';
 
 /** Values from outside an expression. `index` counts within its kind; see `Loop`. */
@@ -10,6 +10,7 @@ export type LeafKind =
   | 'mode'
   | 'held'
   | 'memory'
+  | 'counter'
   | 'reading'
   | 'noise'
   | 'injected';
@@ -141,13 +142,14 @@ export const unrounded: Partial<typeof operations> = {
   quantise: (x) => x,
   single: (x) => x,
   fused_multiply_add: (x, y, z) => x * y + z,
-  fit: (x) => x,
+  fit: (x, _step, _rounding, _low, _size, overflow) => (overflow < counting ? x : 0),
   fit_sum: (...x) => {
+    if (x[4] >= counting) return 0;
     let sum = 0;
     for (let at = firstTerm; at < x.length; at += 2) sum += x[at] * x[at + 1];
     return sum;
   },
-  fit_quotient: (x, y) => x / y,
+  fit_quotient: (x, y, _step, _low, _size, overflow) => (overflow < counting ? x / y : 0),
 };
 
 /** Builds expression nodes; equal ones are shared, and operations on numbers alone are computed at once. */

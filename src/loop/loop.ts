@@ -54,6 +54,13 @@ export interface Memory {
   start: number;
 }
 
+/** A count that a task keeps since the start. It tells of the equations and is no part of them. */
+export interface Counter {
+  name: string;
+  task: number;
+  next: Node;
+}
+
 /** A sensor's value at the sampling instants of one task, in the sensor's declared unit. */
 export interface Reading {
   sensor: string;
@@ -82,6 +89,8 @@ export interface Task {
   place: Place;
   period: Node;
   phase: Node;
+  /** In traces every sampling instant is late by a random time from 0 to this. */
+  jitter: Node;
 }
 
 /** Ends of a signal's own range and the size of one step of it (0 where it has none), SI. */
@@ -126,6 +135,7 @@ export interface Loop {
   /** What the scenario does; empty where the loop was expanded without one. */
   program: ProgrammedChange[];
   memories: Memory[];
+  counters: Counter[];
   readings: Reading[];
   held: Held[];
   channels: Channel[];
