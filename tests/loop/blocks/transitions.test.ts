@@ -1,0 +1,114 @@
+import { describe, expect, it } from 'vitest';
+import { noise, outputs, responses } from './law.js';
+
+const period = 0.1;
+
+describe('slew of a controller’s signal', () => {
+  it('lets it move by rate times period an instant, in closed form', () => {
+    const signals = ['out: { value: x, slew: 3 1/s }'];
+    const steps = Array.from({ length: 6 }, (_, k) => Math.min(1, 3 * period * (k + 1)));
+    const found = outputs({ signals }, [1, 1, 1, 1, 1, 1, 0.9, -5]);
+    steps.forEach((wanted, k) => {
+      expect(found[k]).toBeCloseTo(wanted, 14);
+    });
+    expect(found[6]).toBeCloseTo(0.9, 14);
+    expect(found[7]).toBeCloseTo(0.6, 14);
+  });
+
+  it('starts at `start:` and ends in the range', () => {
+    const signals = ['out: { value: 10*x, slew: 2 1/s, range: [-1, 1], start: 0.5 }'];
+    const found = outputs({ signals }, [1, 1, 1, 1]);
+    [0.7, 0.9, 1, 1].forEach((wanted, k) => {
+      expect(found[k]).toBeCloseTo(wanted, 14);
+    });
+  });
+
+  it('is no part of the linearised loop', () => {
+    const signals = ['out: { low_pass: 0.4 s, of: x, slew: 2 1/s }'];
+    const plain = ['out: { low_pass: 0.4 s, of: x }'];
+    const angles = [0.1, 1, 3];
+    responses({ signals }, angles).forEach(([re, im], k) => {
+      const [wantedRe, wantedIm] = responses({ signals: plain }, angles)[k];
+      expect(re).toBeCloseTo(wantedRe, 13);
+      expect(im).toBeCloseTo(wantedIm, 13);
+    });
+  });
+});
+
+describe('switch', () => {
+  const laws = (more: string): string[] => [
+    `out: { switch: { between: [2*x, 1 - x, 0.5], by: number${more} }, range: [-5, 5] }`,
+  ];
+  const inputs = { number: '1' };
+
+  it('takes the law of the number, the first below and the last above', () => {
+    const numbers = [-1, 0, 0.5, 1, 1.5, 2, 7];
+    const rows = numbers.map((number) => [0.1, number]);
+    expect(outputs({ signals: laws(''), inputs }, rows)).toEqual([0.2, 0.2, 0.9, 0.9, 0.5, 0.5, 0.5]);
+  });
+
+  it('without a bump goes on from the last output, and fades to the law in charge', () => {
+    const rows = [0, 0, 1, 1, 1, 2, 2].map((number) => [0.1, number]);
+    const found = outputs({ signals: laws(', bumpless: 0.3 s'), inputs }, rows);
+    const rate = 0.3 / (0.3 + period);
+    const second = (k: number): number => 0.9 + (0.2 - 0.9) * rate ** k;
+    const third = (k: number): number => 0.5 + (second(2) - 0.5) * rate ** k;
+    const wanted = [0.2, 0.2, second(0), second(1), second(2), third(0), third(1)];
+    wanted.forEach((value, k) => {
+      expect(found[k]).toBeCloseTo(value, 14);
+    });
+  });
+
+  it('has nothing to fade at power-up, whichever law is in charge first', () => {
+    expect(outputs({ signals: laws(', bumpless: 0.3 s'), inputs }, [[0.1, 2]])).toEqual([0.5]);
+  });
+
+  it('by a condition, has the response of the law in charge at rest', () => {
+    const signals = ['out: { switch: { between: [3*x, 7*x], by: x > 1, bumpless: 1 s } }'];
+    const [[re, im]] = responses({ signals }, [0.7]);
+    expect(re).toBeCloseTo(3, 12);
+    expect(im).toBeCloseTo(0, 12);
+  });
+});
+
+describe('feed_forward', () => {
+  it('behind or before a lag of the same rule gives back its input; by the exact rule one instant later', () => {
+    const stimulus = noise(100);
+    const chain = (rule: string): string[] => [
+      `slow: { low_pass: { time_constant: 0.35 s, sum_by: ${rule} }, of: x }`,
+      `out: { feed_forward: { lead: 0.35 s, sum_by: ${rule} }, of: slow, gain: 2 }`,
+    ];
+    const backward = outputs({ signals: chain('backward') }, stimulus);
+    const exact = outputs({ signals: chain('exact') }, stimulus);
+    stimulus.forEach((x, k) => {
+      expect(backward[k]).toBeCloseTo(2 * x, 12);
+      expect(exact[k]).toBeCloseTo(k === 0 ? 0 : 2 * stimulus[k - 1], 12);
+    });
+  });
+
+  it('without a lead is a gain', () => {
+    for (const rule of ['backward', 'exact']) {
+      const signals = [`out: { feed_forward: { lead: 0 s, sum_by: ${rule} }, of: x, gain: 0.7 }`];
+      expect(outputs({ signals }, [1, -2, 3])).toEqual([0.7, -1.4, 0.7 * 3]);
+    }
+  });
+});
+
+describe('a monotone cubic', () => {
+  // F. N. Fritsch and R. E. Carlson, 1980: the radiochemical data on which other cubics overshoot (from memory).
+  const points = [7.99, 8.09, 8.19, 8.7, 9.2, 10, 12, 15, 20];
+  const values = [0, 2.76429e-5, 4.37498e-2, 0.169183, 0.469428, 0.94374, 0.998636, 0.999919, 0.999994];
+
+  it('goes through its points, rises with them and stays between them', () => {
+    const signals = [`out: { table: { points: [${points}], values: [${values}], between: cubic }, of: x }`];
+    const between = Array.from({ length: 1201 }, (_, k) => 7.99 + (12.01 * k) / 1200);
+    const found = outputs({ signals }, between);
+    found.forEach((value, k) => {
+      expect(value).toBeGreaterThanOrEqual(k === 0 ? 0 : found[k - 1]);
+    });
+    expect(found[1200]).toBeLessThanOrEqual(0.999994);
+    outputs({ signals }, points).forEach((value, k) => {
+      expect(value).toBeCloseTo(values[k], 14);
+    });
+  });
+});
