@@ -1,16 +1,20 @@
 import { run } from './toolchain.js';
 
-/** What the debugger says of one number: its bytes as a number, as exact text. */
+/** What the debugger says of one number. */
 export type Answer = number | 'none';
+
+/** What the debugger says of an image. */
+export interface Answers {
+  values: Map<string, Answer>;
+  /** Lines in which variables are declared, by the declaration as C writes it, e.g. `const struct axis azimuth;`. */
+  lines: Map<string, number>;
+}
 
 /**
  * Values of expressions in an image as `gdb-multiarch` reads them from the file, without running anything. Printed with 17
  * significant digits, which hold a float64 exactly (IEEE 754-2019, 5.12.2).
  */
-export async function askDebugger(
-  image: string,
-  expressions: readonly string[],
-): Promise<Map<string, Answer>> {
+export async function askDebugger(image: string, expressions: readonly string[]): Promise<Answers> {
   const questions = expressions.flatMap((expression) => [
     '-ex',
     `echo @${expression}@`,
@@ -19,10 +23,13 @@ export async function askDebugger(
     '-ex',
     'echo \\n',
   ]);
-  const printed = await run('gdb-multiarch', ['-nx', '-batch', ...questions, image]);
-  const answers = new Map<string, Answer>();
+  const printed = await run('gdb-multiarch', ['-nx', '-batch', ...questions, '-ex', 'info variables', image]);
+  const values = new Map<string, Answer>();
   for (const [, expression, value] of printed.matchAll(/@([^@\n]+)@(-?[\d.e+-]+|-?inf|-?nan\S*)?/g)) {
-    answers.set(expression, value === undefined ? 'none' : Number(value.replace('inf', 'Infinity')));
+    values.set(expression, value === undefined ? 'none' : Number(value.replace('inf', 'Infinity')));
   }
-  return answers;
+  const lines = new Map(
+    [...printed.matchAll(/^(\d+):\t(.*;)$/gm)].map(([, line, text]) => [text, Number(line)] as const),
+  );
+  return { values, lines };
 }

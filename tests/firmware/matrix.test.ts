@@ -1,6 +1,6 @@
 import { readFileSync } from 'node:fs';
 import { beforeAll, describe, expect, test } from 'vitest';
-import { openImage, readCoefficient } from '../../src/firmware/index.js';
+import { FirmwareError, type FirmwareImage, openImage, readCoefficient } from '../../src/firmware/index.js';
 import { askDebugger } from './debugger.js';
 import { type Build, builds, makeImage } from './matrix_builds.js';
 import { freshFolder, inPairs, leaveOut } from './toolchain.js';
@@ -63,12 +63,35 @@ const inCpp: [path: string, literal: number, asked?: string][] = [
   ['gain_reference', 6.25],
 ];
 
+function valueOrCode(image: FirmwareImage, at: string): number | string {
+  try {
+    return readCoefficient(image, { name: at, at }).elements[0].value;
+  } catch (error) {
+    if (error instanceof FirmwareError) return error.code;
+    throw error;
+  }
+}
+
 /** Whether the build stops before the linker. */
 function isUnlinked(build: Build): boolean {
   return build.commands.length === 1 && build.commands[0].includes('-c');
 }
 
+/** Variables of gains.c as gdb writes their declaration, for the lines. */
+const declarations: [path: string, written: RegExp][] = [
+  ['azimuth.period_us', /^const struct axis azimuth;$/],
+  ['azimuth_notch[0]', /^static const int16_t azimuth_notch\[5\];$/],
+  ['grid[0][2]', /^const volatile float grid\[2\]\[3\];$/],
+  ['ratio', /^const double ratio;$/],
+  ['enabled', /^_Bool enabled;$/],
+  ['ram_table[1][0]', /^int16_t ram_table\[2\]\[2\];$/],
+];
+
 interface Compared {
+  lines: Map<string, number>;
+  declared: Map<string, number | undefined>;
+  /** Values of constants that the optimiser may have left no place for; a text is the code of an error. */
+  folded: (number | string)[];
   read: Map<string, number>;
   asked: Map<string, number | 'none'>;
 }
@@ -87,15 +110,31 @@ describe.skipIf(leaveOut('arm-none-eabi-gcc', 'arm-none-eabi-g++', 'clang', 'ld.
         const read = new Map(
           rows.map(([at]) => [at, readCoefficient(image, { name: at, at }).elements[0].value]),
         );
-        const answers = await askDebugger(
+        const { values, lines } = await askDebugger(
           path,
           rows.map(([at, , asked]) => asked ?? at),
         );
         compared.set(build, {
           read,
-          asked: new Map(rows.map(([at, , asked]) => [at, answers.get(asked ?? at) ?? 'none'])),
+          asked: new Map(rows.map(([at, , asked]) => [at, values.get(asked ?? at) ?? 'none'])),
+          lines,
+          declared: new Map(
+            rows.map(([at]) => [at, readCoefficient(image, { name: at, at }).declaredAt?.line]),
+          ),
+          folded:
+            build.source === 'gains.c' ? ['folded', 'folded_count'].map((at) => valueOrCode(image, at)) : [],
         });
       });
+    });
+
+    test('a constant that is left in no memory gives its value or says that it has none', () => {
+      const outcomes = [...compared.values()].flatMap(({ folded }) => folded);
+      const read = outcomes.filter((outcome) => typeof outcome === 'number');
+      expect([...new Set(read)].sort()).toEqual([-12, 0.375]);
+      expect(read.length).toBeGreaterThan(outcomes.length / 2);
+      const codes = new Set(outcomes.filter((outcome) => typeof outcome === 'string'));
+      for (const code of codes)
+        expect(['no_fixed_place', 'garbage_collected', 'no_such_symbol']).toContain(code);
     });
 
     test('holds at least 40 images', () => {
@@ -103,7 +142,7 @@ describe.skipIf(leaveOut('arm-none-eabi-gcc', 'arm-none-eabi-g++', 'clang', 'ld.
     });
 
     test.each(builds.map((build) => [build.name, build] as const))('%s', (_, build) => {
-      const { read, asked } = compared.get(build)!;
+      const { read, asked, lines, declared } = compared.get(build)!;
       for (const [at, literal] of build.source === 'gains.c' ? inC : inCpp) {
         expect(read.get(at), `${at} against the source`).toBe(literal);
         const answer = asked.get(at)!;
@@ -113,6 +152,12 @@ describe.skipIf(leaveOut('arm-none-eabi-gcc', 'arm-none-eabi-g++', 'clang', 'ld.
         if (answer === 0 && literal === 0) continue;
         expect(read.get(at), `${at} against gdb`).toBe(answer);
       }
+      const placed = (build.source === 'gains.c' ? declarations : []).map(([at, written]) => {
+        const line = [...lines].find(([text]) => written.test(text))?.[1];
+        if (line !== undefined) expect(declared.get(at), `line of ${at}`).toBe(line);
+        return line;
+      });
+      expect(placed.filter((line) => line !== undefined).length).toBeGreaterThanOrEqual(placed.length - 1);
       // What gdb has no words for is covered by the literals; it must be little.
       const unanswered = [...asked].filter(([, answer]) => answer === 'none').map(([at]) => at);
       // It finds none of the file-local names which link-time optimisation moved to another unit.

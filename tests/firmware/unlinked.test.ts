@@ -135,7 +135,7 @@ describe.skipIf(leaveOut('clang', 'gcc', 'arm-none-eabi-gcc', 'gdb-multiarch'))(
         const image = open(name);
         expect(value(image, 'active->ki')).toBe(0.5);
         expect(value(image, 'axis.taps[1]')).toBe(0.5);
-        const answers = await askDebugger(path(name), ['axis.kp', 'local[1]']);
+        const { values: answers } = await askDebugger(path(name), ['axis.kp', 'local[1]']);
         expect(value(image, 'axis.kp')).toBe(answers.get('axis.kp'));
         expect(value(image, 'local[1]')).toBe(answers.get('local[1]'));
       },
