@@ -28,7 +28,8 @@ export function fit(
 /**
  * The sum of products x₀·y₀ + x₁·y₁ + … from left to right in an accumulator, then brought into a format as `fit` does: exact
  * for factors of up to 32 significant bits and accumulators of up to 64 bits, where float64 arithmetic alone is not.
- * The sum is kept in two parts: `high`, a multiple of 2^16 units, and `low`, from 0 to below 2^16 units.
+ * The sum is kept in two parts: `high`, a multiple of 2^16 units (less where the accumulator is that small), and `low`, from 0
+ * to below that.
  * @param unit value of the accumulator's last bit; every product is a multiple of it.
  * @param accumulatorLow lowest number of the accumulator.
  * @param accumulatorSize distance from the lowest number to the first above the highest; 0 for a single product that is kept
@@ -45,7 +46,7 @@ export function fitSum(
   accumulatorSize: number,
   ...factors: number[]
 ): number {
-  const wide = unit * 65536;
+  const wide = accumulatorSize === 0 ? unit * 65536 : Math.min(unit * 65536, accumulatorSize / 2);
   const saturates = overflow % counting === 0;
   let [high, low, passed] = [0, 0, 0];
   for (let at = 0; at < factors.length; at += 2) {

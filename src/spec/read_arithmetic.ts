@@ -67,10 +67,10 @@ function readAccumulator(
   const text = textOf(tree);
   if (text === undefined) return undefined;
   const bits = Number(/^(\d+) *bit$/.exec(text.text)?.[1]);
-  if (bits >= Math.max(16, least) && bits <= 64) return bits;
+  if (bits >= least && bits <= 64) return bits;
   reading.problems.add(
     text.place,
-    `\`${text.text}\` is no accumulator for ${format}; expected a width from ${Math.max(16, least)} bit to 64 bit, such as 64 bit`,
+    `\`${text.text}\` is no accumulator for ${format}; expected a width from ${least} bit to 64 bit, such as 64 bit`,
   );
   return undefined;
 }
