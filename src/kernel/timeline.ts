@@ -1,3 +1,4 @@
+import { uniformDraws } from '../loop/random_draws.js';
 import { instantsBetween, type Schedule } from '../loop/schedule.js';
 
 /** A change by the scenario: from `time` (s) on an input, or a state of the scenario's own, is `value` (SI). */
@@ -30,8 +31,16 @@ export interface Timeline {
 /** Two times closer than this share of a tick are the same instant. */
 const sameInstant = 1e-6;
 
-/** Cuts the time from 0 to `lasts` (s) at every instant of the schedule and every change of an input. */
-export function timelineOf(schedule: Schedule, changes: readonly ScenarioChange[], lasts: number): Timeline {
+/**
+ * Cuts the time from 0 to `lasts` (s) at every instant of the schedule and every change of an input.
+ * @param seed for the lateness of sampling instants with jitter.
+ */
+export function timelineOf(
+  schedule: Schedule,
+  changes: readonly ScenarioChange[],
+  lasts: number,
+  seed: number,
+): Timeline {
   const rate = schedule.ticksPerSecond;
   const end = lasts * rate;
   const byTick = new Map<number, Action>();
@@ -41,15 +50,21 @@ export function timelineOf(schedule: Schedule, changes: readonly ScenarioChange[
     return action;
   };
   at(0);
-  for (const { tick, deliver, compute } of instantsBetween(schedule, 0, end))
-    Object.assign(at(tick), { deliver, compute });
+  const lateness = latenessOf(schedule, end, seed);
+  for (const { tick, deliver, compute } of instantsBetween(schedule, 0, end)) {
+    for (const task of compute) at(tick + lateness(task, tick, 0)).compute.push(task);
+    for (const channel of deliver) {
+      const { task, delay } = schedule.channels[channel];
+      at(tick + lateness(task, tick, delay)).deliver.push(channel);
+    }
+  }
   for (const { time, ...change } of changes) {
     if (time >= lasts) continue;
     const tick = time * rate;
     const whole = Math.round(tick);
     at(Math.abs(tick - whole) < sameInstant ? whole : tick).changes.push(change);
   }
-  const ticks = [...byTick.keys()].sort((a, b) => a - b);
+  const ticks = [...byTick.keys()].filter((tick) => tick < end).sort((a, b) => a - b);
   const actions = new Indexed<Action>((action) => JSON.stringify(action));
   const durations = new Indexed<number>(String);
   const following = [...ticks.slice(1), end];
@@ -59,6 +74,21 @@ export function timelineOf(schedule: Schedule, changes: readonly ScenarioChange[
     actions: actions.items,
     duration: Int32Array.from(ticks, (tick, i) => durations.indexOf((following[i] - tick) / rate)),
     durations: durations.items,
+  };
+}
+
+/** By how many ticks what happens at a tick, `delay` after a sampling instant of the task, is late. */
+function latenessOf(
+  { period, phase, jitter }: Schedule,
+  end: number,
+  seed: number,
+): (task: number, tick: number, delay: number) => number {
+  const draws = jitter.map((most, task) =>
+    most === 0 ? undefined : uniformDraws(seed, task + 1_000_000, Math.ceil(end / period[task]) + 1),
+  );
+  return (task, tick, delay) => {
+    const own = draws[task];
+    return own ? jitter[task] * own[Math.round((tick - delay - phase[task]) / period[task])] : 0;
   };
 }
 

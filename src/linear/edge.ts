@@ -1,5 +1,5 @@
 import type { Evaluation } from '../loop/evaluate.js';
-import type { Node } from '../loop/graph.js';
+import { dependsOn, type Node } from '../loop/graph.js';
 
 /** Which arguments say where a fixed-point format begins and how large it is. */
 const formatAt = { fit: [3, 4], fit_sum: [2, 3], fit_quotient: [3, 4] } as const;
@@ -16,7 +16,7 @@ export function edgeOf(root: Node, evaluation: Evaluation): string | undefined {
     if (node.kind !== 'operation' || seen.has(node)) return undefined;
     seen.add(node);
     const own = ownEdge(node, evaluation);
-    if (own) return own;
+    if (own && moves(node)) return own;
     for (const argument of counting(node, evaluation)) {
       const found = visit(argument);
       if (found) return found;
@@ -24,6 +24,11 @@ export function edgeOf(root: Node, evaluation: Evaluation): string | undefined {
     return undefined;
   };
   return visit(root);
+}
+
+/** What only parameters and inputs set stays on its side of an edge. */
+function moves(node: Node): boolean {
+  return dependsOn(node, ['state', 'mode', 'held', 'memory', 'reading', 'injected']);
 }
 
 /** The arguments whose values count: the condition and the chosen branch only. */

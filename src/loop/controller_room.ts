@@ -6,14 +6,16 @@ import type {
   SignalDefinition,
   Spec,
 } from '../spec/spec.js';
+import { actuatorValue, feltValue, updateDelay } from './actuator.js';
 import { TargetArithmetic } from './arithmetic.js';
 import type { Workshop } from './blocks/block.js';
 import type { Cut } from './cut.js';
-import { expandBlock, limited } from './expand_block.js';
+import { expandBlock } from './expand_block.js';
 import type { Node } from './graph.js';
 import { lower, type Surroundings } from './lower.js';
 import type { Parts } from './parts.js';
 import type { PlantRoom } from './plant_room.js';
+import { sampledValue } from './sensor.js';
 
 /**
  * The sampled side of a loop: readings, controller signals and actuators. Controllers compute in the declared units of their
@@ -47,11 +49,19 @@ export class ControllerRoom {
 
   /** Adds an actuator and tells the plant what it sees of it. */
   addActuator(actuator: ActuatorDefinition): void {
-    const { task } = this.owner(actuator.of);
-    const held = this.parts.addHeld(actuator.name, task, this.delayOf(task), () =>
-      this.cut.through(actuator.name, task, this.actuatorValue(actuator)),
+    const { task, definition } = this.owner(actuator.of);
+    const { parts, plant } = this;
+    const period = this.periodOf(task);
+    const result = (): Node => {
+      const { scale } = definition.unit;
+      const seen = this.seen(actuator.of);
+      return scale === 1 ? seen : parts.plain.multiply(seen, parts.graph.number(scale));
+    };
+    const delay = updateDelay(actuator, this.delayOf(task), period, parts);
+    const held = parts.addHeld(actuator.name, task, delay, () =>
+      this.cut.through(actuator.name, task, actuatorValue(actuator, result(), task, period, plant, parts)),
     );
-    this.plant.connect(actuator.name, held);
+    plant.connect(actuator.name, feltValue(actuator, held, period, plant, parts));
   }
 
   /** What names mean in expressions of a task. */
@@ -67,6 +77,10 @@ export class ControllerRoom {
   private owner(name: string): { definition: SignalDefinition; task: number } {
     const task = this.controllers.findIndex(({ signals }) => signals.some((signal) => signal.name === name));
     return { task, definition: this.controllers[task].signals.find((signal) => signal.name === name)! };
+  }
+
+  private periodOf(task: number): Node {
+    return this.plant.lower(this.controllers[task].every);
   }
 
   private delayOf(task: number): Node {
@@ -143,36 +157,17 @@ export class ControllerRoom {
     return held;
   }
 
-  private actuatorValue({ of, resolution, range }: ActuatorDefinition): Node {
-    const { graph, plain } = this.parts;
-    const { scale } = this.owner(of).definition.unit;
-    let value = this.seen(of);
-    if (scale !== 1) value = plain.multiply(value, graph.number(scale));
-    if (resolution) value = graph.apply('quantise', value, this.plant.lower(resolution));
-    return limited(value, range, this.plant.surroundings);
-  }
-
   /** A sensor's value at the instants of a task, as the task's expressions see it. */
   private reading(sensor: SensorDefinition, task: number): Node {
     const key = `${task} ${sensor.name}`;
     const found = this.seenReadings.get(key);
     if (found) return found;
-    const sampled = this.arithmetic(task).take(this.inUnit(this.sampled(sensor, task), sensor.unit.scale));
+    const value = sampledValue(sensor, task, this.periodOf(task), this.plant, this.parts);
+    const sampled = this.arithmetic(task).take(this.inUnit(value, sensor.unit.scale));
     const reading = this.parts.addReading(sensor.name, task, sampled);
     const seen = this.cut.through(sensor.name, task, reading);
     this.seenReadings.set(key, seen);
     return seen;
-  }
-
-  /** Noise, range and quantum, SI. */
-  private sampled(sensor: SensorDefinition, task: number): Node {
-    const { graph, plain } = this.parts;
-    let value = this.plant.measured(sensor);
-    if (sensor.noise) {
-      value = plain.add(value, plain.multiply(this.plant.lower(sensor.noise), this.parts.addNoise(task)));
-    }
-    value = limited(value, sensor.range, this.plant.surroundings);
-    return sensor.quantum ? graph.apply('quantise', value, this.plant.lower(sensor.quantum)) : value;
   }
 }
 

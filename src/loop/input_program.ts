@@ -10,7 +10,6 @@ const shapeByKey = new Map(shapes.map((shape) => [shape.description.key, shape])
 
 /** What the inputs of a scenario do: the value of each input as an expression, and a program of changes over time. */
 export class InputProgram {
-  private readonly program: ProgrammedChange[] = [];
   private readonly values: readonly Node[];
 
   /** @param lower turns an expression of parameters into a node. */
@@ -37,7 +36,7 @@ export class InputProgram {
 
   /** All changes, those of copies behind a dead time included. */
   finished(delayed: readonly DelayedSource[]): ProgrammedChange[] {
-    const program = [...this.program];
+    const program = [...this.parts.program];
     for (const { kind, index, source, delay } of delayed) {
       const own = program.filter((change) => change.kind === kind && change.index === source);
       for (const change of own) {
@@ -74,7 +73,8 @@ export class InputProgram {
   }
 
   private desk(index: number, common: boolean): InputDesk {
-    const { parts, program } = this;
+    const { parts } = this;
+    const { program } = parts;
     return {
       number: (value) => parts.graph.number(value),
       multiply: (a, b) => parts.plain.multiply(a, b),

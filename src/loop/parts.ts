@@ -10,6 +10,7 @@ import {
   LoopError,
   type Memory,
   type Mode,
+  type ProgrammedChange,
   type Reading,
 } from './loop.js';
 import { rateOf } from './rate.js';
@@ -39,6 +40,8 @@ export class Parts {
   readonly modes: Mode[] = [];
   readonly corrections: Correction[] = [];
   readonly delayedSources: DelayedSource[] = [];
+  /** What happens over time in a scenario. */
+  readonly program: ProgrammedChange[] = [];
   readonly memories: Memory[] = [];
   readonly readings: Reading[] = [];
   readonly held: Held[] = [];

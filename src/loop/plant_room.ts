@@ -1,4 +1,4 @@
-import type { Expression, Scenario, SensorDefinition, SignalDefinition, Spec } from '../spec/spec.js';
+import type { Expression, Place, Scenario, SensorDefinition, SignalDefinition, Spec } from '../spec/spec.js';
 import type { Workshop } from './blocks/block.js';
 import { DelayedCopies } from './delayed.js';
 import { expandBlock } from './expand_block.js';
@@ -6,6 +6,7 @@ import type { Node } from './graph.js';
 import { InputProgram } from './input_program.js';
 import { lower, type Surroundings } from './lower.js';
 import type { Parts } from './parts.js';
+import { measuredValue } from './sensor.js';
 
 /** The continuous side of a loop: plant signals, and sensors up to where they are sampled. All in SI. */
 export class PlantRoom {
@@ -59,25 +60,18 @@ export class PlantRoom {
     return node;
   }
 
-  /** The sensor's continuous value: gain, offset and filter, before it is sampled. */
+  /** An expression of the plant as it was some time ago (s). */
+  delayed(node: Node, delay: Node, place: Place): Node {
+    return this.delayedCopies.of(node, delay, place);
+  }
+
+  /** The sensor's continuous value, before it is sampled. */
   measured(sensor: SensorDefinition): Node {
     const found = this.measuredBySensor.get(sensor.name);
     if (found) return found;
-    const { plain } = this.parts;
-    let value = this.lower(sensor.of);
-    if (sensor.gain) value = plain.multiply(this.lower(sensor.gain), value);
-    if (sensor.offset) value = plain.add(value, this.lower(sensor.offset));
-    if (sensor.filter) value = this.filtered(sensor.name, value, this.lower(sensor.filter));
+    const value = measuredValue(sensor, this, this.parts);
     this.measuredBySensor.set(sensor.name, value);
     return value;
-  }
-
-  private filtered(name: string, source: Node, timeConstant: Node): Node {
-    const { plain } = this.parts;
-    const state: Node = this.parts.addState(`${name} filter`, 0, () =>
-      plain.divide(plain.subtract(source, state), timeConstant),
-    );
-    return state;
   }
 
   private named({ role, name, index, place }: Extract<Expression, { kind: 'name' }>): Node {

@@ -18,6 +18,8 @@ export interface Schedule {
   ticksPerSecond: number;
   period: number[];
   phase: number[];
+  /** By how much sampling instants are late at most, in ticks that need not be whole; traces only. */
+  jitter: number[];
   /** For each channel its task and its delay. */
   channels: { task: number; delay: number }[];
   /** After so many ticks the pattern repeats. */
@@ -44,6 +46,15 @@ export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule 
   };
   const periods = loop.tasks.map(({ period }, task) => timeOf(task, 'sampling period', period));
   const phases = loop.tasks.map(({ phase }, task) => timeOf(task, 'phase', phase));
+  const jitters = loop.tasks.map(({ jitter, name, place }, task) => {
+    const time = evaluation.of(jitter);
+    const period = evaluation.of(loop.tasks[task].period);
+    if (time >= 0 && time < period) return time;
+    throw new LoopError(
+      `controller '${name}' has a jitter of ${time} s, expected 0 to less than its period`,
+      place,
+    );
+  });
   const delays = loop.channels.map(({ task, delay }) => timeOf(task, 'delay', delay));
   const perSecond = leastCommonMultiple(
     [...periods, ...phases, ...delays].map(({ denominator }) => denominator),
@@ -55,6 +66,7 @@ export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule 
     ticksPerSecond: Number(perSecond),
     period,
     phase: phases.map(inTicks),
+    jitter: jitters.map((time) => time * Number(perSecond)),
     channels: loop.channels.map(({ task }, i) => ({ task, delay: inTicks(delays[i]) })),
     cycle: cycleOf(loop, period),
   };

@@ -7,8 +7,8 @@ import type { PointOfRest } from '../linear/point_of_rest.js';
 import { Evaluation } from '../loop/evaluate.js';
 import { dependsOn, type Node } from '../loop/graph.js';
 import type { Loop } from '../loop/loop.js';
+import { standardNormal } from '../loop/random_draws.js';
 import type { Schedule } from '../loop/schedule.js';
-import { standardNormal } from '../loop/standard_normal.js';
 import type { Scenario } from '../spec/spec.js';
 import type { Curve } from './curve.js';
 import { RecordedSignals } from './recorded_signals.js';
@@ -60,7 +60,7 @@ export class ScenarioRun {
   private timeline(parameters: Float64Array, schedule: Schedule): Timeline {
     if (this.shared?.schedule === schedule) return this.shared.timeline;
     const changes: ScenarioChange[] = this.events.changes(parameters);
-    const timeline = timelineOf(schedule, changes, this.scenario.lasts);
+    const timeline = timelineOf(schedule, changes, this.scenario.lasts, this.seed);
     if (this.events.sameForAllPlants) this.shared = { schedule, timeline };
     return timeline;
   }
@@ -120,7 +120,7 @@ export class ScenarioRun {
 /** Whether a schedule is the same for every plant. */
 export function timingIsCommon(loop: Loop): boolean {
   const nodes: Node[] = [
-    ...loop.tasks.flatMap(({ period, phase }) => [period, phase]),
+    ...loop.tasks.flatMap(({ period, phase, jitter }) => [period, phase, jitter]),
     ...loop.channels.map(({ delay }) => delay),
   ];
   return nodes.every((node) => !dependsOn(node, ['parameter']));

@@ -183,9 +183,25 @@ const sensor = z
     gain: expression,
     offset: expression,
     filter: text('a time constant or a corner frequency').optional(),
-    noise: text('a standard deviation').optional(),
+    drift: text('a rate at which the offset drifts').optional(),
+    dead_time: text('a time').optional(),
+    noise: z
+      .union([
+        text('a standard deviation'),
+        z.strictObject({
+          deviation: text('a standard deviation'),
+          corner: text('a frequency above which it is weaker').optional(),
+        }),
+      ])
+      .describe('a standard deviation, or { deviation: …, corner: … }')
+      .optional(),
     range,
     quantum: text('the size of one step of the reading').optional(),
+    drops: text('a share of lost samples such as 2 %').optional(),
+    stuck: z
+      .strictObject({ from: text('a time'), to: text('a time') })
+      .describe('{ from: …, to: … }')
+      .optional(),
   })
   .describe('{ of: …, unit: … }');
 
@@ -207,6 +223,7 @@ function controller(vocabulary: Vocabulary) {
       every: text('the sampling period, such as 1 ms or 1 kHz'),
       phase: text('a time').optional(),
       delay: text('a time').optional(),
+      jitter: text('a time').optional(),
       arithmetic: arithmetic.optional(),
       signals: z.record(z.string(), signal(vocabulary, 'controller')).describe(mappingOf('signals')),
     })
@@ -214,7 +231,17 @@ function controller(vocabulary: Vocabulary) {
 }
 
 const actuator = z
-  .strictObject({ of: text('a controller signal'), unit, resolution: expression, range })
+  .strictObject({
+    of: text('a controller signal'),
+    unit,
+    resolution: expression,
+    dead_band: text('half the width of the band').optional(),
+    range,
+    slew: expression,
+    effect: text('a share of the effect that is left').optional(),
+    update: text('start or middle').optional(),
+    pwm: text('mean or ripple').optional(),
+  })
   .describe('{ of: … }');
 
 function shapeValue({ key, settings, meaning }: ShapeDescription) {

@@ -84,7 +84,7 @@ export interface SignalDefinition {
   start: number | undefined;
 }
 
-/** A sensor: gain and offset, continuous filter, dead time, sample, noise, range, quantum, in this order. */
+/** A sensor: gain and offset, drift, continuous filter, dead time, sample, noise, range, quantum, faults, in this order. */
 export interface SensorDefinition {
   name: string;
   place: Place;
@@ -94,11 +94,21 @@ export interface SensorDefinition {
   offset: Expression | undefined;
   /** Time constant of the first-order filter in s (a corner frequency is already turned into one). */
   filter: Expression | undefined;
-  /** Standard deviation of white Gaussian noise, SI. */
+  /** Rate at which the offset drifts from the start of a scenario on, SI. */
+  drift: Expression | undefined;
+  /** Time by which the reading is late, s. */
+  deadTime: Expression | undefined;
+  /** Standard deviation of Gaussian noise, SI. */
   noise: Expression | undefined;
+  /** Corner of the noise in rad/s; undefined for white noise. */
+  noiseCorner: Expression | undefined;
   range: Range | undefined;
   /** Size of one step of the reading, SI. */
   quantum: Expression | undefined;
+  /** Share of the samples that are lost: the reading stays as it was. */
+  drops: number | undefined;
+  /** Between these times (s) of every scenario the reading stays as it was. */
+  stuck: { from: Expression; to: Expression } | undefined;
 }
 
 /** Floating point: `float32` rounds every operation, `float32_fused` takes x·y + z in one. */
@@ -127,6 +137,8 @@ export interface ControllerDefinition {
   phase: Expression | undefined;
   /** From the sampling instant to when the outputs take effect, in s. */
   delay: Expression | undefined;
+  /** In traces every sampling instant is late by a random time between 0 and this, in s. */
+  jitter: Expression | undefined;
   arithmetic: Arithmetic;
   signals: SignalDefinition[];
 }
@@ -140,7 +152,17 @@ export interface ActuatorDefinition {
   ofPlace: Place;
   unit: Unit;
   resolution: Expression | undefined;
+  /** Half width of a band around zero in which it does nothing. */
+  deadBand: Expression | undefined;
   range: Range | undefined;
+  /** Largest change in either direction, a second. */
+  slew: Expression | undefined;
+  /** Share of the effect that is left, as a fault; a plain number. */
+  effect: Expression | undefined;
+  /** Takes a result only at the start, or only in the middle, of a sampling period. */
+  update: 'start' | 'middle' | undefined;
+  /** A switched output: its mean, or its two levels within each period. */
+  pwm: 'mean' | 'ripple' | undefined;
 }
 
 /** Something that an input does in a scenario: a shape, added to the input's rest value. Amounts in SI, times in s. */

@@ -1,5 +1,5 @@
 import { timeDimension } from '../../spec/dimension.js';
-import { standardNormal } from '../standard_normal.js';
+import { standardNormal } from '../random_draws.js';
 import { endOf, type Shape } from './shape.js';
 
 /** A random value that is drawn anew from time to time: the same draws for every plant. */
