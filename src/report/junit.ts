@@ -16,6 +16,7 @@ import {
   measureName,
 } from './requirement_in_words.js';
 import { runAgain } from './run_again.js';
+import { effectsInWords, proofInWords, reachInWords, shrunkInWords } from './scrutiny_in_words.js';
 
 /** Node loads the library as CommonJS, whose whole export is the builder; its types describe it as an ES module. */
 const junit = library as unknown as Builder;
@@ -113,6 +114,10 @@ function inFull(requirement: RequirementRun, spec: SpecRun): string {
     `worst:    ${formatResult(worst.result, requirement, against)}`,
     `headroom: ${formatHeadroom(worst.headroom)}`,
     `evidence: ${evidenceInWords(requirement)}`,
+    titled('proof:    ', proofInWords(requirement)),
+    titled('nearest:  ', shrunkInWords(requirement)),
+    titled('reach:    ', reachInWords(requirement)),
+    titled('matters:  ', effectsInWords(requirement)),
     requirement.claim ? `claim:    ${visible(requirement.claim)}` : '',
     `plant:    ${plantInWords(worst)}`,
     '',
@@ -121,6 +126,10 @@ function inFull(requirement: RequirementRun, spec: SpecRun): string {
     `run again: ${runAgain(spec)}    (seed ${spec.seed}${hash(spec)})`,
   ];
   return lines.filter((line, at) => line !== '' || lines[at - 1] !== '').join('\n');
+}
+
+function titled(title: string, words: string | undefined): string {
+  return words === undefined ? '' : title + visible(words);
 }
 
 function hash({ provenance }: SpecRun): string {

@@ -62,7 +62,8 @@ export function evidenceInWords({ evidence, counts }: Pick<RequirementRun, 'evid
   const { tried, broken, unjudged } = counts;
   const found = broken > 0 ? [`broken on ${formatCount(broken)} (${formatShare(broken / tried)})`] : [];
   if (unjudged > 0) found.push(`no number on ${formatCount(unjudged)}`);
-  return `tried ${counted(evidence.plants, 'plant')}${found.length > 0 ? `: ${found.join(', ')}` : ''}`;
+  const proved = evidence.kind === 'proved' ? 'proved for all plants within the bounds; ' : '';
+  return `${proved}tried ${counted(evidence.plants, 'plant')}${found.length > 0 ? `: ${found.join(', ')}` : ''}`;
 }
 
 /**

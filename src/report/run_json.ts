@@ -53,7 +53,7 @@ function requirementJson(requirement: RequirementRun, root: string | undefined):
     holds_for: requirement.holdsFor,
     verdict: verdict.kind,
     ...(why === undefined ? {} : { why }),
-    evidence: evidence.kind === 'tried' ? { tried: evidence.plants } : 'nominal only',
+    evidence: evidenceJson(evidence),
     counts: { ...counts },
     claim: requirement.claim ?? null,
     nominal: resultJson(nominal.result),
@@ -67,7 +67,35 @@ function requirementJson(requirement: RequirementRun, root: string | undefined):
     plant: Object.fromEntries(worst.parameters.map(({ name, value }) => [name, jsonNumber(value)])),
     plant_moved: Object.fromEntries(worst.parameters.map(({ name, moved }) => [name, jsonNumber(moved)])),
     plant_origin: worst.origin,
+    ...scrutinyJson(requirement),
   };
+}
+
+function evidenceJson(evidence: RequirementRun['evidence']): Json {
+  if (evidence.kind === 'nominal_only') return 'nominal only';
+  return evidence.kind === 'proved' ? { proved: true, tried: evidence.plants } : { tried: evidence.plants };
+}
+
+/** What was found beyond the plants tried; only what there is. */
+function scrutinyJson({ shrunk, reach, effects, proof, effort }: RequirementRun): Record<string, Json> {
+  const found: Record<string, Json> = {};
+  if (shrunk) {
+    found.shrunk = {
+      plant: Object.fromEntries(shrunk.parameters.map(({ name, value }) => [name, jsonNumber(value)])),
+      moved: Object.fromEntries(shrunk.parameters.map(({ name, moved }) => [name, jsonNumber(moved)])),
+      value: resultJson(shrunk.result),
+      headroom: shrunk.headroom === undefined ? null : jsonNumber(shrunk.headroom),
+    };
+  }
+  if (reach) found.reach = { factor: jsonNumber(reach.factor), found: reach.found };
+  if (effects) {
+    found.effects = effects.map(({ name, headroom, spread }) => ({
+      ...{ name, headroom: jsonNumber(headroom), spread: jsonNumber(spread) },
+    }));
+  }
+  if (proof) found.proof = { ...proof };
+  if (effort) found.effort = { ...effort };
+  return found;
 }
 
 function missing({ result }: JudgedPlant): string | undefined {

@@ -6,6 +6,7 @@ import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
 import { claimsInWords, evidenceInWords, holdsForInWords, limitNumbers } from './requirement_in_words.js';
+import { effortInWords, scrutinyLines, shrunkInWords } from './scrutiny_in_words.js';
 import { type Painter, painter } from './terminal_colour.js';
 import { type RowWidths, rowLines, rowWidths, terminalHeadings, terminalRow } from './terminal_row.js';
 import { blockingFirst, mayMerge, runInWords, verdictSigns } from './verdict_words.js';
@@ -93,9 +94,11 @@ function details(requirement: RequirementRun): string[] {
   const why = verdict.kind === 'met' ? [] : [oneLine(verdict.why)];
   const found = withoutNumber(worst, requirement);
   if (found !== undefined && !why.includes(found)) why.push(found);
+  const nearest = shrunkInWords(requirement);
   return [
     ...why.map((text) => shortened(text, longest)),
     `plant: ${shortened(plantInWords(worst), longest)}`,
+    ...(nearest === undefined ? [] : [`nearest to nominal: ${shortened(nearest, longest)}`]),
     evidenceInWords(requirement) + (holdsFor === 'all' ? '' : `; must hold ${holdsForInWords(requirement)}`),
     ...(reason === undefined ? [] : [`reason: ${shortened(oneLine(reason), longest)}`]),
     `${shortened(oneLine(place.file), 200)}:${place.line}:${place.column}`,
@@ -114,5 +117,11 @@ function closing(spec: SpecRun): string[] {
     return `${all ? 'each requirement' : shortened(names.join(', '), 120)}: ${oneLine(claim)}`;
   });
   const merge = spec.merge === undefined ? [] : [`merge: ${oneLine(spec.merge)}`];
-  return [...claims, ...merge, `judged in ${formatNumber(spec.seconds, 3)} s`];
+  const effort = effortInWords(spec);
+  return [
+    ...claims,
+    ...scrutinyLines(spec),
+    ...merge,
+    `judged in ${formatNumber(spec.seconds, 3)} s${effort === undefined ? '' : `; ${effort}`}`,
+  ];
 }

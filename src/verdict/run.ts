@@ -30,8 +30,16 @@ export interface JudgedPlant {
   headroom: number | undefined;
 }
 
-/** How many plants stand behind a verdict. */
-export type Evidence = { kind: 'nominal_only' } | { kind: 'tried'; plants: number };
+/** What stands behind a verdict: so many plants tried, or also a proof for every plant within the bounds. */
+export type Evidence = { kind: 'nominal_only' } | { kind: 'tried' | 'proved'; plants: number };
+
+/** What interval branch and bound came to over the whole box of parameters, after so many boxes. */
+export type Proof =
+  | { kind: 'proved'; boxes: number }
+  /** A plant within the bounds breaks it. */
+  | { kind: 'refuted'; boxes: number }
+  /** On this share of the box it is neither proved nor refuted; the verdict is left to what was tried. */
+  | { kind: 'open'; boxes: number; openShare: number; why: string };
 
 /** Runs of one requirement on one plant, beyond the plants that all requirements are tried on. */
 export interface Effort {
@@ -81,6 +89,8 @@ export interface RequirementRun {
   reach?: Reach;
   /** The parameters, what matters most first. */
   effects?: ParameterEffect[];
+  /** Undefined where a proof was not tried: traces, or loops for which there is none. */
+  proof?: Proof;
   effort?: Effort;
 }
 

@@ -60,6 +60,8 @@ export async function scrutinise(task: ScrutinyTask): Promise<Scrutiny> {
 async function search(task: ScrutinyTask): Promise<number> {
   const { spec, space, tally, landmarks, index } = task;
   if (tally.worst[0].judgement.kind !== 'met') return 0;
+  // The same on every plant: there is no way down.
+  if (landmarks.every((one) => one.rank === landmarks[0].rank)) return 0;
   const rank: RankMoves = (moves) =>
     ranked(task, moves, (tried) => {
       tally.add(tried);
