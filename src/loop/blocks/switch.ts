@@ -1,5 +1,5 @@
 import { plainNumber } from '../../spec/dimension.js';
-import type { Node } from '../graph.js';
+import type { Graph, Node } from '../graph.js';
 import type { Block, BlockUse, Workshop } from './block.js';
 
 /** One of several laws, as a condition or a number says. */
@@ -24,8 +24,7 @@ export const switchBlock: Block = {
         kind: 'expression',
         optional: false,
         dimension: () => plainNumber,
-        meaning:
-          'number of the law in charge, from 0: the first whose number is not below it, else the last; a condition is 0 or 1',
+        meaning: 'number of the law in charge, from 0, to the nearest; a condition is 0 or 1',
       },
       {
         name: 'bumpless',
@@ -40,36 +39,28 @@ export const switchBlock: Block = {
   keepsRange: true,
   expand: (use, workshop) => {
     const laws = use.matrix('between')!.flat();
-    const number = position(use.setting('by')!, laws.length, workshop);
-    const chosen = pick(laws, number, workshop);
+    const by = use.setting('by')!;
+    const chosen = pick(laws, by, workshop);
     const fade = use.design('bumpless');
-    return fade ? bumpless(use, workshop, chosen, number, fade) : inRange(use, workshop, chosen);
+    if (!fade) return inRange(use, workshop, chosen);
+    const numbers = laws.map((_, at) => workshop.arithmetic.graph.number(at));
+    return bumpless(use, workshop, chosen, pick(numbers, by, workshop), fade);
   },
 };
 
-/** The place of the law in charge among so many. */
-function position(by: Node, count: number, { arithmetic }: Workshop): Node {
-  const numbers = Array.from({ length: count }, (_, at) => arithmetic.graph.number(at));
-  return numbers
+/** One of several for the number nearest to `by`; conditions stay away from what a number is when it is whole. */
+function pick(of: Node[], by: Node, { arithmetic }: Workshop): Node {
+  return of
     .slice(0, -1)
     .reduceRight(
-      (later, at) => arithmetic.apply('choose', arithmetic.apply('less_or_equal', by, at), at, later),
-      numbers[count - 1],
-    );
-}
-
-function pick(laws: Node[], number: Node, { arithmetic }: Workshop): Node {
-  return laws
-    .slice(0, -1)
-    .reduceRight(
-      (later, law, at) =>
+      (later, one, at) =>
         arithmetic.apply(
           'choose',
-          arithmetic.apply('equal', number, arithmetic.graph.number(at)),
-          law,
+          arithmetic.apply('less', by, arithmetic.graph.number(at + 0.5)),
+          one,
           later,
         ),
-      laws[laws.length - 1],
+      of[of.length - 1],
     );
 }
 
@@ -82,7 +73,7 @@ function bumpless(use: BlockUse, workshop: Workshop, chosen: Node, number: Node,
   const lastOutput: Node = addMemory(`${use.name} last output`, () => output, 0);
   const lastOffset: Node = addMemory(`${use.name} offset`, () => offset, 0);
   const rate = arithmetic.take(graph.apply('divide', fade, graph.apply('add', fade, exactPeriod())));
-  const changed = graph.apply('choose', started, graph.apply('unequal', number, lastNumber), graph.number(0));
+  const changed = graph.apply('choose', started, differs(number, lastNumber, graph), graph.number(0));
   const offset = graph.apply(
     'choose',
     changed,
@@ -91,6 +82,18 @@ function bumpless(use: BlockUse, workshop: Workshop, chosen: Node, number: Node,
   );
   const output = inRange(use, workshop, arithmetic.add(chosen, offset));
   return output;
+}
+
+/** Whether two whole numbers differ. */
+function differs(one: Node, other: Node, graph: Graph): Node {
+  const above = graph.apply('add', other, graph.number(0.5));
+  const below = graph.apply('subtract', other, graph.number(0.5));
+  return graph.apply(
+    'choose',
+    graph.apply('less', one, below),
+    graph.number(1),
+    graph.apply('less', above, one),
+  );
 }
 
 function inRange(use: BlockUse, { arithmetic }: Workshop, node: Node): Node {

@@ -41,10 +41,10 @@ describe('switch', () => {
   ];
   const inputs = { number: '1' };
 
-  it('takes the law of the number, the first below and the last above', () => {
-    const numbers = [-1, 0, 0.5, 1, 1.5, 2, 7];
+  it('takes the law of the nearest number', () => {
+    const numbers = [-1, 0, 0.4, 0.6, 1.4, 2, 7];
     const rows = numbers.map((number) => [0.1, number]);
-    expect(outputs({ signals: laws(''), inputs }, rows)).toEqual([0.2, 0.2, 0.9, 0.9, 0.5, 0.5, 0.5]);
+    expect(outputs({ signals: laws(''), inputs }, rows)).toEqual([0.2, 0.2, 0.2, 0.9, 0.9, 0.5, 0.5]);
   });
 
   it('without a bump goes on from the last output, and fades to the law in charge', () => {
