@@ -83,12 +83,32 @@ describe.skipIf(withoutCompiler)('float32_fused equals C, to the bit, over 10,00
     });
   }
 
+  const withLaw = (): Float64Array =>
+    outputsOfLaw(
+      {
+        arithmetic: 'float32_fused',
+        reads: ['x'],
+        coefficients: new Map([
+          ['taps', [0.9, -1.2, 0.7, -1.3, 0.6]],
+          ...Object.entries({ kp: [2.7], ki: [3.4], kd: [0.05], corner: [125.6] }),
+        ]),
+        signals: `shaped: { biquads: taps, of: x }
+command: { pid: { kp: kp, ki: ki, kd: kd, derivative_corner: corner }, of: shaped }`,
+      },
+      rows.filter((_, at) => at % 3 === 0),
+    );
+
+  it('biquads and pid: each line of their definition is one expression', async () => {
+    expect(differences(withLaw(), await inC(writtenOut, expressions.length))).toEqual([]);
+  });
+
   it.skipIf(!fuses)('and the compiler contracts the same expressions by itself', async () => {
     const contracted = await compiledC(['tests/loop/arithmetic/sums.c'], ...fuses!);
     for (const [which, expression] of expressions.entries()) {
       if (which === 0) continue;
       expect(differences(inTheLoop(which), await inC(contracted, which)), expression).toEqual([]);
     }
+    expect(differences(withLaw(), await inC(contracted, expressions.length))).toEqual([]);
   });
 });
 

@@ -13,6 +13,25 @@
 #define AS(written, rule) (written)
 #endif
 
+/* A filter and a law with proportional, integral and derivative action; gains are read as firmware reads them from memory. */
+static volatile const float taps[5] = {0.9f, -1.2f, 0.7f, -1.3f, 0.6f};
+static volatile const float gains[5] = {2.7f, 3.4f, 0.05f, 125.6f, 0.001f};
+
+static float law(float x)
+{
+    static float x1, x2, y1, y2, last, integral, derivative;
+    const float b0 = taps[0], b1 = taps[1], b2 = taps[2], a1 = taps[3], a2 = taps[4];
+    const float kp = gains[0], ki = gains[1], kd = gains[2], corner = gains[3], period = gains[4];
+    const float y = AS(b0 * x + b1 * x1 + b2 * x2 - a1 * y1 - a2 * y2,
+                       fmaf(-a2, y2, fmaf(-a1, y1, fmaf(b2, x2, fmaf(b0, x, b1 * x1)))));
+    x2 = x1, x1 = x, y2 = y1, y1 = y;
+    integral = AS(integral + (ki * period) * y, fmaf(ki * period, y, integral));
+    derivative = AS((derivative + (kd * corner) * (y - last)) / (1.0f + corner * period),
+                    fmaf(kd * corner, y - last, derivative) / fmaf(corner, period, 1.0f));
+    last = y;
+    return AS((kp * y + integral) + derivative, fmaf(kp, y, integral) + derivative);
+}
+
 static float expression(int which, float x, float y, float z)
 {
     switch (which) {
@@ -28,7 +47,8 @@ static float expression(int which, float x, float y, float z)
     case 9: return AS((x + y) * z - x, fmaf(x + y, z, -x));
     case 10: return AS(x * y * z + x, fmaf(x * y, z, x));
     case 11: return AS(-(x * y) + z, fmaf(-x, y, z));
-    default: return AS(x + (y - x * z) * y, fmaf(fmaf(-x, z, y), y, x));
+    case 12: return AS(x + (y - x * z) * y, fmaf(fmaf(-x, z, y), y, x));
+    default: return law(x);
     }
 }
 
