@@ -111,21 +111,36 @@ function slopesOfResiduals(linearisation: Linearisation, evaluation: Evaluation)
   return result;
 }
 
-/** Small against the rounding of the terms that make up each residual. */
+/**
+ * Small against the terms that make up each residual. An unknown counts with what would match the other terms of some
+ * equation, where it is smaller: a speed that came out as 1e-17 instead of 0 is no unrest.
+ */
 function isSmall(residual: number[], slopes: Matrix, unknowns: number[]): boolean {
-  return residual.every((value, i) => {
-    let size = 0;
-    for (let j = 0; j < unknowns.length; j++)
-      size += Math.abs(slopes.data[i * slopes.columns + j] * unknowns[j]);
-    return Math.abs(value) <= 1e-12 * size;
-  });
+  const n = unknowns.length;
+  const weighed = (sizes: ArrayLike<number>): number[] =>
+    residual.map((_, i) => {
+      let sum = 0;
+      for (let j = 0; j < n; j++) sum += Math.abs(slopes.data[i * n + j]) * sizes[j];
+      return sum;
+    });
+  const terms = weighed(unknowns.map(Math.abs));
+  const sizes = unknowns.map((value, j) =>
+    terms.reduce((most, size, i) => {
+      const slope = Math.abs(slopes.data[i * n + j]);
+      return slope > 0 ? Math.max(most, size / slope) : most;
+    }, Math.abs(value)),
+  );
+  const scales = weighed(sizes);
+  return residual.every((value, i) => Math.abs(value) <= 1e-12 * scales[i]);
 }
 
+/** The least move that solves slopes · move = residual; rows are brought to one size first, since their units differ. */
 function leastSquares(slopes: Matrix, residual: number[]): number[] {
-  const decomposition = new SingularValueDecomposition(new LibraryMatrix(toRows(slopes)), {
-    autoTranspose: true,
-  });
-  return decomposition.solve(LibraryMatrix.columnVector(residual)).to1DArray();
+  const sizes = toRows(slopes).map((row) => Math.max(...row.map(Math.abs)) || 1);
+  const rows = toRows(slopes).map((row, i) => row.map((value) => value / sizes[i]));
+  const decomposition = new SingularValueDecomposition(new LibraryMatrix(rows), { autoTranspose: true });
+  const scaled = residual.map((value, i) => value / sizes[i]);
+  return decomposition.solve(LibraryMatrix.columnVector(scaled)).to1DArray();
 }
 
 function whyNone(loop: Loop, residual: number[]): string {

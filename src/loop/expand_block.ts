@@ -51,7 +51,11 @@ function expanded(
   if (workshop.room === 'controller') {
     return slewed(definition.name, node, lower(definition.slew, around), bounded, workshop);
   }
-  throw new LoopError(`'slew' of '${definition.name}' is not available yet`, definition.place);
+  if (block.keepsSlew) return node;
+  throw new LoopError(
+    `'slew' of '${definition.name}' bounds the rate of a state, but '${definition.block}' has none of its own; put it on a lag, an integral or an actuator`,
+    definition.place,
+  );
 }
 
 /** A value kept inside a range, where there is one. */
@@ -84,6 +88,7 @@ function blockUse(definition: SignalDefinition, around: Surroundings, parts: Par
       const setting = settings[key];
       return setting?.kind === 'expression' ? expression(setting.expression) : undefined;
     },
+    has: (key) => Object.hasOwn(settings, key),
     word: (key) => {
       const setting = settings[key];
       return setting?.kind === 'word' ? setting.word : undefined;
@@ -114,6 +119,7 @@ function blockUse(definition: SignalDefinition, around: Surroundings, parts: Par
       target: () => lower(pair.target, around),
       measurement: () => lower(pair.measurement, around),
     },
+    slew: () => expression(definition.slew),
     range: range && { low: lower(range.low, around), high: lower(range.high, around) },
   };
 }

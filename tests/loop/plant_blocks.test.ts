@@ -274,3 +274,161 @@ requirements: [{ name: top, measure: largest_value, of: speed, in: jump, at_most
     ).toThrow("friction 'drag' needs 'static' and 'stribeck_speed' together, or neither");
   });
 });
+
+describe('integral with a reset', () => {
+  it('jumps back each time that its condition becomes true: a sawtooth', () => {
+    const results = measured(
+      driven(
+        `  saw: { integral: { integral: target/(1 s), reset_when: saw >= (0.75 m), reset_to: -0.25 m }, unit: m }`,
+        [
+          requirement('top', 'largest_value', 'of: saw, at_most: 9 m'),
+          requirement('low', 'smallest_value', 'of: saw, at_least: -9 m'),
+          requirement('travel', 'travel', 'of: saw, at_most: 900 m'),
+        ].join('\n'),
+        '1 m',
+        '10 s',
+      ),
+      { halvings: 4 },
+    );
+    expect(results.top).toBeCloseTo(0.75, 9);
+    expect(results.low).toBeCloseTo(-0.25, 9);
+    // It rises by 10 m in 10 s and falls back by 1 m at 0.75 s, 1.75 s … 9.75 s.
+    expect(results.travel).toBeCloseTo(20, 6);
+  });
+});
+
+describe('slew in the plant', () => {
+  it('bounds the rate of a lag: it climbs straight and then as the lag does', () => {
+    // Straight while (1 − y)/T > s, that is up to y = 1 − s·T at t = y/s; then what is left falls as e^{−t/T}.
+    const results = measured(
+      driven(
+        '  y: { lag: 2 s, of: target, slew: 0.1 m/s, unit: m }',
+        requirement('settling', 'settling_time', 'of: y, to: target, band: 5 %, at_most: 20 s'),
+      ),
+      { halvings: 5 },
+    );
+    expect(results.settling).toBeCloseTo(8 + 2 * Math.log(0.2 / 0.05), 6);
+  });
+
+  it('of a signal without a state of its own is refused', () => {
+    const spec = driven(
+      '  y: { value: target, slew: 0.1 m/s, unit: m }',
+      requirement('top', 'largest_value', 'of: y, at_most: 9 m'),
+    );
+    expect(() => resultsOf(spec)).toThrow(
+      "'slew' of 'y' bounds the rate of a state, but 'value' has none of its own",
+    );
+  });
+});
+
+describe('transfer_function in the plant', () => {
+  const figures = [
+    requirement('overshoot', 'overshoot', 'of: y, to: target, at_most: 900 %'),
+    requirement('rise', 'rise_time', 'of: y, to: target, at_most: 20 s'),
+    requirement('low', 'smallest_value', 'of: y, at_least: -9 m'),
+  ].join('\n');
+  const figuresOf = (block: string): Record<string, number> =>
+    measured(driven(`  y: { ${block}, of: target, unit: m }`, figures), { halvings: 3 });
+
+  it('by coefficients is the second-order system of the handbook (A04)', () => {
+    const { given } = publishedCase('A04');
+    const [w, zeta] = [given.natural_frequency_rad_per_s, given.damping_ratio];
+    const results = figuresOf(
+      `transfer_function: { numerator: [${w * w}], denominator: [1, ${2 * zeta * w}, ${w * w}] }`,
+    );
+    expectPublished('A04', 'overshoot', 100 * results.overshoot);
+    expectPublished('A04', 'rise_time_10_90', results.rise);
+  });
+
+  it('by zeros and poles is the same as by coefficients', () => {
+    // (s − 2)(s + 3)/((s + 1)(s² + 2s + 5)), with a zero on the right: it starts the wrong way.
+    const byCoefficients = figuresOf(
+      'transfer_function: { numerator: [1, 1, -6], denominator: [1, 3, 7, 5] }, gain: -0.8',
+    );
+    const byRoots = figuresOf(
+      'transfer_function: { zeros: [[2, 0], [-3, 0]], poles: [[-1, 0], [-1, 2]] }, gain: -0.8',
+    );
+    for (const [name, figure] of Object.entries(byCoefficients)) expect(byRoots[name]).toBeCloseTo(figure, 9);
+    expect(byRoots.low).toBeLessThan(0);
+  });
+
+  it('with as many zeros as poles passes the input on at once', () => {
+    const leadLag = figuresOf('lead_lag: { lead: 0.5 s, lag: 2 s }');
+    const ratio = figuresOf('transfer_function: { numerator: [0.5, 1], denominator: [2, 1] }');
+    for (const [name, figure] of Object.entries(leadLag)) expect(ratio[name]).toBeCloseTo(figure, 9);
+  });
+
+  it('refuses a derivative, a missing denominator, and both forms at once', () => {
+    for (const [settings, message] of [
+      [
+        'numerator: [1, 0, 0], denominator: [1, 1]',
+        'has 2 zeros and only 1 poles, and so would be a derivative',
+      ],
+      ['numerator: [1]', 'needs a denominator, or poles'],
+      ['denominator: [1, 1], poles: [[-1, 0]]', 'has both denominator and poles'],
+      ['denominator: [0, 1]', 'has a denominator that starts with 0'],
+    ]) {
+      expect(() => figuresOf(`transfer_function: { ${settings} }`)).toThrow(message);
+    }
+  });
+});
+
+describe('state_equations', () => {
+  it('are the same system as the transfer function that they make', () => {
+    const figures = requirement('rise', 'rise_time', 'of: y, to: target, at_most: 20 s');
+    const [ratio, states] = [
+      'transfer_function: { numerator: [2, 3], denominator: [1, 2, 3] }',
+      'state_equations: { state_matrix: [[-2, -3], [1, 0]], input_matrix: [1, 0], output_matrix: [2, 3] }',
+    ].map(
+      (block) => measured(driven(`  y: { ${block}, of: target, unit: m }`, figures), { halvings: 3 }).rise,
+    );
+    expect(states).toBeCloseTo(ratio, 10);
+  });
+
+  it('say which matrix does not fit', () => {
+    const block =
+      'state_equations: { state_matrix: [[-2, -3], [1, 0]], input_matrix: [1], output_matrix: [2, 3] }';
+    const spec = driven(
+      `  y: { ${block}, of: target, unit: m }`,
+      requirement('top', 'largest_value', 'of: y, at_most: 9 m'),
+    );
+    expect(() => resultsOf(spec)).toThrow(
+      "state_equations of 'y' with 2 states: input_matrix has 1 numbers, expected 2",
+    );
+  });
+});
+
+describe('two opposed actuators around an idle point', () => {
+  // Two jets with thrust g·v² each, one valve opened by the command and the other closed by it, with gains that do not match.
+  const spec = (balance: string): string => `
+inputs: { target: { unit: rad } }
+plant:
+  up: { lag: 40 ms, of: valve_up, gain: 3 N, unit: N }
+  down: { lag: 60 ms, of: valve_down, gain: 2 N, unit: N }
+  turn: { integral: ((0.5 m)*(up^2/(1 N) - down^2/(1 N)) ${balance})/(2 kg*m^2) - turn/(1 s), unit: rad/s }
+  angle: { integral: turn, unit: rad }
+sensors: { encoder: { of: angle, unit: rad } }
+controllers:
+  axis:
+    every: 10 ms
+    signals:
+      push: { pid: { kp: 0.4, ki: 0.2 1/s }, of: target - encoder }
+      open_up: { value: 0.5 + push, range: [0, 1] }
+      open_down: { value: 0.5 - push, range: [0, 1] }
+actuators: { valve_up: { of: open_up }, valve_down: { of: open_down } }
+scenarios: { jump: { lasts: 20 s, inputs: { target: { step: 10 mrad, at: 0 s } } } }
+requirements:
+  - { name: gain, measure: gain_margin, at: push, at_least: 1.1 }
+  - { name: top, measure: overshoot, of: angle, to: target, in: jump, at_most: 900 % }
+`;
+
+  it('is linearised at the idle point that is found: where both pushes balance, not where the command is zero', () => {
+    const { gain } = measured(spec(''));
+    // Balance: 3·(0.5 + p) = 2·(0.5 − p), so p = −0.1 and each force is 1.2 N; slopes 2·0.5·1.2·(3, 2) = 3.6 and 2.4 N*m.
+    const linear = spec('')
+      .replace('(0.5 m)*(up^2/(1 N) - down^2/(1 N))', '(1.2 m)*(up - down)')
+      .replace('value: 0.5 + push, range: [0, 1]', 'value: push')
+      .replace('value: 0.5 - push, range: [0, 1]', 'value: -push');
+    expect(gain).toBeCloseTo(measured(linear).gain, 9);
+  });
+});

@@ -13,6 +13,8 @@ export interface BlockUse {
   gain: () => Node;
   /** A setting's expression, or undefined where the spec leaves it out. */
   setting: (name: string) => Node | undefined;
+  /** Whether the spec gives the setting. */
+  has: (name: string) => boolean;
   word: (name: string) => string | undefined;
   /**
    * A setting's expression in double precision, for constants that are worked out off the target and rounded once when they
@@ -33,6 +35,8 @@ export interface BlockUse {
   pair: { target: () => Node; measurement: () => Node } | undefined;
   coefficients: (name: string) => Node[];
   range: { low: Node; high: Node } | undefined;
+  /** Largest rate in either direction; in the plant only for blocks that keep it themselves. */
+  slew: () => Node | undefined;
 }
 
 /** What a block can add to the loop. Rates and next values are deferred, so that signals may refer to each other. */
@@ -73,6 +77,8 @@ export interface Block {
   description: BlockDescription;
   /** Whether the block itself keeps its output in the range. */
   keepsRange: boolean;
+  /** Whether the block itself keeps to the slew, by the rate of its state; in the plant no other can have one. */
+  keepsSlew?: boolean;
   /** Adds states and memories, and returns the signal's value. */
   expand: (use: BlockUse, workshop: Workshop) => Node;
 }

@@ -71,11 +71,12 @@ function arch({ points, values }: Curve, x: Node, pick: Pick, arithmetic: Target
   const length = pick((k) => arithmetic.number(points[k + 1] - points[k]));
   const share = arithmetic.divide(arithmetic.subtract(x, start), length);
   const [first, second, third] = [0, 1, 2].map((power) => pick((k) => factors[k][power]));
-  const inner = arithmetic.add(second, arithmetic.multiply(share, third));
-  const middle = arithmetic.add(first, arithmetic.multiply(share, inner));
-  return arithmetic.add(
+  const inner = arithmetic.sumOfProducts([share], [third], second);
+  const middle = arithmetic.sumOfProducts([share], [inner], first);
+  return arithmetic.sumOfProducts(
+    [share],
+    [middle],
     pick((k) => values[k]),
-    arithmetic.multiply(share, middle),
   );
 }
 

@@ -40,7 +40,7 @@ export const feedForward: Block = {
     const rule = (use.word('sum_by') ?? 'backward') as LagRule;
     const ahead = arithmetic.take(leadFactor(lead, rule, workshop));
     const last = addMemory(`${use.name} last input`, () => drive);
-    const output = arithmetic.add(drive, arithmetic.multiply(ahead, arithmetic.subtract(drive, last)));
+    const output = arithmetic.sumOfProducts([ahead], [arithmetic.subtract(drive, last)], drive);
     const lag = use.design('lag');
     return lag ? sampledLag(use.name, output, lagSettings(use, 'lag'), workshop) : output;
   },

@@ -79,7 +79,7 @@ export function sampledLag(name: string, input: Node, lag: LagSettings, workshop
 /** y = y₁ + share·(x − y₁). */
 export function approach(name: string, input: Node, share: Node, { arithmetic, addMemory }: Workshop): Node {
   const last: Node = addMemory(`${name} last output`, () => output);
-  const output = arithmetic.add(last, arithmetic.multiply(share, arithmetic.subtract(input, last)));
+  const output = arithmetic.sumOfProducts([share], [arithmetic.subtract(input, last)], last);
   return output;
 }
 

@@ -2,6 +2,7 @@ import { backlash } from './backlash.js';
 import { biquads } from './biquads.js';
 import type { Block } from './block.js';
 import { continuousLeadLag } from './continuous_lead_lag.js';
+import { continuousTransfer } from './continuous_transfer.js';
 import { deadBand } from './dead_band.js';
 import { deadTime } from './dead_time.js';
 import { estimate } from './estimate.js';
@@ -18,6 +19,7 @@ import { pid } from './pid.js';
 import { pulseTransfer } from './pulse_transfer.js';
 import { sampledLeadLag } from './sampled_lead_lag.js';
 import { secondOrderLag } from './second_order_lag.js';
+import { stateEquationsBlock } from './state_equations.js';
 import { stateFeedback } from './state_feedback.js';
 import { switchBlock } from './switch.js';
 import { table } from './table.js';
@@ -30,6 +32,8 @@ export const blocks: readonly Block[] = [
   lag,
   secondOrderLag,
   continuousLeadLag,
+  continuousTransfer,
+  stateEquationsBlock,
   deadTime,
   deadBand,
   backlash,

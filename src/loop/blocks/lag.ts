@@ -1,4 +1,5 @@
 import type { Block } from './block.js';
+import { limitedRate } from './limited_rate.js';
 
 /** A first-order lag. */
 export const lag: Block = {
@@ -16,13 +17,15 @@ export const lag: Block = {
         meaning: 'time constant T, or a corner frequency f with T = 1/(2π f)',
       },
     ],
-    meaning: "T y' = gain · of − y",
+    meaning: "T y' = gain · of − y; a `slew` bounds y'",
   },
   keepsRange: false,
+  keepsSlew: true,
   expand: (use, { arithmetic, addState }) => {
     const state = addState(use.name, () => {
       const drive = arithmetic.multiply(use.gain(), use.input());
-      return arithmetic.divide(arithmetic.subtract(drive, state), use.setting('lag')!);
+      const rate = arithmetic.divide(arithmetic.subtract(drive, state), use.setting('lag')!);
+      return limitedRate(rate, use.slew(), arithmetic);
     });
     return state;
   },

@@ -37,12 +37,13 @@ export const movingAverage: Block = {
       );
     }
     let sample = use.input();
-    let sum = sample;
+    const samples = [sample];
     for (let k = 1; k < count; k++) {
       const newer: Node = sample;
       sample = addMemory(`${use.name} x${k}`, () => newer);
-      sum = arithmetic.add(sum, sample);
+      samples.push(sample);
     }
+    const sum = arithmetic.sum(samples.map((value) => ({ value })));
     return arithmetic.divide(sum, arithmetic.number(count));
   },
 };

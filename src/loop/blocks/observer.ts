@@ -1,6 +1,7 @@
 import type { SettingDescription } from '../../spec/vocabulary.js';
 import type { Node } from '../graph.js';
 import { LoopError } from '../loop.js';
+import type { Term } from '../number_rules.js';
 import type { Block, BlockUse, Workshop } from './block.js';
 import { steadyGain } from './steady_gain.js';
 
@@ -20,12 +21,14 @@ function matrix(
 
 /**
  * A model of the plant that runs beside it and is corrected by what is measured (Luenberger 1964; Kalman 1960). x̄ is what
- * was predicted for this instant, y what is measured, u what drives the plant from now on; sums go from left to right:
+ * was predicted for this instant, y what is measured, u what drives the plant from now on. Each line of a matrix is one sum
+ * from left to right, as in y₁ − c₁₁·x̄₁ − c₁₂·x̄₂:
  *
- *     this_sample   x̂ = x̄ + L·(y − C·x̄),  predicted next: A·x̂ + B·u
- *     last_sample   x̂ = x̄,                predicted next: (A·x̄ + B·u) + L·(y − C·x̄)
+ *     e = y − C·x̄
+ *     this_sample   x̂ = x̄ + L·e,  predicted next: A·x̂ + B·u
+ *     last_sample   x̂ = x̄,        predicted next: A·x̄ + B·u + L·e
  *
- * The signal itself is the first entry of y − C·x̄; the estimates are other signals of the controller, `estimate`.
+ * The signal itself is the first entry of e; the estimates are other signals of the controller, `estimate`.
  */
 export const observer: Block = {
   description: {
@@ -76,7 +79,7 @@ export const observer: Block = {
       },
     ],
     meaning:
-      'its value is y − C·x̄ of the first measured; x̂ = x̄ + L·(y − C·x̄) and next A·x̂ + B·u with this_sample, x̂ = x̄ and next (A·x̄ + B·u) + L·(y − C·x̄) with last_sample',
+      'its value is e = y − C·x̄ of the first measured; x̂ = x̄ + L·e and next A·x̂ + B·u with this_sample, x̂ = x̄ and next A·x̄ + B·u + L·e with last_sample; each line one sum from left to right',
   },
   keepsRange: false,
   expand: (use, workshop) => {
@@ -86,25 +89,29 @@ export const observer: Block = {
     const predicted: Node[] = names.map((name, row) =>
       workshop.addMemory(`${name} predicted`, () => next(row), 0),
     );
-    const surprise = difference(
-      workshop,
-      valuesOf(use, 'measured'),
-      times(workshop, model.output, predicted),
+    const { arithmetic } = workshop;
+    const surprise = valuesOf(use, 'measured').map((seen, row) =>
+      arithmetic.sum([{ value: seen }, ...terms(model.output[row], predicted, true)]),
     );
-    const correction = times(workshop, model.gain, surprise);
-    const estimate = atOnce ? sum(workshop, predicted, correction) : predicted;
+    const estimate = predicted.map((value, row) =>
+      atOnce ? arithmetic.sum([{ value }, ...terms(model.gain[row], surprise)]) : value,
+    );
     workshop.publish(new Map(names.map((name, row) => [name, estimate[row]])));
     return surprise[0];
 
     function next(row: number): Node {
-      const moved = times(workshop, [model.state[row]], estimate);
-      const driven = model.input
-        ? sum(workshop, moved, times(workshop, [model.input[row]], valuesOf(use, 'driven_by')))
-        : moved;
-      return atOnce ? driven[0] : workshop.arithmetic.add(driven[0], correction[row]);
+      return arithmetic.sum([
+        ...terms(model.state[row], estimate),
+        ...(model.input ? terms(model.input[row], valuesOf(use, 'driven_by')) : []),
+        ...(atOnce ? [] : terms(model.gain[row], surprise)),
+      ]);
     }
   },
 };
+
+function terms(factors: readonly Node[], values: readonly Node[], minus = false): Term[] {
+  return factors.map((factor, at) => ({ factor, value: values[at], minus }));
+}
 
 function valuesOf(use: BlockUse, name: string): Node[] {
   return use.signals(name).map((signal) => signal());
@@ -172,20 +179,4 @@ function workedOut(
   });
   if (result.kind === 'none') fail(use, `has no steady gain: ${result.why}`);
   return result.gain.map((row) => row.map((entry) => arithmetic.number(entry)));
-}
-
-function times({ arithmetic }: Workshop, rows: Node[][], column: Node[]): Node[] {
-  return rows.map((row) =>
-    row
-      .map((entry, at) => arithmetic.multiply(entry, column[at]))
-      .reduce((one, other) => arithmetic.add(one, other)),
-  );
-}
-
-function sum({ arithmetic }: Workshop, one: Node[], other: Node[]): Node[] {
-  return one.map((entry, at) => arithmetic.add(entry, other[at]));
-}
-
-function difference({ arithmetic }: Workshop, one: Node[], other: Node[]): Node[] {
-  return one.map((entry, at) => arithmetic.subtract(entry, other[at]));
 }

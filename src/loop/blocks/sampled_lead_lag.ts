@@ -26,9 +26,6 @@ export const sampledLeadLag: Block = {
     const share = graph.apply('divide', use.design('lead')!, lag.timeConstant);
     const rest = graph.apply('subtract', graph.number(1), share);
     const slow = sampledLag(use.name, drive, lag, workshop);
-    return arithmetic.add(
-      arithmetic.multiply(arithmetic.take(share), drive),
-      arithmetic.multiply(arithmetic.take(rest), slow),
-    );
+    return arithmetic.sumOfProducts([arithmetic.take(share), arithmetic.take(rest)], [drive, slow]);
   },
 };

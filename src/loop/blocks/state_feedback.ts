@@ -1,4 +1,3 @@
-import type { Node } from '../graph.js';
 import { LoopError } from '../loop.js';
 import type { Block } from './block.js';
 
@@ -51,9 +50,7 @@ export const stateFeedback: Block = {
       );
     }
     const taken = states.map((state, at) => (targets ? arithmetic.subtract(targets[at], state) : state));
-    const sum = taken
-      .map((state, at) => arithmetic.multiply(gains[at], state))
-      .reduce((one: Node, other) => arithmetic.add(one, other));
+    const sum = arithmetic.sumOfProducts(gains, taken);
     return targets ? sum : arithmetic.apply('negate', sum);
   },
 };
