@@ -4,11 +4,12 @@
  */
 export type ControlPoints = ArrayLike<number>;
 
-/** The value at s, by repeated interpolation (de Casteljau 1959): exact at both ends. */
+/** The value at s, by repeated interpolation (de Casteljau 1959): exact at both ends, and everywhere where it is constant. */
 export function valueAt(points: ControlPoints, s: number): number {
+  if (s === 1) return points[points.length - 1];
   const work = Array.from(points);
   for (let left = work.length - 1; left > 0; left--) {
-    for (let i = 0; i < left; i++) work[i] = (1 - s) * work[i] + s * work[i + 1];
+    for (let i = 0; i < left; i++) work[i] += s * (work[i + 1] - work[i]);
   }
   return work[0];
 }
@@ -23,7 +24,7 @@ function firstPart(points: ControlPoints, s: number): number[] {
   const work = Array.from(points);
   const part = [work[0]];
   for (let left = work.length - 1; left > 0; left--) {
-    for (let i = 0; i < left; i++) work[i] = (1 - s) * work[i] + s * work[i + 1];
+    for (let i = 0; i < left; i++) work[i] += s * (work[i + 1] - work[i]);
     part.push(work[0]);
   }
   return part;
