@@ -1,6 +1,7 @@
 import { readFileSync } from 'node:fs';
 import { expect, test } from 'vitest';
 import { z } from 'zod';
+import { overflows, roundings } from '../../src/spec/fixed_formats.js';
 import {
   controllerRoom,
   plantRoom,
@@ -14,6 +15,7 @@ import { skeletonsOf } from '../../src/spec/skeleton.js';
 import { heliostat } from './heliostat_example.js';
 import { errorsOf, heliostatWith } from './loading.js';
 import { functionTable, mistakes, unitTable } from './reference_tables.js';
+import { smallSpec } from './small_spec.js';
 import { vocabulary } from './vocabulary.js';
 
 const reference = readFileSync(new URL('../../specs/README.md', import.meta.url), 'utf8');
@@ -68,6 +70,7 @@ test.each([
   ['### plant', keysOf(below(spec, 'plant')).filter((key) => !blocks.includes(key))],
   ['### sensors', keysOf(below(spec, 'sensors'))],
   ['### controllers', keysOf(below(spec, 'controllers'))],
+  ['### controllers', keysOf(below(below(spec, 'controllers'), 'arithmetic'))],
   ['### actuators', keysOf(below(spec, 'actuators'))],
   ['### scenarios', keysOf(below(spec, 'scenarios'))],
   ['### scenarios', keysOf(below(below(spec, 'scenarios'), 'inputs')).filter((key) => !shapes.includes(key))],
@@ -85,6 +88,13 @@ test.each([
       rows.some((cell) => cell.includes(`\`${key}\``)),
       key,
     ).toBe(true);
+});
+
+test('the number formats name every word of theirs, and the example of them loads', () => {
+  const text = section('#### Number formats');
+  for (const word of [...roundings, ...overflows]) expect(text).toContain(`\`${word}\``);
+  const [, example] = /```yaml\n(arithmetic: .*)\n```/.exec(text)!;
+  expect(errorsOf(smallSpec({ settings: `every: 1 ms\n${example}` }))).toEqual([]);
 });
 
 test('every section has a heading', () => {
