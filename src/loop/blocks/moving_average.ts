@@ -23,7 +23,8 @@ export const movingAverage: Block = {
         meaning: `number n of samples, from 1 to ${longest}`,
       },
     ],
-    meaning: 'y = (x + x₁ + … + xₙ₋₁)/n, summed from left to right',
+    meaning:
+      'y = (x + x₁ + … + xₙ₋₁)/n, summed from left to right; where n is a power of two x·(1/n) + x₁·(1/n) + …, which leaves a fixed-point sum in its range',
   },
   keepsRange: false,
   expand: (use, { arithmetic, addMemory }) => {
@@ -42,6 +43,13 @@ export const movingAverage: Block = {
       const newer: Node = sample;
       sample = addMemory(`${use.name} x${k}`, () => newer);
       samples.push(sample);
+    }
+    if (Number.isInteger(Math.log2(count))) {
+      const share = arithmetic.number(1 / count);
+      return arithmetic.sumOfProducts(
+        samples.map(() => share),
+        samples,
+      );
     }
     const sum = arithmetic.sum(samples.map((value) => ({ value })));
     return arithmetic.divide(sum, arithmetic.number(count));

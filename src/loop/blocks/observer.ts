@@ -71,6 +71,15 @@ export const observer: Block = {
         'product',
       ),
       {
+        name: 'starts_at',
+        kind: 'matrix',
+        rows: states,
+        columns: 'plain',
+        entry: 'ratio',
+        optional: true,
+        meaning: 'x̄ at power-up; 0 by default',
+      },
+      {
         name: 'uses',
         kind: 'word',
         words: ['this_sample', 'last_sample'],
@@ -86,8 +95,9 @@ export const observer: Block = {
     const names = use.names('states');
     const model = modelOf(use, names.length, workshop);
     const atOnce = use.word('uses') === 'this_sample';
+    const starts = startsOf(use, names.length);
     const predicted: Node[] = names.map((name, row) =>
-      workshop.addMemory(`${name} predicted`, () => next(row), 0),
+      workshop.addMemory(`${name} predicted`, () => next(row), starts[row]),
     );
     const { arithmetic } = workshop;
     const surprise = valuesOf(use, 'measured').map((seen, row) =>
@@ -152,6 +162,14 @@ function sized(use: BlockUse, name: string, rows: number, columns: number): Node
 
 function fail(use: BlockUse, fault: string): never {
   throw new LoopError(`observer '${use.name}' ${fault}`, use.place);
+}
+
+function startsOf(use: BlockUse, order: number): number[] {
+  const given = use.matrix('starts_at')?.flat();
+  if (!given) return Array(order).fill(0);
+  const starts = given.flatMap((entry) => (entry.kind === 'number' ? [entry.value] : []));
+  if (starts.length === order && given.length === order) return starts;
+  return fail(use, `has a starts_at that is not ${order} numbers`);
 }
 
 function workedOut(
