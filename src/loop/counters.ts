@@ -21,7 +21,8 @@ export function countOf(what: 'overflows' | 'limit hits', controller: string): s
 
 /**
  * Counts of what happens in controllers, and the signals that show them. `overflows`: results outside the number format,
- * before they saturate or wrap, sums in the accumulator included. `limit hits`: values that a range holds at one of its ends.
+ * before they saturate or wrap, sums in the accumulator included. `limit hits`: values that a range holds at one of its ends,
+ * or inputs that their number format does; readings are held before the controller sees them and do not count.
  * An operation counts once an instant, also where a condition leaves its result out.
  */
 export function countersOf(

@@ -52,13 +52,12 @@ export class FixedRules implements NumberRules {
   }
 
   apply(name: OperationName, of: readonly Node[]): Node {
+    if (of.every(isLiteral)) return this.graph.apply(name, ...of);
     if (name === 'multiply') return this.sum([{ factor: of[0], value: of[1] }]);
     if (name === 'divide') return this.divide(of[0], of[1]);
     if (name === 'add') return this.sum([{ value: of[0] }, { value: of[1] }]);
     if (name === 'subtract') return this.sum([{ value: of[0] }, { value: of[1], minus: true }]);
     if (name === 'choose') return this.graph.apply(name, of[0], this.operand(of[1]), this.operand(of[2]));
-    if (of.every(isLiteral) && (picking.has(name) || asking.has(name) || turning.has(name)))
-      return this.graph.apply(name, ...of);
     const given = of.map((node) => this.operand(node));
     if (picking.has(name) || asking.has(name)) return this.graph.apply(name, ...given);
     if (turning.has(name)) return this.fitted(this.graph.apply(name, ...given));
@@ -96,7 +95,6 @@ export class FixedRules implements NumberRules {
   }
 
   keep(node: Node): Node {
-    if (node.kind === 'operation' && asking.has(node.name)) return this.fitted(node);
     return this.operand(node);
   }
 
@@ -158,8 +156,9 @@ export class FixedRules implements NumberRules {
     return values.map((value) => this.graph.number(value));
   }
 
-  /** A number among signals of the format must be one of its numbers. @throws FormatMismatch */
+  /** A number among signals must be one of the format's; a truth or a sign is made one. @throws FormatMismatch */
   private operand(node: Node): Node {
+    if (node.kind === 'operation' && asking.has(node.name)) return this.fitted(node);
     if (node.kind !== 'number' || this.holds(node.value)) return node;
     throw new FormatMismatch(this.misfit(node), node.stored?.place);
   }

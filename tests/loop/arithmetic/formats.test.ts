@@ -69,7 +69,9 @@ describe('numbers in fixed point', () => {
   });
 
   it('in expressions are exact, or an error', () => {
-    expect([...outputsOfLaw(law('command: { value: 0.25*x + 3/8 }'), [0.5])]).toEqual([0.5]);
+    expect([...outputsOfLaw(law('command: { value: 0.25*x + 3/8 + sqrt(4)/8 - 2^-2 }'), [0.5])]).toEqual([
+      0.5,
+    ]);
     expect([...outputsOfLaw(law('command: { value: 2*x }'), [0.25])]).toEqual([0.5]);
     expect(mistake(law('command: { value: 0.1*x }'))).toContain(
       '0.1 is no number of Q1.15: its nearest are 0.099',
@@ -109,6 +111,9 @@ describe('operations that give other things than sums', () => {
     expect(outputs('abs(x)')).toEqual([most, 0.5, 0, 0.25]);
     expect(outputs('ceil(x)')).toEqual([-1, 0, 0, most]);
     expect(outputs('sign(x)')).toEqual([-1, -1, 0, most]);
+    expect(outputs('x < 0')).toEqual([most, most, 0, 0]);
+    expect(outputs('if(x < 0, sign(x), 0.5)')).toEqual([-1, -1, 0.5, 0.5]);
+    expect(outputs('0.5*sign(x)')).toEqual([-0.5, -0.5, 0, 0.5]);
   });
 
   it('choose among numbers of the format', () => {
