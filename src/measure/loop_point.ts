@@ -15,8 +15,9 @@ export type LoopViewResult = { kind: 'loop'; loop: LoopView } | { kind: 'unforme
 
 /** The loop opened at one signal and linearised at one point, for plant after plant. */
 export class LoopPoint {
-  private readonly linearisation: Linearisation;
-  private readonly overrides: { group: 'state' | 'input' | 'held'; index: number; value: number }[];
+  readonly linearisation: Linearisation;
+  /** The leaves that `around` sets, SI. */
+  readonly overrides: { group: 'state' | 'input' | 'held'; index: number; value: number }[];
 
   constructor(spec: Spec, coefficients: CoefficientValues, { signals, around }: Requirement) {
     const at = sensorFedBy(spec, signals.at) ?? signals.at;
