@@ -6,6 +6,7 @@
  */
 export { type BuildRecord, type BuildRequest, runBuild } from './build.js';
 export { type Candidate, candidates } from './candidates.js';
+export { type FunctionCode, functionCode } from './code/function_code.js';
 export type {
   Coefficient,
   DeclaredAt,
