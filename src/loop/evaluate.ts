@@ -27,10 +27,11 @@ export class Evaluation {
 
   private operation(node: Extract<Node, { kind: 'operation' }>): number {
     if (node.name === 'choose') return this.of(node.of[0]) !== 0 ? this.of(node.of[1]) : this.of(node.of[2]);
-    const [a, b, c, ...more] = node.of;
     const operate = (this.rounding === 'off' && unrounded[node.name]) || operations[node.name];
+    const [a, b, c] = node.of;
     if (b === undefined) return operate(this.of(a));
     if (c === undefined) return operate(this.of(a), this.of(b));
-    return operate(this.of(a), this.of(b), this.of(c), ...more.map((one) => this.of(one)));
+    if (node.of.length === 3) return operate(this.of(a), this.of(b), this.of(c));
+    return operate(...node.of.map((one) => this.of(one)));
   }
 }
