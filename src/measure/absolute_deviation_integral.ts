@@ -13,6 +13,7 @@ export const absoluteDeviationIntegral: TraceMeasure = {
     dimension: (of) => productOf(of, timeDimension),
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: '∫ |of − to| dt over the window; in the unit of `of` times s',
   },

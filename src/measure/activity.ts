@@ -12,6 +12,7 @@ export const activity: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       'root mean square of `of` less its mean over the window: what noise and quanta drive where nothing else happens; in the unit of `of`',

@@ -12,6 +12,7 @@ export const bandwidth: LoopMeasure = {
     dimension: () => rateDimension,
     ratio: false,
     better: 'higher',
+    least: 0,
     window: undefined,
     takesHertz: true,
     meaning:

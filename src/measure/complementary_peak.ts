@@ -12,6 +12,7 @@ export const complementaryPeak: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'lower',
+    least: 0,
     window: undefined,
     meaning:
       'max |L/(1 + L)| over frequency (of several rates: the largest singular value of the lifted L/(1 + L)); a ratio or dB; infinite when the closed loop is unstable',

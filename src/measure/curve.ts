@@ -65,6 +65,11 @@ export function lessConstant(curve: Curve, amount: number): Curve {
   return { ...curve, points: curve.points.map((point) => point - amount) };
 }
 
+/** Whether a curve has one value all the time. */
+export function isConstant({ points }: Curve): boolean {
+  return points.every((point) => point === points[0]);
+}
+
 /** The piece that is under way at a time, or the last one: the later one where two meet. */
 export function pieceAt({ times, pieces }: Curve, time: number): number {
   let [low, high] = [0, pieces - 1];

@@ -13,6 +13,7 @@ export const decayRatio: TraceMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'single_step',
     meaning:
       '(second peak − after)/(first peak − after) of `of`, peaks beyond the value of `to` after its step only; a share; 0 without a second such peak',

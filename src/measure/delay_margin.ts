@@ -12,6 +12,7 @@ export const delayMargin: LoopMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'higher',
+    least: 0,
     window: undefined,
     meaning:
       'smallest (π + arg L)/ω, counted from 0 to 2π, over all frequencies with |L| = 1; s; infinite without a crossover, 0 when the closed loop is unstable',

@@ -20,6 +20,7 @@ export const delayTime: TraceMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'single_step_outlasting_limit',
     meaning:
       'from the step of `to` to the first time `of` reaches before + share·(after − before); s; never where it does not',

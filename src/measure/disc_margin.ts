@@ -12,6 +12,8 @@ export const discMargin: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'higher',
+    least: 0,
+    most: 2,
     window: undefined,
     meaning:
       'α = 1/max |S − 1/2| over frequency (of several rates: of the lifted S): factors (1 + αδ/2)/(1 − αδ/2), |δ| < 1, on the loop leave it stable; a plain number; 0 when the closed loop is unstable',

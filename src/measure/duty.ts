@@ -22,6 +22,8 @@ export const duty: TraceMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'lower',
+    least: 0,
+    most: 1,
     window: 'from_first_event',
     meaning:
       'largest mean of |of| over any stretch of length `over` inside the window, divided by the larger end of its range in size; a share',

@@ -10,7 +10,7 @@ import type { CoefficientValues } from '../loop/parts.js';
 import { type Schedule, scheduleOf } from '../loop/schedule.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import { signalsOfStatement } from '../spec/statement.js';
-import type { Curve } from './curve.js';
+import { type Curve, isConstant } from './curve.js';
 import { measureNamed } from './index.js';
 import { LoopPoint, type LoopViewResult } from './loop_point.js';
 import {
@@ -35,6 +35,15 @@ interface TraceGroup {
 interface LoopGroup {
   point: LoopPoint;
   requirements: { requirement: Requirement; index: number }[];
+}
+
+/** One plant to measure, with what all its scenarios have in common. */
+interface PlantCase {
+  /** SI, in the order of the spec. */
+  parameters: Float64Array;
+  rest: RestResult;
+  schedule: Schedule;
+  halvings: number;
 }
 
 /** Measures every requirement of a spec for one plant after another. */
@@ -66,11 +75,9 @@ export class PlantEvaluator {
    */
   evaluate(parameters: Float64Array, halvings: number): MeasureResult[] {
     const results: MeasureResult[] = this.spec.requirements.map(() => unformed('it was not measured'));
-    const schedule = this.commonSchedule ?? scheduleOf(this.loop, parameters);
-    const rest = pointOfRest(this.linearisation, parameters, this.loop.inputRest);
-    for (const group of this.traceGroups)
-      this.traceResults(group, parameters, rest, schedule, halvings, results);
-    for (const group of this.loopGroups) this.loopResults(group, parameters, rest, schedule, results);
+    const plant = this.plantCase(parameters, halvings);
+    for (const group of this.traceGroups) this.traceResults(group, plant, results);
+    for (const group of this.loopGroups) this.loopResults(group, plant, results);
     return results;
   }
 
@@ -110,46 +117,48 @@ export class PlantEvaluator {
     return [...groups.values()];
   }
 
-  private traceResults(
-    group: TraceGroup,
-    parameters: Float64Array,
-    common: RestResult,
-    schedule: Schedule,
-    halvings: number,
-    results: MeasureResult[],
-  ): void {
-    const fromRest = group.run.scenario.start === 'rest';
-    const rest = group.ownStates
-      ? pointOfRest(group.ownStates, parameters, group.ownStates.loop.inputRest)
-      : common;
-    if (fromRest && rest.kind === 'none') {
-      for (const { index } of group.requirements) results[index] = unformed(rest.why);
-      return;
+  /**
+   * For each requirement whether every signal that it follows stays as it is over its whole scenario, in this plant: then it
+   * guards nothing. Requirements of the loop follow none.
+   */
+  staysStill(parameters: Float64Array): boolean[] {
+    const still = this.spec.requirements.map(() => false);
+    const plant = this.plantCase(parameters, 0);
+    for (const group of this.traceGroups) {
+      const traces = tracesOf(group, plant);
+      if (typeof traces === 'string') continue;
+      for (const { requirement, index } of group.requirements) {
+        still[index] = followedBy(requirement).every((name) => isConstant(traces.curve(name)));
+      }
     }
-    const point = fromRest && rest.kind === 'rest' ? rest.point : undefined;
-    const run = numeric(() => group.run.run(parameters, point, schedule, halvings));
-    if (typeof run === 'string') {
-      for (const { index } of group.requirements) results[index] = unformed(run);
-      return;
-    }
-    const curves = new Map<string, Curve>();
-    const curve = (name: string): Curve => {
-      const found = curves.get(name) ?? group.run.curve(run, name);
-      curves.set(name, found);
-      return found;
-    };
+    return still;
+  }
+
+  private plantCase(parameters: Float64Array, halvings: number): PlantCase {
+    const schedule = this.commonSchedule ?? scheduleOf(this.loop, parameters);
+    const rest = pointOfRest(this.linearisation, parameters, this.loop.inputRest);
+    return { parameters, rest, schedule, halvings };
+  }
+
+  private traceResults(group: TraceGroup, plant: PlantCase, results: MeasureResult[]): void {
+    const traces = tracesOf(group, plant);
     for (const { requirement, index, measure } of group.requirements) {
-      const context = this.traceContext(group, requirement, parameters, schedule, curve);
+      if (typeof traces === 'string') {
+        results[index] = unformed(traces);
+        continue;
+      }
+      const context = this.traceContext(group, requirement, plant, traces.curve);
       results[index] =
-        endedEarly(run) ?? windowFault(context.window, group.run.scenario.lasts) ?? measure.measure(context);
+        endedEarly(traces.run) ??
+        windowFault(context.window, group.run.scenario.lasts) ??
+        measure.measure(context);
     }
   }
 
   private traceContext(
     { run, events }: TraceGroup,
     { signals, quantities, bounds, statement }: Requirement,
-    parameters: Float64Array,
-    schedule: Schedule,
+    { parameters, schedule }: PlantCase,
     curve: (name: string) => Curve,
   ): TraceContext {
     const { of, to } = signals;
@@ -196,9 +205,7 @@ export class PlantEvaluator {
 
   private loopResults(
     { point, requirements }: LoopGroup,
-    parameters: Float64Array,
-    rest: RestResult,
-    schedule: Schedule,
+    { parameters, rest, schedule }: PlantCase,
     results: MeasureResult[],
   ): void {
     const found: LoopViewResult | string =
@@ -209,6 +216,26 @@ export class PlantEvaluator {
       results[index] = loopResult(measure, found, requirement);
     }
   }
+}
+
+/** The run of a scenario and the curves of its signals, or why there is none. */
+function tracesOf(
+  { run: scenario, ownStates }: TraceGroup,
+  { parameters, rest: common, schedule, halvings }: PlantCase,
+): { run: Run; curve: (name: string) => Curve } | string {
+  const rest = ownStates ? pointOfRest(ownStates, parameters, ownStates.loop.inputRest) : common;
+  const fromRest = scenario.scenario.start === 'rest';
+  if (fromRest && rest.kind === 'none') return rest.why;
+  const point = fromRest && rest.kind === 'rest' ? rest.point : undefined;
+  const run = numeric(() => scenario.run(parameters, point, schedule, halvings));
+  if (typeof run === 'string') return run;
+  const curves = new Map<string, Curve>();
+  const curve = (name: string): Curve => {
+    const found = curves.get(name) ?? scenario.curve(run, name);
+    curves.set(name, found);
+    return found;
+  };
+  return { run, curve };
 }
 
 function loopResult(

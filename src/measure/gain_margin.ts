@@ -12,6 +12,7 @@ export const gainMargin: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'higher',
+    least: 1,
     window: undefined,
     meaning:
       'smallest factor above one by which the gain may be multiplied or divided, from L real and negative (of several rates: from an eigenvalue of the lifted L); a ratio or dB; infinite where there is none, 1 when the closed loop is unstable',

@@ -12,6 +12,7 @@ export const holdPhaseLoss: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: undefined,
     meaning:
       'ω·T/2 at the highest frequency ω with |L| = 1, T being the sampling period at the loop point; an angle; 0 without a crossover',

@@ -13,6 +13,7 @@ export const inverseResponse: TraceMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'single_step',
     meaning:
       'max(0, (before − of)/(after − before)), from the step of `to` (from before to after) to its next change: how far the response goes the wrong way; a share',

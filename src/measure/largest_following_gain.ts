@@ -14,6 +14,7 @@ export const largestFollowingGain: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'lower',
+    least: 0,
     window: undefined,
     meaning:
       'max |L/(1 + L)| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB; infinite when the closed loop is unstable',

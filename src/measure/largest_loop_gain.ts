@@ -14,6 +14,7 @@ export const largestLoopGain: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'lower',
+    least: 0,
     window: undefined,
     meaning: 'max |L| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB',
   },

@@ -14,6 +14,7 @@ export const largestSensitivity: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'lower',
+    least: 0,
     window: undefined,
     meaning:
       'max |1/(1 + L)| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB; infinite when the closed loop is unstable',

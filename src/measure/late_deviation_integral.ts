@@ -13,6 +13,7 @@ export const lateDeviationIntegral: TraceMeasure = {
     dimension: (of) => productOf(of, powerOf(timeDimension, 2)),
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       '∫ t·|of − to| dt over the window, t from its beginning, so that late errors count more; in the unit of `of` times s²',

@@ -12,6 +12,7 @@ export const leastDamping: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'higher',
+    most: 1,
     window: undefined,
     meaning:
       'least −Re s/|s| over the modes of the closed loop, s = ln(z)/T; a plain number from 1 (no oscillation) to 0; negative when unstable',

@@ -13,6 +13,7 @@ export const longestTimeAtLimit: TraceMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       'longest time without a break in which `of` is within half a resolution of one end of its range, in the window; s',

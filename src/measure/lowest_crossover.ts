@@ -12,6 +12,7 @@ export const lowestCrossover: LoopMeasure = {
     dimension: () => rateDimension,
     ratio: false,
     better: 'higher',
+    least: 0,
     window: undefined,
     takesHertz: true,
     meaning: 'lowest frequency with |L| = 1; rad/s or Hz; 0 without one',

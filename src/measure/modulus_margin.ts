@@ -12,6 +12,7 @@ export const modulusMargin: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'higher',
+    least: 0,
     window: undefined,
     meaning:
       'min |1 + L| over frequency = 1/max |S| (of several rates: one over the largest singular value of the lifted S); a plain number; 0 when the closed loop is unstable',

@@ -11,6 +11,7 @@ export const oscillationAmplitude: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: '(max of − min of)/2 in the window; in the unit of `of`',
   },

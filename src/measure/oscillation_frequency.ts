@@ -17,6 +17,7 @@ export const oscillationFrequency: TraceMeasure = {
     dimension: () => frequencyDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       '(n − 1)/(time from the first to the last) of the n upward passages of `of` through (max + min)/2 of the window, each after being below it by half the amplitude; Hz; 0 with fewer than two passages',

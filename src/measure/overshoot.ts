@@ -16,6 +16,7 @@ export const overshoot: TraceMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'single_step',
     meaning:
       'max(0, (of − after)/(after − before)), from the step of `to` (from before to after) to its next change; a share',

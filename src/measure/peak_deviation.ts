@@ -12,6 +12,7 @@ export const peakDeviation: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: 'max |of − to| in the window: the largest tracking error; in the unit of `of`',
   },

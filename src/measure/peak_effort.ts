@@ -11,6 +11,7 @@ export const peakEffort: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: 'max |of| in the window; in the unit of `of`',
   },

@@ -12,6 +12,8 @@ export const phaseMargin: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'higher',
+    least: 0,
+    most: Math.PI,
     window: undefined,
     meaning:
       'smallest |π + arg L| over all frequencies with |L| = 1 (of several rates: with an eigenvalue of the lifted L of size 1); an angle; infinite without a crossover, 0 when the closed loop is unstable',

@@ -24,6 +24,7 @@ export const recoveryTime: TraceMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       'from the beginning of the window to the last entry of `of` into `to` ± band, staying inside to its end; s; 0 where it never leaves the band, never where it ends outside',

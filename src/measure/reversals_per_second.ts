@@ -22,6 +22,7 @@ export const reversalsPerSecond: TraceMeasure = {
     dimension: () => rateDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       'number of changes of direction of `of` after which it moves by more than `beyond`, over the length of the window; 1/s',

@@ -31,6 +31,7 @@ export const riseTime: TraceMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'single_step_outlasting_limit',
     meaning:
       'from the first time `of` reaches before + low·(after − before) to the first time it reaches before + high·(after − before), after the step of `to`; s; never where it does not',

@@ -12,6 +12,7 @@ export const rmsDeviation: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       '√(∫ (of − to)² dt / length) over the window: the root mean square of the tracking error; in the unit of `of`',

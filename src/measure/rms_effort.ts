@@ -11,6 +11,7 @@ export const rmsEffort: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: '√(∫ of² dt / length) over the window; in the unit of `of`',
   },

@@ -12,6 +12,7 @@ export const samplingRatio: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'higher',
+    least: 0,
     window: undefined,
     meaning:
       'sampling frequency at the loop point over the bandwidth of L/(1 + L); a plain number; 0 without a bandwidth and when the closed loop is unstable',

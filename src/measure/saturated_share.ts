@@ -13,6 +13,8 @@ export const saturatedShare: TraceMeasure = {
     dimension: () => plainNumber,
     ratio: false,
     better: 'lower',
+    least: 0,
+    most: 1,
     window: 'from_first_event',
     meaning:
       'time with `of` within half a resolution of either end of its range, over the length of the window; a share',

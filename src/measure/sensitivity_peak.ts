@@ -12,6 +12,7 @@ export const sensitivityPeak: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'lower',
+    least: 0,
     window: undefined,
     meaning:
       'max |S| over frequency, S = 1/(1 + L) (of several rates: the largest singular value of the lifted S); a ratio or dB; infinite when the closed loop is unstable',

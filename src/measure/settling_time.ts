@@ -26,6 +26,7 @@ export const settlingTime: TraceMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'single_step_outlasting_limit',
     meaning:
       'from the step of `to` to the last entry of `of` into after ± band·|after − before|, staying inside to the end of the window; s; 0 where it never leaves the band, never where it ends outside',

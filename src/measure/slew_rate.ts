@@ -17,6 +17,7 @@ export const slewRate: TraceMeasure = {
     dimension: (of) => productOf(of, rateDimension),
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       'max |d(of)/dt| in the window, infinite at a jump; of a sampled or held signal the largest change from one instant to the next over the time between them; in the unit of `of` per s',

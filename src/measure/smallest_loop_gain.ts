@@ -14,6 +14,7 @@ export const smallestLoopGain: LoopMeasure = {
     dimension: () => plainNumber,
     ratio: true,
     better: 'higher',
+    least: 0,
     window: undefined,
     meaning: 'min |L| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB',
   },

@@ -13,6 +13,7 @@ export const squaredDeviationIntegral: TraceMeasure = {
     dimension: (of) => productOf(productOf(of, of), timeDimension),
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: '∫ (of − to)² dt over the window; in the squared unit of `of` times s',
   },

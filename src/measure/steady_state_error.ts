@@ -27,6 +27,7 @@ export const steadyStateError: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: '|mean of (of − to)| over the last part of the window, of length `over`; in the unit of `of`',
   },

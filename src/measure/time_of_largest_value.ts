@@ -12,6 +12,7 @@ export const timeOfLargestValue: TraceMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: 'from the beginning of the window to the first time `of` has its largest value in it; s',
   },

@@ -12,6 +12,7 @@ export const timeOfSmallestValue: TraceMeasure = {
     dimension: () => timeDimension,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning: 'from the beginning of the window to the first time `of` has its smallest value in it; s',
   },

@@ -12,6 +12,7 @@ export const travel: TraceMeasure = {
     dimension: (of) => of,
     ratio: false,
     better: 'lower',
+    least: 0,
     window: 'from_first_event',
     meaning:
       'sum of all ways up and down of `of` in the window, jumps included, also one at its beginning; in the unit of `of`',

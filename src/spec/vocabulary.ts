@@ -93,6 +93,9 @@ export interface MeasureDescription {
   takesHertz?: boolean;
   /** `lower`: a smaller value is better. */
   better: 'lower' | 'higher';
+  /** No plant gives less (or more) than this, SI: a limit beyond it guards nothing. */
+  least?: number;
+  most?: number;
   /**
    * Measures whose window must contain exactly one change of the target signal and outlast the limit by half
    * (settling_time) say so, for the spec reader to check.
