@@ -194,7 +194,7 @@ describe('a function that cannot be digested', () => {
 const law = `
 __attribute__((noinline)) float limited(float x) { return x > 1.0f ? 1.0f : x; }
 #ifdef PADDING
-int unrelated_data[7] = {1, 2, 3};
+__attribute__((section(".data.elsewhere"))) int unrelated_data[7] = {1, 2, 3};
 __attribute__((noinline)) int unrelated(int x) { return x * unrelated_data[x & 3]; }
 #endif
 float other(float x);
