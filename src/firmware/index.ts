@@ -1,8 +1,13 @@
 /**
- * Reads coefficients out of a firmware build.
+ * Reads coefficients out of a firmware build: an exact value, or a `FirmwareError` that says what is wrong and how to cure it.
  *
- * `openImage` opens an image, `readCoefficient` and `readCoefficients` read values out of it, `describeImage` says where they come
- * from, `runBuild` makes the image first. Nothing here guesses: there is an exact value or a `FirmwareError`.
+ * - Opening: `openImageFile(path)` opens a file and finds debug information that was split off; `openImage(bytes, name)` opens bytes
+ *   (ELF, Intel HEX, S-records, or a raw binary with its base address); `openSource` reads constants of C and C++ through the real
+ *   preprocessor; `openCommand` takes a program's JSON. All give a `FirmwareImage`.
+ * - Reading: `readCoefficient(image, request)`, or `readCoefficients(image, requests)` for all values and all errors at once.
+ * - Listing: `matchPaths(image, 'azimuth.**')` expands wildcards to paths, `candidates(image)` offers what a first spec may ask
+ *   for, `compareImages(before, after)` says what changed, was added and has vanished.
+ * - Provenance: `describeImage(image)`; `runBuild` makes the image first, without a shell and under a time limit.
  */
 export { type BuildRecord, type BuildRequest, runBuild } from './build.js';
 export { type Candidate, candidates } from './candidates.js';
