@@ -97,7 +97,7 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
   const scenarios = readScenarios(childOf(root, 'scenarios'), reading);
   const requirements = readRequirements(childOf(root, 'requirements'), { scenarios, sensors }, reading);
   const perturbation = readPerturbation(childOf(root, 'perturbation'), parameters, reading);
-  const merge = readMerge(entryOf(root, 'merge'), reading);
+  const merge = readMerge(entryOf(root, 'merge'), requirements, reading);
   const spec: Spec = {
     file,
     loop: textOf(childOf(root, 'loop'))?.text ?? '',

@@ -67,7 +67,19 @@ export function readFirmware(entry: MapEntry | undefined, reading: Reading): Fir
     image: image?.text ?? '',
     imagePlace: image?.place ?? place,
     coefficients: entriesOf(childOf(value, 'coefficients')).map((one) => readCoefficient(one, reading)),
+    law: entryOf(value, 'law') && readLaw(childOf(value, 'law'), reading),
   };
+}
+
+/** Names of functions, each once. */
+function readLaw(tree: Tree | undefined, reading: Reading): Firmware['law'] {
+  const names = itemsOf(tree).flatMap((item) => textOf(item) ?? []);
+  names.forEach(({ text, place }, at) => {
+    const earlier = names.findIndex((one) => one.text === text);
+    if (earlier < at)
+      reading.problems.add(place, `the function \`${text}\` is already at line ${names[earlier].place.line}`);
+  });
+  return names.map(({ text, place }) => ({ name: text, place }));
 }
 
 function readCoefficient(entry: MapEntry, reading: Reading): CoefficientDefinition {

@@ -1,7 +1,8 @@
 import { readShare, readWhole } from './read_quantity.js';
 import { readConditions, readCorrelations } from './read_relations.js';
+import { readWaivers } from './read_waivers.js';
 import type { Reading } from './reading.js';
-import type { ParameterDefinition, Perturbation, Spec } from './spec.js';
+import type { Merge, ParameterDefinition, Perturbation, Requirement } from './spec.js';
 import { childOf, type MapEntry, type Tree, textOf } from './tree.js';
 
 /** What `perturbation:` leaves out. */
@@ -40,8 +41,12 @@ export function readPerturbation(
   };
 }
 
-/** `merge:` the latched reference and the headroom that a change may cost. */
-export function readMerge(entry: MapEntry | undefined, reading: Reading): Spec['merge'] {
+/** `merge:` the latched reference, the headroom that a change may cost, and what is let through in spite of it. */
+export function readMerge(
+  entry: MapEntry | undefined,
+  requirements: readonly Requirement[],
+  reading: Reading,
+): Merge | undefined {
   if (entry?.value.kind !== 'map') return undefined;
   const reference = textOf(childOf(entry.value, 'reference'))?.text ?? '';
   const slipTree = childOf(entry.value, 'may_slip');
@@ -49,7 +54,8 @@ export function readMerge(entry: MapEntry | undefined, reading: Reading): Spec['
   if (slipTree !== undefined && slip !== undefined && (slip < 0 || slip > 1)) {
     reading.problems.add(slipTree.place, '`may_slip` is a share of headroom from 0 % to 100 %');
   }
-  return { reference, maySlip: slip ?? Number.NaN, place: entry.keyPlace };
+  const waivers = readWaivers(childOf(entry.value, 'waivers'), requirements, reading);
+  return { reference, maySlip: slip ?? Number.NaN, place: entry.keyPlace, waivers };
 }
 
 /** `pawl:` the format version. */

@@ -100,6 +100,11 @@ const firmware = z
       .optional(),
     image: text('the path of the image, relative to this file'),
     coefficients: named(coefficient, 'coefficients'),
+    law: z
+      .array(text('the name of a function'))
+      .min(1)
+      .describe('a list of functions, such as [control_step]')
+      .optional(),
   })
   .describe('a mapping with image, and coefficients by name');
 
@@ -373,9 +378,21 @@ const perturbation = z
   })
   .describe('{ plants: …, seed: …, confidence: … }');
 
+const waiver = z
+  .strictObject({
+    requirement: text('the name of a requirement'),
+    reason: text('plain words'),
+    until: text('a date such as 2027-03-01'),
+  })
+  .describe('{ requirement: …, reason: …, until: 2027-03-01 }');
+
 const merge = z
   .strictObject({
     reference: text('the path of the latched reference, relative to this file'),
     may_slip: text('a share such as 5 %'),
+    waivers: z
+      .array(waiver)
+      .describe('a list of { requirement: …, reason: …, until: 2027-03-01 }')
+      .optional(),
   })
   .describe('{ reference: …, may_slip: … }');

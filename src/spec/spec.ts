@@ -281,6 +281,8 @@ export interface Firmware {
   image: string;
   imagePlace: Place;
   coefficients: CoefficientDefinition[];
+  /** Functions that hold the control law: a change of their machine code must be latched. */
+  law?: { name: string; place: Place }[];
 }
 
 export interface Perturbation {
@@ -293,6 +295,25 @@ export interface Perturbation {
   /** Plants count only where each of these is not 0; expressions of parameters in SI. */
   onlyWhere?: Expression[];
   correlations?: Correlation[];
+}
+
+/** What a change is compared with, and what it may cost. */
+export interface Merge {
+  /** The latched reference's path, relative to the spec. */
+  reference: string;
+  /** Headroom that a change may cost, a share of the limit. */
+  maySlip: number;
+  place: Place;
+  waivers?: Waiver[];
+}
+
+/** Lets a known broken requirement be latched, and merged while it gets no worse, for a time. */
+export interface Waiver {
+  requirement: string;
+  reason: string;
+  /** The last day on which it counts, as YYYY-MM-DD. */
+  until: string;
+  place: Place;
 }
 
 /** One loop, its firmware, plant, scenarios and requirements, checked; every value in SI unless said otherwise. */
@@ -309,8 +330,7 @@ export interface Spec {
   scenarios: Scenario[];
   requirements: Requirement[];
   perturbation: Perturbation;
-  /** The latched reference's path relative to the spec, and the headroom a change may cost (a share). */
-  merge: { reference: string; maySlip: number; place: Place } | undefined;
+  merge: Merge | undefined;
 }
 
 /** Something wrong in a spec: one line for people, at its place. */
