@@ -64,6 +64,7 @@ export class InputProgram {
       at: this.lower(event.at),
       lasts: event.lasts && this.lower(event.lasts),
       setting: (key: string) => settings.get(key),
+      points: (key: string) => event.points[key],
       scenarioLasts: scenario.lasts,
     };
     const nodes = [use.at, use.lasts, ...settings.values()];

@@ -36,7 +36,7 @@ export function gatherParts(
   includes: Includes | undefined,
   problems: Problems,
 ): Part[] {
-  const within = posix.normalize(includes?.within ?? posix.dirname(file));
+  const within = topFolder(file, includes);
   const gathering: Gathering = { includes, within, problems, parts: [] };
   gather({ file, tree: root }, [file], gathering);
   return gathering.parts;
@@ -100,8 +100,13 @@ function readPart(text: TextTree, from: string, path: string[], gathering: Gathe
   return undefined;
 }
 
+/** The folder that no path of a spec may leave. */
+export function topFolder(file: string, includes: Includes | undefined): string {
+  return posix.normalize(includes?.within ?? posix.dirname(file));
+}
+
 /** Paths are relative and written with /, so that they mean the same on every machine. */
-function isInside(written: string, file: string, within: string): boolean {
+export function isInside(written: string, file: string, within: string): boolean {
   if (written.includes('\\') || /^[A-Za-z]:/.test(written) || posix.isAbsolute(written)) return false;
   const way = posix.relative(within, file);
   return way !== '' && way !== '..' && !way.startsWith('../');

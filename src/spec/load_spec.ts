@@ -14,6 +14,7 @@ import { readYaml } from './read_yaml.js';
 import type { Reading } from './reading.js';
 import { skeletonsOf } from './skeleton.js';
 import type { Spec, SpecError } from './spec.js';
+import { withTableFiles } from './table_files.js';
 import { childOf, entryOf, type MapTree, type Tree, textOf } from './tree.js';
 import type { Vocabulary } from './vocabulary.js';
 
@@ -35,7 +36,8 @@ export function loadSpec(
   includes?: Includes,
 ): LoadedSpec {
   const problems = newProblems();
-  const root = rootOf(readYaml(text, file, problems), (place, message) => problems.add(place, message));
+  const read = rootOf(readYaml(text, file, problems), (place, message) => problems.add(place, message));
+  const root = read && withTableFiles(read, { file, includes, problems });
   const spec = root && readWithParts(root, file, { vocabulary, problems, includes });
   const errors = problems.all();
   return spec !== undefined && errors.length === 0 ? { kind: 'spec', spec } : { kind: 'errors', errors };
@@ -67,7 +69,10 @@ function readWithParts(
 ): Spec | undefined {
   const skeletons = skeletonsOf(vocabulary);
   const before = problems.all().length;
-  const parts = gatherParts(root, file, includes, problems);
+  const parts = gatherParts(root, file, includes, problems).map((part) => ({
+    ...part,
+    tree: withTableFiles(part.tree, { file, includes, problems }),
+  }));
   const gathered = problems.all().length === before;
   const shapes = [
     { tree: root, schema: skeletons.spec },

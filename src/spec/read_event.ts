@@ -1,6 +1,7 @@
 import { timeDimension } from './dimension.js';
 import { scenarioRoom } from './names.js';
 import { nominalValue } from './nominal_value.js';
+import { readBound } from './read_bound.js';
 import { readExpression, type Surroundings } from './read_expression.js';
 import { readFrequency } from './read_frequency.js';
 import { missing, type Reading } from './reading.js';
@@ -24,11 +25,19 @@ export function readEvent(
 ): InputEvent {
   const shape = shapeOf(tree, reading);
   if (shape === undefined) {
-    return { shape: 'step', settings: {}, at: missing(tree.place), lasts: undefined, place: tree.place };
+    return {
+      shape: 'step',
+      settings: {},
+      points: {},
+      at: missing(tree.place),
+      lasts: undefined,
+      place: tree.place,
+    };
   }
   const event: InputEvent = {
     shape: shape.key,
     settings: readSettings(tree, shape, dimension, reading),
+    points: readPoints(tree, shape, dimension, reading),
     at: readTime(tree, 'at', reading) ?? missing(tree.place),
     lasts: readLength(tree, shape, reading),
     place: tree.place,
@@ -58,6 +67,7 @@ function readSettings(
   const given = childOf(tree, shape.key)!;
   const settings: Record<string, Expression> = {};
   for (const setting of shape.settings) {
+    if (setting.kind === 'points') continue;
     const direct = setting.name === shape.key && given.kind !== 'map';
     const expression = readSetting(
       direct ? given : childOf(given, setting.name),
@@ -68,6 +78,19 @@ function readSettings(
     if (expression) settings[setting.name] = expression;
   }
   return settings;
+}
+
+function readPoints(
+  tree: Tree,
+  shape: ShapeDescription,
+  dimension: Dimension | undefined,
+  reading: Reading,
+): InputEvent['points'] {
+  const points: InputEvent['points'] = {};
+  for (const { name, kind } of shape.settings) {
+    if (kind === 'points') points[name] = readBound(childOf(tree, name)!, dimension, `\`${name}\``, reading);
+  }
+  return points;
 }
 
 function readSetting(

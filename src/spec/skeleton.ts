@@ -251,7 +251,8 @@ const actuator = z
 
 function shapeValue({ key, settings, meaning }: ShapeDescription) {
   const [first] = settings;
-  if (settings.length === 1 && first.name === key) return text(first.meaning).describe(meaning);
+  if (settings.length === 1 && first.name === key)
+    return first.kind === 'points' ? bound : text(first.meaning).describe(meaning);
   const slots = settings.map(({ name, optional, meaning: what }) => [
     name,
     optional ? text(what).optional() : text(what),

@@ -171,6 +171,8 @@ export interface InputEvent {
   shape: string;
   /** By setting name; the value of the defining key itself, where it is no mapping, is under the shape's own name. */
   settings: Record<string, Expression>;
+  /** Times (s) and values (SI) by setting name, for shapes that are given by points. */
+  points: Record<string, { time: number; value: number }[]>;
   at: Expression;
   /** Undefined where the shape needs none and the spec gives none. */
   lasts: Expression | undefined;

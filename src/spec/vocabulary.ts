@@ -108,8 +108,8 @@ export interface MeasureDescription {
 export interface ShapeSetting {
   name: string;
   optional: boolean;
-  /** `frequency`: in Hz, or a time that is its period. */
-  kind: 'expression' | 'frequency';
+  /** `frequency`: in Hz, or a time that is its period; `points`: a list of times and values, or a table from a file. */
+  kind: 'expression' | 'frequency' | 'points';
   dimension: (input: Dimension) => Dimension;
   meaning: string;
 }

@@ -151,14 +151,14 @@ const cases: [title: string, pieces: Pieces, errors: string[]][] = [
     'a step and a pulse in one',
     { inputsOfStep: 'goal: { step: 1 V, pulse: 2 V, at: 0.1 s }' },
     [
-      '28:13: this event has `step` and `pulse`; expected one of step, pulse, ramp, sine, chirp, square, staircase, noise',
+      '28:13: this event has `step` and `pulse`; expected one of step, pulse, ramp, sine, chirp, square, staircase, noise, recorded',
     ],
   ],
   [
     'neither a step nor a pulse',
     { inputsOfStep: 'goal: { at: 0.1 s}' },
     [
-      '28:13: this event has no shape; expected one of step, pulse, ramp, sine, chirp, square, staircase, noise',
+      '28:13: this event has no shape; expected one of step, pulse, ramp, sine, chirp, square, staircase, noise, recorded',
     ],
   ],
   [

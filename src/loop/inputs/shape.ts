@@ -15,6 +15,8 @@ export interface ShapeUse {
   /** Undefined where the spec gives none: to the end of the scenario. */
   lasts: Node | undefined;
   setting: (name: string) => Node | undefined;
+  /** Times (s) and values (SI) of a setting that is given by points. */
+  points: (name: string) => readonly Change[];
   /** Length of the scenario, s. */
   scenarioLasts: number;
   /** For random shapes: the same for every plant. */
