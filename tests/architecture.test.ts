@@ -14,6 +14,7 @@ const mayImport: Record<string, string[]> = {
   perturb: ['measure', 'kernel', 'linear', 'loop', 'spec'],
   verdict: ['perturb', 'measure', 'kernel', 'linear', 'loop', 'spec', 'firmware'],
   report: ['verdict', 'measure', 'perturb', 'spec', 'firmware'],
+  plots: ['report', 'verdict', 'perturb', 'measure', 'kernel', 'linear', 'loop', 'spec'],
 };
 /** Rooms of which only types may be used, by folder. */
 const typesOnly: Record<string, string[]> = {

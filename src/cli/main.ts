@@ -10,6 +10,7 @@ try {
     complain: (text) => process.stderr.write(text),
     colour: process.stdout.isTTY === true && process.stdout.hasColors() && process.env.NO_COLOR === undefined,
     width: process.stdout.columns ?? 100,
+    environment: process.env,
   });
 } catch (error) {
   process.exitCode = 2;

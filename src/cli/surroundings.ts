@@ -10,6 +10,8 @@ export interface Surroundings {
   colour: boolean;
   /** Columns of the terminal. */
   width: number;
+  /** Environment variables, by which a command knows the CI server it runs on. */
+  environment: Readonly<Record<string, string | undefined>>;
 }
 
 /** The three ways a command can end; see the README. */

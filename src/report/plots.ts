@@ -12,7 +12,7 @@ export interface SpecPlots {
   planes: HeadroomPlane[];
 }
 
-/** A signal over time in one scenario, over all plants. All arrays have one entry for each time. */
+/** A signal over time in one scenario, over some plants. All arrays have one entry for each time. */
 export interface TracePlot {
   /** Names of the requirements that are measured on it; at least one. */
   requirements: string[];
@@ -20,9 +20,11 @@ export interface TracePlot {
   scenario: string;
   /** In which the signal is shown; the values are SI. */
   unit: Unit;
-  /** s, rising. */
+  /** s, rising; the same time twice where a value jumps. */
   times: readonly number[];
-  /** Smallest and largest value over all plants at each time, SI. */
+  /** So many plants make the band. */
+  plants: number;
+  /** Smallest and largest value over these plants at each time, SI. */
   low: readonly number[];
   high: readonly number[];
   nominal: readonly number[];

@@ -32,6 +32,7 @@ export const tracePlot: TracePlot = {
   scenario: 'slew',
   unit: units.milliradian,
   times,
+  plants: family.length,
   low: times.map((_, at) => Math.min(...family.map((one) => one[at]))),
   high: times.map((_, at) => Math.max(...family.map((one) => one[at]))),
   nominal: response(0.7, 4),

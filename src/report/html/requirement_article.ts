@@ -23,13 +23,14 @@ export function requirementArticle(
   plots: SpecPlots | undefined,
 ): Markup {
   const { name, verdict, reason, worst } = requirement;
+  const figures = plotFigures(requirement, id, plots);
   const why = verdict.kind === 'met' ? undefined : html`<p class="why">${verdict.why}</p>`;
   return html`<article id="${id}" class="requirement ${verdict.kind}-side" aria-labelledby="${id}-h">
 <h3 id="${id}-h">${verdictBadge(verdict.kind)} <bdi>${name}</bdi> <span class="measure">${measureInWords(requirement)}</span></h3>
 ${why}${reason && html`<p class="reason">${reason}</p>`}
-<div class="columns"><figure>${limitStrip(requirement, `${id}-s`)}<figcaption><span class="key nominal-key">nominal plant</span> <span class="key worst-key">worst plant</span> <span class="key fence-key">limit; ticks on the broken side</span></figcaption></figure>
-${numbers(requirement)}</div>
-${plotFigures(requirement, id, plots)}
+<div class="columns"><div class="stack"><figure>${limitStrip(requirement, `${id}-s`)}<figcaption><span class="key nominal-key">nominal plant</span> <span class="key worst-key">worst plant</span> <span class="key fence-key">limit; ticks on the broken side</span></figcaption></figure>
+${figures.filter((_, at) => at % 2 === 0)}</div><div class="stack">${numbers(requirement)}
+${figures.filter((_, at) => at % 2 === 1)}</div></div>
 ${worst.parameters.length > 0 ? plantDetails(requirement) : undefined}
 </article>
 `;

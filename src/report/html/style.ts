@@ -35,6 +35,7 @@ tr>:last-child{padding-right:0}
 .requirement h3{margin-top:14px;display:flex;flex-wrap:wrap;gap:2px 12px;align-items:baseline}.requirement h3 .sign{align-self:center}
 .why{font-weight:600}
 .columns{display:grid;grid-template-columns:repeat(auto-fill,minmax(min(100%,430px),1fr));gap:12px 32px;align-items:start}
+@media(max-width:940px){.stack{display:contents}.plot{order:1}}
 figure{margin:10px 0 4px;max-width:560px}
 figcaption{font-size:.88rem}figcaption strong{color:var(--ink);margin-right:8px}
 dl{margin:10px 0}dl>div{display:grid;grid-template-columns:92px 1fr;gap:12px;padding:3px 0}dd{margin:0}
@@ -53,7 +54,7 @@ footer{border-top:3px solid var(--ink);margin-top:48px;padding-top:14px;padding-
 .target{stroke:var(--slate);stroke-width:1.2;stroke-dasharray:1.5 3}
 .leader{stroke:var(--slate);stroke-width:.8}.bracket{stroke:var(--ink);stroke-width:1.6}.nominal-bracket{stroke:var(--petrol)}.worst-bracket{stroke:var(--brick)}
 .critical{stroke:var(--ink);stroke-width:2}
-.drawing .bracket-end{fill:var(--sheet);stroke:var(--brick);stroke-width:2}
+.drawing .bracket-end{fill:var(--sheet);stroke-width:2}.nominal-end{stroke:var(--petrol)}.worst-end{stroke:var(--brick)}
 .drawing .nominal-point{fill:var(--sheet);stroke:var(--petrol);stroke-width:3}
 .drawing .worst-point{fill:var(--brick);stroke:var(--sheet);stroke-width:1}
 .hover rect{fill:transparent}.hover rect:hover{fill:var(--band)}

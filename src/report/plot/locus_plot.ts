@@ -57,7 +57,7 @@ function modulusBracket(modulus: ModulusBracket, x: Scale, y: Scale): Markup {
   const { nearest, curve } = modulus;
   const to: Point = [x(nearest.real), y(nearest.imaginary)];
   const label = `${shortened(oneLine(modulus.requirement), 20)}: ${shortened(oneLine(modulus.text), 44)}`;
-  return html`<path class="bracket ${curve}-bracket" d="M${px(x(-1))} ${px(y(0))}L${px(to[0])} ${px(to[1])}"/><circle class="bracket-end" cx="${px(to[0])}" cy="${px(to[1])}" r="3.5"/><text class="bracket-name" x="${box.left + 8}" y="${px(y(modulus.limit) - 10)}">${label}</text>`;
+  return html`<path class="bracket ${curve}-bracket" d="M${px(x(-1))} ${px(y(0))}L${px(to[0])} ${px(to[1])}"/><circle class="bracket-end ${curve}-end" cx="${px(to[0])}" cy="${px(to[1])}" r="3.5"/><text class="bracket-name" x="${box.left + 8}" y="${px(y(modulus.limit) - 10)}">${label}</text>`;
 }
 
 function describe({ modulus }: OpenLoopPlot): string {

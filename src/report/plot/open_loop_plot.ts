@@ -67,7 +67,7 @@ function curve(plot: OpenLoopPlot, which: 'nominal' | 'worst', x: Scale, gain: S
   const { magnitude, phase: angle }: FrequencyCurve = plot[which];
   const kept = thinned(magnitude, mostPoints);
   const points = (y: (at: number) => number): Point[] => kept.map((at) => [x(plot.frequencies[at]), y(at)]);
-  const upperPath = pathThrough(points((at) => gain(clampDecibels(decibels(magnitude[at])))));
+  const upperPath = pathThrough(points((at) => gain(shownDecibels(magnitude[at]))));
   const lowerPath = pathThrough(points((at) => phase(degrees(angle[at]))));
   return html`<path class="${which}" d="${upperPath}${lowerPath}"/>`;
 }
@@ -128,6 +128,12 @@ function decades([low, high]: readonly number[]): number[] {
   const first = Math.ceil(Math.log10(low) - 1e-9);
   const count = Math.min(20, Math.max(0, Math.floor(Math.log10(high) + 1e-9) - first + 1));
   return Array.from({ length: count }, (_, at) => 10 ** (first + at));
+}
+
+/** Not-a-number beyond what is shown: the curve ends there. */
+function shownDecibels(ratio: number): number {
+  const value = decibels(ratio);
+  return Math.abs(value) <= mostDecibels ? value : Number.NaN;
 }
 
 function clampDecibels(value: number): number {

@@ -119,9 +119,10 @@ function ramp(id: string): Markup {
 
 function describe({ headroom, x, y }: HeadroomPlane): string {
   const all = headroom.flat().filter((share) => !Number.isNaN(share));
-  if (all.length === 0) return 'No plant of this plane has a number.';
-  const least = all.reduce((a, b) => Math.min(a, b));
-  const most = all.reduce((a, b) => Math.max(a, b));
+  const finite = all.filter(Number.isFinite);
+  if (finite.length === 0) return 'No plant of this plane has a number.';
+  const least = finite.reduce((a, b) => Math.min(a, b), 1);
+  const most = finite.reduce((a, b) => Math.max(a, b), least);
   const broken = all.filter((share) => share < 0).length;
   return `${x.parameter} runs to the right, ${y.parameter} upward. Headroom runs from ${formatHeadroom(least)} to ${formatHeadroom(most)}; ${broken} of ${all.length} plants in this plane break the limit.`;
 }

@@ -1,6 +1,6 @@
 import { scaleLinear } from 'd3-scale';
 import { area } from 'd3-shape';
-import { formatNumber, unitText } from '../format_value.js';
+import { counted, formatNumber, unitText } from '../format_value.js';
 import { html, type Markup } from '../html/markup.js';
 import { oneLine, shortened } from '../plain_text.js';
 import type { Fence, TracePlot } from '../plots.js';
@@ -27,7 +27,7 @@ const sides: Readonly<Record<Fence['forbidden'], Point>> = {
   right: [1, 0],
 };
 
-/** A signal over time: all plants as a band, the nominal and the worst plant, the target, limits as fences. */
+/** A signal over time: many plants as a band, the nominal and the worst plant, the target, limits as fences. */
 export function traceDrawing(plot: TracePlot, id: string): Markup {
   const written = { unit: plot.unit, inDecibels: false };
   const scale = plot.unit.scale;
@@ -94,7 +94,7 @@ function hoverSlices(plot: TracePlot, { x, shown }: Scales): Markup {
   const places = plot.times.length === 0 ? [] : sampled(plot.times.length, slices);
   const width = (box.right - box.left) / Math.max(1, places.length);
   const rows = places.map((i) => {
-    const values = `at ${formatNumber(plot.times[i])} s: nominal ${shown(plot.nominal[i])}, worst ${shown(plot.worst[i])}, all ${shown(plot.low[i])} to ${shown(plot.high[i])}`;
+    const values = `at ${formatNumber(plot.times[i])} s: nominal ${shown(plot.nominal[i])}, worst ${shown(plot.worst[i])}, ${counted(plot.plants, 'plant')} ${shown(plot.low[i])} to ${shown(plot.high[i])}`;
     return html`<rect x="${px(x(plot.times[i]) - width / 2)}" y="${box.top}" width="${px(width)}" height="${box.bottom - box.top}"><title>${values}</title></rect>`;
   });
   return html`<g class="hover">${rows}</g>`;

@@ -1,0 +1,1 @@
+export { plotsOf } from './plots_of.js';

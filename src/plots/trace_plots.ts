@@ -1,0 +1,149 @@
+import type { CoefficientValues } from '../loop/parts.js';
+import { measureNamed } from '../measure/index.js';
+import type { TracePlot } from '../report/index.js';
+import type { Dimension, Requirement, Scenario, Spec, Unit } from '../spec/spec.js';
+import { signalsOfStatement } from '../spec/statement.js';
+import type { JudgedSpec } from '../verdict/judge_spec.js';
+import { type FenceContext, fencesOf } from './fences.js';
+import { valuesOfPlant } from './plant_values.js';
+import { ScenarioTraces } from './scenario_traces.js';
+
+type Sampled = Map<string, number[]> | undefined;
+
+/** A signal that is drawn in a scenario, and the requirements that are measured on it. */
+interface Drawn {
+  signal: string;
+  requirements: Requirement[];
+}
+
+/**
+ * One plot for each scenario and signal that a requirement looks at.
+ * @param band plants whose traces make the band; the nominal and the worst plants are added to them.
+ */
+export function tracePlots(
+  spec: Spec,
+  coefficients: CoefficientValues,
+  judged: JudgedSpec,
+  band: readonly Float64Array[],
+): TracePlot[] {
+  return spec.scenarios.flatMap((scenario) => plotsOfScenario(spec, coefficients, judged, band, scenario));
+}
+
+function plotsOfScenario(
+  spec: Spec,
+  coefficients: CoefficientValues,
+  judged: JudgedSpec,
+  band: readonly Float64Array[],
+  scenario: Scenario,
+): TracePlot[] {
+  const drawn = drawnIn(spec, scenario);
+  if (drawn.length === 0) return [];
+  const targets = drawn.flatMap(({ requirements }) => targetOf(requirements) ?? []);
+  const signals = [...new Set([...drawn.map(({ signal }) => signal), ...targets])];
+  const traces = new ScenarioTraces(spec, coefficients, scenario, signals, judged.halvings);
+  const plantOf = new Map(judged.requirements.map(({ name, worst }) => [name, valuesOfPlant(worst)]));
+  const nominalValues = Float64Array.from(spec.parameters, (parameter) => parameter.nominal);
+  const nominal = traces.of(nominalValues);
+  const worstOf = new Map(
+    drawn.map(({ requirements: [first] }) => [first.name, traces.of(plantOf.get(first.name)!)]),
+  );
+  const all = [nominal, ...worstOf.values(), ...band.map((plant) => traces.of(plant))];
+  return drawn.flatMap(({ signal, requirements }): TracePlot[] => {
+    const target = targetOf(requirements);
+    const targetValues = target === undefined ? undefined : nominal?.get(target);
+    const none = traces.times.map(() => Number.NaN);
+    return [
+      {
+        requirements: requirements.map(({ name }) => name),
+        signal,
+        scenario: scenario.name,
+        unit: unitOf(spec, signal, requirements),
+        times: traces.times,
+        ...bounds(all, signal, traces.times.length),
+        nominal: nominal?.get(signal) ?? none,
+        worst: worstOf.get(requirements[0].name)?.get(signal) ?? none,
+        target: targetValues,
+        fences: requirements.flatMap((requirement) =>
+          fencesOf(requirement, contextOf(requirement, scenario, traces, nominal, nominalValues)),
+        ),
+      },
+    ];
+  });
+}
+
+function drawnIn({ requirements }: Spec, scenario: Scenario): Drawn[] {
+  const bySignal = new Map<string, Requirement[]>();
+  for (const requirement of requirements) {
+    if (requirement.in !== scenario.name) continue;
+    for (const signal of signalsOf(requirement)) {
+      bySignal.set(signal, [...(bySignal.get(signal) ?? []), requirement]);
+    }
+  }
+  return [...bySignal].map(([signal, those]) => ({ signal, requirements: those }));
+}
+
+function signalsOf({ signals, statement }: Requirement): string[] {
+  if (statement) return [...new Set(signalsOfStatement(statement))];
+  return signals.of === undefined ? [] : [signals.of];
+}
+
+function targetOf(requirements: readonly Requirement[]): string | undefined {
+  return requirements.find(({ signals }) => signals.to !== undefined)?.signals.to;
+}
+
+/** Smallest and largest at each instant over the plants that have a value there. */
+function bounds(
+  all: readonly Sampled[],
+  signal: string,
+  count: number,
+): Pick<TracePlot, 'low' | 'high' | 'plants'> {
+  const traces = all.flatMap((one) => (one ? [one.get(signal)!] : []));
+  const over = (pick: (...values: number[]) => number): number[] =>
+    Array.from({ length: count }, (_, at) => {
+      const values = traces.map((trace) => trace[at]).filter(Number.isFinite);
+      return values.length === 0 ? Number.NaN : pick(...values);
+    });
+  return { low: over(Math.min), high: over(Math.max), plants: traces.length };
+}
+
+function contextOf(
+  { signals, quantities }: Requirement,
+  scenario: Scenario,
+  traces: ScenarioTraces,
+  nominal: Sampled,
+  nominalValues: Float64Array,
+): FenceContext {
+  const target = signals.to === undefined ? undefined : nominal?.get(signals.to);
+  return {
+    step: signals.to === undefined ? undefined : traces.stepOf(signals.to, nominalValues),
+    targetAt: (time) => target?.[traces.times.findLastIndex((one) => one <= time)],
+    from: quantities.from ?? traces.firstEvent(nominalValues),
+    until: quantities.until ?? scenario.lasts,
+  };
+}
+
+/** As a requirement's limit is written where it is of the signal's kind, else as the signal is declared. */
+function unitOf(spec: Spec, signal: string, requirements: readonly Requirement[]): Unit {
+  const written = requirements.find(
+    ({ measure, inDecibels }) => !inDecibels && keepsDimension(measureNamed(measure).description.dimension),
+  );
+  return written?.unit ?? declaredUnit(spec, signal);
+}
+
+/** A dimension that no signal has, to see whether a measure hands its signal's dimension on. */
+const probe: Dimension = [101, 0, 0, 0, 0, 0, 0, 0];
+
+function keepsDimension(dimension: (of: Dimension) => Dimension): boolean {
+  return dimension(probe)[0] === probe[0] && dimension(probe).every((power, at) => power === probe[at]);
+}
+
+function declaredUnit(spec: Spec, name: string): Unit {
+  const all = [
+    ...spec.inputs,
+    ...spec.plant,
+    ...spec.sensors,
+    ...spec.controllers.flatMap(({ signals }) => signals),
+    ...spec.actuators,
+  ];
+  return all.find((one) => one.name === name)!.unit;
+}
