@@ -28,7 +28,7 @@ const commands: Record<string, Command> = {
     options: { ...buildOptions, out: { type: 'string' } },
     optionMeanings: {
       ...buildMeanings,
-      '--out DIR': 'write DIR/junit.xml and DIR/run.json',
+      '--out DIR': 'write junit.xml, run.json, report.html and summary.md into DIR',
     },
     run: async (values, specs, around) => {
       const { check } = await import('./check.js');
@@ -45,6 +45,18 @@ const commands: Record<string, Command> = {
         throw new Fault([`'pawl read' takes one spec, but got ${positionals.length}`]);
       const { read } = await import('./read.js');
       return read(positionals[0], buildChoice(values), around);
+    },
+  },
+  schema: {
+    meaning: 'print the JSON Schema of specs, for editors',
+    usage: 'pawl schema [--included]',
+    options: { included: { type: 'boolean' } },
+    optionMeanings: { '--included': 'that of the files which specs include' },
+    run: async (values, positionals, around) => {
+      if (positionals.length > 0)
+        throw new Fault([`'pawl schema' takes nothing, but got '${positionals[0]}'`]);
+      const { schema } = await import('./schema.js');
+      return schema(values.included === true ? 'part' : 'spec', around);
     },
   },
 };
