@@ -3,6 +3,7 @@ import { findWorst } from '../../src/perturb/find_worst.js';
 import { ParameterSpace } from '../../src/perturb/parameter_space.js';
 import { plantsToTry } from '../../src/perturb/plants.js';
 import { type Ranked, Trials } from '../../src/perturb/trials.js';
+import { expectPublished, publishedCase } from '../published.js';
 import { type Box, boxes } from './boxes.js';
 import { unitBox } from './parameters.js';
 
@@ -32,6 +33,26 @@ describe('the search for the worst', () => {
       if (!(breaks && near)) missed.push(`seed ${seed}: ${worst!.rank}`);
     }
     expect(missed).toEqual([]);
+  });
+});
+
+// Source: closed forms of reference/published, case G08: an integrator with dead time over a box of gain and delay.
+describe('the worst margins of a published box', () => {
+  const { gain_per_s, delay_s } = publishedCase('G08').given;
+  const between = ([low, high]: [number, number], move: number): number =>
+    low + ((high - low) * (1 + move)) / 2;
+  const loop = (x: Float64Array): { k: number; dead: number } => ({
+    k: between(gain_per_s, x[0]),
+    dead: between(delay_s, x[1]),
+  });
+
+  it.each([
+    ['least_phase_margin', ({ k, dead }: ReturnType<typeof loop>) => 90 - (180 / Math.PI) * k * dead],
+    ['least_gain_margin', ({ k, dead }: ReturnType<typeof loop>) => Math.PI / (2 * k * dead)],
+    ['least_delay_margin', ({ k, dead }: ReturnType<typeof loop>) => Math.PI / (2 * k) - dead],
+  ])('G08: %s', async (figure, margin) => {
+    const { worst } = await worstOf({ size: 2, headroom: (x) => margin(loop(x)) }, 3);
+    expectPublished('G08', figure, worst!.rank);
   });
 });
 

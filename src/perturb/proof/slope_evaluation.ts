@@ -1,0 +1,154 @@
+import type { LeafKind, Node, OperationName } from '../../loop/graph.js';
+import { everything, type Interval, isZero, size, widened } from './interval.js';
+import type { Slope, SlopeField } from './slope.js';
+
+/** Why there is no proof for a loop: something in it that intervals are not carried through. */
+export class Unprovable extends Error {}
+
+/** Values of the leaves over the box. */
+export type SlopeLeaves = (leaf: LeafKind, index: number) => Slope;
+
+/** Evaluates expressions of the loop over a box; quanta and number formats count as gain one, as in all linear analysis. */
+export class SlopeEvaluation {
+  private readonly known = new Map<Node, Slope>();
+
+  constructor(
+    readonly field: SlopeField,
+    private readonly leaves: SlopeLeaves,
+  ) {}
+
+  /** @throws {Unprovable} for an operation with no bounds here, or a choice that the box does not settle. */
+  of(node: Node): Slope {
+    const found = this.known.get(node);
+    if (found) return found;
+    const value = this.fresh(node);
+    this.known.set(node, value);
+    return value;
+  }
+
+  private fresh(node: Node): Slope {
+    if (node.kind === 'number') return this.field.constant(node.value);
+    if (node.kind === 'leaf') return this.leaves(node.leaf, node.index);
+    return this.operation(node.name, node.of);
+  }
+
+  private operation(name: OperationName, of: readonly Node[]): Slope {
+    const { field } = this;
+    const at = (i: number): Slope => this.of(of[i]);
+    switch (name) {
+      case 'add':
+        return field.add(at(0), at(1));
+      case 'subtract':
+        return field.subtract(at(0), at(1));
+      case 'multiply':
+        return field.multiply(at(0), at(1));
+      case 'divide':
+        return field.divide(at(0), at(1));
+      case 'negate':
+        return field.negate(at(0));
+      case 'power':
+        return this.power(at(0), at(1));
+      case 'choose':
+        return this.isTrue(at(0)) ? at(1) : at(2);
+      case 'limit':
+        return this.limited(at(0), at(1), at(2));
+      case 'min':
+        return this.less(at(0), at(1)) ? at(0) : at(1);
+      case 'max':
+        return this.less(at(0), at(1)) ? at(1) : at(0);
+      case 'less':
+      case 'less_or_equal':
+        return field.constant(this.less(at(0), at(1)) ? 1 : 0);
+      case 'quantise':
+      case 'single':
+        return at(0);
+      default:
+        return this.call(name, at(0));
+    }
+  }
+
+  private isTrue({ range }: Slope): boolean {
+    if (isZero(range)) return false;
+    if (range[0] > 0 || range[1] < 0) return true;
+    throw new Unprovable('a choice in the loop goes both ways within the bounds');
+  }
+
+  private less(a: Slope, b: Slope): boolean {
+    if (a.range[1] < b.range[0]) return true;
+    if (a.range[0] > b.range[1]) return false;
+    throw new Unprovable('a comparison in the loop goes both ways within the bounds');
+  }
+
+  private limited(x: Slope, low: Slope, high: Slope): Slope {
+    if (this.less(x, low)) return low;
+    return this.less(high, x) ? high : x;
+  }
+
+  private power(base: Slope, exponent: Slope): Slope {
+    const [n] = exponent.range;
+    if (n !== exponent.range[1] || !Number.isInteger(n) || Math.abs(n) > 16) {
+      throw new Unprovable('a power in the loop has an exponent that is no small whole number');
+    }
+    let result = this.field.constant(1);
+    for (let i = 0; i < Math.abs(n); i++) result = this.field.multiply(result, base);
+    return n < 0 ? this.field.divide(this.field.constant(1), result) : result;
+  }
+
+  private call(name: OperationName, x: Slope): Slope {
+    const { field } = this;
+    switch (name) {
+      case 'abs':
+        if (x.range[0] > 0) return x;
+        if (x.range[1] < 0) return field.negate(x);
+        break;
+      case 'sign':
+        if (x.range[0] > 0) return field.constant(1);
+        if (x.range[1] < 0) return field.constant(-1);
+        break;
+      case 'sqrt':
+        return field.apply(x, rising(Math.sqrt), ([low, high]) => slopeOfRoot(low, high));
+      case 'exp':
+        return field.apply(x, rising(Math.exp), rising(Math.exp));
+      case 'ln':
+        return field.apply(x, rising(Math.log), ([low, high]) =>
+          low > 0 ? widened(1 / high, 1 / low) : everything,
+        );
+      case 'tanh':
+        return field.apply(x, rising(Math.tanh), (at) => oneLessSquare(at));
+      case 'sin':
+        return field.apply(x, trigonometric(Math.sin), trigonometric(Math.cos));
+      case 'cos':
+        return field.apply(x, trigonometric(Math.cos), (at) => {
+          const [low, high] = trigonometric(Math.sin)(at);
+          return [-high, -low];
+        });
+    }
+    throw new Unprovable(`'${name}' in the loop has no interval bounds here`);
+  }
+}
+
+function rising(of: (x: number) => number): (x: Interval) => Interval {
+  return ([low, high]) => widened(of(low), of(high));
+}
+
+function slopeOfRoot(low: number, high: number): Interval {
+  return low > 0 ? widened(0.5 / Math.sqrt(high), 0.5 / Math.sqrt(low)) : everything;
+}
+
+/** 1 − tanh² falls from zero to both sides; the difference is kept when it is below the rounding of one. */
+function oneLessSquare([low, high]: Interval): Interval {
+  const at = (x: number): number => 1 / Math.cosh(x) ** 2;
+  const far = size([low, high]);
+  const near = low <= 0 && high >= 0 ? 0 : Math.min(Math.abs(low), Math.abs(high));
+  return widened(at(far), at(near));
+}
+
+/** Bounds of a sine or cosine over an interval: it moves by no more than its argument, which serves for the narrow boxes that matter. */
+export function trigonometric(of: (x: number) => number): (x: Interval) => Interval {
+  return ([low, high]) => {
+    const middle = low + (high - low) / 2;
+    const half = (high - low) * 0.5 * (1 + 1e-15);
+    const [least, most] = widened(of(middle) - half, of(middle) + half);
+    return [Math.max(-1, least - 1e-15), Math.min(1, most + 1e-15)];
+  };
+}
