@@ -24,7 +24,7 @@ export class Crew {
    */
   constructor(
     private readonly spec: Spec,
-    private readonly coefficients: CoefficientValues,
+    readonly coefficients: CoefficientValues,
     private readonly workers = Math.min(mostWorkers, availableParallelism()),
   ) {
     this.measurer = new PlantMeasurer(spec, coefficients);
@@ -51,6 +51,11 @@ export class Crew {
     }
     const answers: PlantAnswer[][] = await Promise.all(tasks.map((task) => pool.run(task)));
     return answers.flat();
+  }
+
+  /** One plant measured on the calling thread, at once. */
+  measureHere(plant: Float64Array, halvings: number, wanted: readonly number[]): PlantAnswer {
+    return this.measurer.answers({ plants: [plant], halvings, settle: false, wanted })[0];
   }
 
   /** Ends the workers. */

@@ -5,7 +5,15 @@ import type { Spec } from '../spec/spec.js';
 import { claimOf } from './claim.js';
 import { Crew } from './crew.js';
 import { parameterValues } from './parameter_values.js';
-import type { Effort, JudgedPlant, ParameterEffect, RequirementRun, SpecRun } from './run.js';
+import type {
+  Effort,
+  Evidence,
+  JudgedPlant,
+  ParameterEffect,
+  Proof,
+  RequirementRun,
+  SpecRun,
+} from './run.js';
 import { type Scrutiny, scrutinise } from './scrutinise.js';
 import type { Tally, TriedPlant } from './tally.js';
 import { tryPlants } from './try_plants.js';
@@ -60,7 +68,7 @@ function requirementRun(
   spec: Spec,
   index: number,
   { nominal, counts, independent }: Tally,
-  { worst, shrunk, reach, effort }: Scrutiny,
+  { worst, shrunk, reach, proof, effort }: Scrutiny,
   effects: ParameterEffect[],
 ): RequirementRun {
   const requirement = spec.requirements[index];
@@ -72,16 +80,22 @@ function requirementRun(
     ...{ name, place, measure, signals, reason, limit, unit, inDecibels, holdsFor },
     scenario: requirement.in,
     verdict: verdictOf(requirement, nominal!.judgement, worst.judgement, independent, confidence),
-    evidence: nominalOnly ? { kind: 'nominal_only' } : { kind: 'tried', plants: counts.tried },
+    evidence: evidenceOf(nominalOnly, proof, counts.tried),
     nominal: judgedPlant(spec, nominal!),
     worst: judgedPlant(spec, judgedAt),
     counts: { ...counts },
     claim: nominalOnly ? undefined : claimOf(independent, confidence),
     shrunk: shrunk && judgedPlant(spec, shrunk),
     reach,
+    proof,
     effects,
     effort,
   };
+}
+
+function evidenceOf(nominalOnly: boolean, proof: Proof | undefined, plants: number): Evidence {
+  if (nominalOnly) return { kind: 'nominal_only' };
+  return { kind: proof?.kind === 'proved' ? 'proved' : 'tried', plants };
 }
 
 function judgedPlant(spec: Spec, { plant, result, judgement }: TriedPlant): JudgedPlant {

@@ -8,7 +8,8 @@ import { type Ranked, type RankMoves, Trials } from '../perturb/trials.js';
 import type { Spec } from '../spec/spec.js';
 import type { Crew } from './crew.js';
 import { judge } from './judge.js';
-import type { Effort } from './run.js';
+import { proofOf } from './prove.js';
+import type { Effort, Proof } from './run.js';
 import type { Tally, TriedPlant } from './tally.js';
 
 /** What is found about one requirement beyond the plants that every requirement is tried on. */
@@ -18,6 +19,7 @@ export interface Scrutiny {
   /** A counterexample as near to nominal as it was found to break; undefined where nothing broke. */
   shrunk: TriedPlant | undefined;
   reach: Reach | undefined;
+  proof: Proof | undefined;
   effort: Effort;
 }
 
@@ -48,13 +50,16 @@ export async function scrutinise(task: ScrutinyTask): Promise<Scrutiny> {
   const { holdsFor } = spec.requirements[index];
   const wholeBox = holdsFor === 'all' && space.size > 0;
   const searched = wholeBox ? await search(task) : 0;
+  const proof = wholeBox ? prove(task) : undefined;
   const worst = await confirmWorst(task);
   if (holdsFor === 'nominal' || space.size === 0) {
-    return { worst, shrunk: undefined, reach: undefined, effort: { searched, shrinking: 0, reach: 0 } };
+    const effort = { searched, shrinking: 0, reach: 0 };
+    return { worst, shrunk: undefined, reach: undefined, proof, effort };
   }
   const { shrunk, shrinking } = await shrinkOf(task);
   const reach = wholeBox ? await reachOf(task, shrunk) : undefined;
-  return { worst, shrunk, reach: reach?.reach, effort: { searched, shrinking, reach: reach?.used ?? 0 } };
+  const effort = { searched, shrinking, reach: reach?.used ?? 0 };
+  return { worst, shrunk, reach: reach?.reach, proof, effort };
 }
 
 async function search(task: ScrutinyTask): Promise<number> {
@@ -70,6 +75,21 @@ async function search(task: ScrutinyTask): Promise<number> {
   const trials = new Trials(rank, spec.perturbation.search ?? defaultSearch, landmarks);
   await findWorst(landmarks, space, trials, spec.perturbation.seed + index);
   return trials.used;
+}
+
+/** A proof is tried where nothing tried breaks; a plant that refutes it joins those tried. */
+function prove(task: ScrutinyTask): Proof | undefined {
+  const { spec, space, crew, tally, index, halvings } = task;
+  const requirement = spec.requirements[index];
+  if (tally.worst[0].judgement.kind !== 'met') return undefined;
+  const tryAt = (values: Float64Array): TriedPlant => {
+    const [result] = crew.measureHere(values, halvings, [index]).results;
+    return { plant: { origin: 'searched', values }, result, judgement: judge(requirement, result) };
+  };
+  const breaks = (values: Float64Array): boolean => tryAt(values).judgement.kind === 'broken';
+  const found = proofOf(spec, crew.coefficients, requirement, space, breaks);
+  if (found?.counterexample) tally.add(tryAt(found.counterexample));
+  return found?.proof;
 }
 
 /** Ranks moves by measuring this requirement alone; those that a condition keeps out rank as infinitely good. */

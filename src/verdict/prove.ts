@@ -1,0 +1,82 @@
+import type { CoefficientValues } from '../loop/parts.js';
+import { LoopPoint } from '../measure/loop_point.js';
+import type { ParameterSpace } from '../perturb/parameter_space.js';
+import { LoopFamily } from '../perturb/proof/loop_family.js';
+import type { LoopClaim } from '../perturb/proof/margin_statement.js';
+import { mostVariables, movingParameters, proveClaim } from '../perturb/proof/prove_claim.js';
+import { Unprovable } from '../perturb/proof/slope_evaluation.js';
+import type { Requirement, Spec } from '../spec/spec.js';
+import type { Proof } from './run.js';
+
+/** Boxes that a proof may look at. */
+const mostBoxes = 1500;
+
+/** A proof, with the plant that refutes it where there is one. */
+export interface ProofFound {
+  proof: Proof;
+  counterexample: Float64Array | undefined;
+}
+
+/**
+ * Tries to prove a requirement on a margin for every plant within the bounds.
+ * @param breaks whether the requirement breaks on a plant.
+ * @returns undefined for requirements for which there is no proof.
+ */
+export function proofOf(
+  spec: Spec,
+  coefficients: CoefficientValues,
+  requirement: Requirement,
+  space: ParameterSpace,
+  breaks: (plant: Float64Array) => boolean,
+): ProofFound | undefined {
+  const claim = claimOf(requirement);
+  if (!claim || space.size === 0) return undefined;
+  const plantAt = (parameters: readonly number[]): Float64Array => {
+    const values = space.nominal.slice();
+    space.free.forEach((i, k) => {
+      values[i] = parameters[k];
+    });
+    return space.completed(values);
+  };
+  const failsAt = (parameters: readonly number[]): boolean => {
+    const plant = plantAt(parameters);
+    return space.allows(plant) && breaks(plant);
+  };
+  try {
+    const family = new LoopFamily(new LoopPoint(spec, coefficients, requirement), space);
+    const moving = movingParameters(family);
+    if (moving > mostVariables) {
+      throw new Unprovable(
+        `${moving} parameters move the loop, and a proof is tried with up to ${mostVariables}`,
+      );
+    }
+    const result = proveClaim(family, claim, failsAt, mostBoxes);
+    if (result.kind === 'refuted') {
+      return { proof: { kind: 'refuted', boxes: result.boxes }, counterexample: plantAt(result.at) };
+    }
+    const why = `the budget of ${mostBoxes} boxes ended`;
+    return {
+      proof: result.kind === 'open' ? { ...result, why } : result,
+      counterexample: undefined,
+    };
+  } catch (error) {
+    if (!(error instanceof Unprovable)) throw error;
+    return { proof: { kind: 'open', boxes: 0, openShare: 1, why: error.message }, counterexample: undefined };
+  }
+}
+
+/** What must be proved of the loop for the requirement to hold; margins from below alone. */
+function claimOf({ measure, limit }: Requirement): LoopClaim | undefined {
+  if (!('at_least' in limit)) return undefined;
+  const atLeast = limit.at_least;
+  switch (measure) {
+    case 'gain_margin':
+      return atLeast > 1 ? { kind: measure, atLeast } : undefined;
+    case 'phase_margin':
+      return atLeast > 0 && atLeast < Math.PI ? { kind: measure, atLeast } : undefined;
+    case 'modulus_margin':
+      return atLeast > 0 && atLeast < 1 ? { kind: measure, atLeast } : undefined;
+    default:
+      return undefined;
+  }
+}
