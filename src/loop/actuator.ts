@@ -1,4 +1,5 @@
 import type { ActuatorDefinition } from '../spec/spec.js';
+import type { Evaluation } from './evaluate.js';
 import { limited } from './expand_block.js';
 import type { Node } from './graph.js';
 import type { Parts } from './parts.js';
@@ -34,15 +35,21 @@ export function actuatorValue(
   let value = result;
   if (actuator.resolution) value = graph.apply('quantise', value, plant.lower(actuator.resolution));
   if (actuator.deadBand) {
-    const band = plant.lower(actuator.deadBand);
-    value = plain.subtract(value, graph.apply('limit', value, graph.apply('negate', band), band));
+    value = outside(value, plant.lower(actuator.deadBand), parts);
   }
   value = limited(value, actuator.range, plant.surroundings);
   if (actuator.slew) {
     const step = plain.multiply(plant.lower(actuator.slew), period);
-    const last: Node = parts.addMemory(`${actuator.name} last output`, task, 0, () => slewed);
+    const last: Node = parts.addMemory(`${actuator.name} last output`, task, 0, () => kept);
     const slewed = graph.apply('limit', value, plain.subtract(last, step), plain.add(last, step));
-    value = slewed;
+    // At rest nothing changes, and a search for it must not be slowed down.
+    const moving = graph.apply(
+      'unequal',
+      running(`${actuator.name} slew`, () => 1, parts),
+      graph.number(0),
+    );
+    const kept = graph.apply('choose', moving, slewed, value);
+    value = kept;
   }
   return actuator.effect ? plain.multiply(plant.lower(actuator.effect), value) : value;
 }
@@ -63,20 +70,33 @@ export function feltValue(
   const whole = (end: Node): Node => (effect ? plain.multiply(plant.lower(effect), end) : end);
   const [low, high] = [whole(plant.lower(range.low)), whole(plant.lower(range.high))];
   const [zero, one] = [graph.number(0), graph.number(1)];
-  const running = parts.addInput(`${name} carrier rate`, 0);
-  parts.program.push({
-    kind: 'input',
-    index: running.index,
-    how: 'set',
-    common: false,
-    changes: (one) => [{ time: 0, value: 1 / one.of(period) }],
-  });
-  const carrier = parts.addState(`${name} carrier`, 0, () => running);
+  const rate = running(`${name} carrier rate`, (one) => 1 / one.of(period), parts);
+  const carrier = parts.addState(`${name} carrier`, 0, () => rate);
   parts.addCorrection(carrier, () =>
     graph.apply('choose', graph.apply('less_or_equal', one, carrier), plain.subtract(carrier, one), carrier),
   );
   const share = plain.divide(plain.subtract(held, low), plain.subtract(high, low));
   const on = parts.addMode(`${name} is on`, 0, true, () => graph.apply('less', carrier, share));
   const switched = graph.apply('choose', on, high, low);
-  return graph.apply('choose', graph.apply('unequal', running, zero), switched, held);
+  return graph.apply('choose', graph.apply('unequal', rate, zero), switched, held);
+}
+
+/** Nothing at rest and in linear analysis; from the start of a scenario on the value given. */
+function running(name: string, value: (plant: Evaluation) => number, parts: Parts): Node {
+  const input = parts.addInput(name, 0);
+  parts.program.push({
+    kind: 'input',
+    index: input.index,
+    how: 'set',
+    common: false,
+    changes: (plant) => [{ time: 0, value: value(plant) }],
+  });
+  return input;
+}
+
+/** Zero within a band around zero, and the distance from the band outside; each side has a slope of its own. */
+function outside(value: Node, band: Node, { graph, plain }: Parts): Node {
+  const below = graph.apply('less', value, graph.apply('negate', band));
+  const lower = graph.apply('choose', below, plain.add(value, band), graph.number(0));
+  return graph.apply('choose', graph.apply('less', band, value), plain.subtract(value, band), lower);
 }

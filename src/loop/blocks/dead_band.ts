@@ -23,6 +23,9 @@ export const deadBand: Block = {
   expand: (use, { arithmetic: a }) => {
     const band = use.setting('dead_band')!;
     const input = use.input();
-    return a.subtract(input, a.apply('limit', input, a.apply('negate', band), band));
+    // Not as the input less its limited self: a limit at its end has no slope, but a band has one on each side.
+    const below = a.apply('less', input, a.apply('negate', band));
+    const lower = a.apply('choose', below, a.add(input, band), a.number(0));
+    return a.apply('choose', a.apply('less', band, input), a.subtract(input, band), lower);
   },
 };
