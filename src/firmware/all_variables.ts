@@ -3,7 +3,7 @@ import { at } from './dwarf/codes.js';
 import { type DataType, typeOf } from './dwarf/data_type.js';
 import { declaredAt, isLasting, pathWithFile } from './dwarf/find_variable.js';
 import { placeOf } from './dwarf/location.js';
-import { entryWith, isDefinition, qualifiedName, type Variable, variablesOf } from './dwarf/variables.js';
+import { entryWith, everyVariable, isDefinition, qualifiedName, type Variable } from './dwarf/variables.js';
 import { allSymbols } from './elf/symbols.js';
 import { FirmwareError, quoted } from './failure.js';
 import type { ElfImage } from './image.js';
@@ -32,13 +32,11 @@ export function allVariables(image: ElfImage): ListedVariable[] {
   allSymbols(image.symbolTable);
   const byPlace = new Map<string, Variable>();
   const origins = new Set<string>();
-  for (const unit of image.debug.units()) {
-    for (const variable of variablesOf(unit)) {
-      if (!isDefinition(variable) || !isLasting(variable)) continue;
-      for (const origin of variable.chain.slice(1)) origins.add(keyOf(origin));
-      const key = placeKey(image, variable);
-      if (key !== undefined && !byPlace.has(key)) byPlace.set(key, variable);
-    }
+  for (const variable of everyVariable(image.debug)) {
+    if (!isDefinition(variable) || !isLasting(variable)) continue;
+    for (const origin of variable.chain.slice(1)) origins.add(keyOf(origin));
+    const key = placeKey(image, variable);
+    if (key !== undefined && !byPlace.has(key)) byPlace.set(key, variable);
   }
   const held = [...byPlace.values()].filter((variable) => !origins.has(keyOf(variable.entry)));
   return listed(held);

@@ -175,6 +175,11 @@ export function hex(value: number | bigint): string {
   return `0x${value.toString(16)}`;
 }
 
+/** The first offset from a start on at which a pattern occurs, −1 when there is none. */
+export function nextOccurrence(bytes: Uint8Array, pattern: Uint8Array, start: number): number {
+  return Buffer.from(bytes.buffer, bytes.byteOffset, bytes.length).indexOf(pattern, start);
+}
+
 /**
  * Offsets at which a pattern occurs, ascending; undefined when there are more than `most` (looking at everything is
  * cheaper then).

@@ -20,7 +20,7 @@ export type {
   StoredElement,
   StoredRemark,
 } from './coefficient.js';
-export { compareImages, type ImageComparison } from './compare_images.js';
+export { compareImages, type ImageComparison, readOrNone } from './compare_images.js';
 export { describeImage, type ImageDescription } from './describe_image.js';
 export { FirmwareError, type FirmwareErrorCode } from './failure.js';
 export { type ElfImage, type FirmwareImage, type FlashImage, type OpenOptions, openImage } from './image.js';

@@ -49,7 +49,8 @@ export function commonData(image: ElfImage, path: string): FirmwareError {
 function isAnothers(image: ElfImage, variable: Variable, address: number): boolean {
   if (symbolsNamed(image.symbolTable, symbolNameOf(variable)).some((symbol) => symbol.address === address))
     return false;
-  const covering = dataSymbolsAt(image.symbolTable, address);
+  // Names of sections and of the linker's own begin with a character that no variable has.
+  const covering = dataSymbolsAt(image.symbolTable, address).filter((symbol) => !/^[.$]/.test(symbol.name));
   return (
     covering.length > 0 &&
     !covering.some((symbol) => isNameOf(symbol.name, variable.name) || mergedGlobals.test(symbol.name))
@@ -67,7 +68,7 @@ const mergedGlobals = /MergedGlobals/;
 function isNameOf(symbol: string, name: string): boolean {
   return (
     symbol.split('.').includes(name) ||
-    (symbol.startsWith('_Z') && symbol.includes(`${Buffer.byteLength(name)}${name}`))
+    (/^_[ZR]/.test(symbol) && symbol.includes(`${Buffer.byteLength(name)}${name}`))
   );
 }
 

@@ -39,6 +39,7 @@ export const at = {
   bitOffset: 0x0c,
   bitSize: 0x0d,
   statementList: 0x10,
+  language: 0x13,
   compilationFolder: 0x1b,
   constValue: 0x1c,
   lowerBound: 0x22,

@@ -36,6 +36,7 @@ export interface Unit {
 export class DebugInformation {
   private readonly abbreviationsByOffset = new Map<string, Map<number, Abbreviation>>();
   private readonly cursors = new Map<string, Cursor>();
+  private readonly unitsBySection = new Map<Unit['section'], Unit[]>();
   private unitList: Unit[] | undefined;
 
   constructor(readonly elf: ElfFile) {}
@@ -68,22 +69,28 @@ export class DebugInformation {
 
   /** All units, in the order of the file. */
   units(): Unit[] {
-    this.unitList ??= [...this.readUnits('.debug_info'), ...this.readUnits('.debug_types')];
+    this.unitList ??= [...this.unitsIn('.debug_info'), ...this.unitsIn('.debug_types')];
     return this.unitList;
   }
 
-  /** The unit which holds this offset of `.debug_info`. */
-  unitAt(offset: number): Unit | undefined {
-    const units = this.units();
+  /** The unit which holds this offset of its section. */
+  unitAt(offset: number, section: Unit['section'] = '.debug_info'): Unit | undefined {
+    const units = this.unitsIn(section);
     let [low, high] = [0, units.length - 1];
     while (low <= high) {
       const middle = (low + high) >> 1;
       const unit = units[middle];
-      if (unit.section === '.debug_types' || offset < unit.offset) high = middle - 1;
+      if (offset < unit.offset) high = middle - 1;
       else if (offset >= unit.end) low = middle + 1;
       else return unit;
     }
     return undefined;
+  }
+
+  private unitsIn(section: Unit['section']): Unit[] {
+    const units = this.unitsBySection.get(section) ?? this.readUnits(section);
+    this.unitsBySection.set(section, units);
+    return units;
   }
 
   /** The abbreviations of a unit, by code. */

@@ -1,4 +1,4 @@
-import { bytesOfU32, occurrences } from '../cursor.js';
+import { bytesOfU32, nextOccurrence, occurrences } from '../cursor.js';
 import { attribute } from './attributes.js';
 import { at } from './codes.js';
 import type { DebugInformation, Unit } from './debug_information.js';
@@ -6,6 +6,8 @@ import { rootOf } from './entry.js';
 
 /** More places than this to look for: reading every unit is then no slower. */
 const mostPlaces = 128;
+
+const unitSections = ['.debug_info', '.debug_types'] as const;
 
 /**
  * The units which can hold an entry of this name, found by searching bytes instead of reading entries: the name itself,
@@ -16,43 +18,39 @@ export function unitsMentioning(debug: DebugInformation, name: string): Unit[] {
   if (all.length < 3) return all;
   const pattern = Buffer.from(`${name}\0`);
   const found = new Set<Unit>();
-  for (const section of ['.debug_info', '.debug_types'] as const) {
-    const inline = occurrences(debug.section(section), pattern, mostPlaces);
-    if (!inline) return all;
-    addUnits(debug, section, inline, found);
-  }
+  addUnitsWith(debug, pattern, found);
   const texts = occurrences(debug.section('.debug_str'), pattern, mostPlaces);
-  if (!texts || !addByOffsets(debug, texts, found)) return all;
+  if (!texts?.every((text) => addByOffset(debug, text, found))) return all;
   return all.filter((unit) => found.has(unit));
 }
 
 /** The units which can refer to an entry of `.debug_info` by its offset in the section. */
 export function unitsReferringTo(debug: DebugInformation, offset: number): Unit[] {
-  const places = occurrences(
-    debug.section('.debug_info'),
-    bytesOfU32(offset, debug.elf.littleEndian),
-    mostPlaces,
-  );
   const found = new Set<Unit>();
-  if (!places) return debug.units();
-  addUnits(debug, '.debug_info', places, found);
+  addUnitsWith(debug, bytesOfU32(offset, debug.elf.littleEndian), found);
   return [...found];
 }
 
-function addByOffsets(debug: DebugInformation, texts: number[], found: Set<Unit>): boolean {
-  const { littleEndian } = debug.elf;
-  for (const text of texts) {
-    const pattern = bytesOfU32(text, littleEndian);
-    for (const section of ['.debug_info', '.debug_types'] as const) {
-      const places = occurrences(debug.section(section), pattern, mostPlaces * 8);
-      if (!places) return false;
-      addUnits(debug, section, places, found);
+/** Adds the units which use a text by its offset; false when there are too many places to tell. */
+function addByOffset(debug: DebugInformation, text: number, found: Set<Unit>): boolean {
+  const pattern = bytesOfU32(text, debug.elf.littleEndian);
+  addUnitsWith(debug, pattern, found);
+  const indexed = occurrences(debug.section('.debug_str_offsets'), pattern, mostPlaces);
+  if (indexed && indexed.length > 0) addByIndices(debug, indexed, found);
+  return indexed !== undefined;
+}
+
+/** Adds the units whose bytes have a pattern; the rest of a unit is passed over once it is found. */
+function addUnitsWith(debug: DebugInformation, pattern: Uint8Array, found: Set<Unit>): void {
+  for (const section of unitSections) {
+    const bytes = debug.section(section);
+    let place = nextOccurrence(bytes, pattern, 0);
+    while (place >= 0) {
+      const unit = debug.unitAt(place, section);
+      if (unit) found.add(unit);
+      place = nextOccurrence(bytes, pattern, Math.max(place + 1, unit ? unit.end - pattern.length + 1 : 0));
     }
-    const indexed = occurrences(debug.section('.debug_str_offsets'), pattern, mostPlaces);
-    if (!indexed) return false;
-    if (indexed.length > 0) addByIndices(debug, indexed, found);
   }
-  return true;
 }
 
 /** A place in `.debug_str_offsets` belongs to the units whose part of the section begins last before it. */
@@ -75,24 +73,11 @@ function unitsByOffsetsBase(debug: DebugInformation): Map<number, Unit[]> {
       const root = rootOf(unit);
       const base = root && attribute(root, at.stringOffsetsBase)?.value;
       const key = typeof base === 'number' ? base : 0;
-      byBase.set(key, [...(byBase.get(key) ?? []), unit]);
+      const same = byBase.get(key);
+      if (same) same.push(unit);
+      else byBase.set(key, [unit]);
     }
     keptBases.set(debug, byBase);
   }
   return byBase;
-}
-
-function addUnits(
-  debug: DebugInformation,
-  section: Unit['section'],
-  places: number[],
-  found: Set<Unit>,
-): void {
-  for (const place of places) {
-    const unit =
-      section === '.debug_info'
-        ? debug.unitAt(place)
-        : debug.units().find((u) => u.section === section && place >= u.offset && place < u.end);
-    if (unit) found.add(unit);
-  }
 }

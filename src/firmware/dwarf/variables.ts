@@ -44,15 +44,41 @@ export function isDefinition(variable: Variable): boolean {
   );
 }
 
-const kept = new WeakMap<DebugInformation, Map<string, Variable[]>>();
+/** Variables by simple name; complete once all units were read. */
+interface NameIndex {
+  byName: Map<string, Variable[]>;
+  isComplete: boolean;
+}
+
+const kept = new WeakMap<DebugInformation, NameIndex>();
+
+function indexOf(debug: DebugInformation): NameIndex {
+  const index = kept.get(debug) ?? { byName: new Map<string, Variable[]>(), isComplete: false };
+  kept.set(debug, index);
+  return index;
+}
 
 /** All variables of this simple name, definitions and declarations, from the units which can hold them; searched once. */
 export function variablesNamed(debug: DebugInformation, name: string): Variable[] {
-  const byName = kept.get(debug) ?? new Map<string, Variable[]>();
-  kept.set(debug, byName);
-  const found = byName.get(name) ?? searchVariables(debug, name);
+  const { byName, isComplete } = indexOf(debug);
+  const found = byName.get(name) ?? (isComplete ? [] : searchVariables(debug, name));
   byName.set(name, found);
   return found;
+}
+
+/** All variables of all units, in the order of the file; afterwards each is found by its name at once. */
+export function everyVariable(debug: DebugInformation): Variable[] {
+  const every = debug.units().flatMap((unit) => [...variablesOf(unit)]);
+  const index = indexOf(debug);
+  if (index.isComplete) return every;
+  index.byName.clear();
+  for (const variable of every) {
+    const same = index.byName.get(variable.name);
+    if (same) same.push(variable);
+    else index.byName.set(variable.name, [variable]);
+  }
+  index.isComplete = true;
+  return every;
 }
 
 function searchVariables(debug: DebugInformation, name: string): Variable[] {
@@ -79,7 +105,7 @@ function searchVariables(debug: DebugInformation, name: string): Variable[] {
 export function* variablesOf(unit: Unit, wanted?: string): Generator<Variable> {
   const root = rootOf(unit);
   if (!root) return;
-  for (const { entry, scopes, inFunction } of entriesIn(root, [], false, 0)) {
+  for (const { entry, scopes, inFunction } of entriesIn(root, [], false, 0, interestIn(root))) {
     const variable = describe(entry, scopes, inFunction, wanted);
     if (variable) yield variable;
   }
@@ -91,20 +117,36 @@ function* entriesIn(
   scopes: Scope[],
   inFunction: boolean,
   depth: number,
+  interest: (code: number) => boolean,
 ): Generator<Surroundings & { entry: Entry }> {
   if (depth > deepestScope) return;
-  for (const entry of childrenOf(parent, isOfInterest)) {
+  for (const entry of childrenOf(parent, interest)) {
     if (entry.tag === tag.variable || (entry.tag === tag.member && isStaticMember(entry))) {
       yield { entry, scopes, inFunction };
     } else if (entry.hasChildren && isScope(entry.tag)) {
       const inside = inFunction || entry.tag === tag.subprogram || entry.tag === tag.lexicalBlock;
-      yield* entriesIn(entry, [...scopes, ...scopeOf(entry)], inside, depth + 1);
+      yield* entriesIn(entry, [...scopes, ...scopeOf(entry)], inside, depth + 1, interest);
     }
   }
 }
 
+/** Languages without static members, by their numbers in DWARF 5, table 7.17: C89, C, C99, C11, and C17 of the later list. */
+const plainC = [0x01, 0x02, 0x0c, 0x1d, 0x2c];
+
+/** Which entries of a unit can be variables or hold some: in C no struct does, and they are most of a unit. */
+function interestIn(root: Entry): (code: number) => boolean {
+  const language = attribute(root, at.language)?.value;
+  return plainC.includes(Number(language ?? 0)) ? isOfInterestInC : isOfInterest;
+}
+
 function isOfInterest(code: number): boolean {
   return code === tag.variable || code === tag.member || isScope(code);
+}
+
+function isOfInterestInC(code: number): boolean {
+  return (
+    code === tag.variable || code === tag.subprogram || code === tag.lexicalBlock || code === tag.namespace
+  );
 }
 
 function isScope(code: number): boolean {
@@ -170,7 +212,8 @@ function surroundingsOf(target: Entry): Surroundings {
   if (!known) {
     known = new Map();
     const root = rootOf(target.unit);
-    if (root) for (const met of entriesIn(root, [], false, 0)) known.set(met.entry.offset, met);
+    if (root)
+      for (const met of entriesIn(root, [], false, 0, interestIn(root))) known.set(met.entry.offset, met);
     keptSurroundings.set(target.unit, known);
   }
   return known.get(target.offset) ?? { scopes: [], inFunction: false };
