@@ -128,9 +128,11 @@ function fits(trees: Tree[][], rows: AxisUnits, columns: AxisUnits): boolean {
 }
 
 function wrongSize(what: string, trees: Tree[][], rows: AxisUnits, columns: AxisUnits): string {
-  const count = (axis: AxisUnits): string => (axis.counted ? `${axis.units.length}` : 'any number of');
-  const found = `${trees.length} row${trees.length === 1 ? '' : 's'} of ${[...new Set(trees.map((row) => row.length))].join(' or ')}`;
-  return `${what} has ${found}; expected ${count(rows)} row${rows.units.length === 1 ? '' : 's'} of ${count(columns)} number${columns.counted && columns.units.length === 1 ? '' : 's'}`;
+  const counted = (count: number, word: string): string => `${count} ${word}${count === 1 ? '' : 's'}`;
+  const widths = [...new Set(trees.map((row) => row.length))].join(' or ');
+  const height = rows.counted ? counted(rows.units.length, 'row') : 'rows';
+  const width = columns.counted ? ` of ${counted(columns.units.length, 'number')}` : '';
+  return `${what} has ${counted(trees.length, 'row')} of ${widths}; expected ${height}${width}`;
 }
 
 function unitAt({ units, counted }: AxisUnits, at: number): AxisUnit {

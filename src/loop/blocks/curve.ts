@@ -24,17 +24,37 @@ export function valueAt(curve: Curve, x: Node, arithmetic: TargetArithmetic): No
   if (values.length === 1) return values[0];
   const ends = [points[0], points[points.length - 1]].map((point) => arithmetic.number(point));
   const inside = arithmetic.apply('limit', x, ends[0], ends[1]);
-  const pick = (of: (interval: number) => Node): Node => picked(points, inside, arithmetic, of);
+  // Where the slope does not change, the change of interval stays off the point: a loop at rest there has its margins.
+  const hair = smallest * (points[points.length - 1] - points[0]);
+  const changes = points.map((point, k) =>
+    isSmooth(curve, k) ? arithmetic.graph.number(point - hair) : arithmetic.number(point),
+  );
+  const pick = (of: (interval: number) => Node): Node => picked(changes, inside, arithmetic, of);
   return curve.between === 'linear'
     ? chord(curve, inside, pick, arithmetic)
     : arch(curve, inside, pick, arithmetic);
 }
 
+/** As a share of the whole: finer than any number format whose numbers reach so far. */
+const smallest = 1e-14;
+
+/** Whether the slope is the same on both sides of a point. */
+function isSmooth({ points, values, between }: Curve, k: number): boolean {
+  if (between === 'cubic' || k === 0 || k === points.length - 1) return true;
+  const [before, here, after] = [values[k - 1], values[k], values[k + 1]];
+  if (before.kind !== 'number' || here.kind !== 'number' || after.kind !== 'number') return false;
+  const slopes = [
+    (here.value - before.value) / (points[k] - points[k - 1]),
+    (after.value - here.value) / (points[k + 1] - points[k]),
+  ];
+  return Math.abs(slopes[1] - slopes[0]) <= 1e-12 * (Math.abs(slopes[0]) + Math.abs(slopes[1]));
+}
+
 type Pick = (of: (interval: number) => Node) => Node;
 
-/** What belongs to the interval in which x lies, by halving. */
+/** What belongs to the interval in which x lies, by halving; entry k is where interval k begins. */
 function picked(
-  points: readonly number[],
+  changes: readonly Node[],
   x: Node,
   arithmetic: TargetArithmetic,
   of: (interval: number) => Node,
@@ -42,11 +62,11 @@ function picked(
   const among = (first: number, last: number): Node => {
     if (first === last) return of(first);
     const middle = Math.ceil((first + last) / 2);
-    const below = arithmetic.apply('less', x, arithmetic.number(points[middle]));
+    const below = arithmetic.apply('less', x, changes[middle]);
     const [lower, upper] = [among(first, middle - 1), among(middle, last)];
     return lower === upper ? lower : arithmetic.apply('choose', below, lower, upper);
   };
-  return among(0, points.length - 2);
+  return among(0, changes.length - 2);
 }
 
 function chord({ points, values }: Curve, x: Node, pick: Pick, arithmetic: TargetArithmetic): Node {

@@ -20,7 +20,11 @@ export const estimate: Block = {
   },
   keepsRange: false,
   expand: (use, { published }) => {
-    const [observer] = use.names('estimate');
+    const [observer, ...others] = use.names('estimate');
+    if (others.length > 0) {
+      const message = `estimate of '${use.name}' names ${others.length + 1} observers; expected one`;
+      throw new LoopError(message, use.place);
+    }
     const estimates = published(observer);
     const found = estimates.get(use.name);
     if (found) return found;

@@ -169,7 +169,7 @@ function startsOf(use: BlockUse, order: number): number[] {
   if (!given) return Array(order).fill(0);
   const starts = given.flatMap((entry) => (entry.kind === 'number' ? [entry.value] : []));
   if (starts.length === order && given.length === order) return starts;
-  return fail(use, `has a starts_at that is not ${order} numbers`);
+  return fail(use, `has a starts_at that is no list of ${order}; expected one number for each state`);
 }
 
 function workedOut(

@@ -18,7 +18,8 @@ export const table: Block = {
         columns: 'plain',
         entry: 'ratio',
         optional: false,
-        meaning: 'ascending values of the input: a list, or an array of the build',
+        meaning:
+          'ascending values of the input: a list, an array of the build, or { file: gains.csv, column: speed, unit: rpm }',
       },
       {
         name: 'values',

@@ -106,7 +106,7 @@ describe('the blocks of controllers say what is wrong with', () => {
     [
       'gains that do not match the states',
       ['out: { state_feedback: { states: [x, 2*x], gains: [1, 2, 3] } }'],
-      /`gains` has 1 row of 3; expected any number of rows? of 2 numbers/,
+      /`gains` has 1 row of 3; expected rows of 2 numbers/,
     ],
     [
       'points that do not ascend',
@@ -167,6 +167,59 @@ describe('the blocks of controllers say what is wrong with', () => {
       'an estimate that its observer does not name',
       [...observer('state_matrix: 1, output_matrix: 1, gain: 1'), 'more: { estimate: model }'],
       /'model' estimates no 'more'; its states are 'out'/,
+    ],
+    [
+      'an estimate of two observers',
+      [
+        'out: { estimate: [model, x_again] }',
+        'x_again: { value: x }',
+        'model: { observer: { states: [out], measured: x, state_matrix: 1, output_matrix: 1, gain: 1, uses: this_sample } }',
+      ],
+      /estimate of 'out' names 2 observers; expected one/,
+    ],
+    [
+      'a start that changes',
+      observer('state_matrix: 1, output_matrix: 1, gain: 1, starts_at: x'),
+      /has a starts_at that is no list of 1; expected one number for each state/,
+    ],
+    [
+      'covariances that are not symmetric',
+      [
+        'out: { estimate: model }',
+        'more: { estimate: model }',
+        'model: { observer: { states: [out, more], measured: x, uses: this_sample, state_matrix: [[1, 0], [0, 1]], output_matrix: [1, 0], process_covariance: [[1, 0.5], [0, 1]], measurement_covariance: 1 } }',
+      ],
+      /the process_covariance is not symmetric/,
+    ],
+    [
+      'an observer that is driven and has no input_matrix',
+      observer('state_matrix: 1, output_matrix: 1, gain: 1, driven_by: x'),
+      /has driven_by and needs an input_matrix/,
+    ],
+    ['a table without points', ['out: { table: { values: [1, 2] }, of: x }'], /`points` is missing/],
+    [
+      'targets of the wrong number',
+      ['out: { state_feedback: { states: [x, 2*x], gains: [1, 2], targets: [1] } }'],
+      /`targets` has 1 row of 1; expected 2 rows/,
+    ],
+    [
+      'a matrix of uneven rows',
+      observer('state_matrix: [[1, 2], [3]], output_matrix: 1, gain: 1'),
+      /`state_matrix` has 2 rows of 2 or 1; expected 1 row of 1 number/,
+    ],
+    [
+      'a cycle that an observer does not break',
+      [
+        'out: { state_feedback: { states: [s], gains: [1] } }',
+        's: { estimate: model }',
+        'model: { observer: { states: [s], measured: out, state_matrix: 1, output_matrix: 1, gain: 1, uses: this_sample } }',
+      ],
+      /each needs the next at the same sampling instant/,
+    ],
+    [
+      'a mean of a length in seconds',
+      ['out: { moving_average: 2 s, of: x }'],
+      /`length` must be a plain number/,
     ],
     [
       'a state that is no signal',
