@@ -122,7 +122,7 @@ export class ControllerRoom {
       case 'sensor':
         return this.reading(this.spec.sensors.find((sensor) => sensor.name === name)!, task);
       case 'coefficient':
-        return arithmetic.number(this.parts.numberOf(name, index, place));
+        return this.parts.coefficient({ name, index, place }, arithmetic);
       case 'signal':
         return this.owner(name).task === task ? this.seen(name) : arithmetic.take(this.fromOther(name));
       case 'input': {

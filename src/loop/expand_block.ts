@@ -25,15 +25,11 @@ export function expandBlock(
   parts: Parts,
 ): Node {
   const { arithmetic } = around;
-  const named: Surroundings = {
-    ...around,
-    name: (use) => (use.role === 'coefficient' ? parts.coefficient(use, arithmetic) : around.name(use)),
-  };
   const placedWorkshop: Workshop = {
     ...workshop,
     addMemory: (name, next, start) => workshop.addMemory(name, () => placed(definition.place, next), start),
   };
-  return placed(definition.place, () => arithmetic.keep(expanded(definition, named, placedWorkshop, parts)));
+  return placed(definition.place, () => arithmetic.keep(expanded(definition, around, placedWorkshop, parts)));
 }
 
 function expanded(
