@@ -1,4 +1,4 @@
-import { lessConstant } from './curve.js';
+import { scaled } from './curve.js';
 import { integral, rootMeanSquare } from './integrals.js';
 import { signalKey, windowKeys } from './keys.js';
 import { measured, type TraceMeasure } from './measure.js';
@@ -19,6 +19,6 @@ export const activity: TraceMeasure = {
   },
   measure: ({ of, window }) => {
     const mean = integral(of, window) / (window.until - window.from);
-    return measured(rootMeanSquare(lessConstant(of, mean), window));
+    return measured(rootMeanSquare(scaled(of, 1, -mean), window));
   },
 };

@@ -60,12 +60,23 @@ function collect(points: number[], from: number, to: number, depth: number, foun
     found.push(from + (to - from) * zeroOf(points));
     return;
   }
-  const left = firstPart(points, 0.5);
-  const right = firstPart(points.reverse(), 0.5).reverse();
+  const [left, right] = halves(points);
   collect(left, from, middle, depth + 1, found);
   // A zero in the very middle belongs to neither half.
   if (right[0] === 0 && signBefore(left) * signAfter(right) < 0) found.push(middle);
   collect(right, middle, to, depth + 1, found);
+}
+
+/** Both halves from one scheme, so that the value in the middle is the same number in both. */
+function halves(points: readonly number[]): [number[], number[]] {
+  const work = [...points];
+  const [left, right] = [[work[0]], [work[work.length - 1]]];
+  for (let count = work.length - 1; count > 0; count--) {
+    for (let i = 0; i < count; i++) work[i] += (work[i + 1] - work[i]) / 2;
+    left.push(work[0]);
+    right.push(work[count - 1]);
+  }
+  return [left, right.reverse()];
 }
 
 function countChanges(points: readonly number[]): number {

@@ -55,14 +55,12 @@ export function pieceOf({ points }: Curve, piece: number): Float64Array {
   return points.subarray(pointsOfPiece * piece, pointsOfPiece * (piece + 1));
 }
 
-/** A curve with all values multiplied by a factor. */
-export function scaled(curve: Curve, factor: number): Curve {
-  return { ...curve, points: curve.points.map((point) => factor * point) };
-}
-
-/** A curve with the same amount taken from all values. */
-export function lessConstant(curve: Curve, amount: number): Curve {
-  return { ...curve, points: curve.points.map((point) => point - amount) };
+/** A curve with all values multiplied by a factor, and an offset added to them. */
+export function scaled(curve: Curve, factor: number, offset = 0): Curve {
+  const { points } = curve;
+  const moved = new Float64Array(points.length);
+  for (let i = 0; i < points.length; i++) moved[i] = factor * points[i] + offset;
+  return { ...curve, points: moved };
 }
 
 /** Whether a curve has one value all the time. */

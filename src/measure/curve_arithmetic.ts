@@ -45,7 +45,9 @@ export function sumOf(a: Curve, b: Curve, factor: number): Curve {
 export function difference(a: Curve, b: Curve): Curve {
   // Curves of one run have their times in common, and most have the same pieces.
   if (a.times !== b.times) return sumOf(a, b, -1);
-  return { ...a, points: a.points.map((point, i) => point - b.points[i]) };
+  const points = new Float64Array(a.points.length);
+  for (let i = 0; i < points.length; i++) points[i] = a.points[i] - b.points[i];
+  return { ...a, points };
 }
 
 /** The smaller of two curves at every time that both have. */

@@ -225,7 +225,8 @@ function tracesOf(
 ): { run: Run; curve: (name: string) => Curve } | string {
   const rest = ownStates ? pointOfRest(ownStates, parameters, ownStates.loop.inputRest) : common;
   const fromRest = scenario.scenario.start === 'rest';
-  if (fromRest && rest.kind === 'none') return rest.why;
+  const given = scenario.scenario.startAt.length > 0;
+  if (fromRest && !given && rest.kind === 'none') return rest.why;
   const point = fromRest && rest.kind === 'rest' ? rest.point : undefined;
   const run = numeric(() => scenario.run(parameters, point, schedule, halvings));
   if (typeof run === 'string') return run;

@@ -1,8 +1,7 @@
 import { plainNumber } from '../spec/dimension.js';
-import { smallest } from './extremes.js';
+import { largest, smallest } from './extremes.js';
 import { responseKey, stepKey } from './keys.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
-import { stepShare } from './step_level.js';
 
 /** How far the response goes the wrong way, as a share of the step: max(0, (before − y)/(after − before)). */
 export const inverseResponse: TraceMeasure = {
@@ -20,6 +19,10 @@ export const inverseResponse: TraceMeasure = {
   },
   measure: ({ of, step }) => {
     if (!step) return unformed('the target makes no single step');
-    return measured(Math.max(0, -smallest(stepShare(of, step), step.time, step.until).value));
+    const { before, after, time, until } = step;
+    const size = Math.abs(after - before);
+    const back =
+      after > before ? before - smallest(of, time, until).value : largest(of, time, until).value - before;
+    return measured(Math.max(0, back / size));
   },
 };

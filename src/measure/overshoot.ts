@@ -1,8 +1,7 @@
 import { plainNumber } from '../spec/dimension.js';
-import { largest } from './extremes.js';
+import { largest, smallest } from './extremes.js';
 import { responseKey, stepKey } from './keys.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
-import { stepShare } from './step_level.js';
 
 /**
  * How far the response goes past the target's new value, in the direction of the step, as a share of the step:
@@ -23,6 +22,11 @@ export const overshoot: TraceMeasure = {
   },
   measure: ({ of, step }) => {
     if (!step) return unformed('the target makes no single step');
-    return measured(Math.max(0, largest(stepShare(of, step), step.time, step.until).value - 1));
+    const { before, after, time, until } = step;
+    const size = Math.abs(after - before);
+    // Without scaling, so that a response which ends exactly at the target has no overshoot at all.
+    const past =
+      after > before ? largest(of, time, until).value - after : after - smallest(of, time, until).value;
+    return measured(Math.max(0, past / size));
   },
 };

@@ -6,7 +6,7 @@ import type { Run } from '../kernel/trace.js';
 import type { PointOfRest } from '../linear/point_of_rest.js';
 import { Evaluation } from '../loop/evaluate.js';
 import { dependsOn, type Node } from '../loop/graph.js';
-import type { Loop } from '../loop/loop.js';
+import { type Loop, LoopError } from '../loop/loop.js';
 import { standardNormal } from '../loop/random_draws.js';
 import type { Schedule } from '../loop/schedule.js';
 import type { Scenario } from '../spec/spec.js';
@@ -21,6 +21,8 @@ export class ScenarioRun {
   private readonly noises: Float64Array[] = [];
   private shared: { schedule: Schedule; timeline: Timeline } | undefined;
   private readonly recorded: RecordedSignals;
+  /** States that start elsewhere than at rest. */
+  private readonly startAt: { state: number; value: number }[];
 
   /** @param traced names of the signals to follow. */
   constructor(
@@ -34,6 +36,15 @@ export class ScenarioRun {
     this.recorded = new RecordedSignals(loop, traced);
     this.compiled = compileLoop(this.recorded.loop, this.recorded.names);
     this.choice = new MovementChoice(this.compiled);
+    this.startAt = scenario.startAt.map(({ name, value, place }) => {
+      const state = loop.states.findIndex((one) => one.name === name);
+      if (state >= 0) return { state, value };
+      const known = loop.states.map((one) => `'${one.name}'`).join(', ');
+      throw new LoopError(
+        `'${name}' is no state, and so cannot start at a value; the states are ${known}`,
+        place,
+      );
+    });
   }
 
   /** Follows one plant from its point of rest (or from zero, where the scenario says so). */
@@ -81,12 +92,22 @@ export class ScenarioRun {
     m.set(parameters, layout.parameter);
     m.set(this.loop.inputRest, layout.input);
     m.set(rest?.mode ?? this.loop.modes.map((mode) => mode.start), layout.mode);
+    if (!rest && this.scenario.start === 'rest')
+      m.set(
+        this.loop.states.map(({ start }) => start),
+        layout.state,
+      );
     if (rest) {
       m.set(rest.state, layout.state);
       m.set(rest.memory, layout.memory);
       m.set(rest.held, layout.held);
     }
-    const evaluation = new Evaluation({ parameter: parameters, input: this.loop.inputRest, ...rest }, 'off');
+    for (const { state, value } of this.startAt) m[layout.state + state] = value;
+    const states = m.slice(layout.state, layout.state + this.loop.states.length);
+    const evaluation = new Evaluation(
+      { parameter: parameters, input: this.loop.inputRest, ...rest, state: states },
+      'off',
+    );
     this.loop.readings.forEach(({ sampled }, i) => {
       m[layout.reading + i] = evaluation.of(sampled);
     });

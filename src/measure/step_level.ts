@@ -8,8 +8,7 @@ import { sectionsOf, timeAtLevel } from './sections.js';
  */
 export function stepShare(of: Curve, { before, after }: TargetStep): Curve {
   const size = after - before;
-  const share = scaled(of, 1 / size);
-  return { ...share, points: share.points.map((point) => point - before / size) };
+  return scaled(of, 1 / size, -before / size);
 }
 
 /** The first time between two times at which a curve is at or above a level; undefined where it never is. */
