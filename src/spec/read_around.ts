@@ -23,7 +23,8 @@ export function readAround(
   return entriesOf(entry.value).flatMap((one) => readSignalValue(one, reading) ?? []);
 }
 
-function readSignalValue(
+/** The value of a signal at a point, in SI; undefined where it is wrong (then reported). */
+export function readSignalValue(
   { key, keyPlace, value }: MapEntry,
   reading: Reading,
 ): Requirement['around'][number] | undefined {

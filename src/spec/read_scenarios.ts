@@ -1,6 +1,7 @@
 import { timeDimension } from './dimension.js';
 import { aKind, nameFault } from './names.js';
 import { suggestion } from './nearest.js';
+import { readSignalValue } from './read_around.js';
 import { readEvent } from './read_event.js';
 import { readQuantity } from './read_quantity.js';
 import type { Reading } from './reading.js';
@@ -31,6 +32,7 @@ function readScenario(entry: MapEntry, reading: Reading): Scenario {
     lasts: lasts?.value ?? Number.NaN,
     inputs,
     start: readStart(childOf(entry.value, 'start'), reading),
+    startAt: startValues(childOf(entry.value, 'start'), reading),
   };
 }
 
@@ -44,6 +46,11 @@ function inputDimension({ key, keyPlace }: MapEntry, reading: Reading): Dimensio
     entry === undefined ? `unknown input \`${key}\`` : `\`${key}\` is ${aKind(entry.kind)}, not an input`;
   reading.problems.add(keyPlace, `${found}${suggestion(key, known)}`);
   return undefined;
+}
+
+/** `start: { speed: 3 rad/s }` gives states of the plant. */
+function startValues(tree: Tree | undefined, reading: Reading): Scenario['startAt'] {
+  return entriesOf(tree).flatMap((entry) => readSignalValue(entry, reading) ?? []);
 }
 
 function readStart(tree: Tree | undefined, reading: Reading): Scenario['start'] {

@@ -281,7 +281,10 @@ function scenario(vocabulary: Vocabulary) {
         )
         .describe(mappingOf('events'))
         .optional(),
-      start: text('rest or zero').optional(),
+      start: z
+        .union([text('rest or zero'), z.record(z.string(), text('a value'))])
+        .describe('rest, zero, or states such as { speed: 3 rad/s }')
+        .optional(),
     })
     .describe('{ lasts: …, inputs: … }');
 }

@@ -187,6 +187,8 @@ export interface Scenario {
   inputs: Record<string, InputEvent[]>;
   /** `rest`: from the point of rest; `zero`: every state zero, as after power-up. */
   start: 'rest' | 'zero';
+  /** States (SI) that start elsewhere; the others as `start` says, or where they start freely if there is no rest. */
+  startAt: { name: string; value: number; place: Place }[];
 }
 
 /** A number read from the build. `unit` is undefined where the spec gives none: the slot's unit, or a plain number. */
