@@ -106,7 +106,7 @@ export class PlantEvaluator {
     this.spec.requirements.forEach((requirement, index) => {
       if (measureNamed(requirement.measure).description.basis !== 'loop') return;
       const around = requirement.around.map(({ name, value }) => [name, value]);
-      const key = JSON.stringify([requirement.signals.at, around]);
+      const key = JSON.stringify([requirement.signals.at, requirement.signals.of, around]);
       let group = groups.get(key);
       if (!group) {
         group = { point: new LoopPoint(this.spec, coefficients, requirement), requirements: [] };

@@ -18,13 +18,16 @@ import { largestSensitivity } from './largest_sensitivity.js';
 import { largestValue } from './largest_value.js';
 import { lateDeviationIntegral } from './late_deviation_integral.js';
 import { leastDamping } from './least_damping.js';
+import { limitHitCount } from './limit_hit_count.js';
 import { longestTimeAtLimit } from './longest_time_at_limit.js';
 import { lowestCrossover } from './lowest_crossover.js';
 import type { Measure } from './measure.js';
 import { modulusMargin } from './modulus_margin.js';
+import { noiseGain } from './noise_gain.js';
 import { oscillationAmplitude } from './oscillation_amplitude.js';
 import { oscillationFrequency } from './oscillation_frequency.js';
 import { overTime } from './over_time.js';
+import { overflowCount } from './overflow_count.js';
 import { overshoot } from './overshoot.js';
 import { peakDeviation } from './peak_deviation.js';
 import { peakEffort } from './peak_effort.js';
@@ -77,6 +80,8 @@ export const measures: readonly Measure[] = [
   travel,
   reversalsPerSecond,
   slewRate,
+  overflowCount,
+  limitHitCount,
   activity,
   corridorClearance,
   overTime,
@@ -98,6 +103,7 @@ export const measures: readonly Measure[] = [
   largestSensitivity,
   largestFollowingGain,
   leastDamping,
+  noiseGain,
 ];
 
 const byName = new Map(measures.map((measure) => [measure.description.name, measure]));

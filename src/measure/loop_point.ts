@@ -1,5 +1,6 @@
 import { edgeOf } from '../linear/edge.js';
 import { Linearisation, withReadings } from '../linear/linearise.js';
+import { NoisePath } from '../linear/noise_path.js';
 import { openedLoop } from '../linear/opened_loop.js';
 import type { PointOfRest } from '../linear/point_of_rest.js';
 import { Evaluation, type LeafValues } from '../loop/evaluate.js';
@@ -19,10 +20,28 @@ export class LoopPoint {
   /** The leaves that `around` sets, SI. */
   readonly overrides: { group: 'state' | 'input' | 'held'; index: number; value: number }[];
 
-  constructor(spec: Spec, coefficients: CoefficientValues, { signals, around }: Requirement) {
+  /** Where the requirement asks for what noise drives. */
+  private readonly noise: { path: NoisePath; scale: number } | undefined;
+
+  constructor(spec: Spec, coefficients: CoefficientValues, { signals, around, place }: Requirement) {
     const at = sensorFedBy(spec, signals.at) ?? signals.at;
     this.linearisation = new Linearisation(expandLoop(spec, coefficients, { openAt: at }));
     this.overrides = around.map(({ name, value, place }) => ({ ...this.leafNamed(name, place), value }));
+    this.noise = signals.of === undefined ? undefined : this.noisePath(spec, at, signals.of, place);
+  }
+
+  private noisePath(spec: Spec, at: string, of: string, place: Requirement['place']): LoopPoint['noise'] {
+    const sensor = spec.sensors.find(({ name }) => name === at);
+    const actuators = spec.actuators.map(({ name }) => name);
+    if (!sensor || !actuators.includes(of)) {
+      throw new LoopError(
+        `noise goes from a sensor (\`at: ${at}\`) to an actuator (\`of: ${of}\`); expected one of the sensors ${spec.sensors.map(({ name }) => name).join(', ')} and one of the actuators ${actuators.join(', ')}`,
+        place,
+      );
+    }
+    const { loop } = this.linearisation;
+    const held = loop.held.findIndex(({ name }) => name === of);
+    return { path: new NoisePath(loop, held), scale: sensor.unit.scale };
   }
 
   private leafNamed(
@@ -48,7 +67,10 @@ export class LoopPoint {
     const leaves = this.leaves(parameters, rest);
     const why = this.edge(leaves);
     if (why) return { kind: 'unformed', why };
-    return { kind: 'loop', loop: new LoopView(openedLoop(this.linearisation, schedule, leaves)) };
+    const { noise } = this;
+    const noiseGain = noise && (() => noise.path.gain(schedule, leaves) / noise.scale);
+    const equations = openedLoop(this.linearisation, schedule, leaves);
+    return { kind: 'loop', loop: new LoopView(equations, noiseGain) };
   }
 
   private leaves(parameters: Float64Array, rest: PointOfRest): LeafValues {

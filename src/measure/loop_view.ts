@@ -16,8 +16,14 @@ export class LoopView {
   private disc: DiscMargin | undefined;
   private decay: ClosedLoopDecay | undefined;
 
-  /** @param equations the loop transfer L, −(returned / injected), over one cycle. */
-  constructor(readonly equations: StateEquations) {}
+  /**
+   * @param equations the loop transfer L, −(returned / injected), over one cycle.
+   * @param noiseGain root-mean-square gain from noise at the loop point to the measure's `of`, SI; where it has one.
+   */
+  constructor(
+    readonly equations: StateEquations,
+    readonly noiseGain?: (() => number) | undefined,
+  ) {}
 
   /** How often the signal changes in a cycle of all controllers. */
   get changes(): number {

@@ -70,7 +70,8 @@ function readRequirement(
   // A loop measure has no `of`; without one the result is a plain number.
   const needsOf = measure.keys.some((key) => key.name === 'of');
   const ofDimension = needsOf ? reading.names.entries.get(signals.of ?? '')?.unit?.dimension : plainNumber;
-  const dimension = ofDimension && measure.dimension(ofDimension);
+  const atDimension = reading.names.entries.get(signals.at ?? '')?.unit?.dimension ?? plainNumber;
+  const dimension = ofDimension && measure.dimension(ofDimension, atDimension);
   const limit = readLimit(item, measure, dimension, reading);
   const scale = measure.takesHertz
     ? readAngularFrequency(childOf(item, 'scale'), '`scale`', reading)

@@ -72,11 +72,12 @@ export interface BlockDescription {
  * `loop_point`: a sensor, controller or actuator signal where the loop is opened; `quantity`: a number with a dimension;
  * `share`: a plain number such as `5 %`; `frequency`: an angular frequency in rad/s, or a frequency in Hz which is multiplied by
  * 2π; `statement`: a comparison of signals, or a mapping that says when it holds; `bound`: corners of a bound, each a time and
- * a value of the dimension of `of`.
+ * a value of the dimension of `of`; `controller`: the name of a controller, of which a signal of the loop's own is followed.
  */
 export type MeasureKey = { name: string; optional: boolean; meaning: string } & (
   | { kind: 'signal' | 'target' | 'loop_point' | 'share' | 'frequency' | 'statement' | 'bound' }
   | { kind: 'quantity'; dimension: (of: Dimension) => Dimension }
+  | { kind: 'controller'; signal: (controller: string) => string }
 );
 
 /** What the spec reader must know of a measure. */
@@ -85,8 +86,8 @@ export interface MeasureDescription {
   /** `trace` measures need `in:` (a scenario); `loop` measures may have `around:`. */
   basis: 'trace' | 'loop';
   keys: readonly MeasureKey[];
-  /** Dimension of the result, from the dimension of the `of` signal (plain for a loop measure). */
-  dimension: (of: Dimension) => Dimension;
+  /** Dimension of the result, from those of the signals `of` and `at` (plain where the measure has none). */
+  dimension: (of: Dimension, at?: Dimension) => Dimension;
   /** Limits in dB are amplitude ratios: only where the result is a ratio. */
   ratio: boolean;
   /** Limits of an angular frequency may be written in Hz, which is multiplied by 2π. */
