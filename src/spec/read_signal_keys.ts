@@ -20,12 +20,28 @@ export function readSignalKeys(
   const signals: Record<string, string> = {};
   for (const key of measure.keys) {
     const text = textOf(childOf(item, key.name));
-    if (text === undefined || !['signal', 'target', 'loop_point'].includes(key.kind)) continue;
-    const found = readSignalKey(text, key, sensors, reading);
+    if (text === undefined) continue;
+    const isSignal = ['signal', 'target', 'loop_point'].includes(key.kind);
+    if (!isSignal && key.kind !== 'controller') continue;
+    const found =
+      key.kind === 'controller'
+        ? readController(text, key.signal, reading)
+        : readSignalKey(text, key, sensors, reading);
     if (found !== undefined) signals[key.name] = found;
   }
   checkComparable(item, signals, reading);
   return signals;
+}
+
+function readController(
+  text: TextTree,
+  signal: (controller: string) => string,
+  reading: Reading,
+): string | undefined {
+  const known = [...reading.names.entries.values()].flatMap(({ controller }) => controller ?? []);
+  if (known.includes(text.text)) return signal(text.text);
+  reading.problems.add(text.place, `unknown controller \`${text.text}\`${suggestion(text.text, known)}`);
+  return undefined;
 }
 
 function readSignalKey(
