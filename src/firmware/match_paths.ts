@@ -41,6 +41,12 @@ export function matchPaths(image: FirmwareImage, pattern: string): string[] {
 export function elfOf(image: FirmwareImage): ElfImage {
   const elf = image.kind === 'elf' ? image : 'contents' in image ? image.symbols : undefined;
   if (elf) return elf;
+  if ('values' in image) {
+    throw new FirmwareError(
+      'bad_request',
+      `${quoted(image.name)} is no ELF image: its values are listed by a wildcard such as **`,
+    );
+  }
   throw new FirmwareError(
     'bad_request',
     `${quoted(image.name)} has no names: give the ELF file of the same build as symbols`,

@@ -1,7 +1,15 @@
 import { existsSync, readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, test } from 'vitest';
-import { FirmwareError, openCommand, readCoefficient, runBuild } from '../../src/firmware/index.js';
+import {
+  candidates,
+  describeImage,
+  FirmwareError,
+  matchPaths,
+  openCommand,
+  readCoefficient,
+  runBuild,
+} from '../../src/firmware/index.js';
 import { freshFolder } from './toolchain.js';
 
 /** A build is run without a shell, under a limit, and leaves nothing behind; what it printed is kept. */
@@ -203,6 +211,16 @@ describe('a program which prints coefficients', () => {
     await expect(
       openCommand({ command: forever, cwd: freshFolder(), timeLimitSeconds: 0.5 }),
     ).rejects.toThrow(/time limit of 0\.5 s/);
+  });
+
+  test('its values are listed by a wildcard; a first spec is made of an ELF image only', async () => {
+    const image = await open('{"kp": 1, "axis": {"ki": 2, "note": "x", "notch": [1, 2]}}');
+    expect(matchPaths(image, '**')).toEqual(['kp', 'axis.ki', 'axis.notch']);
+    expect(matchPaths(image, 'axis.notch[*]')).toEqual(['axis.notch[0]', 'axis.notch[1]']);
+    expect(() => candidates(image)).toThrow(
+      /is no ELF image: its values are listed by a wildcard such as \*\*/,
+    );
+    expect(describeImage(image)).toMatchObject({ kind: 'command', machine: undefined, byteOrder: undefined });
   });
 
   test('addresses mean nothing to it', async () => {

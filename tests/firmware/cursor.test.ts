@@ -1,6 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
-import { Cursor, hex, occurrences } from '../../src/firmware/cursor.js';
+import { bytesOfU32, Cursor, hex, nextOccurrence, occurrences } from '../../src/firmware/cursor.js';
 import { FirmwareError } from '../../src/firmware/failure.js';
 import { ByteWriter } from './byte_writer.js';
 
@@ -146,4 +146,23 @@ test('occurrences finds what a plain search finds, or says that there are too ma
 
 test('addresses are written in lower-case hexadecimal', () => {
   expect([hex(0x0801f0ab), hex(2n ** 40n)]).toEqual(['0x801f0ab', '0x10000000000']);
+});
+
+test('the next occurrence is the first one that is not before the start', () => {
+  fc.assert(
+    fc.property(
+      fc.uint8Array({ maxLength: 40, max: 1 }),
+      fc.uint8Array({ minLength: 1, maxLength: 3, max: 1 }),
+      fc.nat(40),
+      (bytes, pattern, start) => {
+        const all = occurrences(bytes, pattern, 100) ?? [];
+        expect(nextOccurrence(bytes, pattern, start)).toBe(all.find((place) => place >= start) ?? -1);
+      },
+    ),
+  );
+});
+
+test('a number is sought by its bytes in the order of the image', () => {
+  expect([...bytesOfU32(0x01020304, true)]).toEqual([4, 3, 2, 1]);
+  expect([...bytesOfU32(0x01020304, false)]).toEqual([1, 2, 3, 4]);
 });

@@ -372,3 +372,40 @@ test('all compilers that took part are named once', () => {
       .producers,
   ).toEqual(['GNU C17 12.2', 'clang 14']);
 });
+
+describe('languages', () => {
+  const staticMember: EntrySpec = {
+    tag: tag.structureType,
+    attributes: [
+      [at.name, form.string, 'Limits'],
+      [at.byteSize, form.data1, 4],
+    ],
+    children: [
+      {
+        tag: tag.member,
+        attributes: [
+          [at.name, form.string, 'slope'],
+          [at.type, form.ref4, { to: 'float' }],
+          [at.external, form.flagPresent, 1],
+          [at.constValue, form.data4, 0x3f000000],
+        ],
+      },
+    ],
+  };
+  const inLanguage = (language: number) =>
+    debugSections({
+      ...unitOf(staticMember, variable('kp', 'float', 0x1004)),
+      attributes: [[at.language, form.data1, language]],
+    });
+
+  // Numbers of DWARF 5, table 7.17: C++ 0x04, C++14 0x21, C99 0x0c, C11 0x1d.
+  test.each([0x04, 0x21])('language 0x%i has static members, also of constant value', (language) => {
+    expect(value(inLanguage(language), 'Limits::slope')).toBe(0.5);
+    expect(value(inLanguage(language), 'kp')).toBe(2);
+  });
+
+  test.each([0x0c, 0x1d])('language 0x%i has none: its structs are passed over', (language) => {
+    expect(() => value(inLanguage(language), 'Limits::slope')).toThrow(/has no variable “Limits::slope”/);
+    expect(value(inLanguage(language), 'kp')).toBe(2);
+  });
+});
