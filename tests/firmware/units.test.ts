@@ -129,7 +129,7 @@ describe('where a variable is declared', () => {
     entry.attributes.push([at.declarationFile, form.data1, file], [at.declarationLine, form.data2, line]);
     return entry;
   };
-  const withLines = (unit: UnitSpec, lines: Uint8Array, folder = '/work/fw') => {
+  const withLines = (unit: UnitSpec, lines: Uint8Array, folder = '/build/fw') => {
     const attributes: UnitSpec['attributes'] = [
       [at.statementList, form.secOffset, 0],
       [at.compilationFolder, form.string, folder],
@@ -196,7 +196,7 @@ describe('where a variable is declared', () => {
 
   test('line table version 5', () => {
     const table = newTable(
-      ['/work/fw', 'drive', '/work/shared'],
+      ['/build/fw', 'drive', '/build/common'],
       [
         ['main.c', 0],
         ['azimuth.c', 1],
@@ -206,7 +206,7 @@ describe('where a variable is declared', () => {
     const unit = (file: number) => ({ ...unitOf(declared(file, 12)), version: 5 as const });
     expect(withLines(unit(0), table)).toEqual({ file: 'main.c', line: 12 });
     expect(withLines(unit(1), table)).toEqual({ file: 'drive/azimuth.c', line: 12 });
-    expect(withLines(unit(2), table)).toEqual({ file: '../shared/gains.h', line: 12 });
+    expect(withLines(unit(2), table)).toEqual({ file: '../common/gains.h', line: 12 });
   });
 
   test('a file far from the folder keeps its full path', () => {
