@@ -72,17 +72,21 @@ function sizeOf(p: Float64Array, { loopWeight, unitWeight, open }: LoopResponse)
   return top / (open ? Math.hypot(p[0], p[1]) : Math.hypot(p[0] + p[2], p[1] + p[3]));
 }
 
-/** A number with the sign of the slope of the size: Re(top′/top − bottom′/bottom). */
+/**
+ * A number with the sign of the slope of the size, Re(top′/top − bottom′/bottom), multiplied by the squares of both: it has
+ * no pole where the response is zero.
+ */
 function slopeOf(p: Float64Array, { loopWeight, unitWeight, open }: LoopResponse): number {
-  const mixed = (at: number): number => loopWeight * p[at + 2] + unitWeight * p[at];
-  const below = (at: number): number => (open ? p[at] : p[at] + p[at + 2]);
-  return (
-    relativeSlope(mixed(0), mixed(1), mixed(4), mixed(5)) -
-    relativeSlope(below(0), below(1), below(4), below(5))
-  );
+  const top = (at: number): number => loopWeight * p[at + 2] + unitWeight * p[at];
+  const bottom = (at: number): number => (open ? p[at] : p[at] + p[at + 2]);
+  return turn(top) * square(bottom) - turn(bottom) * square(top);
 }
 
-/** Re((c + jd)/(a + jb)). */
-function relativeSlope(a: number, b: number, c: number, d: number): number {
-  return (c * a + d * b) / (a * a + b * b);
+/** Re(z̄·z′), from a number's parts at 0 and 1 and its slope's at 4 and 5. */
+function turn(part: (at: number) => number): number {
+  return part(0) * part(4) + part(1) * part(5);
+}
+
+function square(part: (at: number) => number): number {
+  return part(0) * part(0) + part(1) * part(1);
 }

@@ -167,6 +167,15 @@ describe('a corridor', () => {
     expect(clearance).toBeCloseTo(0.2 + Math.log(2) / 2 - 0.5, 6);
   });
 
+  it.each([
+    ['upper: [[0 s, 1], [1 s, 2 V]]', 'a value of `upper`'],
+    ['upper: [[2 s, 1], [1 s, 2]]', 'the corners of `upper` come in order of time'],
+    ['lower: [[0 s, 1]]', '`lower` needs at least two corners'],
+    ['lower: [[0 s, 1], 2]', 'a time and a value, such as [0 s, 1 V]'],
+  ])('with %s is an error of the spec', (bound, message) => {
+    expect(() => measureSmall(follow(lag, [`${step}, ${bound}`]))).toThrow(message);
+  });
+
   it('without a bound cannot be formed', () => {
     expect(measureSmall(follow(lag, [step]))[0]).toMatchObject({ kind: 'unformed' });
   });
