@@ -23,6 +23,15 @@ describe('slew of a controller’s signal', () => {
     });
   });
 
+  it('gives way to a range that closes faster', () => {
+    const signals = ['out: { value: x, slew: 1 1/s, range: [0, top] }'];
+    const rows = [1, 1, 1, 0.05, 1].map((top) => [1, top]);
+    const found = outputs({ signals, inputs: { top: '1' } }, rows);
+    [0.1, 0.2, 0.3, 0.05, 0.15].forEach((wanted, k) => {
+      expect(found[k]).toBeCloseTo(wanted, 14);
+    });
+  });
+
   it('is no part of the linearised loop', () => {
     const signals = ['out: { low_pass: 0.4 s, of: x, slew: 2 1/s }'];
     const plain = ['out: { low_pass: 0.4 s, of: x }'];
@@ -68,6 +77,19 @@ describe('switch', () => {
     const [[re, im]] = responses({ signals }, [0.7]);
     expect(re).toBeCloseTo(3, 12);
     expect(im).toBeCloseTo(0, 12);
+  });
+});
+
+describe('numbers of the build', () => {
+  it('take the unit of their place in a design, which is worked out in double precision', () => {
+    const of = (centre: string, width: string, lag: string): string[] => [
+      `cut: { notch: { frequency: ${centre}, width: ${width}, depth: -20 dB }, of: x }`,
+      `out: { low_pass: { time_constant: ${lag}, sum_by: exact }, of: cut }`,
+    ];
+    const coefficients = { centre: [9.5], width: [2.5], lag: [0.25] };
+    const stimulus = noise(50);
+    const built = outputs({ signals: of('centre', 'width', 'lag'), coefficients }, stimulus);
+    expect(built).toEqual(outputs({ signals: of('9.5 rad/s', '2.5 rad/s', '0.25 s') }, stimulus));
   });
 });
 
