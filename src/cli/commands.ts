@@ -36,15 +36,39 @@ const commands: Record<string, Command> = {
     },
   },
   read: {
-    meaning: 'show the coefficients that the build really holds',
-    usage: 'pawl read SPEC [--image PATH] [--skip-build]',
-    options: buildOptions,
-    optionMeanings: buildMeanings,
-    run: async (values, positionals, around) => {
-      if (positionals.length !== 1)
-        throw new Fault([`'pawl read' takes one spec, but got ${positionals.length}`]);
+    meaning: 'show the coefficients that a build really holds',
+    usage: 'pawl read SPEC | IMAGE [PATH…] [--against IMAGE] [--json]',
+    options: {
+      ...buildOptions,
+      against: { type: 'string' },
+      symbols: { type: 'string' },
+      json: { type: 'boolean' },
+    },
+    optionMeanings: {
+      'PATH…': "symbol, members, indices: drive.gains.kp; '*' any name, '[*]' any index, '**' all below",
+      '--against IMAGE': 'show what changed, was added or has vanished since that image',
+      '--json': 'an array for programs, one entry for each number',
+      '--symbols ELF': 'the ELF file of the same build, for an image without names',
+      ...buildMeanings,
+    },
+    run: async (values, [source, ...paths], around) => {
+      if (source === undefined) throw new Fault(["'pawl read' takes a spec or an image, but got nothing"]);
       const { read } = await import('./read.js');
-      return read(positionals[0], buildChoice(values), around);
+      const { against, symbols } = values as Record<string, string | undefined>;
+      const json = values.json === true;
+      return read({ ...buildChoice(values), source, paths, against, symbols, json }, around);
+    },
+  },
+  start: {
+    meaning: 'write a first spec for an image, which runs as it is',
+    usage: 'pawl start IMAGE',
+    options: {},
+    optionMeanings: {},
+    run: async (_, positionals, around) => {
+      if (positionals.length !== 1)
+        throw new Fault([`'pawl start' takes one image, but got ${positionals.length}`]);
+      const { start } = await import('./start.js');
+      return start(positionals[0], around);
     },
   },
   schema: {
@@ -122,6 +146,6 @@ function overview(): string {
 }
 
 function helpOf({ meaning, usage, optionMeanings }: Command): string {
-  const rows = Object.entries(optionMeanings).map(([option, text]) => `  ${option.padEnd(16)}${text}`);
+  const rows = Object.entries(optionMeanings).map(([option, text]) => `  ${option.padEnd(18)}${text}`);
   return [usage, '', meaning, '', ...rows].join('\n');
 }

@@ -1,4 +1,4 @@
-import type { NumberFormat, StoredElement } from '../firmware/coefficient.js';
+import type { Coefficient, NumberFormat, StoredElement } from '../firmware/coefficient.js';
 import type { CoefficientRead } from '../verdict/run.js';
 import { counted, formatNumber } from './format_value.js';
 import { oneLine, shortened } from './plain_text.js';
@@ -25,8 +25,17 @@ export function coefficientTable(coefficients: readonly CoefficientRead[]): stri
   return `${textTable([coefficientHeadings, ...coefficients.flatMap((one) => coefficientRows(one))])}\n`;
 }
 
+/** Coefficients without names of their own as a table: the places in the build, each with its number. */
+export function placeTable(coefficients: readonly Coefficient[]): string {
+  const rows = coefficients.flatMap((coefficient) =>
+    coefficientRows({ name: '', unit: undefined, coefficient }),
+  );
+  const places = rows.map(([name, place, ...others]) => [place || name, ...others]);
+  return `${textTable([coefficientHeadings.slice(1), ...places])}\n`;
+}
+
 /** The rows of one coefficient, cells as in the headings. */
-export function coefficientRows(read: CoefficientRead): string[][] {
+export function coefficientRows(read: Omit<CoefficientRead, 'place'>): string[][] {
   const { coefficient, name } = read;
   const { elements, shape, path, declaredAt } = coefficient;
   const rows = elements.slice(0, mostElements).map((element, at) => {
@@ -46,7 +55,7 @@ export function coefficientRows(read: CoefficientRead): string[][] {
 }
 
 /** A stored number for people, with its unit, the name an enumeration gives it, and what is odd about it. */
-function elementText(element: StoredElement, { unit, coefficient }: CoefficientRead): string {
+function elementText(element: StoredElement, { unit, coefficient }: Omit<CoefficientRead, 'place'>): string {
   const number = coefficient.scaling
     ? formatNumber(element.value, 9)
     : storedNumber(element.value, coefficient.format);
@@ -71,7 +80,7 @@ export function storedNumber(value: number, format: NumberFormat): string {
 }
 
 /** The index of the element at this place of a flattened array, last index fastest: "[1][0]". */
-function indexText(at: number, shape: readonly number[]): string {
+export function indexText(at: number, shape: readonly number[]): string {
   let left = at;
   return shape.reduceRight((text, length) => {
     const index = left % length;
