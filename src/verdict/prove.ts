@@ -3,13 +3,19 @@ import { LoopPoint } from '../measure/loop_point.js';
 import type { ParameterSpace } from '../perturb/parameter_space.js';
 import { LoopFamily } from '../perturb/proof/loop_family.js';
 import type { LoopClaim } from '../perturb/proof/margin_statement.js';
-import { mostVariables, movingParameters, proveClaim } from '../perturb/proof/prove_claim.js';
+import {
+  mostVariables,
+  movingParameters,
+  proveClaim,
+  provenStableAt,
+  statesOf,
+} from '../perturb/proof/prove_claim.js';
 import { Unprovable } from '../perturb/proof/slope_evaluation.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import type { Proof } from './run.js';
 
-/** Boxes that a proof may look at. */
-const mostBoxes = 1500;
+/** Boxes that a proof may look at: fewer where each costs more, which grows with the cube of the number of states. */
+const budgetOf = (states: number): number => Math.max(50, Math.min(1500, Math.floor(2e5 / states ** 3)));
 
 /** A proof, with the plant that refutes it where there is one. */
 export interface ProofFound {
@@ -50,6 +56,15 @@ export function proofOf(
         `${moving} parameters move the loop, and a proof is tried with up to ${mostVariables}`,
       );
     }
+    if (
+      !provenStableAt(
+        family,
+        space.free.map((i) => space.nominal[i]),
+      )
+    ) {
+      throw new Unprovable('rounding leaves the bounds too wide even for the nominal plant alone');
+    }
+    const mostBoxes = budgetOf(statesOf(family));
     const result = proveClaim(family, claim, failsAt, mostBoxes);
     if (result.kind === 'refuted') {
       return { proof: { kind: 'refuted', boxes: result.boxes }, counterexample: plantAt(result.at) };

@@ -13,8 +13,7 @@ export interface ComplexPolynomial {
  */
 export function allRootsLeft(field: SlopeField, polynomial: ComplexPolynomial): boolean {
   const balanced = inOwnUnits(field, polynomial);
-  if (leftByReduction(field, balanced)) return true;
-  return balanced.imaginary.every(isNothing) && leftByCorners(balanced.real);
+  return leftByCorners(balanced) || leftByReduction(field, balanced);
 }
 
 /**
@@ -34,22 +33,55 @@ function leftByReduction(field: SlopeField, polynomial: ComplexPolynomial): bool
   return square(real)[0] + square(imaginary)[0] > 0;
 }
 
-/** Which bound each coefficient takes in the four corner polynomials, from the lowest power on, repeating. */
-const corners = ['llhh', 'hhll', 'lhhl', 'hllh'];
+/**
+ * A polynomial whose coefficients lie between bounds, real and imaginary parts each on their own, has its roots left for all
+ * choices exactly when eight corner polynomials have them there (Kharitonov 1978): on the imaginary axis its values fill a
+ * rectangle, and these give its four corners above and below zero.
+ */
+function leftByCorners({ real, imaginary }: ComplexPolynomial): boolean {
+  const bounds = [...real, ...imaginary].flatMap(({ range }) => range);
+  if (!bounds.every(Number.isFinite) || holdsZero(real, imaginary)) return false;
+  const isReal = imaginary.every(isNothing);
+  return [false, true].every((below) =>
+    // A real polynomial has the conjugate values below.
+    isReal && below
+      ? true
+      : [0, 1, 2, 3].every((corner) => {
+          const point = new SlopeField([]);
+          const at = (end: number, { range }: Slope): Slope => point.constant(range[end]);
+          const ends = real.map((_, k) => endsAt(k, corner & 1, corner >> 1, below));
+          return leftByReduction(point, {
+            real: real.map((entry, k) => at(ends[k].real, entry)),
+            imaginary: imaginary.map((entry, k) => at(ends[k].imaginary, entry)),
+          });
+        }),
+  );
+}
+
+function holdsZero(real: readonly Slope[], imaginary: readonly Slope[]): boolean {
+  return [real, imaginary].every((of) => {
+    const [low, high] = of[of.length - 1].range;
+    return low <= 0 && high >= 0;
+  });
+}
 
 /**
- * A real polynomial whose coefficients lie between bounds, each on its own, has its roots left for all choices exactly when
- * four corner polynomials have them there (Kharitonov 1978).
+ * Which bounds (0 lower, 1 upper) the parts of the coefficient of sᵏ take for one corner of the values at s = jω, ω above or
+ * below zero: jᵏ turns the real part of p into the real part, the imaginary, their negatives, and so on.
  */
-function leftByCorners(ascending: readonly Slope[]): boolean {
-  const [low, high] = ascending[ascending.length - 1].range;
-  if (!(low > 0 || high < 0)) return false;
-  const point = new SlopeField([]);
-  return corners.every((corner) => {
-    const real = ascending.map(({ range }, k) => point.constant(range[corner[k % 4] === 'l' ? 0 : 1]));
-    if (real.some(({ range }) => !Number.isFinite(range[0]))) return false;
-    return leftByReduction(point, { real, imaginary: real.map(() => point.constant(0)) });
-  });
+function endsAt(k: number, inReal: number, inImaginary: number, below: boolean) {
+  const flip = below && k % 2 === 1;
+  const of = (end: number, negative: boolean): number => (negative !== flip ? 1 - end : end);
+  switch (k % 4) {
+    case 0:
+      return { real: of(inReal, false), imaginary: of(inImaginary, false) };
+    case 1:
+      return { real: of(inImaginary, false), imaginary: of(inReal, true) };
+    case 2:
+      return { real: of(inReal, true), imaginary: of(inImaginary, true) };
+    default:
+      return { real: of(inImaginary, true), imaginary: of(inReal, false) };
+  }
 }
 
 /** With s measured in a power of two near the mean size of the roots, which changes nothing but the numbers' sizes. */

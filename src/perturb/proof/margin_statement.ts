@@ -110,12 +110,15 @@ export function mostMoving(
   const moves = box.map(([low, high], i) => {
     const width = high - low;
     if (own && i === box.length - 1) return claim.kind === 'gain_margin' ? (2 * width) / (low + high) : width;
-    return Math.max(...[...denominator, ...numerator].map((entry) => relativeMove(entry, i, width)));
+    return Math.max(...denominator.map((entry, k) => relativeMove([entry, numerator[k]], i, width)));
   });
   return moves.reduce((best, move, i) => (move > moves[best] ? i : best), 0);
 }
 
-function relativeMove({ slopes, centre }: Slope, index: number, width: number): number {
-  const move = size(slopes[index]) * width;
-  return move === 0 ? 0 : move / size(centre);
+/** Against the coefficients of one power together: one of them alone may be zero, as of an integrator. */
+function relativeMove(of: readonly Slope[], index: number, width: number): number {
+  const total = (sizeOf: (entry: Slope) => number): number =>
+    of.reduce((sum, entry) => sum + sizeOf(entry), 0);
+  const move = total(({ slopes }) => size(slopes[index])) * width;
+  return move === 0 ? 0 : move / total(({ centre }) => size(centre));
 }

@@ -58,6 +58,17 @@ export function proveClaim(
   );
 }
 
+/** Whether bounds are narrow enough for a proof at all: one plant alone is proved stable. */
+export function provenStableAt(family: PolynomialFamily, parameters: readonly number[]): boolean {
+  const field = new SlopeField(parameters.map((value): Interval => [value, value]));
+  return claimHolds(field, family.polynomials(field), { kind: 'stable' });
+}
+
+/** Number of states of the loop, on which the cost of a box depends. */
+export function statesOf(family: PolynomialFamily): number {
+  return family.polynomials(new SlopeField(family.box)).denominator.length - 1;
+}
+
 /** How many parameters of the box move the loop at all. */
 export function movingParameters(family: PolynomialFamily): number {
   const { denominator, numerator } = family.polynomials(new SlopeField(family.box));

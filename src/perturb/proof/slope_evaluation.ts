@@ -1,6 +1,6 @@
 import type { LeafKind, Node, OperationName } from '../../loop/graph.js';
 import { everything, type Interval, isZero, size, widened } from './interval.js';
-import type { Slope, SlopeField } from './slope.js';
+import { isNothing, type Slope, type SlopeField } from './slope.js';
 
 /** Why there is no proof for a loop: something in it that intervals are not carried through. */
 export class Unprovable extends Error {}
@@ -96,6 +96,7 @@ export class SlopeEvaluation {
 
   private call(name: OperationName, x: Slope): Slope {
     const { field } = this;
+    if (isNothing(x) && zeroAtZero.has(name)) return field.constant(0);
     switch (name) {
       case 'abs':
         if (x.range[0] > 0) return x;
@@ -126,6 +127,9 @@ export class SlopeEvaluation {
     throw new Unprovable(`'${name}' in the loop has no interval bounds here`);
   }
 }
+
+/** Functions that are exactly zero at zero. */
+const zeroAtZero: ReadonlySet<OperationName> = new Set(['abs', 'sign', 'sqrt', 'sin', 'tanh']);
 
 function rising(of: (x: number) => number): (x: Interval) => Interval {
   return ([low, high]) => widened(of(low), of(high));
