@@ -6,7 +6,7 @@ import type { Room } from './names.js';
 import { parseExpression } from './parse_expression.js';
 import type { Reading } from './reading.js';
 import { type Checked, toOneScale } from './scales.js';
-import type { Dimension, Expression } from './spec.js';
+import type { Dimension, Expression, Operator, Place } from './spec.js';
 import { type Statement, signalsOfExpression } from './statement.js';
 import type { TextTree } from './tree.js';
 
@@ -30,35 +30,19 @@ export function readComparison(
   scales: readonly ScaleGiven[],
   reading: Reading,
 ): Statement | undefined {
-  const syntax = parseExpression(tree.source);
-  if (syntax.kind === 'fault') {
-    reading.problems.add(tree.placeAt(syntax.at), syntax.message);
-    reading.names.incomplete = true;
-    return undefined;
-  }
-  if (syntax.kind !== 'operation' || !['<', '<=', '>', '>='].includes(syntax.operator)) {
+  const parts = partsOf(tree.source);
+  if (parts === undefined) {
     reading.problems.add(
       tree.place,
-      'a statement compares signals: expected one of <, <=, >, >= at its outside',
+      'a statement compares signals: expected one of <, <=, >, >= at its outside, once',
     );
     return undefined;
   }
-  const { names, problems } = reading;
-  const context: CheckContext = {
-    room: statementRoom,
-    convertsFreely: true,
-    names,
-    problems,
-    placeAt: tree.placeAt,
-  };
-  const [left, right] = toOneScale(
-    check(syntax.left, context),
-    check(syntax.right, context),
-    syntax.operator,
-    tree.place,
-    context,
-  );
-  const [greater, smaller] = syntax.operator.startsWith('<') ? [right, left] : [left, right];
+  const sides = [readSide(parts.left, tree, reading), readSide(parts.right, tree, reading)];
+  const [first, second] = sides;
+  if (first === undefined || second === undefined) return undefined;
+  const [left, right] = toOneScale(first.checked, second.checked, parts.operator, tree.place, first.context);
+  const [greater, smaller] = parts.operator.startsWith('<') ? [right, left] : [left, right];
   const dimension = left.zero ? right.dimension : left.dimension;
   if (dimension === undefined || !followable(left, right, tree, reading)) return undefined;
   const scale = scaleFor(dimension, scales, tree, reading);
@@ -71,6 +55,50 @@ export function readComparison(
     place: tree.place,
   };
   return { kind: 'comparison', margin, scale, place: tree.place };
+}
+
+/** A text and where it begins in the whole. */
+interface Side {
+  text: string;
+  from: number;
+}
+
+/** The two sides of the one comparison outside all parentheses; each may then be a quantity such as `2 mrad`. */
+function partsOf(source: string): { left: Side; operator: Operator; right: Side } | undefined {
+  const found: { at: number; operator: string }[] = [];
+  let depth = 0;
+  for (let at = 0; at < source.length; at++) {
+    if (source[at] === '(') depth++;
+    if (source[at] === ')') depth--;
+    if (depth > 0 || (source[at] !== '<' && source[at] !== '>')) continue;
+    const operator = source[at + 1] === '=' ? source.slice(at, at + 2) : source[at];
+    found.push({ at, operator });
+    at += operator.length - 1;
+  }
+  if (found.length !== 1) return undefined;
+  const [{ at, operator }] = found;
+  const after = at + operator.length;
+  return {
+    left: { text: source.slice(0, at), from: 0 },
+    operator: operator as Operator,
+    right: { text: source.slice(after), from: after },
+  };
+}
+
+function readSide(
+  { text, from }: Side,
+  tree: TextTree,
+  { names, problems }: Reading,
+): { checked: Checked; context: CheckContext } | undefined {
+  const placeAt = (at: number): Place => tree.placeAt(from + at);
+  const syntax = parseExpression(text);
+  if (syntax.kind === 'fault') {
+    problems.add(placeAt(syntax.at), syntax.message);
+    names.incomplete = true;
+    return undefined;
+  }
+  const context: CheckContext = { room: statementRoom, convertsFreely: true, names, problems, placeAt };
+  return { checked: check(syntax, context), context };
 }
 
 function scaleFor(

@@ -67,6 +67,25 @@ describe('what comparisons may combine', () => {
   });
 });
 
+describe('quantities in comparisons', () => {
+  it('stand on a side of their own as a limit does, or in parentheses within an expression', () => {
+    const loop: SmallLoop = {
+      inputs: 'goal: { unit: m }',
+      plant: 'place: { lag: 1 s, of: goal, unit: m }',
+      scenarios: 'run: { lasts: 5 s, inputs: { goal: { step: 1 m, at: 1 s } } }',
+      requirements: [
+        '{ name: A, in: run, measure: over_time, at_least: 0, holds: { throughout: place < 1500 mm, scale: 1 cm } }',
+        '{ name: B, in: run, measure: over_time, at_least: 0, holds: { throughout: 1.5 m > place, scale: 10 mm } }',
+        '{ name: C, in: run, measure: over_time, at_least: 0, holds: { throughout: place - (0.5 m) < 1 m, scale: 10 mm } }',
+      ],
+    };
+    const [right, left, inside] = smallValues(loop);
+    expect(right).toBeCloseTo(100 * (0.5 + Math.exp(-4)), 5);
+    expect(left).toBeCloseTo(right, 9);
+    expect(inside).toBeCloseTo(right, 9);
+  });
+});
+
 describe('combinations', () => {
   it('take the smallest of all and the largest of one', () => {
     const all = '{ all_of: [{ throughout: y < 2 }, { at_some_time: y > 0.5 }], scale: 1 }';
@@ -153,6 +172,9 @@ describe('mistakes in statements', () => {
 
   it.each([
     ['y', 'a statement compares signals: expected one of <, <=, >, >= at its outside'],
+    ['0 < y < 1', 'expected one of <, <=, >, >= at its outside, once'],
+    ['{ throughout: y < 2 V, scale: 1 }', 'cannot compare a plain number and V'],
+    ['{ throughout: y < , scale: 1 }', 'small.pawl.yaml:14:'],
     [
       '{ throughout: y < 1 }',
       'this comparison needs `scale:`, a plain number that counts as a headroom of 100 %',
