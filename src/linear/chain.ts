@@ -1,5 +1,6 @@
 import { balance } from './balance.js';
 import { makeReflection, reduceToHessenberg, reflectFromLeft, reflectFromRight } from './hessenberg.js';
+import { euclideanNorm } from './matrix.js';
 import type { StateEquations } from './state_equations.js';
 
 /** The states that one input reaches, scaled and turned into a chain which starts at the input. */
@@ -78,7 +79,7 @@ function turnOntoFirstState(a: Float64Array, b: Float64Array, c: Float64Array, n
   reflectFromLeft(a, n, v, weight, 0);
   reflectFromRight(a, n, v, weight, 0);
   reflectFromRight(c, n, v, weight, 0);
-  return -Math.sign(v[0]) * Math.hypot(...b);
+  return -Math.sign(v[0]) * euclideanNorm(b);
 }
 
 function lengthOfChain(h: Float64Array, n: number): number {

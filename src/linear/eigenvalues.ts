@@ -1,7 +1,7 @@
 import { balance } from './balance.js';
 import type { Complex } from './complex.js';
 import { reduceToHessenberg } from './hessenberg.js';
-import { type Matrix, shape } from './matrix.js';
+import { euclideanNorm, type Matrix, shape } from './matrix.js';
 import { NumericFailure } from './numeric_failure.js';
 
 /**
@@ -50,7 +50,7 @@ const PATIENCE = 30;
  */
 export function eigenvaluesOfHessenberg(h: Float64Array, n: number): Complex[] {
   const found: Complex[] = [];
-  const rounding = Number.EPSILON * Math.hypot(...h);
+  const rounding = Number.EPSILON * euclideanNorm(h);
   let last = n - 1;
   let steps = 0;
   while (last >= 0) {

@@ -128,3 +128,13 @@ export function columnSumNorm(a: Matrix): number {
 export function shape(a: Matrix): string {
   return `${a.rows} x ${a.columns}`;
 }
+
+/** Root of the sum of squares of any number of values, without overflow on the way. */
+export function euclideanNorm(values: ArrayLike<number>): number {
+  let most = 0;
+  for (let i = 0; i < values.length; i++) most = Math.max(most, Math.abs(values[i]));
+  if (most === 0 || !Number.isFinite(most)) return most;
+  let sum = 0;
+  for (let i = 0; i < values.length; i++) sum += (values[i] / most) ** 2;
+  return most * Math.sqrt(sum);
+}

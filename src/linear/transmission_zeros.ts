@@ -1,6 +1,6 @@
 import type { Complex } from './complex.js';
 import { eigenvalues } from './eigenvalues.js';
-import { add, identity, type Matrix, multiply } from './matrix.js';
+import { add, euclideanNorm, identity, type Matrix, multiply } from './matrix.js';
 import { NumericFailure } from './numeric_failure.js';
 import { solve } from './solve.js';
 import type { StateEquations } from './state_equations.js';
@@ -51,7 +51,7 @@ function inverseAbout(system: StateEquations, point: number, centre: number): In
     const fb = multiply(f, system.b);
     const cf = multiply(system.c, f);
     const through = system.d.data[0] - multiply(system.c, fb).data[0];
-    const parts = Math.abs(system.d.data[0]) + Math.hypot(...cf.data) * Math.hypot(...system.b.data);
+    const parts = Math.abs(system.d.data[0]) + euclideanNorm(cf.data) * euclideanNorm(system.b.data);
     if (!(Math.abs(through) > 0)) return undefined;
     return { a: add(f, multiply(fb, cf), 1 / through), centre, regularity: Math.abs(through) / parts };
   } catch (error) {

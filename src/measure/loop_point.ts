@@ -96,6 +96,7 @@ export class LoopPoint {
       ...loop.readings.map(({ sensor, sampled }) => ({ name: sensor, node: sampled })),
       ...loop.memories.map(({ name, next }) => ({ name, node: next })),
       ...loop.held.map(({ name, value }) => ({ name, node: value })),
+      { name: loop.opening!.at, node: loop.opening!.returned },
     ];
     for (const { name, node } of named) {
       const edge = edgeOf(node, evaluation);

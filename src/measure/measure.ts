@@ -81,4 +81,5 @@ export const unformed = (why: string): MeasureResult => ({ kind: 'unformed', why
 export const measured = (value: number, note?: string): MeasureResult =>
   Number.isNaN(value)
     ? unformed('the result is not a number')
-    : { kind: 'value', value, ...(note ? { note } : {}) };
+    : // A zero is a zero, whatever its sign.
+      { kind: 'value', value: value + 0, ...(note ? { note } : {}) };
