@@ -6,7 +6,9 @@ import {
   describeImage,
   FirmwareError,
   type FirmwareImage,
+  type FunctionCode,
   formatText,
+  functionCode,
   openImage,
   readCoefficients,
   runBuild,
@@ -29,6 +31,8 @@ export interface BuildOptions {
 export interface BuildRead {
   coefficients: CoefficientRead[];
   provenance: Provenance;
+  /** The functions that hold the control law, in the order of the spec. */
+  law: FunctionCode[];
 }
 
 const buildTimeLimitSeconds = 600;
@@ -60,6 +64,7 @@ export async function readBuild(
   );
   return {
     coefficients: readAll(firmware, image),
+    law: lawOf(firmware, image),
     provenance: {
       ...provenanceOf(image, shown, build),
       buildSkipped: firmware.build !== undefined && !wanted,
@@ -116,6 +121,22 @@ function readAll(firmware: Firmware, image: FirmwareImage): CoefficientRead[] {
     unit,
     coefficient: coefficients.get(name)!,
   }));
+}
+
+/** @throws {Fault} with every function that has no machine code of its own, at its place in the spec. */
+function lawOf({ law = [] }: Firmware, image: FirmwareImage): FunctionCode[] {
+  const faults: string[] = [];
+  const found = law.flatMap(({ name, place }) => {
+    try {
+      return [functionCode(image, name)];
+    } catch (error) {
+      if (!(error instanceof FirmwareError)) throw error;
+      faults.push(formatSpecError({ place, message: error.message }));
+      return [];
+    }
+  });
+  if (faults.length > 0) throw new Fault(faults);
+  return found;
 }
 
 function provenanceOf(

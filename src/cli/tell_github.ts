@@ -37,6 +37,9 @@ function inRepository(
       ...one,
       place: { ...one.place, file: moved(one.place.file) },
     })),
+    coefficients: spec.coefficients.map((one) =>
+      one.source ? { ...one, source: { ...one.source, file: moved(one.source.file) } } : one,
+    ),
   }));
   return {
     run: { ...run, specs },

@@ -1,9 +1,16 @@
-import type { FinishedRun } from '../verdict/run.js';
+import type { FinishedRun, SpecRun } from '../verdict/run.js';
 import type { Fault } from './fault.js';
 import { portablePath } from './file_path.js';
 import { oneLine, shortened } from './plain_text.js';
 import { findingOnOneLine } from './requirement_in_words.js';
-import { blockingFirst } from './verdict_words.js';
+import {
+  attributionInWords,
+  changeInWords,
+  comparisonInWords,
+  shareText,
+  waiverInWords,
+} from './since_latched.js';
+import { blockingFirst, blocksMerge } from './verdict_words.js';
 
 /** A remark on a line of a source file. Line and column count from 1. */
 export interface Annotation {
@@ -19,29 +26,64 @@ export interface Annotation {
 const longest = 2000;
 
 /**
- * An error on the spec's line for each requirement that blocks the merge, and one for each cause why a spec could not
- * be run. Paths below `root`, the repository's folder, are written relative to it.
+ * An error on the spec's line for each requirement that blocks the merge, one on the line of each changed coefficient
+ * that did it, and one for each cause why a spec could not be run; a warning for what is broken but waived. Paths below `root`, the repository's folder, are written relative to it.
  */
 export function annotationsOf(run: FinishedRun, faults: readonly Fault[] = [], root?: string): Annotation[] {
-  const findings = run.specs.flatMap(({ requirements }) =>
-    blockingFirst(requirements)
+  const findings = run.specs.flatMap((spec) =>
+    blockingFirst(spec.requirements)
       .filter(({ verdict }) => verdict.kind !== 'met')
       .map((requirement): Annotation => {
         const { place, name, verdict } = requirement;
+        const waiver = waiverInWords(requirement);
+        const since = [comparisonInWords(requirement), ...attributionInWords(requirement, spec), waiver];
         return {
-          level: 'error',
+          level: blocksMerge(requirement) ? 'error' : 'warning',
           file: portablePath(place.file, root),
           line: place.line,
           column: place.column,
           title: `${name} ${verdict.kind}`,
-          message: findingOnOneLine(requirement),
+          message: [findingOnOneLine(requirement), ...since.filter((text) => text !== undefined)].join('; '),
         };
       }),
   );
   const causes = faults.flatMap(({ specFile, messages }) =>
     messages.map((message) => ofFault(specFile, message, root)),
   );
-  return [...causes, ...findings];
+  const coefficients = run.specs.flatMap((spec) => coefficientAnnotations(spec, root));
+  return [...causes, ...findings, ...coefficients];
+}
+
+/** Changes with a smaller part of a loss get no annotation. */
+const leastShare = 0.1;
+
+/** One at the line of each changed coefficient that has its part in a requirement's blocking the merge. */
+function coefficientAnnotations(spec: SpecRun, root: string | undefined): Annotation[] {
+  const blocking = spec.requirements.filter(blocksMerge);
+  return spec.coefficients.flatMap((read): Annotation[] => {
+    const at = read.source ?? read.coefficient.declaredAt;
+    const blames = blocking.flatMap(({ name, verdict, comparison }) =>
+      (comparison?.attribution ?? [])
+        .filter((row) => row.name === read.name && row.share >= leastShare)
+        .map((row) => `${shareText(row, comparison!)} of the loss of ${name}, which is ${verdict.kind}`),
+    );
+    if (!at || blames.length === 0) return [];
+    return [
+      {
+        level: 'error',
+        file: portablePath(at.file, root),
+        line: at.line,
+        column: undefined,
+        title: changeWords(read.name, spec),
+        message: `${changeWords(read.name, spec)} accounts for ${blames.join(', ')}`,
+      },
+    ];
+  });
+}
+
+function changeWords(name: string, { sinceLatched, coefficients }: SpecRun): string {
+  const change = sinceLatched?.coefficients.find((one) => one.name === name);
+  return change ? changeInWords(change, coefficients) : name;
 }
 
 /** A message that begins with `file:line:column: ` belongs to that place, any other to the spec as a whole. */

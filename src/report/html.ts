@@ -8,6 +8,7 @@ import { html, Markup } from './html/markup.js';
 import { claimsSection, provenanceSection } from './html/provenance.js';
 import { requirementArticle } from './html/requirement_article.js';
 import { verdictBadge } from './html/sign.js';
+import { changedCoefficients } from './html/since_latched.js';
 import { style } from './html/style.js';
 import { summaryTable } from './html/summary.js';
 import { oneLine, shortened } from './plain_text.js';
@@ -60,11 +61,14 @@ function faultList(faults: readonly Fault[]): Markup | undefined {
 function specSection(spec: SpecRun, id: string, version: string, plots: SpecPlots | undefined): Markup {
   const idOf = (requirement: RequirementRun): string =>
     `${id}-r${spec.requirements.indexOf(requirement) + 1}`;
-  const articles = blockingFirst(spec.requirements).map((one) => requirementArticle(one, idOf(one), plots));
+  const articles = blockingFirst(spec.requirements).map((one) =>
+    requirementArticle(one, idOf(one), spec, plots),
+  );
   return html`<section aria-labelledby="${id}">
 <h2 id="${id}"><bdi>${spec.loop}</bdi></h2><p class="about"><code>${spec.file}</code></p>
 ${summaryTable(spec, idOf)}
 ${articles}
+${changedCoefficients(spec)}
 ${coefficients(spec)}
 ${claimsSection(spec)}
 ${provenanceSection(spec, version)}

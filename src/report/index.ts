@@ -6,5 +6,6 @@ export { htmlReport, type ReportExtras } from './html.js';
 export { junitOf, junitOfFault } from './junit.js';
 export { markdownSummary } from './markdown.js';
 export type * from './plots.js';
+export { referenceJson } from './reference_json.js';
 export { runJson } from './run_json.js';
 export { type TerminalLook, terminalReport } from './terminal.js';

@@ -17,12 +17,21 @@ import {
 } from './requirement_in_words.js';
 import { runAgain } from './run_again.js';
 import { effectsInWords, proofInWords, reachInWords, shrunkInWords } from './scrutiny_in_words.js';
+import {
+  attributionInWords,
+  comparisonInWords,
+  headroomChange,
+  mergeInWords,
+  waiverInWords,
+} from './since_latched.js';
+import { blocksMerge } from './verdict_words.js';
 
 /** Node loads the library as CommonJS, whose whole export is the builder; its types describe it as an ES module. */
 const junit = library as unknown as Builder;
 
 /**
- * A run as JUnit XML: a suite for each spec, a case for each requirement. Broken is a `failure`, unjudged an `error`;
+ * A run as JUnit XML: a suite for each spec, a case for each requirement. Broken and slipped are a `failure`, unjudged an `error`,
+ * broken but waived is `skipped`;
  * specs which could not be run at all come as suites with one case that is an `error`. Names stay the same from run to
  * run; `time` is the spec's wall time in s, shared evenly over its cases.
  */
@@ -70,7 +79,7 @@ function addProperties(suite: TestSuite, spec: SpecRun, version: string): void {
     compilers: provenance?.compilers.join('; ') || undefined,
     seed: String(spec.seed),
     plants: String(plantsTried(spec)),
-    merge: spec.merge,
+    merge: mergeInWords(spec),
     caution,
   };
   for (const [name, value] of Object.entries(properties)) {
@@ -80,15 +89,17 @@ function addProperties(suite: TestSuite, spec: SpecRun, version: string): void {
 
 function addRequirement(one: TestCase, requirement: RequirementRun, spec: SpecRun): void {
   const { name, measure, place, verdict } = requirement;
+  const isOutput = !blocksMerge(requirement);
   one
     .className(className(spec.file))
     .name(`${oneLine(name)} ${measureName(measure)}`)
     .file(oneLine(place.file))
     .property('line', String(place.line))
     .property('verdict', verdict.kind)
-    .standardOutput(body(verdict.kind === 'met' ? inFull(requirement, spec) : findingOnOneLine(requirement)));
-  if (verdict.kind === 'broken') {
-    one.failure(findingOnOneLine(requirement), 'broken').stacktrace(body(inFull(requirement, spec)));
+    .standardOutput(body(isOutput ? inFull(requirement, spec) : findingOnOneLine(requirement)));
+  if (verdict.kind === 'broken' && requirement.waiver?.letsThrough) one.skipped();
+  else if (verdict.kind === 'broken' || verdict.kind === 'slipped') {
+    one.failure(findingOnOneLine(requirement), verdict.kind).stacktrace(body(inFull(requirement, spec)));
   }
   if (verdict.kind === 'unjudged') {
     one.error(findingOnOneLine(requirement), 'unjudged', body(inFull(requirement, spec)));
@@ -118,6 +129,7 @@ function inFull(requirement: RequirementRun, spec: SpecRun): string {
     titled('nearest:  ', shrunkInWords(requirement)),
     titled('reach:    ', reachInWords(requirement)),
     titled('matters:  ', effectsInWords(requirement)),
+    ...sinceThen(requirement, spec),
     requirement.claim ? `claim:    ${visible(requirement.claim)}` : '',
     `plant:    ${plantInWords(worst)}`,
     '',
@@ -130,6 +142,19 @@ function inFull(requirement: RequirementRun, spec: SpecRun): string {
 
 function titled(title: string, words: string | undefined): string {
   return words === undefined ? '' : title + visible(words);
+}
+
+function sinceThen(requirement: RequirementRun, spec: SpecRun): string[] {
+  const words = [
+    comparisonInWords(requirement),
+    headroomChange(requirement),
+    ...attributionInWords(requirement, spec),
+  ];
+  const waiver = waiverInWords(requirement);
+  return [
+    ...words.flatMap((text) => (text === undefined ? [] : [`latched:  ${text}`])),
+    ...(waiver === undefined ? [] : [`waiver:   ${waiver}`]),
+  ];
 }
 
 function hash({ provenance }: SpecRun): string {

@@ -7,7 +7,14 @@ import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
 import { claimsInWords, limitInWords, limitNumbers, measureWithSignal } from './requirement_in_words.js';
-import { runInWords, verdictSigns } from './verdict_words.js';
+import {
+  attributionInWords,
+  comparisonInWords,
+  improvementsInWords,
+  mergeInWords,
+  waiverInWords,
+} from './since_latched.js';
+import { blockingFirst, runInWords, verdictSigns } from './verdict_words.js';
 
 /** A comment on a pull request holds 65,536 characters; so many leave room for what stands around it. */
 const mostCharacters = 60_000;
@@ -40,19 +47,23 @@ function faultPart({ specFile, messages }: Fault): string {
 
 function specPart(spec: SpecRun): string {
   const { provenance } = spec;
-  const blocking = spec.requirements.filter(({ verdict }) => verdict.kind !== 'met');
+  const blocking = blockingFirst(spec.requirements).filter(({ verdict }) => verdict.kind !== 'met');
+  const merge = mergeInWords(spec);
+  const improvements = improvementsInWords(spec);
   const met = spec.requirements.filter(({ verdict }) => verdict.kind === 'met');
   const image = provenance
     ? `image ${said(provenance.image, 80)} (SHA-256 ${provenance.sha256.slice(0, 12)})${provenance.buildSkipped ? ', build skipped' : ''}`
     : 'no image';
   return [
     `### ${said(spec.loop, 120)}`,
-    blocking.length > 0 ? `${table(blocking)}\n\n${blocking.map(detail).join('\n')}` : '',
+    blocking.length > 0 ? `${table(blocking)}\n\n${blocking.map((one) => detail(one, spec)).join('\n')}` : '',
     met.length > 0 ? folded(`${counted(met.length, 'requirement')} met`, table(met)) : '',
     claimsInWords(spec)
       .map(({ names, claim }) => `- ${said(names.join(', '), 120)}: ${said(claim, 300)}`)
       .join('\n'),
-    spec.merge === undefined ? '' : `Merge: ${said(spec.merge, 300)}.`,
+    merge === undefined ? '' : `Merge: ${said(merge, 300)}.`,
+    movedButMet(spec),
+    improvements === undefined ? '' : said(improvements, 300),
     `${said(spec.file, 120)}, ${image}, ${counted(plantsTried(spec), 'plant')} tried, seed ${spec.seed}, judged in ${formatNumber(spec.seconds, 3)} s`,
   ]
     .filter((part) => part !== '')
@@ -64,17 +75,34 @@ function table(requirements: readonly RequirementRun[]): string {
 }
 
 /** What is asked next of a requirement that blocks: where it is written, why, on which plant, and what it is for. */
-function detail(requirement: RequirementRun): string {
+function detail(requirement: RequirementRun, spec: SpecRun): string {
   const { name, place, verdict, worst, reason } = requirement;
   const why = verdict.kind === 'met' ? [] : [verdict.why];
   if (worst.result.kind !== 'value' && !why.includes(worst.result.why)) why.push(worst.result.why);
   if (worst.result.kind === 'value' && worst.result.note !== undefined) why.push(worst.result.note);
+  const since = [
+    comparisonInWords(requirement),
+    ...attributionInWords(requirement, spec),
+    waiverInWords(requirement),
+  ];
   const parts = [
     ...why.map((text) => said(text, 300)),
+    ...since.flatMap((text) => (text === undefined ? [] : [said(text, 300)])),
     `plant: ${said(plantInWords(worst), 400)}`,
     ...(reason === undefined ? [] : [`reason: ${said(reason, 300)}`]),
   ];
   return `- **${said(name, 60)}** (${said(place.file, 120)}, line ${place.line}): ${parts.join('; ')}`;
+}
+
+/** What moved of the met requirements since the latched reference. */
+function movedButMet({ requirements }: SpecRun): string {
+  return requirements
+    .filter(({ verdict }) => verdict.kind === 'met')
+    .flatMap((requirement) => {
+      const text = comparisonInWords(requirement);
+      return text === undefined ? [] : [`- ${said(requirement.name, 60)}: ${said(text, 300)}`];
+    })
+    .join('\n');
 }
 
 const headings = ['verdict', 'name', 'measure', 'limit', 'nominal', 'worst', 'headroom'];

@@ -3,7 +3,7 @@ import { formatCount } from './format_value.js';
 
 /** Why plants are tried, in words; an origin that is not here is written as it is. */
 const words: Readonly<Record<string, string>> = {
-  saved: 'counterexamples of earlier runs',
+  saved: 'bad ones of earlier runs',
   single: 'with one parameter at a bound',
   corner: 'corners',
   spread: 'spread evenly',

@@ -75,7 +75,8 @@ export function findingOnOneLine(requirement: RequirementRun): string {
   const measured = formatResult(worst.result, requirement, limitNumbers(limit));
   const parts = [`${oneLine(name)} is ${verdict.kind}: ${measureInWords(requirement)}: ${measured}`];
   const said = worst.result.kind === 'unformed' ? worst.result.why : undefined;
-  if (verdict.kind === 'unjudged' && verdict.why !== said) parts.push(oneLine(verdict.why));
+  const needsWhy = verdict.kind === 'unjudged' || verdict.kind === 'slipped';
+  if (needsWhy && verdict.why !== said) parts.push(oneLine(verdict.why));
   parts.push(
     `limit ${limitInWords(limit, requirement)}`,
     `headroom ${formatHeadroom(worst.headroom)}`,

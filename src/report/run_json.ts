@@ -10,6 +10,8 @@ import type {
 } from '../verdict/run.js';
 import { portablePath } from './file_path.js';
 import { siUnit } from './si_unit.js';
+import { mergeInWords } from './since_latched.js';
+import { comparisonJson, sinceLatchedJson, waiverJson } from './since_latched_json.js';
 import { type Json, jsonNumber, stableJson } from './stable_json.js';
 
 /**
@@ -30,7 +32,8 @@ function specJson(spec: SpecRun, root: string | undefined): Json {
     plants: { ...spec.plants },
     scenarios: spec.scenarios.map(({ name, lasts }) => ({ name, lasts })),
     halvings: spec.halvings,
-    merge: spec.merge ?? null,
+    merge: mergeInWords(spec) ?? null,
+    ...(spec.sinceLatched ? { since_latched: sinceLatchedJson(spec.sinceLatched, root) } : {}),
     provenance: spec.provenance ? provenanceJson(spec.provenance, root) : null,
     coefficients: spec.coefficients.map((one) => coefficientJson(one, root)),
     requirements: spec.requirements.map((one) => requirementJson(one, root)),
@@ -67,6 +70,8 @@ function requirementJson(requirement: RequirementRun, root: string | undefined):
     plant: Object.fromEntries(worst.parameters.map(({ name, value }) => [name, jsonNumber(value)])),
     plant_moved: Object.fromEntries(worst.parameters.map(({ name, moved }) => [name, jsonNumber(moved)])),
     plant_origin: worst.origin,
+    ...(requirement.comparison ? { since_latched: comparisonJson(requirement.comparison) } : {}),
+    ...(requirement.waiver ? { waiver: waiverJson(requirement.waiver) } : {}),
     ...scrutinyJson(requirement),
   };
 }
@@ -120,7 +125,10 @@ function placeJson({ file, line, column }: Place, root: string | undefined): Jso
   return { file: portablePath(file, root), line, column };
 }
 
-function coefficientJson({ name, unit, coefficient }: CoefficientRead, root: string | undefined): Json {
+function coefficientJson(
+  { name, unit, coefficient, source }: CoefficientRead,
+  root: string | undefined,
+): Json {
   const { path, elements, shape, type, declaredAt } = coefficient;
   const values = elements.map(({ value }) => jsonNumber(value));
   const stored = elements.map((element) => element.stored);
@@ -133,6 +141,7 @@ function coefficientJson({ name, unit, coefficient }: CoefficientRead, root: str
     ...(isScalar
       ? { value: values[0] ?? null, stored: stored[0] ?? null }
       : { shape: [...shape], values, stored }),
+    ...(source ? { source: { file: portablePath(source.file, root), line: source.line } } : {}),
     declared_at: declaredAt ? { file: portablePath(declaredAt.file, root), line: declaredAt.line } : null,
   };
 }

@@ -7,6 +7,13 @@ import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
 import { claimsInWords, evidenceInWords, holdsForInWords, limitNumbers } from './requirement_in_words.js';
 import { effortInWords, scrutinyLines, shrunkInWords } from './scrutiny_in_words.js';
+import {
+  attributionInWords,
+  comparisonInWords,
+  improvementsInWords,
+  mergeInWords,
+  waiverInWords,
+} from './since_latched.js';
 import { type Painter, painter } from './terminal_colour.js';
 import { type RowWidths, rowLines, rowWidths, terminalHeadings, terminalRow } from './terminal_row.js';
 import { blockingFirst, mayMerge, runInWords, verdictSigns } from './verdict_words.js';
@@ -56,7 +63,7 @@ function specLines(spec: SpecRun, width: number, paint: Painter): string[] {
     '',
     ...rowLines(terminalHeadings, widths, (text) => text).map((line) => paint('quiet', line)),
     ...requirements.flatMap((requirement, at) =>
-      requirementLines(requirement, rows[at], widths, width, paint),
+      requirementLines(requirement, spec, rows[at], widths, width, paint),
     ),
     '',
     ...closing(spec).flatMap((text) => wrapText(text, width, 0, 2)),
@@ -78,6 +85,7 @@ function about(spec: SpecRun): string[] {
 
 function requirementLines(
   requirement: RequirementRun,
+  spec: SpecRun,
   row: ReturnType<typeof terminalRow>,
   widths: RowWidths,
   width: number,
@@ -85,11 +93,15 @@ function requirementLines(
 ): string[] {
   const lines = rowLines(row, widths, (text) => paint(requirement.verdict.kind, text));
   if (requirement.verdict.kind === 'met') return lines;
-  return [...lines, ...details(requirement).flatMap((text) => wrapText(text, width, detailIndent, 2)), ''];
+  return [
+    ...lines,
+    ...details(requirement, spec).flatMap((text) => wrapText(text, width, detailIndent, 2)),
+    '',
+  ];
 }
 
 /** What a reader of a blocked merge asks next: on which plant, why, how often, what for, and where it is written. */
-function details(requirement: RequirementRun): string[] {
+function details(requirement: RequirementRun, spec: SpecRun): string[] {
   const { verdict, worst, reason, place, holdsFor } = requirement;
   const why = verdict.kind === 'met' ? [] : [oneLine(verdict.why)];
   const found = withoutNumber(worst, requirement);
@@ -101,8 +113,27 @@ function details(requirement: RequirementRun): string[] {
     ...(nearest === undefined ? [] : [`nearest to nominal: ${shortened(nearest, longest)}`]),
     evidenceInWords(requirement) + (holdsFor === 'all' ? '' : `; must hold ${holdsForInWords(requirement)}`),
     ...(reason === undefined ? [] : [`reason: ${shortened(oneLine(reason), longest)}`]),
+    ...sinceThen(requirement, spec),
     `${shortened(oneLine(place.file), 200)}:${place.line}:${place.column}`,
   ];
+}
+
+/** What the reference has to say: what the firmware and the spec changed, which coefficient did it, and a waiver. */
+function sinceThen(requirement: RequirementRun, spec: SpecRun): string[] {
+  const words = [
+    comparisonInWords(requirement),
+    ...attributionInWords(requirement, spec),
+    waiverInWords(requirement),
+  ];
+  return words.flatMap((text) => (text === undefined ? [] : [shortened(text, longest)]));
+}
+
+/** What moved of the met requirements, each on a line. */
+function movedButMet(spec: SpecRun): string[] {
+  return spec.requirements.flatMap((requirement) => {
+    const said = requirement.verdict.kind === 'met' ? comparisonInWords(requirement) : undefined;
+    return said === undefined ? [] : [`${shortened(oneLine(requirement.name), 60)}: ${said}`];
+  });
 }
 
 function withoutNumber({ result }: JudgedPlant, requirement: RequirementRun): string | undefined {
@@ -116,12 +147,15 @@ function closing(spec: SpecRun): string[] {
     const all = names.length === spec.requirements.length && names.length > 1;
     return `${all ? 'each requirement' : shortened(names.join(', '), 120)}: ${oneLine(claim)}`;
   });
-  const merge = spec.merge === undefined ? [] : [`merge: ${oneLine(spec.merge)}`];
+  const merge = mergeInWords(spec);
+  const improvements = improvementsInWords(spec);
   const effort = effortInWords(spec);
   return [
     ...claims,
     ...scrutinyLines(spec),
-    ...merge,
+    ...(merge === undefined ? [] : [`merge: ${oneLine(merge)}`]),
+    ...movedButMet(spec),
+    ...(improvements === undefined ? [] : [improvements]),
     `judged in ${formatNumber(spec.seconds, 3)} s${effort === undefined ? '' : `; ${effort}`}`,
   ];
 }

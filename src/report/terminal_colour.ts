@@ -10,6 +10,7 @@ export type Painter = (tone: Tone, text: string) => string;
 /** White on petrol #0F6472, on brick #A4452C and on slate #4A5560: readable on dark and light terminals alike. */
 const grounds: Readonly<Record<Verdict['kind'], string>> = {
   met: '15;100;114',
+  slipped: '164;69;44',
   broken: '164;69;44',
   unjudged: '74;85;96',
 };

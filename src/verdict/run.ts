@@ -4,10 +4,14 @@ import type { PlantOrigin } from '../perturb/plants.js';
 import type { Reach } from '../perturb/reach.js';
 import type { HoldsFor, Limit, Place, Unit } from '../spec/spec.js';
 
-/** What a run says of a requirement. Only `met` lets a merge through. */
+/**
+ * What a run says of a requirement. Only `met` lets a merge through, and `broken` where a waiver covers it. `slipped`: its limit
+ * holds, but the firmware lost more headroom against the latched reference than a change may cost.
+ */
 export type Verdict =
   | { kind: 'met'; headroom: number | undefined }
   | { kind: 'broken'; headroom: number | undefined; why: string }
+  | { kind: 'slipped'; headroom: number | undefined; why: string }
   | { kind: 'unjudged'; why: string };
 
 /** The value of one parameter in a plant, and how far it is moved from nominal towards the bound on that side (0 to 1). */
@@ -92,6 +96,10 @@ export interface RequirementRun {
   /** Undefined where a proof was not tried: traces, or loops for which there is none. */
   proof?: Proof;
   effort?: Effort;
+  /** Against the latched reference, where there is one. */
+  comparison?: Comparison;
+  /** Where the spec waives the requirement. */
+  waiver?: WaivedRequirement;
 }
 
 /** A coefficient as read from the build, under the spec's name for it. */
@@ -100,6 +108,8 @@ export interface CoefficientRead {
   place: Place;
   unit: Unit | undefined;
   coefficient: Coefficient;
+  /** Where its number is written in the sources, as a path from the working folder; undefined where they were not found. */
+  source?: { file: string; line: number };
 }
 
 /** Where the numbers come from. */
@@ -133,8 +143,84 @@ export interface SpecRun {
   halvings: number;
   /** Said of the `merge:` section. */
   merge: string | undefined;
+  /** What changed since the latched reference was written. */
+  sinceLatched?: SinceLatched;
   /** Wall time of the judging, in s; for the terminal only. */
   seconds: number;
+}
+
+/** A measure's result with its headroom: a share of today's limit, or of the limit of then; undefined where there is no number. */
+export interface ComparedResult {
+  result: MeasureResult;
+  headroom: number | undefined;
+}
+
+/**
+ * A requirement against the latched reference, worst against worst on the same plants (the nominal one where it only must hold
+ * there). From `latched` to `rerun` only spec and plant differ, from `rerun` to `today` only the firmware.
+ */
+export interface Comparison {
+  /** As the reference holds it, under the spec of then; undefined for a requirement that is new. */
+  latched: ComparedResult | undefined;
+  /** The latched coefficients under today's spec; undefined where they cannot be run, and then `why` says why. */
+  rerun: ComparedResult | undefined;
+  why?: string;
+  today: ComparedResult;
+  /** Headroom lost by the firmware, a share of the limit; negative where it gained; undefined where there is no number for it. */
+  lost: number | undefined;
+  /** What a change may cost, a share of the limit. */
+  maySlip: number;
+  /** What changed in the spec and bears on this requirement, in words such as "the bounds of friction". */
+  fromSpec: string[];
+  /** Which changed coefficients lost the headroom, the largest share first; empty where none was lost. */
+  attribution: LossShare[];
+  /** How many orders of the changes the shares are sampled from; undefined where they are exact. */
+  sampledOrders?: number;
+}
+
+/** What one changed coefficient has to do with lost headroom. */
+export interface LossShare {
+  name: string;
+  /** Of the whole loss; negative where the change gained headroom. All shares of a loss add up to 1. */
+  share: number;
+  /** The headroom itself, a share of the limit. */
+  lost: number;
+}
+
+/** A coefficient whose stored numbers are not those of the latched reference. */
+export interface CoefficientChange {
+  name: string;
+  /** Undefined for a coefficient that is new. */
+  latched: readonly number[] | undefined;
+  /** Undefined for one that the spec no longer names. */
+  today: readonly number[] | undefined;
+  /** Places of the elements that differ, in storage order. */
+  elements: number[];
+  /** Why the latched numbers mean nothing to today's spec, where they do. */
+  unlike?: string;
+}
+
+/** What is not as it was when the latched reference was written. */
+export interface SinceLatched {
+  /** Path of the reference, as shown to people. */
+  path: string;
+  /** Undefined where there is no such file. */
+  reference: { reason: string; pawl: string } | undefined;
+  coefficients: CoefficientChange[];
+  /** In words such as "the bounds of friction". */
+  spec: string[];
+  /** Functions of the control law whose machine code is another, or is not in the reference. */
+  law: string[];
+}
+
+/** A waiver of a requirement, and whether it lets the requirement through today. */
+export interface WaivedRequirement {
+  reason: string;
+  /** Its last day, YYYY-MM-DD. */
+  until: string;
+  letsThrough: boolean;
+  /** Why it does not. */
+  why?: string;
 }
 
 /** A finished run over one or more specs. */
@@ -143,7 +229,12 @@ export interface FinishedRun {
   specs: SpecRun[];
 }
 
-/** Whether every requirement of every spec is met. */
+/** Whether every requirement of every spec is met, or broken and waived. */
 export function allMet({ specs }: FinishedRun): boolean {
-  return specs.every(({ requirements }) => requirements.every(({ verdict }) => verdict.kind === 'met'));
+  return specs.every(({ requirements }) => requirements.every(letsMergeThrough));
+}
+
+/** Whether a requirement does not block the merge. */
+export function letsMergeThrough({ verdict, waiver }: Pick<RequirementRun, 'verdict' | 'waiver'>): boolean {
+  return verdict.kind === 'met' || (verdict.kind === 'broken' && waiver?.letsThrough === true);
 }

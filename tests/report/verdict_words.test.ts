@@ -33,6 +33,7 @@ describe('the verdict on a run', () => {
   it('counts over all specs', () => {
     expect(countVerdicts({ version: '1', specs: [specRun(), specRun()] })).toEqual({
       met: 6,
+      slipped: 0,
       broken: 4,
       unjudged: 2,
     });

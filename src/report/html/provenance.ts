@@ -3,6 +3,7 @@ import { formatCount, formatNumber, formatShare } from '../format_value.js';
 import { plantsInWords } from '../plants_in_words.js';
 import { claimsInWords } from '../requirement_in_words.js';
 import { runAgain } from '../run_again.js';
+import { mergeInWords } from '../since_latched.js';
 import { termList } from './data_table.js';
 import { html, type Markup } from './markup.js';
 
@@ -27,7 +28,7 @@ ${termList([
   ['plants', plantsInWords(plants)],
   ['scenarios', scenarios.map(({ name, lasts }) => `${name} (${formatNumber(lasts)} s)`).join(', ')],
   ['step', `halved ${spec.halvings} ${spec.halvings === 1 ? 'time' : 'times'}`],
-  ['merge', spec.merge],
+  ['merge', mergeInWords(spec)],
   ['judged in', `${formatNumber(spec.seconds, 3)} s`],
   ['run again', html`<code>${runAgain(spec)}</code>`],
 ])}${log}`;

@@ -1,4 +1,4 @@
-import type { RequirementRun } from '../../verdict/run.js';
+import type { RequirementRun, SpecRun } from '../../verdict/run.js';
 import { formatHeadroom, formatResult } from '../format_value.js';
 import { parameterHeadings, parameterRows } from '../parameter_table.js';
 import { plantInWords } from '../plant_in_words.js';
@@ -11,15 +11,18 @@ import {
   limitNumbers,
   measureInWords,
 } from '../requirement_in_words.js';
+import { comparisonInWords, headroomChange, waiverInWords } from '../since_latched.js';
 import { dataTable, termList } from './data_table.js';
 import { plotFigures } from './figures.js';
 import { html, type Markup } from './markup.js';
 import { verdictBadge } from './sign.js';
+import { attributionTable } from './since_latched.js';
 
 /** Everything of one requirement: its verdict, its number against its limit, its plots, its worst plant. */
 export function requirementArticle(
   requirement: RequirementRun,
   id: string,
+  spec: SpecRun,
   plots: SpecPlots | undefined,
 ): Markup {
   const { name, verdict, reason, worst } = requirement;
@@ -31,6 +34,7 @@ ${why}${reason && html`<p class="reason">${reason}</p>`}
 <div class="columns"><div class="stack"><figure>${limitStrip(requirement, `${id}-s`)}<figcaption><span class="key nominal-key">nominal plant</span> <span class="key worst-key">worst plant</span> <span class="key fence-key">limit; ticks on the broken side</span></figcaption></figure>
 ${figures.filter((_, at) => at % 2 === 0)}</div><div class="stack">${numbers(requirement)}
 ${figures.filter((_, at) => at % 2 === 1)}</div></div>
+${attributionTable(requirement, spec)}
 ${worst.parameters.length > 0 ? plantDetails(requirement) : undefined}
 </article>
 `;
@@ -46,6 +50,9 @@ function numbers(requirement: RequirementRun): Markup {
     ['worst', `${formatResult(worst.result, requirement, limits)}${ratioBeside(requirement, worst)}`],
     ['', note],
     ['headroom', formatHeadroom(worst.headroom)],
+    ['since latched', comparisonInWords(requirement)],
+    ['', headroomChange(requirement)],
+    ['waiver', waiverInWords(requirement)],
     ['evidence', evidenceInWords(requirement)],
     ['claim', claim],
     ['written at', html`<code>${place.file}:${place.line}:${place.column}</code>`],

@@ -19,7 +19,7 @@ code,pre{font-family:ui-monospace,"Cascadia Mono","DejaVu Sans Mono",monospace;f
 pre{padding:10px;background:var(--ground);border:1px solid var(--line);overflow:auto;max-height:300px}
 .verdict{display:inline-flex;align-items:baseline;gap:7px;font-weight:700;white-space:nowrap}
 .sign{width:30px;height:20px;flex:none;align-self:center}.sign path{fill:none;stroke:currentColor;stroke-width:3;stroke-linecap:square}
-.met{color:var(--petrol)}.broken{color:var(--brick)}.unjudged{color:var(--slate)}
+.met{color:var(--petrol)}.broken,.slipped{color:var(--brick)}.unjudged{color:var(--slate)}
 h1 .verdict{white-space:normal;gap:14px}h1 .sign{width:54px;height:36px}
 .scroll{overflow-x:auto}
 table{border-collapse:collapse;width:100%;font-variant-numeric:tabular-nums}
@@ -31,9 +31,10 @@ tbody th{font-weight:600}
 tr>:last-child{padding-right:0}
 .summary tbody td{white-space:nowrap}.summary tbody th{overflow-wrap:anywhere;min-width:6ch}
 .requirement{background:var(--sheet);border:1px solid var(--line);border-left:6px solid;padding:2px 20px 16px;margin:18px 0}
-.met-side{border-left-color:var(--petrol)}.broken-side{border-left-color:var(--brick);border-left-style:double}.unjudged-side{border-left-color:var(--slate);border-left-style:dashed}
+.met-side{border-left-color:var(--petrol)}.broken-side{border-left-color:var(--brick);border-left-style:double}.slipped-side{border-left-color:var(--brick);border-left-style:dotted}.unjudged-side{border-left-color:var(--slate);border-left-style:dashed}
 .requirement h3{margin-top:14px;display:flex;flex-wrap:wrap;gap:2px 12px;align-items:baseline}.requirement h3 .sign{align-self:center}
 .why{font-weight:600}
+.share{display:block;width:120px;height:14px}.share .lost{fill:var(--brick)}.share .gained{fill:var(--petrol)}
 .columns{display:grid;grid-template-columns:repeat(auto-fill,minmax(min(100%,430px),1fr));gap:12px 32px;align-items:start}
 @media(max-width:940px){.stack{display:contents}.plot{order:1}}
 figure{margin:10px 0 4px;max-width:560px}
