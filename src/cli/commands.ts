@@ -59,6 +59,33 @@ const commands: Record<string, Command> = {
       return read({ ...buildChoice(values), source, paths, against, symbols, json }, around);
     },
   },
+  replay: {
+    meaning: 'run the counterexample of one requirement again, alone',
+    usage: 'pawl replay REPORT REQUIREMENT [--spec SPEC] [--image PATH] [--out DIR] [--keep]',
+    options: {
+      spec: { type: 'string' },
+      image: { type: 'string' },
+      out: { type: 'string' },
+      keep: { type: 'boolean' },
+    },
+    optionMeanings: {
+      REPORT: 'the run.json of a check, or the folder that holds it',
+      '--spec SPEC': 'the spec, where several in the report have a requirement of this name',
+      '--image PATH': 'another image than the one of the report',
+      '--out DIR': 'write the traces into DIR instead of this folder',
+      '--keep': 'save the counterexample: every later check tries it first',
+    },
+    run: async (values, positionals, around) => {
+      if (positionals.length !== 2)
+        throw new Fault([
+          `'pawl replay' takes a report and a requirement, but got ${positionals.length} words`,
+        ]);
+      const { replay } = await import('./replay.js');
+      const { spec, image, out } = values as Record<string, string | undefined>;
+      const [report, requirement] = positionals;
+      return replay({ report, requirement, spec, image, out, keep: values.keep === true }, around);
+    },
+  },
   start: {
     meaning: 'write a first spec for an image, which runs as it is',
     usage: 'pawl start IMAGE',

@@ -33,6 +33,8 @@ export class ScenarioTraces {
     private readonly scenario: Scenario,
     private readonly signals: readonly string[],
     private readonly halvings: number,
+    /** At so many even instants. */
+    count = instants,
   ) {
     this.loop = expandLoop(spec, coefficients, { scenario });
     this.linearisation = new Linearisation(this.loop);
@@ -41,9 +43,8 @@ export class ScenarioTraces {
     this.run = new ScenarioRun(this.loop, scenario, this.events, signals, seed, new TraceStore());
     const nominal = spec.parameters.map((parameter) => parameter.nominal);
     this.commonSchedule = timingIsCommon(this.loop) ? scheduleOf(this.loop, nominal) : undefined;
-    this.times = instantsOf(scenario.lasts, [
-      ...new Set(this.events.changes(nominal).map(({ time }) => time)),
-    ]);
+    const changes = new Set(this.events.changes(nominal).map(({ time }) => time));
+    this.times = instantsOf(scenario.lasts, [...changes], count);
   }
 
   /**
@@ -83,8 +84,8 @@ export class ScenarioTraces {
 }
 
 /** Even instants from 0 to the end, and both sides of each change in between. */
-function instantsOf(lasts: number, changes: readonly number[]): number[] {
-  const even = Array.from({ length: instants }, (_, at) => (at * lasts) / (instants - 1));
+function instantsOf(lasts: number, changes: readonly number[], count: number): number[] {
+  const even = Array.from({ length: count }, (_, at) => (at * lasts) / (count - 1));
   const twice = changes.filter((time) => time > 0 && time < lasts).flatMap((time) => [time, time]);
   const apart = even.filter((time) => !twice.includes(time));
   return [...apart, ...twice].sort((a, b) => a - b);

@@ -7,5 +7,6 @@ export { junitOf, junitOfFault } from './junit.js';
 export { markdownSummary } from './markdown.js';
 export type * from './plots.js';
 export { referenceJson } from './reference_json.js';
+export { type Replayed, type ReplayedSignal, replayText, tracesInCsv } from './replay_text.js';
 export { runJson } from './run_json.js';
 export { type TerminalLook, terminalReport } from './terminal.js';

@@ -46,9 +46,11 @@ export function proofInWords({ proof }: Pick<RequirementRun, 'proof'>): string |
     case 'proved':
       return `proved for every plant within the bounds (${counted(proof.boxes, 'box', 'boxes')})`;
     case 'refuted':
-      return 'a proof was refuted by a plant within the bounds';
+      return 'refuted by a plant within the bounds';
     case 'open':
-      return `the proof is open on ${formatNumber(proof.openShare * 100, 2)} % of the bounds (${counted(proof.boxes, 'box', 'boxes')}): ${oneLine(proof.why)}`;
+      return proof.boxes === 0
+        ? `not tried: ${oneLine(proof.why)}`
+        : `open on ${formatNumber(proof.openShare * 100, 2)} % of the bounds (${counted(proof.boxes, 'box', 'boxes')}): ${oneLine(proof.why)}`;
   }
 }
 
@@ -71,10 +73,7 @@ export function scrutinyLines({ requirements }: Pick<SpecRun, 'requirements'>): 
     of: (one: RequirementRun) => string | undefined,
     between: string,
   ): string[] => {
-    const said = requirements.flatMap((one) => {
-      const words = of(one);
-      return words === undefined ? [] : [`${oneLine(one.name)} ${words}`];
-    });
+    const said = saidOnce(requirements, of);
     return said.length === 0 ? [] : [`${title}: ${said.join(between)}`];
   };
   return [
@@ -82,4 +81,17 @@ export function scrutinyLines({ requirements }: Pick<SpecRun, 'requirements'>): 
     ...line('what matters most, in points of headroom', (one) => effectsInWords(one, 2), '; '),
     ...line('proof', proofInWords, '; '),
   ];
+}
+
+/** What is said of each requirement, with the names of all of which the same is said before it. */
+function saidOnce(
+  requirements: readonly RequirementRun[],
+  of: (one: RequirementRun) => string | undefined,
+): string[] {
+  const names = new Map<string, string[]>();
+  for (const one of requirements) {
+    const words = of(one);
+    if (words !== undefined) names.set(words, [...(names.get(words) ?? []), oneLine(one.name)]);
+  }
+  return [...names].map(([words, said]) => `${said.join(' and ')} ${words}`);
 }

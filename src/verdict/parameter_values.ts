@@ -6,8 +6,9 @@ export function parameterValues(
   parameters: readonly ParameterDefinition[],
   values: ArrayLike<number>,
 ): ParameterValue[] {
-  return parameters.map(({ name, unit, nominal, low, high }, i) => {
-    const move = values[i] - nominal;
+  return parameters.map(({ name, unit, nominal, low, high, derived }, i) => {
+    // One that follows from others is not moved by itself.
+    const move = derived ? 0 : values[i] - nominal;
     const room = move < 0 ? nominal - low : high - nominal;
     return { name, unit, nominal, value: values[i], moved: move === 0 ? 0 : move / room };
   });

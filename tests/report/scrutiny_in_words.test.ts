@@ -46,9 +46,17 @@ describe('what scrutiny found, in words', () => {
     );
     expect(
       proofInWords({ proof: { kind: 'open', boxes: 1200, openShare: 0.031, why: 'the budget ended' } }),
-    ).toBe('the proof is open on 3.1 % of the bounds (1,200 boxes): the budget ended');
+    ).toBe('open on 3.1 % of the bounds (1,200 boxes): the budget ended');
     expect(proofInWords({ proof: { kind: 'refuted', boxes: 3 } })).toContain('refuted');
     expect(proofInWords({})).toBeUndefined();
+  });
+
+  it('a proof that was not tried, once for all requirements of which it is said', () => {
+    const proof = { kind: 'open', boxes: 0, openShare: 1, why: 'too many parameters' } as const;
+    const [a, b] = [requirement({ name: 'A', proof }), requirement({ name: 'B', proof })];
+    expect(scrutinyLines({ requirements: [a, b] })).toEqual([
+      'proof: A and B not tried: too many parameters',
+    ]);
   });
 
   it('how many runs were used', () => {

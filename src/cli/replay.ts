@@ -1,0 +1,207 @@
+import { mkdir, readFile, stat, writeFile } from 'node:fs/promises';
+import { join, resolve } from 'node:path';
+import { z } from 'zod';
+import { expandLoop } from '../loop/expand.js';
+import type { CoefficientValues } from '../loop/parts.js';
+import { ScenarioTraces } from '../plots/scenario_traces.js';
+import { replayText, tracesInCsv } from '../report/index.js';
+import type { Requirement, Spec, Unit } from '../spec/spec.js';
+import { judge } from '../verdict/judge.js';
+import { parameterValues } from '../verdict/parameter_values.js';
+import { PlantMeasurer } from '../verdict/plant_answers.js';
+import { nearestOf } from './nearest_word.js';
+import { readBuild, valuesOf } from './read_build.js';
+import { readSpec, shownPath } from './read_spec.js';
+import { saveCounterexample } from './saved_counterexamples.js';
+import { type ExitStatus, Fault, type Surroundings } from './surroundings.js';
+
+export interface ReplayOptions {
+  /** A run.json, or the folder that holds it. */
+  report: string;
+  requirement: string;
+  spec: string | undefined;
+  image: string | undefined;
+  out: string | undefined;
+  keep: boolean;
+}
+
+const plant = z.record(z.string(), z.number());
+const requirementShape = z.object({
+  name: z.string(),
+  plant,
+  shrunk: z.object({ plant }).optional(),
+});
+const shape = z.object({
+  specs: z.array(
+    z.object({
+      file: z.string(),
+      halvings: z.number(),
+      provenance: z.object({ image: z.string(), sha256: z.string() }).nullable(),
+      requirements: z.array(requirementShape),
+    }),
+  ),
+});
+type Reported = z.infer<typeof shape>['specs'][number];
+
+/** Points of a replayed trace. */
+const instants = 4000;
+
+/**
+ * Runs the counterexample of one requirement again, alone: its result, its traces as CSV, and a plot.
+ * @throws {Fault} where the report, the requirement, the spec or the image cannot be read.
+ */
+export async function replay(options: ReplayOptions, around: Surroundings): Promise<ExitStatus> {
+  const { cwd } = around;
+  const { reported, entry } = find(await readReport(cwd, options.report), options);
+  const spec = await readSpec(cwd, reported.file);
+  const index = spec.requirements.findIndex(({ name }) => name === options.requirement);
+  if (index < 0) {
+    throw new Fault([
+      `${spec.file}: has no requirement '${options.requirement}' any more; run 'pawl check' again`,
+    ]);
+  }
+  const image = options.image ?? reported.provenance?.image;
+  const build = await readBuild(cwd, spec, { image: spec.firmware ? image : undefined, skipBuild: true });
+  const isSame = build?.provenance.sha256 === reported.provenance?.sha256;
+  const values = plantOf(spec, entry.shrunk?.plant ?? entry.plant);
+  const coefficients = valuesOf(build);
+  const task = { plants: [values], halvings: reported.halvings, settle: true, wanted: [index] };
+  const [{ results, halvings }] = new PlantMeasurer(spec, coefficients).answers(task);
+  const requirement = spec.requirements[index];
+  const judgement = judge(requirement, results[0]);
+  const traced = traces(spec, coefficients, requirement, values, halvings);
+  const csv = traced && (await writeCsv(options, around, traced));
+  const kept =
+    options.keep && judgement.kind === 'broken'
+      ? await saveCounterexample(cwd, spec, { requirement: requirement.name, plant: namesTo(spec, values) })
+      : undefined;
+  around.print(
+    replayText(
+      {
+        requirement,
+        kind: judgement.kind,
+        result: results[0],
+        parameters: parameterValues(spec.parameters, values),
+        isShrunk: entry.shrunk !== undefined,
+        isSameImage: isSame,
+        traces: traced,
+        files: { csv, kept },
+      },
+      around,
+    ),
+  );
+  return judgement.kind === 'met' ? 0 : 1;
+}
+
+async function readReport(cwd: string, report: string): Promise<Reported[]> {
+  const given = resolve(cwd, report);
+  const isFolder = await stat(given).then(
+    (found) => found.isDirectory(),
+    () => false,
+  );
+  const path = isFolder ? join(given, 'run.json') : given;
+  let json: unknown;
+  try {
+    json = JSON.parse(await readFile(path, 'utf8'));
+  } catch (error) {
+    const missing = (error as NodeJS.ErrnoException).code === 'ENOENT';
+    const why = missing ? 'there is no such file' : `cannot be read: ${(error as Error).message}`;
+    throw new Fault([
+      `${shownPath(cwd, path)}: ${why}; expected the run.json that 'pawl check --out DIR' writes`,
+    ]);
+  }
+  const parsed = shape.safeParse(json);
+  if (parsed.success) return parsed.data.specs;
+  const [{ path: at, message }] = parsed.error.issues;
+  throw new Fault([
+    `${shownPath(cwd, path)}: is no report of this version of pawl: ${at.join('.')}: ${message}; run 'pawl check --out DIR' again`,
+  ]);
+}
+
+function find(specs: Reported[], { requirement, spec }: ReplayOptions) {
+  const among = specs.filter(({ file }) => spec === undefined || file === spec);
+  if (among.length === 0) {
+    throw new Fault([
+      `the report holds no spec '${spec}'${nearestOf(
+        spec ?? '',
+        specs.map(({ file }) => file),
+      )}`,
+    ]);
+  }
+  const found = among.flatMap((reported) =>
+    reported.requirements.filter(({ name }) => name === requirement).map((entry) => ({ reported, entry })),
+  );
+  if (found.length === 1) return found[0];
+  if (found.length > 1) {
+    const files = found.map(({ reported }) => reported.file).join(', ');
+    throw new Fault([`several specs have a requirement '${requirement}': ${files}; name one with --spec`]);
+  }
+  const names = among.flatMap(({ requirements }) => requirements.map(({ name }) => name));
+  throw new Fault([`the report holds no requirement '${requirement}'${nearestOf(requirement, names)}`]);
+}
+
+/** @throws {Fault} where a parameter of the spec is not in the report. */
+function plantOf(spec: Spec, reported: Record<string, number>): Float64Array {
+  const missing = spec.parameters.filter(({ name }) => !Object.hasOwn(reported, name));
+  if (missing.length > 0) {
+    throw new Fault([
+      `the report gives no value for ${missing.map(({ name }) => `'${name}'`).join(', ')}: the spec has changed; run 'pawl check' again`,
+    ]);
+  }
+  return Float64Array.from(spec.parameters, ({ name }) => reported[name]);
+}
+
+function namesTo(spec: Spec, values: Float64Array): Record<string, number> {
+  return Object.fromEntries(
+    spec.parameters.flatMap(({ name, derived }, i) => (derived ? [] : [[name, values[i]]])),
+  );
+}
+
+/** Signals over time, SI, of the counterexample and of the nominal plant. */
+export interface ReplayTraces {
+  times: readonly number[];
+  signals: readonly { name: string; unit: Unit; values: readonly number[]; nominal: readonly number[] }[];
+}
+
+function traces(
+  spec: Spec,
+  coefficients: CoefficientValues,
+  requirement: Requirement,
+  values: Float64Array,
+  halvings: number,
+): ReplayTraces | undefined {
+  const scenario = spec.scenarios.find(({ name }) => name === requirement.in);
+  if (!scenario) return undefined;
+  const units = unitsOf(spec);
+  const names = [...expandLoop(spec, coefficients, { scenario }).signals.keys()].filter((name) =>
+    units.has(name),
+  );
+  const followed = new ScenarioTraces(spec, coefficients, scenario, names, halvings, instants);
+  const own = followed.of(values);
+  const nominal = followed.of(Float64Array.from(spec.parameters, (parameter) => parameter.nominal));
+  if (!own || !nominal) return undefined;
+  return {
+    times: followed.times,
+    signals: names.map((name) => ({
+      ...{ name, unit: units.get(name)! },
+      ...{ values: own.get(name)!, nominal: nominal.get(name)! },
+    })),
+  };
+}
+
+function unitsOf({ inputs, plant: signals, sensors, controllers, actuators }: Spec): Map<string, Unit> {
+  const all = [...inputs, ...signals, ...sensors, ...controllers.flatMap((one) => one.signals), ...actuators];
+  return new Map(all.map(({ name, unit }) => [name, unit]));
+}
+
+async function writeCsv(
+  { out, requirement }: ReplayOptions,
+  { cwd }: Surroundings,
+  traced: ReplayTraces,
+): Promise<string> {
+  const folder = resolve(cwd, out ?? '.');
+  await mkdir(folder, { recursive: true });
+  const path = join(folder, `replay-${requirement.replaceAll(/[^\w.-]+/g, '_')}.csv`);
+  await writeFile(path, tracesInCsv(traced.times, traced.signals));
+  return shownPath(cwd, path);
+}
