@@ -52,7 +52,7 @@ describe('halving the spacing of the trace', () => {
         const all = z < 0.8 ? [...requirements, whenLargest] : requirements;
         within(1e-6, { inputs: 'u: {}', plant, scenarios, requirements: all });
       }),
-      { numRuns: 12 },
+      { numRuns: 8 },
     );
   });
 
@@ -72,7 +72,7 @@ describe('halving the spacing of the trace', () => {
           requirements,
         });
       }),
-      { numRuns: 12 },
+      { numRuns: 8 },
     );
   });
 

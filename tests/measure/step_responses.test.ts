@@ -61,6 +61,32 @@ describe('a step downwards', () => {
     });
   });
 
+  it('to a target of zero is measured against the size of the step', () => {
+    const [share, settling] = smallValues(
+      response(
+        oscillator,
+        [
+          'measure: overshoot, of: y, to: u, at_most: 1',
+          'measure: settling_time, of: y, to: u, band: 5 %, at_most: 1 s',
+        ],
+        'lasts: 30 s, inputs: { u: { step: -3, at: 1 s } }',
+        'u: { rest: 3 }',
+      ),
+    );
+    const [, unit] = smallValues(
+      response(
+        oscillator,
+        [
+          'measure: overshoot, of: y, to: u, at_most: 1',
+          'measure: settling_time, of: y, to: u, band: 5 %, at_most: 1 s',
+        ],
+        'lasts: 30 s, inputs: { u: { step: 1, at: 1 s } }',
+      ),
+    );
+    expect(share).toBeCloseTo(Math.exp((-Math.PI * 0.5) / Math.sqrt(0.75)), 7);
+    expect(settling).toBeCloseTo(unit, 9);
+  });
+
   it('is measured from where the target rests', () => {
     const [share] = smallValues(
       response(
