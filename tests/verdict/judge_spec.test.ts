@@ -88,3 +88,33 @@ describe('judging a spec', () => {
     expect(run.plants.independent).toBe(40);
   });
 });
+
+describe('timing and scenario values as parameters like any other', () => {
+  it('a clock error, a delay and the size of a step', async () => {
+    const { requirements: found } = await judgeSpec(
+      motorWith(
+        ['    every: 2 ms', '    every: (2 ms)*(1 + clock)'],
+        ['    delay: 1 ms', '    delay: late'],
+        ['step: 10 rad/s', 'step: size'],
+        [
+          'parameters:',
+          'parameters:\n  clock: { nominal: 0, from: -0.01, to: 0.01 }\n  late: { nominal: 1 ms, from: 0.2 ms, to: 1.8 ms }\n  size: { nominal: 10 rad/s, spread: 50 % }',
+        ],
+        ['plants: 40, seed: 5, search: 60', 'plants: 10, seed: 5, search: 20'],
+      ),
+      new Map(),
+      alone,
+    );
+    const [overshoot, phase] = found;
+    for (const { verdict, counts } of found) {
+      expect(verdict.kind).not.toBe('unjudged');
+      expect(counts.unjudged).toBe(0);
+    }
+    const effectOf = (name: string): number => phase.effects!.find((one) => one.name === name)!.headroom;
+    expect(effectOf('late')).toBeGreaterThan(effectOf('clock'));
+    expect(effectOf('clock')).toBeGreaterThan(0);
+    // The loop is linear: the size of the step changes no overshoot.
+    expect(overshoot.effects!.find((one) => one.name === 'size')!.headroom).toBeLessThan(1e-6);
+    expect(phase.proof).toMatchObject({ kind: 'open', why: expect.stringContaining('timing') });
+  });
+});
