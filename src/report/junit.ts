@@ -91,7 +91,7 @@ function addRequirement(one: TestCase, requirement: RequirementRun, spec: SpecRu
   const { name, measure, place, verdict } = requirement;
   const isOutput = !blocksMerge(requirement);
   one
-    .className(className(spec.file))
+    .className(className(spec.build === undefined ? spec.file : `${spec.file}/${spec.build}`))
     .name(`${oneLine(name)} ${measureName(measure)}`)
     .file(oneLine(place.file))
     .property('line', String(place.line))

@@ -26,6 +26,7 @@ export function runJson(run: FinishedRun, root?: string): string {
 function specJson(spec: SpecRun, root: string | undefined): Json {
   return {
     file: portablePath(spec.file, root),
+    ...(spec.build !== undefined && { build: spec.build }),
     loop: spec.loop,
     seed: spec.seed,
     confidence: spec.confidence,

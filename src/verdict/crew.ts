@@ -8,7 +8,17 @@ import { type PlantAnswer, PlantMeasurer, type PlantTask } from './plant_answers
 const batch = 16;
 /** With fewer plants the start of workers costs more than it gains. */
 const worthSharing = 64;
+/** On the calling thread an interrupt is heard after so many plants. */
+const inlineBatch = 4;
 const mostWorkers = 16;
+
+/** Who wants to know how far a crew is, or to stop it. */
+export interface Watch {
+  /** Told of the runs of plants that are done, one or some at a time. */
+  done?: (plants: number) => void;
+  /** Aborted when the work shall end; what is under way then throws its reason. */
+  signal?: AbortSignal;
+}
 
 /**
  * Measures plants on all cores. A plant's results depend on the plant alone, and they come back in the order of the plants,
@@ -26,6 +36,7 @@ export class Crew {
     private readonly spec: Spec,
     readonly coefficients: CoefficientValues,
     private readonly workers = Math.min(mostWorkers, availableParallelism()),
+    private readonly watch: Watch = {},
   ) {
     this.measurer = new PlantMeasurer(spec, coefficients);
   }
@@ -42,15 +53,12 @@ export class Crew {
     wanted?: readonly number[],
   ): Promise<PlantAnswer[]> {
     const inline = this.workers < 2 || (plants.length < worthSharing && !this.pool);
-    if (inline) return this.measurer.answers({ plants, halvings, settle, wanted });
-    const pool = await this.startedPool();
-    const size = Math.min(batch, Math.max(1, Math.ceil(plants.length / this.workers)));
+    const size = inline ? inlineBatch : Math.min(batch, Math.max(1, Math.ceil(plants.length / this.workers)));
     const tasks: PlantTask[] = [];
     for (let first = 0; first < plants.length; first += size) {
       tasks.push({ plants: plants.slice(first, first + size), halvings, settle, wanted });
     }
-    const answers: PlantAnswer[][] = await Promise.all(tasks.map((task) => pool.run(task)));
-    return answers.flat();
+    return inline ? this.measureOneByOne(tasks) : this.measureInPool(tasks);
   }
 
   /** One plant measured on the calling thread, at once. */
@@ -61,6 +69,32 @@ export class Crew {
   /** Ends the workers. */
   async dismiss(): Promise<void> {
     await this.pool?.destroy();
+  }
+
+  private async measureOneByOne(tasks: readonly PlantTask[]): Promise<PlantAnswer[]> {
+    const answers: PlantAnswer[] = [];
+    for (const task of tasks) {
+      this.watch.signal?.throwIfAborted();
+      answers.push(...this.measurer.answers(task));
+      this.watch.done?.(task.plants.length);
+      // So that an interrupt is heard between two batches.
+      if (this.watch.signal) await new Promise((resolve) => setImmediate(resolve));
+    }
+    return answers;
+  }
+
+  private async measureInPool(tasks: readonly PlantTask[]): Promise<PlantAnswer[]> {
+    const pool = await this.startedPool();
+    const { signal, done } = this.watch;
+    signal?.throwIfAborted();
+    const answers = Promise.all(
+      tasks.map(async (task) => {
+        const found: PlantAnswer[] = await pool.run(task);
+        done?.(task.plants.length);
+        return found;
+      }),
+    );
+    return (await orAborted(answers, signal)).flat();
   }
 
   private async startedPool(): Promise<Tinypool> {
@@ -74,5 +108,20 @@ export class Crew {
       workerData: { spec: this.spec, coefficients: this.coefficients },
     });
     return this.pool;
+  }
+}
+
+/** The result, unless the signal is aborted before: then its reason is thrown. */
+async function orAborted<T>(work: Promise<T>, signal: AbortSignal | undefined): Promise<T> {
+  if (!signal) return work;
+  let stop = (): void => {};
+  const aborted = new Promise<never>((_, reject) => {
+    stop = () => reject(signal.reason);
+    signal.addEventListener('abort', stop, { once: true });
+  });
+  try {
+    return await Promise.race([work, aborted]);
+  } finally {
+    signal.removeEventListener('abort', stop);
   }
 }

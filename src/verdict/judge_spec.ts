@@ -3,7 +3,7 @@ import { ParameterSpace } from '../perturb/parameter_space.js';
 import type { Effect } from '../perturb/screening.js';
 import type { Spec } from '../spec/spec.js';
 import { claimOf } from './claim.js';
-import { Crew } from './crew.js';
+import { Crew, type Watch } from './crew.js';
 import { parameterValues } from './parameter_values.js';
 import type {
   Effort,
@@ -28,6 +28,10 @@ export interface JudgeOptions {
   workers?: number;
   /** Counterexamples of earlier runs (SI, in the order of the parameters), tried first. */
   saved?: readonly Float64Array[];
+  /** Who wants to know how far it is, or to stop it. */
+  watch?: Watch;
+  /** Who measures, where that is not to be this machine alone; `workers` and `watch` are then its own. */
+  crew?: Crew;
 }
 
 /**
@@ -37,9 +41,8 @@ export interface JudgeOptions {
 export async function judgeSpec(
   spec: Spec,
   coefficients: CoefficientValues,
-  { workers, saved = [] }: JudgeOptions = {},
+  { workers, saved = [], watch, crew = new Crew(spec, coefficients, workers, watch) }: JudgeOptions = {},
 ): Promise<JudgedSpec> {
-  const crew = new Crew(spec, coefficients, workers);
   try {
     const space = new ParameterSpace(spec.parameters, spec.perturbation);
     const { tallies, landmarks, effects, halvings, plants } = await tryPlants(spec, space, crew, saved);

@@ -1,4 +1,5 @@
 import type { Coefficient } from '../firmware/coefficient.js';
+import type { FirmwareImage } from '../firmware/image.js';
 import type { MeasureResult } from '../measure/measure.js';
 import type { PlantOrigin } from '../perturb/plants.js';
 import type { Reach } from '../perturb/reach.js';
@@ -114,12 +115,16 @@ export interface CoefficientRead {
 
 /** Where the numbers come from. */
 export interface Provenance {
-  /** As written in the spec or on the command line. */
+  /** The file from the working folder, or the command that printed the numbers. */
   image: string;
+  /** What that is; an ELF file where nothing is said. */
+  kind?: FirmwareImage['kind'];
   bytes: number;
   sha256: string;
   buildId: string | undefined;
   compilers: string[];
+  /** The ELF file that gave the names to an image without any. */
+  symbols?: { image: string; sha256: string };
   build: { command: string[]; seconds: number; output: string } | undefined;
   /** Said where the build command of the spec was not run. */
   buildSkipped: boolean;
@@ -128,6 +133,8 @@ export interface Provenance {
 /** Everything found for one spec. */
 export interface SpecRun {
   file: string;
+  /** The build that was judged, where the spec names several. */
+  build?: string;
   loop: string;
   seed: number;
   confidence: number;
