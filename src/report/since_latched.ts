@@ -78,7 +78,11 @@ export function attributionInWords(
   const rows = comparison?.attribution ?? [];
   return rows
     .filter(({ share }, at) => at === 0 || Math.abs(share) >= leastShare)
-    .map((row) => `${playerInWords(row, spec)} accounts for ${shareText(row, comparison!)} of the loss`);
+    .map((row) => {
+      const does = row.share < 0 ? 'makes up for' : 'accounts for';
+      const share = shareText({ ...row, share: Math.abs(row.share) }, comparison!);
+      return `${playerInWords(row, spec)} ${does} ${share} of the loss`;
+    });
 }
 
 /** A coefficient of a loss with its old and new numbers and its place in the source. */
