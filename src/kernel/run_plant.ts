@@ -10,6 +10,20 @@ import type { Run, RunEnd } from './trace.js';
 export class TraceStore {
   times = new Float64Array(0);
   readonly records: Float64Array[] = [];
+  private readonly lent: Float64Array[] = [];
+  private lentCount = 0;
+
+  /** Takes back all that was lent for the last run. */
+  begin(): void {
+    this.lentCount = 0;
+  }
+
+  /** An array for what is made of the run's records; it belongs to the next run again. Its contents are left over. */
+  lend(length: number): Float64Array {
+    const at = this.lentCount++;
+    if ((this.lent[at]?.length ?? 0) < length) this.lent[at] = new Float64Array(length);
+    return this.lent[at].subarray(0, length);
+  }
 
   /** Makes room for so many signals and pieces, and keeps what is there. */
   reserve(signals: number, pieces: number): void {
@@ -45,6 +59,7 @@ export interface RunRequest {
 export function runPlant(request: RunRequest): Run {
   const { compiled, timeline, movement, store, signals } = request;
   const m = request.start.slice();
+  store.begin();
   const tasks = new TaskRunner(compiled, request.schedule, request.noise, m);
   const stepsOf = timeline.durations.map((duration) => movement.steps(duration));
   store.reserve(
@@ -79,7 +94,8 @@ export function runPlant(request: RunRequest): Run {
     }
   }
   store.times[piece] = timeline.times[timeline.times.length - 1];
-  return { times: store.times, records: store.records, pieces: piece, end };
+  const lend = (length: number): Float64Array => store.lend(length);
+  return { times: store.times, records: store.records, pieces: piece, end, lend };
 }
 
 /** Moves by at most h (s) and returns how far; `fresh` says that a step of the movement begins. */

@@ -13,4 +13,6 @@ export interface Run {
   records: Float64Array[];
   pieces: number;
   end: RunEnd;
+  /** Arrays for what is made of the records, used again by the next run too. */
+  lend: (length: number) => Float64Array;
 }

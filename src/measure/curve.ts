@@ -12,6 +12,8 @@ export interface Curve {
   times: Float64Array;
   points: Float64Array;
   pieces: number;
+  /** Arrays for curves that are made of this one, where it belongs to a run: the next run uses them again. */
+  lend?: (length: number) => Float64Array;
 }
 
 /**
@@ -21,16 +23,24 @@ export interface Curve {
  * @param signal index of the signal among the records.
  * @param rate index of the signal's rate among the records; undefined where that does not change between records.
  */
-export function curveOf({ times, records, pieces }: Run, signal: number, rate: number | undefined): Curve {
-  const points = new Float64Array(pointsOfPiece * pieces);
+export function curveOf(
+  { times, records, pieces, lend }: Run,
+  signal: number,
+  rate: number | undefined,
+): Curve {
+  const points = lend(pointsOfPiece * pieces);
   const values = records[signal];
   const rates = rate === undefined ? undefined : records[rate];
   for (let piece = 0; piece < pieces; piece++) {
-    const [at, to] = [4 * piece, pointsOfPiece * piece];
+    const at = 4 * piece;
+    const to = pointsOfPiece * piece;
     const h = times[piece + 1] - times[piece];
-    const [first, last] = [values[at], values[at + 2]];
-    let [firstMove, lastMove] = [(h * values[at + 1]) / 5, (h * values[at + 3]) / 5];
-    let [firstBend, lastBend] = rates ? [(h * h * rates[at + 1]) / 20, (h * h * rates[at + 3]) / 20] : [0, 0];
+    const first = values[at];
+    const last = values[at + 2];
+    let firstMove = (h * values[at + 1]) / 5;
+    let lastMove = (h * values[at + 3]) / 5;
+    let firstBend = rates ? (h * h * rates[at + 1]) / 20 : 0;
+    let lastBend = rates ? (h * h * rates[at + 3]) / 20 : 0;
     if (!Number.isFinite(firstMove + lastMove + firstBend + lastBend)) {
       firstMove = lastMove = (last - first) / 5;
       firstBend = lastBend = 0;
@@ -42,7 +52,12 @@ export function curveOf({ times, records, pieces }: Run, signal: number, rate: n
     points[to + 4] = last - lastMove;
     points[to + 5] = last;
   }
-  return { times, points, pieces };
+  return { times, points, pieces, lend };
+}
+
+/** An array for a curve that is made of another one. */
+export function pointsLike({ points, lend }: Curve): Float64Array {
+  return lend ? lend(points.length) : new Float64Array(points.length);
 }
 
 /** Time at which a curve ends, s. */
@@ -58,7 +73,7 @@ export function pieceOf({ points }: Curve, piece: number): Float64Array {
 /** A curve with all values multiplied by a factor, and an offset added to them. */
 export function scaled(curve: Curve, factor: number, offset = 0): Curve {
   const { points } = curve;
-  const moved = new Float64Array(points.length);
+  const moved = pointsLike(curve);
   for (let i = 0; i < points.length; i++) moved[i] = factor * points[i] + offset;
   return { ...curve, points: moved };
 }

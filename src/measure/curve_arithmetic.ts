@@ -1,5 +1,5 @@
 import { differences, integralOf, partOf, signChanges } from './bernstein.js';
-import { type Curve, pieceAt, pieceOf, pointsOfPiece, scaled } from './curve.js';
+import { type Curve, pieceAt, pieceOf, pointsLike, pointsOfPiece, scaled } from './curve.js';
 
 /** Collects pieces, one after another, to a curve. */
 export class CurveBuilder {
@@ -45,7 +45,7 @@ export function sumOf(a: Curve, b: Curve, factor: number): Curve {
 export function difference(a: Curve, b: Curve): Curve {
   // Curves of one run have their times in common, and most have the same pieces.
   if (a.times !== b.times) return sumOf(a, b, -1);
-  const points = new Float64Array(a.points.length);
+  const points = pointsLike(a);
   for (let i = 0; i < points.length; i++) points[i] = a.points[i] - b.points[i];
   return { ...a, points };
 }

@@ -67,6 +67,7 @@ describe('curves of records', () => {
       ],
       pieces: 2,
       end: { kind: 'complete' as const },
+      lend: (length: number) => new Float64Array(length),
     };
     const found = curveOf(run, 0, 1);
     for (const t of [0, 0.4, 1.4999, 1.5, 2, 3.7]) expect(at(found, t)).toBeCloseTo(y(t), 11);
@@ -78,6 +79,7 @@ describe('curves of records', () => {
       records: [Float64Array.of(0, Number.POSITIVE_INFINITY, 1, 0.5), Float64Array.of(0, 0, 0, 0)],
       pieces: 1,
       end: { kind: 'complete' as const },
+      lend: (length: number) => new Float64Array(length),
     };
     expect(at(curveOf(run, 0, 1), 0.25)).toBeCloseTo(0.25, 12);
   });
