@@ -15,6 +15,7 @@ import { readSpec, shownPath } from './read_spec.js';
 import { saveCounterexample } from './saved_counterexamples.js';
 import { type ExitStatus, Fault, type Surroundings } from './surroundings.js';
 
+/** Which counterexample of which report, and what to do with it. */
 export interface ReplayOptions {
   /** A run.json, or the folder that holds it. */
   report: string;
@@ -158,7 +159,7 @@ function namesTo(spec: Spec, values: Float64Array): Record<string, number> {
 }
 
 /** Signals over time, SI, of the counterexample and of the nominal plant. */
-export interface ReplayTraces {
+interface ReplayTraces {
   times: readonly number[];
   signals: readonly { name: string; unit: Unit; values: readonly number[]; nominal: readonly number[] }[];
 }

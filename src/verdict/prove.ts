@@ -49,35 +49,45 @@ export function proofOf(
     return space.allows(plant) && breaks(plant);
   };
   try {
-    const family = new LoopFamily(new LoopPoint(spec, coefficients, requirement), space);
-    const moving = movingParameters(family);
-    if (moving > mostVariables) {
-      throw new Unprovable(
-        `${moving} parameters move the loop, and a proof is tried with up to ${mostVariables}`,
-      );
-    }
-    if (
-      !provenStableAt(
-        family,
-        space.free.map((i) => space.nominal[i]),
-      )
-    ) {
-      throw new Unprovable('rounding leaves the bounds too wide even for the nominal plant alone');
-    }
-    const mostBoxes = budgetOf(statesOf(family));
-    const result = proveClaim(family, claim, failsAt, mostBoxes);
-    if (result.kind === 'refuted') {
-      return { proof: { kind: 'refuted', boxes: result.boxes }, counterexample: plantAt(result.at) };
-    }
-    const why = `the budget of ${mostBoxes} boxes ended`;
-    return {
-      proof: result.kind === 'open' ? { ...result, why } : result,
-      counterexample: undefined,
-    };
+    return proveFamily(new LoopFamily(new LoopPoint(spec, coefficients, requirement), space), claim, {
+      nominal: space.free.map((i) => space.nominal[i]),
+      failsAt,
+      plantAt,
+    });
   } catch (error) {
     if (!(error instanceof Unprovable)) throw error;
     return { proof: { kind: 'open', boxes: 0, openShare: 1, why: error.message }, counterexample: undefined };
   }
+}
+
+interface PlantsOfBox {
+  nominal: number[];
+  failsAt: (parameters: readonly number[]) => boolean;
+  plantAt: (parameters: readonly number[]) => Float64Array;
+}
+
+/** @throws {Unprovable} where a proof is not worth the try. */
+function proveFamily(
+  family: LoopFamily,
+  claim: LoopClaim,
+  { nominal, failsAt, plantAt }: PlantsOfBox,
+): ProofFound {
+  const moving = movingParameters(family);
+  if (moving > mostVariables) {
+    throw new Unprovable(
+      `${moving} parameters move the loop, and a proof is tried with up to ${mostVariables}`,
+    );
+  }
+  if (!provenStableAt(family, nominal)) {
+    throw new Unprovable('rounding leaves the bounds too wide even for the nominal plant alone');
+  }
+  const mostBoxes = budgetOf(statesOf(family));
+  const result = proveClaim(family, claim, failsAt, mostBoxes);
+  if (result.kind === 'refuted') {
+    return { proof: { kind: 'refuted', boxes: result.boxes }, counterexample: plantAt(result.at) };
+  }
+  const why = `the budget of ${mostBoxes} boxes ended`;
+  return { proof: result.kind === 'open' ? { ...result, why } : result, counterexample: undefined };
 }
 
 /** What must be proved of the loop for the requirement to hold; margins from below alone. */

@@ -23,6 +23,7 @@ export interface Scrutiny {
   effort: Effort;
 }
 
+/** Plants that the search may spend on a requirement where the spec does not say. */
 export const defaultSearch = 200;
 const shrinkBudget = 500;
 const reachBudget = 100;

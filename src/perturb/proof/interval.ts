@@ -25,19 +25,24 @@ export function widened(low: number, high: number): Interval {
   ];
 }
 
+/** Whether it is exactly zero. */
 export const isZero = ([low, high]: Interval): boolean => low === 0 && high === 0;
 
+/** Every sum of a number of each. */
 export function sum(a: Interval, b: Interval): Interval {
   if (isZero(a)) return b;
   return isZero(b) ? a : [down(a[0] + b[0]), up(a[1] + b[1])];
 }
 
+/** The negatives of its numbers; nothing is rounded. */
 export const negated = ([low, high]: Interval): Interval => [-high, -low];
 
+/** Every difference of a number of each. */
 export function difference(a: Interval, b: Interval): Interval {
   return sum(a, negated(b));
 }
 
+/** Every product of a number of each; an exact zero gives an exact zero. */
 export function product(a: Interval, b: Interval): Interval {
   if (isZero(a) || isZero(b)) return [0, 0];
   if (a[0] === 1 && a[1] === 1) return b;
@@ -54,6 +59,7 @@ export function quotient(a: Interval, b: Interval): Interval {
   return [down(Math.min(p, q, r, s)), up(Math.max(p, q, r, s))];
 }
 
+/** Nothing is known. */
 export const everything: Interval = [Number.NEGATIVE_INFINITY, Number.POSITIVE_INFINITY];
 
 /** What lies in both; the first where they seem to have nothing in common, which only rounding of bounds could feign. */

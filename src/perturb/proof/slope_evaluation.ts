@@ -151,7 +151,8 @@ function oneLessSquare([low, high]: Interval): Interval {
 export function trigonometric(of: (x: number) => number): (x: Interval) => Interval {
   return ([low, high]) => {
     const middle = low + (high - low) / 2;
-    const half = (high - low) * 0.5 * (1 + 1e-15);
+    // The middle is rounded, and so is the half width.
+    const half = (high - low) * 0.5 * (1 + 1e-15) + 4e-16 * size([low, high]);
     const [least, most] = widened(of(middle) - half, of(middle) + half);
     return [Math.max(-1, least - 1e-15), Math.min(1, most + 1e-15)];
   };

@@ -1,14 +1,16 @@
-import { type Interval, size, sum, up } from './interval.js';
+import { everything, type Interval, size, sum, up } from './interval.js';
 import { isNothing, type Slope, type SlopeField } from './slope.js';
 
 /** A matrix of quantities over a box, by rows. */
 export type SlopeMatrix = readonly (readonly Slope[])[];
 
+/** A matrix of zeros by making. */
 export function zeroMatrix(field: SlopeField, rows: number, columns: number): Slope[][] {
   const zero = field.constant(0);
   return Array.from({ length: rows }, () => new Array<Slope>(columns).fill(zero));
 }
 
+/** Ones on the diagonal, zeros by making elsewhere. */
 export function identityMatrix(field: SlopeField, size: number): Slope[][] {
   const one = field.constant(1);
   return zeroMatrix(field, size, size).map((row, i) => row.with(i, one));
@@ -42,7 +44,7 @@ export function exponentialOver(field: SlopeField, matrix: SlopeMatrix): Slope[]
   const norm = normOf(matrix.map((row) => row.map(({ range }) => size(range))));
   const halvings = Math.max(0, Math.ceil(Math.log2(norm)) + 1);
   if (!Number.isFinite(halvings) || halvings > 60)
-    return matrix.map((row) => row.map(() => field.between(all)));
+    return matrix.map((row) => row.map(() => field.between(everything)));
   const scale = field.constant(2 ** -halvings);
   const small = matrix.map((row) => row.map((entry) => field.multiply(entry, scale)));
   let result = identityMatrix(field, matrix.length);
@@ -55,8 +57,6 @@ export function exponentialOver(field: SlopeField, matrix: SlopeMatrix): Slope[]
   for (let k = 0; k < halvings; k++) result = multiplied(field, result, result);
   return result;
 }
-
-const all: Interval = [Number.NEGATIVE_INFINITY, Number.POSITIVE_INFINITY];
 
 function plusIdentity(field: SlopeField, matrix: Slope[][]): Slope[][] {
   const one = field.constant(1);
