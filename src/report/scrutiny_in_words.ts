@@ -93,5 +93,11 @@ function saidOnce(
     const words = of(one);
     if (words !== undefined) names.set(words, [...(names.get(words) ?? []), oneLine(one.name)]);
   }
-  return [...names].map(([words, said]) => `${said.join(' and ')} ${words}`);
+  return [...names].map(([words, said]) => `${inARow(said)} ${words}`);
+}
+
+/** "A", "A and B", "A, B and C". */
+function inARow(names: readonly string[]): string {
+  const last = names[names.length - 1];
+  return names.length === 1 ? last : `${names.slice(0, -1).join(', ')} and ${last}`;
 }
