@@ -1,19 +1,20 @@
 import { resolve } from 'node:path';
 import { terminalReport } from '../report/index.js';
 import { allMet } from '../verdict/run.js';
-import { type JudgedFiles, type JudgeFilesOptions, judgeFiles } from './judge_files.js';
+import type { SpecChoice } from './each_build.js';
+import { type JudgedFiles, judgeFiles } from './judge_files.js';
 import type { ExitStatus, Surroundings } from './surroundings.js';
 import { tellGitHub } from './tell_github.js';
 import { writeReports } from './write_reports.js';
 
-export interface CheckOptions extends JudgeFilesOptions {
+export interface CheckOptions extends SpecChoice {
   /** Folder for the reports, relative to the working folder. */
   out: string | undefined;
 }
 
 /** Judges specs against their builds, and reports. */
 export async function check(options: CheckOptions, around: Surroundings): Promise<ExitStatus> {
-  const judged = await judgeFiles(around.cwd, options);
+  const judged = await judgeFiles(around.cwd, options, around);
   await report(judged, options.out, around);
   return statusOf(judged);
 }

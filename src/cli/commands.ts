@@ -24,15 +24,31 @@ const buildMeanings = {
 const commands: Record<string, Command> = {
   check: {
     meaning: 'judge specs against the build; the main job',
-    usage: 'pawl check [SPEC…] [--image PATH] [--skip-build] [--out DIR]',
-    options: { ...buildOptions, out: { type: 'string' } },
+    usage: 'pawl check [SPEC…] [--image PATH] [--skip-build] [--out DIR] [--part 3 --of 8]',
+    options: { ...buildOptions, out: { type: 'string' }, part: { type: 'string' }, of: { type: 'string' } },
     optionMeanings: {
       ...buildMeanings,
       '--out DIR': 'write junit.xml, run.json, report.html and summary.md into DIR',
+      '--part N --of M': "measure one part's share of the plants, for 'pawl join'",
     },
     run: async (values, specs, around) => {
+      const options = { ...buildChoice(values), specs, out: values.out as string | undefined };
+      if (values.part !== undefined || values.of !== undefined) {
+        const { checkPart } = await import('./check_part.js');
+        return checkPart({ part: Number(values.part), of: Number(values.of) }, options, around);
+      }
       const { check } = await import('./check.js');
-      return check({ ...buildChoice(values), specs, out: values.out as string | undefined }, around);
+      return check(options, around);
+    },
+  },
+  join: {
+    meaning: 'judge what the parts of a run have measured, as one machine would have',
+    usage: 'pawl join PART… [--out DIR]',
+    options: { out: { type: 'string' } },
+    optionMeanings: { '--out DIR': 'write junit.xml, run.json, report.html and summary.md into DIR' },
+    run: async (values, paths, around) => {
+      const { join } = await import('./join.js');
+      return join(paths, values.out as string | undefined, around);
     },
   },
   read: {

@@ -1,23 +1,9 @@
-import { readdir } from 'node:fs/promises';
-import { join } from 'node:path';
-import { LoopError } from '../loop/loop.js';
-import type { CoefficientValues } from '../loop/parts.js';
 import { plotsOf } from '../plots/index.js';
 import type { Fault as SpecFault, SpecPlots } from '../report/index.js';
-import { formatSpecError } from '../spec/index.js';
-import type { Spec } from '../spec/spec.js';
-import { type JudgedSpec, judgeSpec } from '../verdict/judge_spec.js';
+import { type JudgedSpec, type JudgeOptions, judgeSpec } from '../verdict/judge_spec.js';
 import type { FinishedRun, SpecRun } from '../verdict/run.js';
-import { type BuildOptions, readBuild, valuesOf } from './read_build.js';
-import { readSpec, shownPath } from './read_spec.js';
-import { Fault } from './surroundings.js';
+import { eachBuild, type SpecChoice, type Target, type Telling } from './each_build.js';
 import { version } from './version.js';
-
-/** What is to be judged. */
-export interface JudgeFilesOptions extends BuildOptions {
-  /** Spec files, relative to the working folder; every one below it where there are none. */
-  specs: readonly string[];
-}
 
 /** What judging gave: a run of all specs that could be judged, and why the others could not. */
 export interface JudgedFiles {
@@ -28,7 +14,7 @@ export interface JudgedFiles {
 }
 
 /** One judged build of a spec. */
-interface JudgedBuild {
+export interface JudgedTarget {
   run: SpecRun;
   plots: () => SpecPlots;
 }
@@ -37,64 +23,47 @@ interface JudgedBuild {
  * Judges specs against their builds, one after another.
  * @throws {Fault} where there is no spec at all.
  */
-export async function judgeFiles(cwd: string, options: JudgeFilesOptions): Promise<JudgedFiles> {
-  const files = options.specs.length > 0 ? options.specs : await specsBelow(cwd);
-  const judged: JudgedBuild[] = [];
-  const faults: SpecFault[] = [];
-  for (const file of files) {
-    try {
-      const spec = await readSpec(cwd, file);
-      judged.push(await judgeBuild(cwd, spec, options));
-    } catch (error) {
-      if (!(error instanceof Fault)) throw error;
-      faults.push({ specFile: shownPath(cwd, file), messages: error.lines });
-    }
-  }
+export async function judgeFiles(
+  cwd: string,
+  choice: SpecChoice,
+  telling: Telling = {},
+): Promise<JudgedFiles> {
+  const { results, faults } = await eachBuild(cwd, choice, telling, (target, watch) =>
+    judgeTarget(target, { watch }),
+  );
+  return judgedFiles(results, faults);
+}
+
+/** The whole of what was judged. */
+export function judgedFiles(results: readonly JudgedTarget[], faults: SpecFault[]): JudgedFiles {
   return {
-    run: { version, specs: judged.map(({ run }) => run) },
+    run: { version, specs: results.map(({ run }) => run) },
     faults,
-    plots: () => judged.map(({ plots }) => plots()),
+    plots: () => results.map(({ plots }) => plots()),
   };
 }
 
-async function judgeBuild(cwd: string, spec: Spec, options: BuildOptions): Promise<JudgedBuild> {
-  const build = await readBuild(cwd, spec, options);
-  const coefficients = valuesOf(build);
+/** Judges one build. @throws {LoopError} where its numbers do not fit the spec. */
+export async function judgeTarget(target: Target, options: JudgeOptions): Promise<JudgedTarget> {
+  const { spec, coefficients, saved } = target;
   const started = performance.now();
-  const judged = await judgeWithFaults(spec, coefficients);
-  const run: SpecRun = {
+  const judged = await judgeSpec(spec, coefficients, { saved, ...options });
+  const seconds = (performance.now() - started) / 1000;
+  return { run: specRun(target, judged, seconds), plots: () => plotsOf(spec, coefficients, judged) };
+}
+
+function specRun({ spec, name, label, build }: Target, judged: JudgedSpec, seconds: number): SpecRun {
+  return {
     file: spec.file,
-    loop: spec.loop,
+    ...(name !== undefined && { build: name }),
+    loop: label,
     seed: spec.perturbation.seed,
     confidence: spec.perturbation.confidence,
     provenance: build?.provenance,
     coefficients: build?.coefficients ?? [],
     scenarios: spec.scenarios.map(({ name, lasts }) => ({ name, lasts })),
     merge: spec.merge && `the latched reference ${spec.merge.reference} is not compared yet`,
-    seconds: (performance.now() - started) / 1000,
+    seconds,
     ...judged,
   };
-  return { run, plots: () => plotsOf(spec, coefficients, judged) };
-}
-
-/** @throws {Fault} where the build's numbers do not fit the spec. */
-async function judgeWithFaults(spec: Spec, coefficients: CoefficientValues): Promise<JudgedSpec> {
-  try {
-    return await judgeSpec(spec, coefficients);
-  } catch (error) {
-    if (error instanceof LoopError) throw new Fault([formatSpecError(error)]);
-    throw error;
-  }
-}
-
-/** @throws {Fault} when there is none: a gate that judges nothing must not pass. */
-async function specsBelow(cwd: string): Promise<string[]> {
-  const entries = await readdir(cwd, { recursive: true, withFileTypes: true });
-  const found = entries
-    .filter((entry) => entry.isFile() && entry.name.endsWith('.pawl.yaml'))
-    .map((entry) => shownPath(cwd, join(entry.parentPath, entry.name)))
-    .filter((path) => !path.split('/').includes('node_modules'))
-    .sort();
-  if (found.length === 0) throw new Fault(['no *.pawl.yaml was found below this folder; name a spec']);
-  return found;
 }

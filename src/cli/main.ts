@@ -1,25 +1,42 @@
 #!/usr/bin/env node
 import { runCommand } from './commands.js';
-import { Fault } from './surroundings.js';
+import { progressLine } from './progress_line.js';
+import { type ExitStatus, Fault } from './surroundings.js';
 import { version } from './version.js';
 
-try {
-  process.exitCode = await runCommand(process.argv.slice(2), {
-    cwd: process.cwd(),
-    print: (text) => process.stdout.write(text),
-    complain: (text) => process.stderr.write(text),
-    colour: process.stdout.isTTY === true && process.stdout.hasColors() && process.env.NO_COLOR === undefined,
-    width: process.stdout.columns ?? 100,
-    environment: process.env,
-  });
-} catch (error) {
-  process.exitCode = 2;
-  if (error instanceof Fault) {
-    process.stderr.write(`${error.lines.join('\n')}\n`);
-  } else {
-    const trace = error instanceof Error ? error.stack : String(error);
-    process.stderr.write(
-      `pawl ${version} failed; this is a bug in pawl, please report it with these lines:\n${trace}\n`,
-    );
+const interrupt = new AbortController();
+process.once('SIGINT', () => interrupt.abort());
+process.once('SIGTERM', () => interrupt.abort());
+// Who reads only the beginning of what is printed has seen enough.
+process.stdout.on('error', (error: NodeJS.ErrnoException) => {
+  if (error.code !== 'EPIPE') throw error;
+  process.exit();
+});
+process.exitCode = await ended();
+
+async function ended(): Promise<ExitStatus> {
+  try {
+    const status = await runCommand(process.argv.slice(2), {
+      cwd: process.cwd(),
+      print: (text) => process.stdout.write(text),
+      complain: (text) => process.stderr.write(text),
+      colour:
+        process.stdout.isTTY === true && process.stdout.hasColors() && process.env.NO_COLOR === undefined,
+      width: process.stdout.columns ?? 100,
+      environment: process.env,
+      progress: process.stderr.isTTY ? progressLine(process.stderr, Date.now) : undefined,
+      interrupted: interrupt.signal,
+    });
+    return interrupt.signal.aborted ? 2 : status;
+  } catch (error) {
+    if (error instanceof Fault) process.stderr.write(`${error.lines.join('\n')}\n`);
+    else if (interrupt.signal.aborted) process.stderr.write('interrupted\n');
+    else process.stderr.write(bugReport(error));
+    return 2;
   }
+}
+
+function bugReport(error: unknown): string {
+  const trace = error instanceof Error ? error.stack : String(error);
+  return `pawl ${version} failed; this is a bug in pawl, please report it with these lines:\n${trace}\n`;
 }

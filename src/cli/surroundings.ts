@@ -12,6 +12,10 @@ export interface Surroundings {
   width: number;
   /** Environment variables, by which a command knows the CI server it runs on. */
   environment: Readonly<Record<string, string | undefined>>;
+  /** Replaces the line that tells how far long work is; undefined where no terminal would show it. */
+  progress?: (line: string) => void;
+  /** Aborted when the user ends the work. */
+  interrupted?: AbortSignal;
 }
 
 /** The three ways a command can end; see the README. */

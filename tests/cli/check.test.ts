@@ -158,7 +158,10 @@ describe('bad input ends with status 2 and one clear line at its place', () => {
   it('an image that is not there, and a build that fails', async () => {
     const place = new Workplace();
     const missing = await place.pawl('check', place.spec, '--image', 'nowhere.elf');
-    expect(missing).toMatchObject({ status: 2, errors: "there is no image 'nowhere.elf'" });
+    expect(missing).toMatchObject({
+      status: 2,
+      errors: 'image “nowhere.elf”: there is no such file; build it first, or correct the path',
+    });
     const failing = new Workplace((text) =>
       text.replace('[make, -s, -C, firmware]', '[node, --eval, process.exit(3)]'),
     );

@@ -65,7 +65,11 @@ describe('pawl schema', () => {
       (spec) => spec.replace('range: [-1, 1] }\n\nscen', 'range: [-1] }\n\nscen'),
       '/actuators/duty/range minItems',
     ],
-    ['no image', (spec) => spec.replace('image:', 'law: [f] #'), '/firmware required image'],
+    [
+      'a build that is no list',
+      (spec) => spec.replace('build: [make, -s, -C, firmware]', 'build: make'),
+      '/firmware/build type',
+    ],
   ];
   it.each(broken)('finds %s', (_, change, fault) => {
     const changed = change(demo);
