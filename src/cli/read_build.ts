@@ -1,5 +1,4 @@
-import { readFile } from 'node:fs/promises';
-import { dirname, resolve } from 'node:path';
+import { dirname, relative, resolve } from 'node:path';
 import {
   type BuildRecord,
   type Coefficient,
@@ -9,15 +8,14 @@ import {
   type FunctionCode,
   formatText,
   functionCode,
-  openImage,
   readCoefficients,
   runBuild,
 } from '../firmware/index.js';
 import type { CoefficientValues, StoredNumbers } from '../loop/parts.js';
 import { formatSpecError } from '../spec/index.js';
-import type { Firmware, Place, Spec } from '../spec/spec.js';
+import type { Firmware, Spec } from '../spec/spec.js';
 import type { CoefficientRead, Provenance } from '../verdict/run.js';
-import { shownPath } from './read_spec.js';
+import { asFault, type ChosenOrigin, type Folders, openNumbers } from './open_numbers.js';
 import { Fault } from './surroundings.js';
 
 /** Another image instead of the spec's, or the image as it is. */
@@ -38,7 +36,7 @@ export interface BuildRead {
 const buildTimeLimitSeconds = 600;
 
 /**
- * Runs the spec's build, unless told otherwise, and reads the coefficients from the image.
+ * Runs the spec's build, unless told otherwise, and reads the coefficients from what it made.
  * @throws {Fault} with every coefficient that cannot be read, at its place in the spec.
  */
 export async function readBuild(
@@ -52,66 +50,56 @@ export async function readBuild(
       throw new Fault([`${spec.file}: has no firmware section, so --image means nothing`]);
     return undefined;
   }
-  const folder = dirname(resolve(cwd, spec.file));
-  const path = options.image === undefined ? resolve(folder, firmware.image) : resolve(cwd, options.image);
-  const wanted = firmware.build && options.image === undefined && !options.skipBuild;
-  const build = wanted ? await buildImage(firmware, folder, path) : undefined;
-  const shown = shownPath(cwd, path);
-  const image = await openImageFile(
-    path,
-    shown,
-    options.image === undefined ? firmware.imagePlace : undefined,
-  );
+  const folders = { cwd, folder: dirname(resolve(cwd, spec.file)) };
+  const origin = chosenOrigin(spec.file, firmware, options, folders);
+  const wanted = firmware.build && !origin.replaced && !options.skipBuild;
+  const build = wanted ? await runBuildOf(firmware, origin, folders) : undefined;
+  const image = await openNumbers(origin, folders);
   return {
-    coefficients: readAll(firmware, image),
+    coefficients: readAll(firmware, image, folders),
     law: lawOf(firmware, image),
     provenance: {
-      ...provenanceOf(image, shown, build),
+      ...provenanceOf(image, build),
       buildSkipped: firmware.build !== undefined && !wanted,
     },
   };
 }
 
-async function buildImage(firmware: Firmware, cwd: string, imagePath: string): Promise<BuildRecord> {
+/** `--image` takes the place of the spec's file; what explains that file still counts where it can. */
+function chosenOrigin(
+  specFile: string,
+  { numbers }: Firmware,
+  { image }: BuildOptions,
+  { cwd, folder }: Folders,
+): ChosenOrigin {
+  if (image === undefined) return { ...numbers, replaced: false };
+  if (numbers.kind === 'command')
+    throw new Fault([`${specFile}: has its numbers from a command, so --image means nothing`]);
+  return { ...numbers, path: relative(folder, resolve(cwd, image)), replaced: true };
+}
+
+async function runBuildOf(firmware: Firmware, origin: ChosenOrigin, folders: Folders): Promise<BuildRecord> {
+  // The reader of specs lets no build stand beside a command.
+  const path = origin.kind === 'command' ? '' : origin.path;
   try {
     return await runBuild({
       command: firmware.build!,
-      cwd,
+      cwd: folders.folder,
       timeLimitSeconds: buildTimeLimitSeconds,
-      imagePath,
+      imagePath: resolve(folders.folder, path),
     });
   } catch (error) {
-    throw asFault(error, firmware.place);
+    throw asFault(error, firmware.place, folders);
   }
 }
 
-async function openImageFile(path: string, shown: string, place: Place | undefined): Promise<FirmwareImage> {
-  try {
-    return openImage(await readFile(path), shown);
-  } catch (error) {
-    if (error instanceof FirmwareError) throw asFault(error, place);
-    const missing = (error as NodeJS.ErrnoException).code === 'ENOENT';
-    throw asFault(
-      new Error(missing ? `there is no image '${shown}'` : `image '${shown}' cannot be read`),
-      place,
-    );
-  }
-}
-
-function asFault(error: unknown, place: Place | undefined): unknown {
-  if (!(error instanceof Error)) return error;
-  const line = place ? formatSpecError({ place, message: error.message }) : error.message;
-  return new Fault([line]);
-}
-
-function readAll(firmware: Firmware, image: FirmwareImage): CoefficientRead[] {
-  const requests = firmware.coefficients.map(({ name, at, format }) => ({ name, at, format }));
-  const { coefficients, errors } = readCoefficients(image, requests);
+function readAll(firmware: Firmware, image: FirmwareImage, folders: Folders): CoefficientRead[] {
+  const { coefficients, errors } = readCoefficients(image, firmware.coefficients);
   if (errors.length > 0) {
     throw new Fault(
-      errors.map((error) => {
+      errors.flatMap((error) => {
         const definition = firmware.coefficients.find(({ name }) => name === error.requestName);
-        return formatSpecError({ place: definition?.atPlace ?? firmware.place, message: error.message });
+        return (asFault(error, definition?.atPlace ?? firmware.place, folders) as Fault).lines;
       }),
     );
   }
@@ -139,18 +127,20 @@ function lawOf({ law = [] }: Firmware, image: FirmwareImage): FunctionCode[] {
   return found;
 }
 
+/** An image without names is built by what its file of symbols names as compilers, under that file's build id. */
 function provenanceOf(
   image: FirmwareImage,
-  shown: string,
   build: BuildRecord | undefined,
 ): Omit<Provenance, 'buildSkipped'> {
-  const { size, sha256, buildId, producers } = describeImage(image);
+  const { name, kind, size, sha256, buildId, producers, symbols } = describeImage(image);
   return {
-    image: shown,
+    image: name,
+    kind,
     bytes: size,
     sha256,
-    buildId,
-    compilers: producers,
+    buildId: buildId ?? symbols?.buildId,
+    compilers: producers.length > 0 ? producers : (symbols?.producers ?? []),
+    symbols: symbols && { image: symbols.name, sha256: symbols.sha256 },
     build: build && { command: build.command, seconds: build.durationSeconds, output: build.output },
   };
 }

@@ -4,8 +4,9 @@ import { checkControllersHear, checkUse } from './check_use.js';
 import { checkWindows } from './check_windows.js';
 import { gatherParts, type Includes, joined } from './include.js';
 import { newProblems, type Problems } from './problems.js';
+import { readFirmware } from './read_firmware.js';
 import { declareLoop, readActuators, readControllers, readPlant, readSensors } from './read_loop.js';
-import { readConstants, readFirmware, readInputs } from './read_named.js';
+import { readConstants, readInputs } from './read_named.js';
 import { readParameters } from './read_parameters.js';
 import { readRequirements } from './read_requirements.js';
 import { checkVersion, readMerge, readPerturbation } from './read_run.js';
@@ -93,7 +94,7 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
   readConstants(childOf(root, 'constants'), reading);
   const parameters = readParameters(childOf(root, 'parameters'), reading);
   const inputs = readInputs(childOf(root, 'inputs'), reading);
-  const firmware = readFirmware(entryOf(root, 'firmware'), reading);
+  const { firmware, builds } = readFirmware(entryOf(root, 'firmware'), entryOf(root, 'builds'), reading);
   declareLoop(root, reading);
   const plant = readPlant(childOf(root, 'plant'), reading);
   const sensors = readSensors(childOf(root, 'sensors'), reading);
@@ -107,6 +108,7 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
     file,
     loop: textOf(childOf(root, 'loop'))?.text ?? '',
     firmware,
+    builds,
     parameters,
     inputs,
     plant,

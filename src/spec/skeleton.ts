@@ -1,5 +1,7 @@
 import { z } from 'zod';
+import { coefficient, imagePath, originSlots } from './firmware_skeleton.js';
 import { overflows, roundings } from './fixed_formats.js';
+import { command, text, unit } from './skeleton_slots.js';
 import type {
   BlockDescription,
   MeasureKey,
@@ -9,9 +11,6 @@ import type {
   Vocabulary,
 } from './vocabulary.js';
 
-/** What is said of a slot in the JSON Schema and in the error when it is missing or of the wrong shape. */
-const text = (expected: string) => z.string().describe(expected);
-const unit = text('a unit such as kg*m^2').optional();
 const range = z
   .tuple([text('a lower bound'), text('an upper bound')])
   .describe('two bounds in brackets, such as [-1, 1]')
@@ -54,6 +53,7 @@ function newSkeleton(vocabulary: Vocabulary) {
         .describe('a list of paths, such as [shared/motor.yaml]')
         .optional(),
       firmware: firmware.optional(),
+      builds: named(build, 'builds'),
       constants: z
         .record(z.string(), text('a quantity such as 9.81 m/s^2'))
         .describe(mappingOf('constants'))
@@ -80,25 +80,14 @@ function named<T extends z.ZodType>(one: T, what: string) {
   return z.record(z.string(), one).describe(mappingOf(what)).optional();
 }
 
-const coefficient = z
-  .union([
-    text('where it is in the build, such as drive.gains.kp'),
-    z.strictObject({
-      at: text('where it is in the build, such as drive.gains.kp'),
-      format: text('a number format such as Q2.14').optional(),
-      unit,
-    }),
-  ])
-  .describe('where it is in the build, such as drive.gains.kp, or { at: …, unit: …, format: … }');
+const build = z
+  .union([imagePath, z.strictObject({ ...originSlots, build: command })])
+  .describe('the path of an image, or { image: …, build: … }');
 
 const firmware = z
   .strictObject({
-    build: z
-      .array(text('an argument'))
-      .min(1)
-      .describe('a list of arguments, such as [make, -C, firmware]')
-      .optional(),
-    image: text('the path of the image, relative to this file'),
+    build: command,
+    ...originSlots,
     coefficients: named(coefficient, 'coefficients'),
     law: z
       .array(text('the name of a function'))

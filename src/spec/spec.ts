@@ -200,6 +200,15 @@ export interface CoefficientDefinition {
   atPlace: Place;
   format: string | undefined;
   unit: Unit | undefined;
+  /** The value is the stored number × scale + offset; a list has one entry for each element, or each row of a table. */
+  scale?: number | number[];
+  offset?: number | number[];
+  /** Memory without contents in the image, which start-up code clears, is read as 0. */
+  startsAtZero?: boolean;
+  /** Address on the target in bytes; `at` is then empty. */
+  address?: number;
+  /** How many numbers stand at `address`; without it one that is no array. */
+  count?: number;
 }
 
 /**
@@ -277,16 +286,57 @@ export interface Requirement {
   reason: string | undefined;
 }
 
+/** A value as written, with its place. */
+export interface Located<T> {
+  value: T;
+  place: Place;
+}
+
+/** Where the numbers of a build stand. Paths are relative to the spec file. */
+export type NumberOrigin =
+  /** A file that the build makes. */
+  | {
+      kind: 'image';
+      path: string;
+      place: Place;
+      /** Address of the first byte of a raw binary. */
+      baseAddress: Located<number> | undefined;
+      /** Of a target whose image does not state it. */
+      byteOrder: Located<'little' | 'big'> | undefined;
+      /** ELF file of the same build, with the names that the image lacks. */
+      symbols: Located<string> | undefined;
+      /** File with the debug information that was split off from the image. */
+      debugFile: Located<string> | undefined;
+    }
+  /** C or C++ text, read through the preprocessor. */
+  | {
+      kind: 'source';
+      path: string;
+      place: Place;
+      includePaths: string[];
+      /** As after `-D`: `NAME=value`. */
+      defines: string[];
+      /** The preprocessor with its own arguments; undefined for the usual one. */
+      compiler: string[] | undefined;
+    }
+  /** A program that prints the numbers, run without a shell in the spec file's folder. */
+  | { kind: 'command'; command: string[]; place: Place };
+
 export interface Firmware {
   place: Place;
   /** Argument list, run without a shell in the spec file's folder. */
   build: string[] | undefined;
-  /** Path relative to the spec file. */
-  image: string;
-  imagePlace: Place;
+  numbers: NumberOrigin;
   coefficients: CoefficientDefinition[];
   /** Functions that hold the control law: a change of their machine code must be latched. */
   law?: { name: string; place: Place }[];
+}
+
+/** One of several builds that a spec judges, with the firmware section as it is for it. */
+export interface NamedBuild {
+  name: string;
+  place: Place;
+  firmware: Firmware;
 }
 
 export interface Perturbation {
@@ -324,7 +374,10 @@ export interface Waiver {
 export interface Spec {
   file: string;
   loop: string;
+  /** Of several builds the first. */
   firmware: Firmware | undefined;
+  /** Where there are several. */
+  builds?: NamedBuild[];
   parameters: ParameterDefinition[];
   inputs: InputDefinition[];
   plant: SignalDefinition[];

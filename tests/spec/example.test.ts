@@ -17,8 +17,7 @@ test('the example of the format loads as it stands', () => {
 test('firmware: every coefficient with where it is in the build, its unit and its place', () => {
   expect(spec.firmware).toMatchObject({
     build: ['make', '-s', '-C', 'firmware'],
-    image: 'firmware/azimuth.elf',
-    imagePlace: at(6, 10),
+    numbers: { kind: 'image', path: 'firmware/azimuth.elf', place: at(6, 10) },
   });
   expect(
     spec.firmware?.coefficients.map(({ name, at, format, unit }) => [name, at, format, unit?.text]),

@@ -65,6 +65,7 @@ test('the example is the one that the tests load', () => {
 test.each([
   ['### firmware', keysOf(below(spec, 'firmware'))],
   ['### firmware', keysOf(below(below(spec, 'firmware'), 'coefficients'))],
+  ['### firmware', keysOf(below(below(spec, 'firmware'), 'source'))],
   ['### parameters', keysOf(below(spec, 'parameters'))],
   ['### inputs', keysOf(below(spec, 'inputs'))],
   ['### plant', keysOf(below(spec, 'plant')).filter((key) => !blocks.includes(key))],
