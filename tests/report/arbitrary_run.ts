@@ -1,7 +1,16 @@
 import fc from 'fast-check';
 import type { MeasureResult } from '../../src/measure/measure.js';
 import type { Limit, Unit } from '../../src/spec/spec.js';
-import type { FinishedRun, JudgedPlant, RequirementRun, SpecRun, Verdict } from '../../src/verdict/run.js';
+import type {
+  Comparison,
+  FinishedRun,
+  JudgedPlant,
+  RequirementRun,
+  SinceLatched,
+  SpecRun,
+  Verdict,
+  WaivedRequirement,
+} from '../../src/verdict/run.js';
 import { specRun, units } from './sample_run.js';
 
 const name = fc.string({ unit: 'binary', maxLength: 40 });
@@ -39,8 +48,60 @@ const limit: fc.Arbitrary<Limit> = fc.oneof(
 const verdict: fc.Arbitrary<Verdict> = fc.oneof(
   fc.record({ kind: fc.constant('met' as const), headroom }),
   fc.record({ kind: fc.constant('broken' as const), headroom, why: name }),
+  fc.record({ kind: fc.constant('slipped' as const), headroom, why: name }),
   fc.record({ kind: fc.constant('unjudged' as const), why: name }),
 );
+
+const compared = fc.record({ result, headroom });
+const none = { nil: undefined };
+
+const comparison: fc.Arbitrary<Comparison> = fc
+  .record({
+    latched: fc.option(compared, none),
+    rerun: fc.option(compared, none),
+    today: compared,
+    lost: headroom,
+    maySlip: fc.constant(0.05),
+    fromSpec: fc.array(name, { maxLength: 4 }),
+    attribution: fc.array(fc.record({ name, share: finite, lost: finite }), { maxLength: 3 }),
+    why: name,
+    orders: fc.option(fc.nat(64), none),
+  })
+  .map(({ why, orders, ...others }) => ({
+    ...others,
+    ...(others.rerun === undefined && { why }),
+    ...(orders !== undefined && { sampledOrders: orders }),
+  }));
+
+const waiver: fc.Arbitrary<WaivedRequirement> = fc.record(
+  { reason: name, until: fc.constant('2027-03-01'), letsThrough: fc.boolean(), why: name },
+  { requiredKeys: ['reason', 'until', 'letsThrough'] },
+);
+
+const numbers = fc.array(finite, { minLength: 1, maxLength: 6 });
+
+const sinceLatched: fc.Arbitrary<SinceLatched> = fc.record({
+  path: name,
+  reference: fc.option(fc.record({ reason: name, pawl: name }), none),
+  coefficients: fc.array(
+    fc.oneof(
+      numbers.map((values) => ({
+        ...{ name: 'kp', latched: values, today: values.map((value) => value + 1) },
+        elements: [...values.keys()],
+      })),
+      fc.record({
+        name,
+        latched: fc.option(numbers, none),
+        today: fc.option(numbers, none),
+        elements: fc.constant([]),
+        unlike: name,
+      }),
+    ),
+    { maxLength: 3 },
+  ),
+  spec: fc.array(name, { maxLength: 3 }),
+  law: fc.array(name, { maxLength: 2 }),
+});
 
 const parameter = fc.record({
   name,
@@ -83,6 +144,8 @@ export const anyRequirement: fc.Arbitrary<RequirementRun> = fc.record({
   worst: plant,
   counts: fc.record({ tried: count, broken: count, unjudged: count }),
   claim: fc.option(name, { nil: undefined }),
+  comparison: fc.option(comparison, none),
+  waiver: fc.option(waiver, none),
 });
 
 const anySpec: fc.Arbitrary<SpecRun> = fc
@@ -92,6 +155,7 @@ const anySpec: fc.Arbitrary<SpecRun> = fc
     seed: fc.integer(),
     requirements: fc.array(anyRequirement, { maxLength: 5 }),
     merge: fc.option(name, { nil: undefined }),
+    sinceLatched: fc.option(sinceLatched, none),
     seconds: fc.double({ min: 0, max: 1e6, noNaN: true }),
     hasImage: fc.boolean(),
   })

@@ -15,6 +15,12 @@ export function hostileRun(name: string): FinishedRun {
     unit,
     claim: name,
   };
+  const compared = { result: { kind: 'never', why: name, left: 1 } as const, headroom: undefined };
+  const comparison = {
+    ...{ latched: compared, rerun: undefined, why: name, today: compared, lost: undefined, maySlip: 0.05 },
+    ...{ fromSpec: [name], attribution: [{ name: `${name} `, share: 1, lost: 0.2 }] },
+  };
+  const waiver = { reason: name, until: '2027-03-01', letsThrough: false, why: name };
   const never = { kind: 'never', why: name, left: 1 } as const;
   return {
     version: '0.1.0',
@@ -23,6 +29,13 @@ export function hostileRun(name: string): FinishedRun {
         file: name,
         loop: name,
         merge: name,
+        sinceLatched: {
+          path: name,
+          reference: { reason: name, pawl: name },
+          coefficients: [{ name, latched: [1], today: [2], elements: [0] }],
+          spec: [name],
+          law: [name],
+        },
         provenance: {
           image: name,
           bytes: 1,
@@ -49,7 +62,13 @@ export function hostileRun(name: string): FinishedRun {
         ],
         requirements: [
           requirement(common),
-          requirement({ ...common, verdict: { kind: 'broken', headroom: -0.2, why: name }, worst: moved }),
+          requirement({
+            ...common,
+            verdict: { kind: 'broken', headroom: -0.2, why: name },
+            worst: moved,
+            comparison,
+            waiver,
+          }),
           requirement({
             ...common,
             verdict: { kind: 'broken', headroom: undefined, why: name },

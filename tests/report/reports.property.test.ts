@@ -11,6 +11,7 @@ import {
 } from '../../src/report/index.js';
 import { columnsOf } from '../../src/report/plain_text.js';
 import { limitStrip } from '../../src/report/plot/limit_strip.js';
+import { blocksMerge } from '../../src/report/verdict_words.js';
 import { anyFaults, anyRequirement, anyRun } from './arbitrary_run.js';
 import { harmful } from './hostile.js';
 
@@ -73,7 +74,10 @@ describe('each report', () => {
         run.specs.forEach(({ requirements }, at) => {
           const kinds = requirements.map(({ verdict }) => verdict.kind);
           expect(suites[at].testcase ?? []).toHaveLength(requirements.length);
-          expect(suites[at].failures).toBe(kinds.filter((kind) => kind === 'broken').length);
+          const failing = requirements.filter(
+            (one) => ['broken', 'slipped'].includes(one.verdict.kind) && blocksMerge(one),
+          );
+          expect(suites[at].failures).toBe(failing.length);
           expect(suites[at].errors).toBe(kinds.filter((kind) => kind === 'unjudged').length);
         });
         for (const suite of suites.slice(run.specs.length)) expect(suite.errors).toBe(1);
@@ -124,13 +128,16 @@ describe('each report', () => {
   it('as annotations has one line for each requirement that blocks and each cause', () => {
     fc.assert(
       fc.property(anyRun, anyFaults, (run, faults) => {
-        const blocking = run.specs
+        const notMet = run.specs
           .flatMap((spec) => spec.requirements)
           .filter(({ verdict }) => verdict.kind !== 'met');
+        const blocking = notMet.filter(blocksMerge);
         const causes = faults.flatMap(({ messages }) => messages);
         const lines = annotationLines(run, faults).split('\n').slice(0, -1);
-        expect(lines).toHaveLength(blocking.length + causes.length);
-        for (const line of lines) expect(line).toMatch(/^::error file=/);
+        expect(lines).toHaveLength(notMet.length + causes.length);
+        for (const line of lines) expect(line).toMatch(/^::(error|warning) file=/);
+        const errors = lines.filter((line) => line.startsWith('::error'));
+        expect(errors).toHaveLength(blocking.length + causes.length);
       }),
       settings,
     );
