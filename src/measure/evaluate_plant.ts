@@ -11,9 +11,12 @@ import { type Schedule, scheduleOf } from '../loop/schedule.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import { signalsOfStatement } from '../spec/statement.js';
 import { type Curve, isConstant } from './curve.js';
+import { firmwareResults } from './firmware_results.js';
 import { measureNamed } from './index.js';
 import { LoopPoint, type LoopViewResult } from './loop_point.js';
 import {
+  isLoopMeasure,
+  isTraceMeasure,
   type LoopMeasure,
   type MeasureResult,
   type TraceContext,
@@ -53,12 +56,14 @@ export class PlantEvaluator {
   private readonly traceGroups: TraceGroup[];
   private readonly loopGroups: LoopGroup[];
   private readonly commonSchedule: Schedule | undefined;
+  private readonly firmwareResults: Map<number, MeasureResult>;
 
   /** @throws {LoopError} where the build's numbers do not fit the spec. */
   constructor(
     private readonly spec: Spec,
     coefficients: CoefficientValues,
   ) {
+    this.firmwareResults = firmwareResults(spec, coefficients);
     this.loop = expandLoop(spec, coefficients);
     this.linearisation = new Linearisation(this.loop);
     const nominal = Float64Array.from(spec.parameters, (parameter) => parameter.nominal);
@@ -74,7 +79,9 @@ export class PlantEvaluator {
    * @returns one result for each requirement, in the order of the spec.
    */
   evaluate(parameters: Float64Array, halvings: number): MeasureResult[] {
-    const results: MeasureResult[] = this.spec.requirements.map(() => unformed('it was not measured'));
+    const results = this.spec.requirements.map(
+      (_, index) => this.firmwareResults.get(index) ?? unformed('it was not measured'),
+    );
     const plant = this.plantCase(parameters, halvings);
     for (const group of this.traceGroups) this.traceResults(group, plant, results);
     for (const group of this.loopGroups) this.loopResults(group, plant, results);
@@ -119,7 +126,7 @@ export class PlantEvaluator {
 
   /**
    * For each requirement whether every signal that it follows stays as it is over its whole scenario, in this plant: then it
-   * guards nothing. Requirements of the loop follow none.
+   * guards nothing. Requirements of the loop and of the build follow none.
    */
   staysStill(parameters: Float64Array): boolean[] {
     const still = this.spec.requirements.map(() => false);
@@ -212,7 +219,7 @@ export class PlantEvaluator {
       rest.kind === 'none' ? rest.why : numeric(() => point.view(parameters, rest.point, schedule));
     for (const { requirement, index } of requirements) {
       const measure = measureNamed(requirement.measure);
-      if (isTraceMeasure(measure)) continue;
+      if (!isLoopMeasure(measure)) continue;
       results[index] = loopResult(measure, found, requirement);
     }
   }
@@ -259,10 +266,6 @@ function windowFault({ from, until }: Window, lasts: number): MeasureResult | un
 /** The signals whose traces a requirement needs. */
 function followedBy({ signals, statement }: Requirement): string[] {
   return [...Object.values(signals), ...(statement ? signalsOfStatement(statement) : [])];
-}
-
-function isTraceMeasure(measure: ReturnType<typeof measureNamed>): measure is TraceMeasure {
-  return measure.description.basis === 'trace';
 }
 
 /** A result, or the reason why its numbers cannot be formed. */

@@ -1,6 +1,7 @@
 import { absoluteDeviationIntegral } from './absolute_deviation_integral.js';
 import { activity } from './activity.js';
 import { bandwidth } from './bandwidth.js';
+import { coefficientValue } from './coefficient_value.js';
 import { complementaryPeak } from './complementary_peak.js';
 import { corridorClearance } from './corridor_clearance.js';
 import { crossover } from './crossover.js';
@@ -12,12 +13,15 @@ import { duty } from './duty.js';
 import { gainMargin } from './gain_margin.js';
 import { holdPhaseLoss } from './hold_phase_loss.js';
 import { inverseResponse } from './inverse_response.js';
+import { largestEntry } from './largest_entry.js';
 import { largestFollowingGain } from './largest_following_gain.js';
 import { largestLoopGain } from './largest_loop_gain.js';
 import { largestSensitivity } from './largest_sensitivity.js';
 import { largestValue } from './largest_value.js';
 import { lateDeviationIntegral } from './late_deviation_integral.js';
 import { leastDamping } from './least_damping.js';
+import { leastFall } from './least_fall.js';
+import { leastRise } from './least_rise.js';
 import { limitHitCount } from './limit_hit_count.js';
 import { longestTimeAtLimit } from './longest_time_at_limit.js';
 import { lowestCrossover } from './lowest_crossover.js';
@@ -42,11 +46,13 @@ import { saturatedShare } from './saturated_share.js';
 import { sensitivityPeak } from './sensitivity_peak.js';
 import { settlingTime } from './settling_time.js';
 import { slewRate } from './slew_rate.js';
+import { smallestEntry } from './smallest_entry.js';
 import { smallestLoopGain } from './smallest_loop_gain.js';
 import { smallestValue } from './smallest_value.js';
 import { squaredDeviationIntegral } from './squared_deviation_integral.js';
 import { stability } from './stability.js';
 import { steadyStateError } from './steady_state_error.js';
+import { storedRangeUse } from './stored_range_use.js';
 import { timeOfLargestValue } from './time_of_largest_value.js';
 import { timeOfSmallestValue } from './time_of_smallest_value.js';
 import { travel } from './travel.js';
@@ -104,6 +110,12 @@ export const measures: readonly Measure[] = [
   largestFollowingGain,
   leastDamping,
   noiseGain,
+  coefficientValue,
+  largestEntry,
+  smallestEntry,
+  leastRise,
+  leastFall,
+  storedRangeUse,
 ];
 
 const byName = new Map(measures.map((measure) => [measure.description.name, measure]));

@@ -32,6 +32,13 @@ export const loopPointKey: MeasureKey = {
   meaning: 'where the loop is opened',
 };
 
+export const coefficientKey: MeasureKey = {
+  name: 'of',
+  kind: 'coefficient',
+  optional: false,
+  meaning: 'a coefficient',
+};
+
 /** The window of a measure: times of the scenario. */
 export const windowKeys: readonly MeasureKey[] = [
   {

@@ -1,3 +1,4 @@
+import type { StoredNumbers } from '../loop/parts.js';
 import type { BoundPoint, Statement } from '../spec/statement.js';
 import type { MeasureDescription } from '../spec/vocabulary.js';
 import type { Curve } from './curve.js';
@@ -74,7 +75,34 @@ export interface LoopMeasure {
   measure: (context: LoopContext) => MeasureResult;
 }
 
-export type Measure = TraceMeasure | LoopMeasure;
+/** What a measure of the build may look at: the numbers of one coefficient. */
+export interface FirmwareContext {
+  /** The coefficient's name. */
+  name: string;
+  /** At least one, in the order in which they are stored, in the coefficient's own unit. */
+  values: readonly number[];
+  /** A number in that unit as one in SI. */
+  si: (value: number) => number;
+  /** The same as they are stored, with their format; undefined where a scale or an offset made others of them. */
+  stored: StoredNumbers | undefined;
+}
+
+/** A measure of the build's numbers alone, whatever the plant. */
+export interface FirmwareMeasure {
+  description: MeasureDescription & { basis: 'firmware' };
+  measure: (context: FirmwareContext) => MeasureResult;
+}
+
+export type Measure = TraceMeasure | LoopMeasure | FirmwareMeasure;
+
+export const isTraceMeasure = (measure: Measure): measure is TraceMeasure =>
+  measure.description.basis === 'trace';
+
+export const isLoopMeasure = (measure: Measure): measure is LoopMeasure =>
+  measure.description.basis === 'loop';
+
+export const isFirmwareMeasure = (measure: Measure): measure is FirmwareMeasure =>
+  measure.description.basis === 'firmware';
 
 export const unformed = (why: string): MeasureResult => ({ kind: 'unformed', why });
 

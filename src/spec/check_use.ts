@@ -4,7 +4,7 @@ import { isWhole, type Reading } from './reading.js';
 import type { ControllerDefinition } from './spec.js';
 
 const mustBeUsed: Partial<Record<NameKind, string>> = {
-  coefficient: 'no controller uses it',
+  coefficient: 'no controller or requirement uses it',
   parameter: 'nothing uses it',
   input: 'nothing uses it',
   sensor: 'no controller reads it',

@@ -13,11 +13,12 @@ export function readAround(
   reading: Reading,
 ): Requirement['around'] {
   if (entry === undefined) return [];
-  if (measure.basis === 'trace') {
-    reading.problems.add(
-      entry.keyPlace,
-      `\`${measure.name}\` is a measure of a trace and has no \`around:\`; it starts where its scenario starts`,
-    );
+  if (measure.basis !== 'loop') {
+    const why =
+      measure.basis === 'trace'
+        ? 'is a measure of a trace and has no `around:`; it starts where its scenario starts'
+        : 'is a measure of the build and has no `around:`';
+    reading.problems.add(entry.keyPlace, `\`${measure.name}\` ${why}`);
     return [];
   }
   return entriesOf(entry.value).flatMap((one) => readSignalValue(one, reading) ?? []);

@@ -4,7 +4,11 @@ import type { Setting } from './spec.js';
 import { type Tree, textOf } from './tree.js';
 
 /** Reads the name of a coefficient; anything else is reported. */
-export function readCoefficientName(tree: Tree, what: string, reading: Reading): Setting | undefined {
+export function readCoefficientName(
+  tree: Tree,
+  what: string,
+  reading: Reading,
+): Extract<Setting, { kind: 'coefficients' }> | undefined {
   const text = textOf(tree);
   if (text === undefined) return undefined;
   reading.names.used.add(text.text);

@@ -9,7 +9,16 @@ import { readSignalKeys } from './read_signal_keys.js';
 import { readStatement } from './read_statement.js';
 import type { Reading } from './reading.js';
 import type { Dimension, HoldsFor, Requirement, Scenario, SensorDefinition } from './spec.js';
-import { childOf, entriesOf, entryOf, itemsOf, type MapTree, type Tree, textOf } from './tree.js';
+import {
+  childOf,
+  entriesOf,
+  entryOf,
+  itemsOf,
+  type MapEntry,
+  type MapTree,
+  type Tree,
+  textOf,
+} from './tree.js';
 import { plainUnit } from './units.js';
 import type { MeasureDescription } from './vocabulary.js';
 
@@ -69,7 +78,7 @@ function readRequirement(
   const signals = readSignalKeys(item, measure, referred.sensors, reading);
   // A loop measure has no `of`; without one the result is a plain number.
   const needsOf = measure.keys.some((key) => key.name === 'of');
-  const ofDimension = needsOf ? reading.names.entries.get(signals.of ?? '')?.unit?.dimension : plainNumber;
+  const ofDimension = needsOf ? dimensionOf(signals.of, reading) : plainNumber;
   const atDimension = reading.names.entries.get(signals.at ?? '')?.unit?.dimension ?? plainNumber;
   const dimension = ofDimension && measure.dimension(ofDimension, atDimension);
   const limit = readLimit(item, measure, dimension, reading);
@@ -91,7 +100,7 @@ function readRequirement(
     limitPlace: limit?.place ?? place,
     unit: limit?.unit ?? plainUnit,
     inDecibels: limit?.inDecibels ?? false,
-    holdsFor: readHoldsFor(childOf(item, 'holds_for'), reading),
+    holdsFor: readHoldsFor(entryOf(item, 'holds_for'), measure, reading),
     scale: scale?.value,
     reason: textOf(childOf(item, 'reason'))?.text,
   };
@@ -123,11 +132,12 @@ function readScenarioName(
 ): string | undefined {
   const entry = entryOf(item, 'in');
   const name = textOf(entry?.value);
-  if (measure.basis === 'loop') {
+  if (measure.basis !== 'trace') {
     if (entry !== undefined) {
+      const what = measure.basis === 'loop' ? 'loop' : 'build';
       reading.problems.add(
         entry.keyPlace,
-        `\`${measure.name}\` is a measure of the loop and needs no scenario`,
+        `\`${measure.name}\` is a measure of the ${what} and needs no scenario`,
       );
     }
     return undefined;
@@ -183,8 +193,23 @@ function readStatements(
   return result;
 }
 
-/** `all` unless said otherwise. */
-function readHoldsFor(tree: Tree | undefined, reading: Reading): HoldsFor {
+/** A coefficient without a unit is a plain number. */
+function dimensionOf(name: string | undefined, reading: Reading): Dimension | undefined {
+  const entry = reading.names.entries.get(name ?? '');
+  return entry?.adapts ? plainNumber : entry?.unit?.dimension;
+}
+
+/** `all` unless said otherwise; what is about the build alone is the same for every plant. */
+function readHoldsFor(entry: MapEntry | undefined, measure: MeasureDescription, reading: Reading): HoldsFor {
+  if (measure.basis === 'firmware') {
+    if (entry !== undefined)
+      reading.problems.add(
+        entry.keyPlace,
+        `\`${measure.name}\` is a measure of the build, the same for every plant, and has no \`holds_for:\``,
+      );
+    return 'nominal';
+  }
+  const tree = entry?.value;
   const text = textOf(tree);
   if (text === undefined || text.text === 'all') return 'all';
   if (text.text === 'nominal') return 'nominal';

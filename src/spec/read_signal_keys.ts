@@ -1,6 +1,7 @@
 import { formatMismatch } from './format_dimension.js';
 import { aKind, type NameEntry, type NameKind } from './names.js';
 import { suggestion } from './nearest.js';
+import { readCoefficientName } from './read_coefficient_name.js';
 import type { Reading } from './reading.js';
 import { sameUnit } from './same_unit.js';
 import type { SensorDefinition } from './spec.js';
@@ -10,7 +11,7 @@ import type { MeasureDescription, MeasureKey } from './vocabulary.js';
 const traced: readonly NameKind[] = ['plant signal', 'controller signal', 'sensor', 'actuator', 'input'];
 const openable: readonly NameKind[] = ['sensor', 'controller signal', 'actuator'];
 
-/** Reads the keys of a requirement that name signals, and checks that `to` can be compared with `of`. */
+/** Reads the keys of a requirement that name signals or coefficients, and checks that `to` can be compared with `of`. */
 export function readSignalKeys(
   item: MapTree,
   measure: MeasureDescription,
@@ -21,16 +22,32 @@ export function readSignalKeys(
   for (const key of measure.keys) {
     const text = textOf(childOf(item, key.name));
     if (text === undefined) continue;
-    const isSignal = ['signal', 'target', 'loop_point'].includes(key.kind);
-    if (!isSignal && key.kind !== 'controller') continue;
-    const found =
-      key.kind === 'controller'
-        ? readController(text, key.signal, reading)
-        : readSignalKey(text, key, sensors, reading);
+    const found = readKey(text, key, sensors, reading);
     if (found !== undefined) signals[key.name] = found;
   }
   checkComparable(item, signals, reading);
   return signals;
+}
+
+/** Undefined also where the key names nothing. */
+function readKey(
+  text: TextTree,
+  key: MeasureKey,
+  sensors: readonly SensorDefinition[],
+  reading: Reading,
+): string | undefined {
+  switch (key.kind) {
+    case 'signal':
+    case 'target':
+    case 'loop_point':
+      return readSignalKey(text, key, sensors, reading);
+    case 'controller':
+      return readController(text, key.signal, reading);
+    case 'coefficient':
+      return readCoefficientName(text, `\`${key.name}\``, reading)?.name;
+    default:
+      return undefined;
+  }
 }
 
 function readController(

@@ -72,10 +72,21 @@ export interface BlockDescription {
  * `loop_point`: a sensor, controller or actuator signal where the loop is opened; `quantity`: a number with a dimension;
  * `share`: a plain number such as `5 %`; `frequency`: an angular frequency in rad/s, or a frequency in Hz which is multiplied by
  * 2π; `statement`: a comparison of signals, or a mapping that says when it holds; `bound`: corners of a bound, each a time and
- * a value of the dimension of `of`; `controller`: the name of a controller, of which a signal of the loop's own is followed.
+ * a value of the dimension of `of`; `controller`: the name of a controller, of which a signal of the loop's own is followed;
+ * `coefficient`: the name of a coefficient of the build.
  */
 export type MeasureKey = { name: string; optional: boolean; meaning: string } & (
-  | { kind: 'signal' | 'target' | 'loop_point' | 'share' | 'frequency' | 'statement' | 'bound' }
+  | {
+      kind:
+        | 'signal'
+        | 'target'
+        | 'loop_point'
+        | 'share'
+        | 'frequency'
+        | 'statement'
+        | 'bound'
+        | 'coefficient';
+    }
   | { kind: 'quantity'; dimension: (of: Dimension) => Dimension }
   | { kind: 'controller'; signal: (controller: string) => string }
 );
@@ -83,8 +94,11 @@ export type MeasureKey = { name: string; optional: boolean; meaning: string } & 
 /** What the spec reader must know of a measure. */
 export interface MeasureDescription {
   name: string;
-  /** `trace` measures need `in:` (a scenario); `loop` measures may have `around:`. */
-  basis: 'trace' | 'loop';
+  /**
+   * `trace` measures need `in:` (a scenario); `loop` measures may have `around:`; `firmware` measures are about the build's
+   * numbers alone, and the same for every plant.
+   */
+  basis: 'trace' | 'loop' | 'firmware';
   keys: readonly MeasureKey[];
   /** Dimension of the result, from those of the signals `of` and `at` (plain where the measure has none). */
   dimension: (of: Dimension, at?: Dimension) => Dimension;

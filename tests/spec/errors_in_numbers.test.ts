@@ -130,7 +130,7 @@ const cases: [title: string, pieces: Pieces, errors: string[]][] = [
       actuators: 'drive: { of: command, unit: V }\nspare_drive: { of: command, unit: V }',
     },
     [
-      '9:5: the coefficient `spare` is defined, but no controller uses it; use it or leave it out',
+      '9:5: the coefficient `spare` is defined, but no controller or requirement uses it; use it or leave it out',
       '11:3: the parameter `gain` is defined, but nothing uses it; use it or leave it out',
       '14:3: the input `load` is defined, but nothing uses it; use it or leave it out',
       '19:3: the sensor `other` is defined, but no controller reads it; use it or leave it out',

@@ -86,6 +86,10 @@ function measureText(): string {
     'Of the loop, opened `at:` a signal:',
     '',
     table(head, rows('loop')),
+    '',
+    'Of the build alone, `of:` a coefficient; the same for every plant, so that no scenario and no `holds_for:` is given:',
+    '',
+    table(head, rows('firmware')),
   ].join('\n');
 }
 
