@@ -7,6 +7,7 @@ import { parameterTable } from './parameter_table.js';
 import { oneLine, visible } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
+import { remarksInWords } from './remarks_in_words.js';
 import {
   evidenceInWords,
   findingOnOneLine,
@@ -73,9 +74,12 @@ function addProperties(suite: TestSuite, spec: SpecRun, version: string): void {
     'pawl version': version,
     spec: spec.file,
     image: provenance?.image,
+    'kind of image': provenance?.kind,
+    'names from': provenance?.symbols?.image,
     'image SHA-256': provenance?.sha256,
     'build id': provenance?.buildId,
     'build skipped': provenance?.buildSkipped ? 'yes' : undefined,
+    warnings: remarksInWords(spec.coefficients).join('; ') || undefined,
     compilers: provenance?.compilers.join('; ') || undefined,
     seed: String(spec.seed),
     plants: String(plantsTried(spec)),

@@ -3,9 +3,11 @@ import { caution } from './caution.js';
 import type { Fault } from './fault.js';
 import { counted, formatHeadroom, formatNumber, formatResultShort } from './format_value.js';
 import { markdownTable, markdownText } from './markdown_text.js';
+import { originWord } from './origin_in_words.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
+import { remarksInWords } from './remarks_in_words.js';
 import { claimsInWords, limitInWords, limitNumbers, measureWithSignal } from './requirement_in_words.js';
 import {
   attributionInWords,
@@ -52,12 +54,15 @@ function specPart(spec: SpecRun): string {
   const improvements = improvementsInWords(spec);
   const met = spec.requirements.filter(({ verdict }) => verdict.kind === 'met');
   const image = provenance
-    ? `image ${said(provenance.image, 80)} (SHA-256 ${provenance.sha256.slice(0, 12)})${provenance.buildSkipped ? ', build skipped' : ''}`
+    ? `${originWord(provenance)} ${said(provenance.image, 80)} (SHA-256 ${provenance.sha256.slice(0, 12)})${provenance.buildSkipped ? ', build skipped' : ''}`
     : 'no image';
   return [
     `### ${said(spec.loop, 120)}`,
     blocking.length > 0 ? `${table(blocking)}\n\n${blocking.map((one) => detail(one, spec)).join('\n')}` : '',
     met.length > 0 ? folded(`${counted(met.length, 'requirement')} met`, table(met)) : '',
+    remarksInWords(spec.coefficients)
+      .map((text) => `- ${said(text, 200)}`)
+      .join('\n'),
     claimsInWords(spec)
       .map(({ names, claim }) => `- ${said(names.join(', '), 120)}: ${said(claim, 300)}`)
       .join('\n'),

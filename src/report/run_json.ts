@@ -148,9 +148,13 @@ function coefficientJson(
 }
 
 function provenanceJson(provenance: Provenance, root: string | undefined): Json {
-  const { image, bytes, sha256, buildId, compilers, build, buildSkipped } = provenance;
+  const { image, kind, bytes, sha256, buildId, compilers, symbols, build, buildSkipped } = provenance;
   return {
-    image: portablePath(image, root),
+    image: kind === 'command' ? image : portablePath(image, root),
+    ...(kind === undefined ? {} : { kind }),
+    ...(symbols === undefined
+      ? {}
+      : { symbols: { image: portablePath(symbols.image, root), sha256: symbols.sha256 } }),
     bytes,
     sha256,
     build_id: buildId ?? null,

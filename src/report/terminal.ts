@@ -2,9 +2,11 @@ import type { FinishedRun, JudgedPlant, RequirementRun, SpecRun } from '../verdi
 import { caution } from './caution.js';
 import type { Fault } from './fault.js';
 import { counted, formatNumber, formatResult } from './format_value.js';
+import { originWord } from './origin_in_words.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
+import { remarksInWords } from './remarks_in_words.js';
 import { claimsInWords, evidenceInWords, holdsForInWords, limitNumbers } from './requirement_in_words.js';
 import { effortInWords, scrutinyLines, shrunkInWords } from './scrutiny_in_words.js';
 import {
@@ -60,6 +62,9 @@ function specLines(spec: SpecRun, width: number, paint: Painter): string[] {
   return [
     paint('strong', shortened(oneLine(spec.loop), width)),
     ...about(spec).flatMap((text) => wrapText(text, width, 0, 2).map((line) => paint('quiet', line))),
+    ...remarksInWords(spec.coefficients)
+      .flatMap((text) => wrapText(text, width, 0, 2))
+      .map((line) => paint('strong', line)),
     '',
     ...rowLines(terminalHeadings, widths, (text) => text).map((line) => paint('quiet', line)),
     ...requirements.flatMap((requirement, at) =>
@@ -73,12 +78,13 @@ function specLines(spec: SpecRun, width: number, paint: Painter): string[] {
 function about(spec: SpecRun): string[] {
   const { provenance, coefficients, scenarios } = spec;
   const image = provenance
-    ? `image ${shortened(oneLine(provenance.image), 60)} (SHA-256 ${provenance.sha256.slice(0, 12)})`
+    ? `${originWord(provenance)} ${shortened(oneLine(provenance.image), 60)} (SHA-256 ${provenance.sha256.slice(0, 12)})`
     : 'no image';
+  const names = provenance?.symbols ? `, names from ${shortened(oneLine(provenance.symbols.image), 60)}` : '';
   const skipped = provenance?.buildSkipped ? ', taken as it is: the build was skipped' : '';
   return [
     shortened(oneLine(spec.file), 200),
-    image + skipped,
+    image + names + skipped,
     `${counted(coefficients.length, 'coefficient')}, ${counted(plantsTried(spec), 'plant')} tried in ${counted(scenarios.length, 'scenario')}, seed ${spec.seed}`,
   ];
 }

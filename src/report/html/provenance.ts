@@ -1,5 +1,6 @@
 import type { SpecRun } from '../../verdict/run.js';
 import { formatCount, formatNumber, formatShare } from '../format_value.js';
+import { originWord } from '../origin_in_words.js';
 import { plantsInWords } from '../plants_in_words.js';
 import { claimsInWords } from '../requirement_in_words.js';
 import { runAgain } from '../run_again.js';
@@ -17,8 +18,12 @@ export function provenanceSection(spec: SpecRun, version: string): Markup {
   return html`<h3>Where the numbers come from</h3>
 ${termList([
   ['spec', html`<code>${spec.file}</code>`],
-  ['image', provenance && html`<code>${provenance.image}</code>, ${formatCount(provenance.bytes)} bytes`],
+  [
+    provenance ? originWord(provenance) : 'image',
+    provenance && html`<code>${provenance.image}</code>, ${formatCount(provenance.bytes)} bytes`,
+  ],
   ['SHA-256', provenance && html`<code>${provenance.sha256}</code>`],
+  ['names from', provenance?.symbols && html`<code>${provenance.symbols.image}</code>`],
   ['build id', provenance?.buildId && html`<code>${provenance.buildId}</code>`],
   ['compilers', provenance?.compilers.join('; ')],
   ['build', build && html`<code>${build.command.join(' ')}</code>, ${formatNumber(build.seconds, 3)} s`],
