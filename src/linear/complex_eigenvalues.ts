@@ -5,7 +5,7 @@ const mostRounds = 60;
 
 /**
  * The eigenvalues of a small complex matrix, each as often as its multiplicity: QR with the shift of Wilkinson (1965) on
- * the leading block, which shrinks by one whenever its last row has settled. For matrices of up to a few dozen rows.
+ * the leading block of its Hessenberg form, which shrinks by one whenever its last row has settled. For matrices of up to a few dozen rows.
  * @throws NumericFailure when an entry is not finite or a row does not settle within its cap.
  */
 export function complexEigenvalues(matrix: readonly (readonly Complex[])[]): Complex[] {
@@ -13,6 +13,7 @@ export function complexEigenvalues(matrix: readonly (readonly Complex[])[]): Com
   if (!a.flat().every(({ real, imaginary }) => Number.isFinite(real) && Number.isFinite(imaginary))) {
     throw new NumericFailure('the eigenvalues of a matrix with an entry that is not finite were asked for');
   }
+  bringToHessenbergForm(a);
   const found: Complex[] = [];
   for (let size = a.length; size > 0; ) {
     let round = 0;
@@ -34,7 +35,7 @@ function lastRowSettled(a: Complex[][], size: number): boolean {
   const row = a[size - 1];
   let beside = 0;
   for (let j = 0; j < size - 1; j++) beside += Math.hypot(row[j].real, row[j].imaginary);
-  if (beside === 0) return true;
+  if (beside < negligible) return true;
   const last = a[size - 1][size - 1];
   const above = a[size - 2][size - 2];
   const scale = Math.hypot(last.real, last.imaginary) + Math.hypot(above.real, above.imaginary);
@@ -64,27 +65,50 @@ function largestEntry(a: Complex[][], size: number): Complex {
   return { real: most, imaginary: 0 };
 }
 
-/** Leading block − shift = Q·R by plane rotations, then R·Q + shift. */
+/** A plane rotation of two neighbouring rows or columns, the first of them at `at`. */
+interface Turn {
+  at: number;
+  c: number;
+  s: Complex;
+}
+
+/** Makes what lies below the first subdiagonal zero by plane rotations, column after column. */
+function bringToHessenbergForm(a: Complex[][]): void {
+  for (let j = 0; j < a.length - 2; j++) {
+    for (let i = a.length - 1; i > j + 1; i--) {
+      const turn = turnRows(a, i - 1, j, a.length);
+      if (turn) turnColumns(a, turn, a.length);
+    }
+  }
+}
+
+/** Leading block − shift = Q·R by plane rotations, then R·Q + shift; the block keeps its Hessenberg form. */
 function qrStep(a: Complex[][], size: number, shift: Complex): void {
   for (let i = 0; i < size; i++) a[i][i] = plus(a[i][i], { real: -shift.real, imaginary: -shift.imaginary });
-  const turns: { i: number; j: number; c: number; s: Complex }[] = [];
+  const turns: Turn[] = [];
   for (let j = 0; j < size - 1; j++) {
-    for (let i = size - 1; i > j; i--) {
-      const turn = rotationFor(a[i - 1][j], a[i][j]);
-      if (!turn) continue;
-      turns.push({ i: i - 1, j: i, ...turn });
-      for (let k = j; k < size; k++) {
-        [a[i - 1][k], a[i][k]] = turned(a[i - 1][k], a[i][k], turn.c, turn.s);
-      }
-    }
+    const turn = turnRows(a, j, j, size);
+    if (turn) turns.push(turn);
   }
-  for (const { i, j, c, s } of turns) {
-    for (let k = 0; k < size; k++) {
-      const conjugate = { real: s.real, imaginary: -s.imaginary };
-      [a[k][i], a[k][j]] = turned(a[k][i], a[k][j], c, conjugate);
-    }
-  }
+  // Row by row from the left only the rows down to the rotation's own have entries yet.
+  for (const turn of turns) turnColumns(a, turn, turn.at + 2);
   for (let i = 0; i < size; i++) a[i][i] = plus(a[i][i], shift);
+}
+
+/** Turns rows `at` and `at + 1` from a column on so that the lower one is zero in that column; nothing where it is. */
+function turnRows(a: Complex[][], at: number, column: number, size: number): Turn | undefined {
+  const [upper, lower] = [a[at], a[at + 1]];
+  const turn = rotationFor(upper[column], lower[column]);
+  if (!turn) return undefined;
+  for (let k = column; k < size; k++) [upper[k], lower[k]] = turned(upper[k], lower[k], turn.c, turn.s);
+  lower[column] = { real: 0, imaginary: 0 };
+  return { at, ...turn };
+}
+
+/** The same rotation, reversed, of the columns, down to a row. */
+function turnColumns(a: Complex[][], { at, c, s }: Turn, rows: number): void {
+  const conjugate = { real: s.real, imaginary: -s.imaginary };
+  for (let k = 0; k < rows; k++) [a[k][at], a[k][at + 1]] = turned(a[k][at], a[k][at + 1], c, conjugate);
 }
 
 /** Below this an entry counts as zero: its digits would be lost in the sizes of a rotation. */

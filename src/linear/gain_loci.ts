@@ -2,7 +2,6 @@ import type { Complex } from './complex.js';
 import { complexEigenvalues } from './complex_eigenvalues.js';
 import { frequencyGrid } from './frequency_grid.js';
 import { prepareResponseMatrix } from './response.js';
-import { rootBetween } from './root_finding.js';
 import type { StateEquations } from './state_equations.js';
 
 /** The eigenvalues of a lifted loop transfer at one frequency (rad/s). */
@@ -19,7 +18,12 @@ export interface LocusStep {
 
 /** Neighbouring values of a locus differ by less than this share of their size, or are as near as the depth allows. */
 const farthest = 0.2;
+/** A locus is only taken to go on in a value that is nearer than the others by this factor. */
+const plainly = 2;
 const mostHalvings = 12;
+/** A zero is found to this share of its frequency, or in so many rounds. */
+const narrowest = 1e-12;
+const mostRounds = 100;
 
 /**
  * The loci of the eigenvalues of a sampled loop transfer L with several inputs and outputs over all frequencies, in short
@@ -49,23 +53,27 @@ export class GainLoci {
     this.ends.push(before);
   }
 
-  /** The frequency within a step at which a real function of the locus is zero; it has different signs at the ends. */
+  /**
+   * The frequency within a step at which a real function of the locus is zero; it has different signs at the ends. The bracket
+   * is narrowed together with the values at its ends, so that what is followed stays the same locus where others are near.
+   */
   zeroWithin({ from, to }: LocusStep, of: (value: Complex) => number): { frequency: number; value: Complex } {
-    const valueAt = (frequency: number): Complex => {
-      const share = (frequency - from.frequency) / (to.frequency - from.frequency);
-      const expected = {
-        real: from.value.real + share * (to.value.real - from.value.real),
-        imaginary: from.value.imaginary + share * (to.value.imaginary - from.value.imaginary),
-      };
+    let [low, high] = [from, to];
+    for (let round = 0; round < mostRounds; round++) {
+      const [below, above] = [of(low.value), of(high.value)];
+      const straight = below / (below - above);
+      const share = round % 3 === 2 ? 0.5 : Math.min(Math.max(straight, 1e-3), 1 - 1e-3);
+      const frequency = low.frequency + share * (high.frequency - low.frequency);
+      if (!(frequency > low.frequency && frequency < high.frequency)) break;
+      const expected = between(low.value, high.value, share);
       const { values } = this.spectrum(frequency);
-      return values.reduce((best, value) => (apart(value, expected) < apart(best, expected) ? value : best));
-    };
-    const atEnds = new Map([
-      [from.frequency, from.value],
-      [to.frequency, to.value],
-    ]);
-    const frequency = rootBetween((x) => of(atEnds.get(x) ?? valueAt(x)), from.frequency, to.frequency);
-    return { frequency, value: valueAt(frequency) };
+      const value = values.reduce((best, one) => (apart(one, expected) < apart(best, expected) ? one : best));
+      if (of(value) === 0) return { frequency, value };
+      if (of(value) < 0 === below < 0) low = { frequency, value };
+      else high = { frequency, value };
+      if (high.frequency - low.frequency <= narrowest * high.frequency) break;
+    }
+    return Math.abs(of(low.value)) < Math.abs(of(high.value)) ? low : high;
   }
 
   private spectrum(frequency: number): Spectrum {
@@ -74,7 +82,11 @@ export class GainLoci {
 
   private join(before: Spectrum, after: Spectrum, depth: number): void {
     const matched = matchedTo(before.values, after.values);
-    const far = before.values.some((value, i) => relativelyApart(value, matched[i]) > farthest);
+    const far = before.values.some((value, i) => {
+      const moved = relativelyApart(value, matched[i]);
+      const others = after.values.filter((other) => other !== matched[i]);
+      return moved > farthest || others.some((other) => relativelyApart(value, other) < plainly * moved);
+    });
     if (far && depth < mostHalvings) {
       const middle = this.spectrum((before.frequency + after.frequency) / 2);
       this.join(before, middle, depth + 1);
@@ -82,6 +94,7 @@ export class GainLoci {
       return;
     }
     before.values.forEach((value, i) => {
+      if (isUnbounded(value) || isUnbounded(matched[i])) return;
       this.steps.push({
         from: { frequency: before.frequency, value },
         to: { frequency: after.frequency, value: matched[i] },
@@ -113,11 +126,29 @@ function matchedTo(values: readonly Complex[], next: readonly Complex[]): Comple
   return result as Complex[];
 }
 
+function between(a: Complex, b: Complex, share: number): Complex {
+  return {
+    real: a.real + share * (b.real - a.real),
+    imaginary: a.imaginary + share * (b.imaginary - a.imaginary),
+  };
+}
+
 function apart(a: Complex, b: Complex): number {
   return Math.hypot(a.real - b.real, a.imaginary - b.imaginary);
 }
 
-/** Values far below one never matter to a margin, so that their distance counts against one part in a thousand. */
+/** Beyond this size a value is at a pole of the loop, and its angle is rounding. */
+const largestMattering = 1e10;
+
+/**
+ * Values far below one never matter to a margin, so that their distance counts against one part in a thousand; nor do values
+ * without bound, as those of an integrator near zero frequency, which are all one.
+ */
 function relativelyApart(a: Complex, b: Complex): number {
+  if (isUnbounded(a) && isUnbounded(b)) return 0;
   return apart(a, b) / (1e-3 + Math.hypot(a.real, a.imaginary) + Math.hypot(b.real, b.imaginary));
+}
+
+function isUnbounded({ real, imaginary }: Complex): boolean {
+  return Math.hypot(real, imaginary) > largestMattering;
 }
