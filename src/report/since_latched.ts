@@ -106,12 +106,18 @@ export function shareText({ share }: LossShare, { sampledOrders }: Comparison): 
 export function comparisonInWords(requirement: RequirementRun): string | undefined {
   const { comparison, measure, verdict } = requirement;
   if (!comparison) return undefined;
-  const { latched, rerun, today, why } = comparison;
+  const { latched, rerun, today, why, fromSpec } = comparison;
   if (!latched) return `${measureName(measure)}: new since the latched reference`;
   if (!rerun) return `${measureName(measure)}: latched ${short(latched, requirement)}; ${oneLine(why ?? '')}`;
   const blocks = verdict.kind === 'slipped' || verdict.kind === 'broken';
   if (!blocks && !moved(latched, rerun) && !moved(rerun, today)) return undefined;
-  if (!moved(latched, rerun) && !moved(rerun, today)) return `${measureName(measure)} as it was latched`;
+  if (!moved(latched, rerun) && !moved(rerun, today)) {
+    const own =
+      fromSpec.length === 0
+        ? ''
+        : `; what changed is ${fromSpec.map((text) => shortened(oneLine(text), 80)).join(' and ')}`;
+    return `${measureName(measure)} as it was latched${own}`;
+  }
   const way = `${measureName(measure)} ${short(latched, requirement)} → ${short(today, requirement)}`;
   return `${way}: ${partsOf(requirement, comparison).join(', ')}`;
 }

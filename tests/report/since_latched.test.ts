@@ -98,7 +98,10 @@ describe('a requirement against the reference', () => {
     expect(same).toBe('phase margin 53 deg → 44 deg: -9 deg from the firmware, nothing from the spec');
     const still = { latched: degrees(44, 0.1), rerun: degrees(44, 0.1), lost: 0 };
     expect(comparisonInWords(margin(still, 'met'))).toBeUndefined();
-    expect(comparisonInWords(margin(still))).toBe('phase margin as it was latched');
+    expect(comparisonInWords(margin({ ...still, fromSpec: [] }))).toBe('phase margin as it was latched');
+    expect(comparisonInWords(margin({ ...still, fromSpec: ['its limit'] }))).toBe(
+      'phase margin as it was latched; what changed is its limit',
+    );
     expect(comparisonInWords(requirement())).toBeUndefined();
   });
 

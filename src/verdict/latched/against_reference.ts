@@ -7,7 +7,7 @@ import { compareRequirements } from './compare.js';
 import { compilerChanges, type LawCode, lawChanges } from './law_changes.js';
 import type { Reference } from './reference.js';
 import { settleVerdicts } from './settle.js';
-import { specChanges } from './spec_parts.js';
+import { changesOfRequirements, specChanges } from './spec_parts.js';
 
 /** A judged build, and what it is held against. */
 export interface AgainstReference {
@@ -37,7 +37,7 @@ export async function againstReference(
     path,
     reference: reference && { reason: reference.reason, pawl: reference.pawl },
     coefficients: changes,
-    spec: reference ? specChanges(reference, spec) : [],
+    spec: reference ? [...specChanges(reference, spec), ...changesOfRequirements(reference, spec)] : [],
     law: lawChanges(reference, law),
   };
   const comparisons = reference

@@ -44,6 +44,20 @@ export function requirementChanges(reference: Reference, requirement: Requiremen
   return changes;
 }
 
+/** What changed of all requirements, those that came and went among it, in words for people. */
+export function changesOfRequirements(reference: Reference, { requirements }: Spec): string[] {
+  const now = Object.fromEntries(requirements.map((one) => [one.name, one]));
+  return [
+    ...changedKeys(reference.requirements, now, () => true).map(
+      ({ key, how }) => `the requirement ${key}${how}`,
+    ),
+    ...requirements.flatMap((one) => {
+      const changes = requirementChanges(reference, one);
+      return changes.length === 0 ? [] : [`${one.name} (${changes.join(', ')})`];
+    }),
+  ];
+}
+
 function parameterChanges(reference: Reference, { parameters }: Spec): string[] {
   const now = Object.fromEntries(parameters.map((one) => [one.name, one]));
   return changedKeys(reference.parameters, now, () => true)

@@ -7,6 +7,7 @@ import { referencePlants } from '../../../src/verdict/latched/reference_plants.j
 import { settleVerdicts } from '../../../src/verdict/latched/settle.js';
 import {
   askedOf,
+  changesOfRequirements,
   partsOfSpec,
   requirementChanges,
   specChanges,
@@ -163,6 +164,27 @@ describe('changes of the spec', () => {
     expect(of({ holdsFor: 0.99 })).toEqual(['the plants it holds for']);
     expect(of({ signals: { of: 'encoder', to: 'target' } })).toEqual(['what it measures']);
     expect(of({ name: 'new', limit: { at_most: 0.2 } })).toEqual([]);
+  });
+});
+
+describe('changes of all requirements', () => {
+  it('name those that are new, those that are gone, and what changed of the others', () => {
+    const all = Object.fromEntries(spec.requirements.map(({ name }) => [name, latchedOf()]));
+    const old = { ...latchedOf(), limit: { at_most: 0.3 } };
+    const { 'AZ-3': _, ...others } = all;
+    const reference = referenceWith({ requirements: { ...others, 'AZ-1': old, 'AZ-2': latchedOf() } });
+    const changes = changesOfRequirements(reference, {
+      ...spec,
+      requirements: spec.requirements.slice(0, 2),
+    });
+    expect(changes).toEqual([
+      'the requirement AZ-3, which is new',
+      'the requirement AZ-5, which is gone',
+      'the requirement AZ-6, which is gone',
+      'the requirement AZ-7, which is gone',
+      'the requirement AZ-2, which is gone',
+      'AZ-1 (its limit)',
+    ]);
   });
 });
 
