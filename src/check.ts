@@ -1,6 +1,7 @@
 import { resolve } from 'node:path';
 import { statusOf } from './cli/check.js';
 import { judgeFiles } from './cli/judge_files.js';
+import { isoDay } from './cli/surroundings.js';
 import type { Fault, SpecPlots } from './report/index.js';
 import type { FinishedRun } from './verdict/run.js';
 
@@ -14,6 +15,8 @@ export interface CheckOptions {
   image?: string;
   /** Takes images as they are, without running the specs' build commands. */
   skipBuild?: boolean;
+  /** The day on which waivers must still count, YYYY-MM-DD; today where it is not given. */
+  today?: string;
   /** Ends the work: what is not finished is then a fault. */
   signal?: AbortSignal;
 }
@@ -34,7 +37,8 @@ export interface CheckResult {
  * @throws Error where there is no spec at all.
  */
 export async function check(options: CheckOptions = {}): Promise<CheckResult> {
-  const { specs = [], folder = '.', image, skipBuild = false, signal } = options;
-  const judged = await judgeFiles(resolve(folder), { specs, image, skipBuild }, { interrupted: signal });
+  const { specs = [], folder = '.', image, skipBuild = false, today = isoDay(new Date()), signal } = options;
+  const choice = { specs, image, skipBuild };
+  const judged = await judgeFiles(resolve(folder), choice, today, { interrupted: signal });
   return { status: statusOf(judged), ...judged };
 }

@@ -14,7 +14,7 @@ export interface CheckOptions extends SpecChoice {
 
 /** Judges specs against their builds, and reports. */
 export async function check(options: CheckOptions, around: Surroundings): Promise<ExitStatus> {
-  const judged = await judgeFiles(around.cwd, options, around);
+  const judged = await judgeFiles(around.cwd, options, around.today, around);
   await report(judged, options.out, around);
   return statusOf(judged);
 }

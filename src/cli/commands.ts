@@ -51,6 +51,22 @@ const commands: Record<string, Command> = {
       return join(paths, values.out as string | undefined, around);
     },
   },
+  latch: {
+    meaning: 'accept what the build gives as the reference for later changes',
+    usage: 'pawl latch [SPEC…] --reason TEXT [--with-unjudged] [--image PATH] [--skip-build]',
+    options: { ...buildOptions, reason: { type: 'string' }, 'with-unjudged': { type: 'boolean' } },
+    optionMeanings: {
+      '--reason TEXT': 'why, for those who read the change of the reference',
+      '--with-unjudged': 'latch even what could not be judged',
+      ...buildMeanings,
+    },
+    run: async (values, specs, around) => {
+      const { latch } = await import('./latch.js');
+      const reason = values.reason as string | undefined;
+      const withUnjudged = values['with-unjudged'] === true;
+      return latch({ ...buildChoice(values), specs, reason, withUnjudged }, around);
+    },
+  },
   read: {
     meaning: 'show the coefficients that a build really holds',
     usage: 'pawl read SPEC | IMAGE [PATH…] [--against IMAGE] [--json]',

@@ -6,6 +6,7 @@ import type { Fault as SpecFault } from '../report/index.js';
 import { formatSpecError } from '../spec/index.js';
 import type { Spec } from '../spec/spec.js';
 import type { Watch } from '../verdict/crew.js';
+import { type Latched, readLatched } from './latched_reference.js';
 import { type BuildOptions, type BuildRead, readBuild, valuesOf } from './read_build.js';
 import { readSpec, shownPath } from './read_spec.js';
 import { savedPlants } from './saved_counterexamples.js';
@@ -26,8 +27,10 @@ export interface Target {
   label: string;
   build: BuildRead | undefined;
   coefficients: CoefficientValues;
-  /** Counterexamples of earlier runs, tried first; SI. */
+  /** Counterexamples of earlier runs and the worst plants of the latched reference, tried first; SI. */
   saved: Float64Array[];
+  /** Where the spec names a latched reference. */
+  latched: Latched | undefined;
 }
 
 /** Shows how far long work is; nothing where nobody watches. */
@@ -117,9 +120,10 @@ async function workOn<T>(
   telling.interrupted?.throwIfAborted();
   const label = name === undefined ? spec.loop : `${spec.loop}, build ${name}`;
   telling.progress?.(`${label}: reading the build`);
+  const latched = await readLatched(cwd, spec, name);
   const build = await readBuild(cwd, spec, choice);
-  const saved = await savedPlants(cwd, spec);
-  const target: Target = { spec, name, label, build, coefficients: valuesOf(build), saved };
+  const saved = [...(await savedPlants(cwd, spec)), ...(latched?.plants ?? [])];
+  const target: Target = { spec, name, label, build, coefficients: valuesOf(build), saved, latched };
   try {
     return await work(target, watchOf(target, telling));
   } catch (error) {

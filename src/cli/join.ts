@@ -3,6 +3,7 @@ import { JoiningCrew, PartsDisagree } from '../verdict/parts.js';
 import { report, statusOf } from './check.js';
 import type { Target } from './each_build.js';
 import { type JudgedTarget, judgedFiles, judgeTarget } from './judge_files.js';
+import { readLatched } from './latched_reference.js';
 import { digestOf, type PartFile, type PartTarget, readPart } from './part_file.js';
 import { valuesOf } from './read_build.js';
 import { readSpec } from './read_spec.js';
@@ -49,15 +50,17 @@ async function joinTarget(
   const whole = await readSpec(around.cwd, file);
   const build = whole.builds?.find((one) => one.name === name);
   const spec = build ? { ...whole, firmware: build.firmware } : whole;
-  const saved = await savedPlants(around.cwd, spec);
+  const latched = await readLatched(around.cwd, spec, name);
+  const saved = [...(await savedPlants(around.cwd, spec)), ...(latched?.plants ?? [])];
   if (digestOf(spec, saved) !== specDigest)
     throw new Fault([`${file}: is not the spec that the parts were tried with; check out the same commit`]);
   const label = name === undefined ? spec.loop : `${spec.loop}, build ${name}`;
-  const target: Target = { spec, name, label, build: read, coefficients: valuesOf(read), saved };
+  const coefficients = valuesOf(read);
+  const target: Target = { spec, name, label, build: read, coefficients, saved, latched };
   const rounds = parts.map((part) => part.rounds);
-  return judgeTarget(target, {
-    crew: new JoiningCrew(spec, target.coefficients, rounds, { signal: around.interrupted }),
-  });
+  const watch = { signal: around.interrupted };
+  const crew = new JoiningCrew(spec, coefficients, rounds, watch);
+  return judgeTarget(target, { crew, watch }, around.today);
 }
 
 async function readParts(paths: readonly string[], cwd: string): Promise<PartFile[]> {

@@ -3,6 +3,7 @@ import type { Fault as SpecFault, SpecPlots } from '../report/index.js';
 import { type JudgedSpec, type JudgeOptions, judgeSpec } from '../verdict/judge_spec.js';
 import type { FinishedRun, SpecRun } from '../verdict/run.js';
 import { eachBuild, type SpecChoice, type Target, type Telling } from './each_build.js';
+import { heldAgainstLatched } from './latched_reference.js';
 import { version } from './version.js';
 
 /** What judging gave: a run of all specs that could be judged, and why the others could not. */
@@ -20,16 +21,18 @@ export interface JudgedTarget {
 }
 
 /**
- * Judges specs against their builds, one after another.
+ * Judges specs against their builds and latched references, one after another.
+ * @param today the day on which waivers must still count, YYYY-MM-DD.
  * @throws {Fault} where there is no spec at all.
  */
 export async function judgeFiles(
   cwd: string,
   choice: SpecChoice,
+  today: string,
   telling: Telling = {},
 ): Promise<JudgedFiles> {
   const { results, faults } = await eachBuild(cwd, choice, telling, (target, watch) =>
-    judgeTarget(target, { watch }),
+    judgeTarget(target, { watch }, today),
   );
   return judgedFiles(results, faults);
 }
@@ -43,16 +46,33 @@ export function judgedFiles(results: readonly JudgedTarget[], faults: SpecFault[
   };
 }
 
-/** Judges one build. @throws {LoopError} where its numbers do not fit the spec. */
-export async function judgeTarget(target: Target, options: JudgeOptions): Promise<JudgedTarget> {
+/**
+ * Judges one build and holds it against its latched reference.
+ * @param today the day on which waivers must still count, YYYY-MM-DD.
+ * @throws {LoopError} where its numbers do not fit the spec.
+ */
+export async function judgeTarget(
+  target: Target,
+  options: JudgeOptions,
+  today: string,
+): Promise<JudgedTarget> {
   const { spec, coefficients, saved } = target;
   const started = performance.now();
   const judged = await judgeSpec(spec, coefficients, { saved, ...options });
+  const held = await heldAgainstLatched(target, judged, today, options);
   const seconds = (performance.now() - started) / 1000;
-  return { run: specRun(target, judged, seconds), plots: () => plotsOf(spec, coefficients, judged) };
+  return {
+    run: specRun(target, { ...judged, ...held }, seconds),
+    plots: () => plotsOf(spec, coefficients, judged),
+  };
 }
 
-function specRun({ spec, name, label, build }: Target, judged: JudgedSpec, seconds: number): SpecRun {
+/** The run of a build, judged and perhaps held against its latched reference. */
+export function specRun(
+  { spec, name, label, build }: Target,
+  judged: JudgedSpec & Pick<SpecRun, 'sinceLatched'>,
+  seconds: number,
+): SpecRun {
   return {
     file: spec.file,
     ...(name !== undefined && { build: name }),
@@ -62,7 +82,7 @@ function specRun({ spec, name, label, build }: Target, judged: JudgedSpec, secon
     provenance: build?.provenance,
     coefficients: build?.coefficients ?? [],
     scenarios: spec.scenarios.map(({ name, lasts }) => ({ name, lasts })),
-    merge: spec.merge && `the latched reference ${spec.merge.reference} is not compared yet`,
+    merge: undefined,
     seconds,
     ...judged,
   };

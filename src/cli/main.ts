@@ -1,7 +1,7 @@
 #!/usr/bin/env node
 import { runCommand } from './commands.js';
 import { progressLine } from './progress_line.js';
-import { type ExitStatus, Fault } from './surroundings.js';
+import { type ExitStatus, Fault, isoDay } from './surroundings.js';
 import { version } from './version.js';
 
 const interrupt = new AbortController();
@@ -23,6 +23,7 @@ async function ended(): Promise<ExitStatus> {
       colour:
         process.stdout.isTTY === true && process.stdout.hasColors() && process.env.NO_COLOR === undefined,
       width: process.stdout.columns ?? 100,
+      today: isoDay(new Date()),
       environment: process.env,
       progress: process.stderr.isTTY ? progressLine(process.stderr, Date.now) : undefined,
       interrupted: interrupt.signal,

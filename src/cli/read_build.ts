@@ -15,6 +15,7 @@ import type { CoefficientValues, StoredNumbers } from '../loop/parts.js';
 import { formatSpecError } from '../spec/index.js';
 import type { Firmware, Spec } from '../spec/spec.js';
 import type { CoefficientRead, Provenance } from '../verdict/run.js';
+import { withSources } from './locate_sources.js';
 import { asFault, type ChosenOrigin, type Folders, openNumbers } from './open_numbers.js';
 import { Fault } from './surroundings.js';
 
@@ -55,8 +56,13 @@ export async function readBuild(
   const wanted = firmware.build && !origin.replaced && !options.skipBuild;
   const build = wanted ? await runBuildOf(firmware, origin, folders) : undefined;
   const image = await openNumbers(origin, folders);
+  const places = [
+    cwd,
+    folders.folder,
+    ...(origin.kind === 'command' ? [] : [dirname(resolve(folders.folder, origin.path))]),
+  ];
   return {
-    coefficients: readAll(firmware, image, folders),
+    coefficients: await withSources(cwd, places, readAll(firmware, image, folders)),
     law: lawOf(firmware, image),
     provenance: {
       ...provenanceOf(image, build),

@@ -10,12 +10,19 @@ export interface Surroundings {
   colour: boolean;
   /** Columns of the terminal. */
   width: number;
+  /** The day on which waivers must still count, YYYY-MM-DD in UTC. */
+  today: string;
   /** Environment variables, by which a command knows the CI server it runs on. */
   environment: Readonly<Record<string, string | undefined>>;
   /** Replaces the line that tells how far long work is; undefined where no terminal would show it. */
   progress?: (line: string) => void;
   /** Aborted when the user ends the work. */
   interrupted?: AbortSignal;
+}
+
+/** A day as ISO 8601 writes it, in UTC. */
+export function isoDay(time: Date): string {
+  return time.toISOString().slice(0, 10);
 }
 
 /** The three ways a command can end; see the README. */

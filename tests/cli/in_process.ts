@@ -23,6 +23,7 @@ export async function runHere(
     },
     colour: false,
     width: 100,
+    today: '2026-12-01',
     environment: {},
     ...changes,
   };
