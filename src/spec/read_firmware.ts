@@ -35,6 +35,7 @@ export function readFirmware(
   const common = readCommon(entry, reading);
   if (named.length === 0) {
     const numbers = readNumberOrigin(entry.value, entry.keyPlace, reading);
+    refuseAddresses(common, numbers, reading);
     return { firmware: { ...common, numbers: numbers ?? nowhere(entry) }, builds: undefined };
   }
   refuseOwnOrigin(entry.value, reading);
@@ -61,9 +62,26 @@ function refuseOwnOrigin(tree: Tree, { problems }: Reading): void {
     problems.add(keyPlace, `the images stand in \`builds\`; leave \`${key}\` out here`);
 }
 
+/** Only what is stored on a target has an address. */
+function refuseAddresses(
+  { coefficients }: Common,
+  origin: NumberOrigin | undefined,
+  { problems }: Reading,
+): void {
+  if (origin === undefined || origin.kind === 'image') return;
+  for (const { address, atPlace } of coefficients.filter((one) => one.address !== undefined)) {
+    problems.add(
+      atPlace,
+      `\`0x${address!.toString(16)}\` is an address in an image, but the numbers come from \`${origin.kind}\`; give a name`,
+    );
+  }
+}
+
 function readBuild(entry: MapEntry, common: Common, reading: Reading): NamedBuild {
   const { key: name, keyPlace: place, value } = entry;
-  const numbers = readNumberOrigin(value, place, reading) ?? nowhere(entry);
+  const origin = readNumberOrigin(value, place, reading);
+  refuseAddresses(common, origin, reading);
+  const numbers = origin ?? nowhere(entry);
   const inherited = numbers.kind === 'command' ? undefined : common.build;
   return { name, place, firmware: { ...common, build: readBuildCommand(value) ?? inherited, numbers } };
 }

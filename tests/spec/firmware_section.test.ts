@@ -279,6 +279,17 @@ describe('a coefficient', () => {
     expect(errors[0]).toContain(`${file}:${error}`);
   });
 
+  it('has no address where nothing is stored on a target', () => {
+    const coefficients = 'k: { address: 0x10, format: int16 }';
+    const of = (kind: string) =>
+      `${file}:8:19: \`0x10\` is an address in an image, but the numbers come from \`${kind}\`; give a name`;
+    expect(errorsOf(withOrigin('source: { file: gains.h }', { coefficients }))).toEqual([of('source')]);
+    expect(errorsOf(withOrigin('command: [node, x]', { coefficients }))).toEqual([of('command')]);
+    const builds = withBuilds('one: a.elf', 'two: { command: [node, x] }');
+    expect(errorsOf(builds.replace('k: k', coefficients))).toEqual([of('command')]);
+    expect(errorsOf(withOrigin('image: a.hex', { coefficients }))).toEqual([]);
+  });
+
   it('has every address that a spec writes, in hexadecimal and in decimal digits', () => {
     fc.assert(
       fc.property(fc.maxSafeNat(), fc.boolean(), (address, hexadecimal) => {
