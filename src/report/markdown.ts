@@ -9,6 +9,7 @@ import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
 import { remarksInWords } from './remarks_in_words.js';
 import { claimsInWords, limitInWords, limitNumbers, measureWithSignal } from './requirement_in_words.js';
+import { shrunkInWords } from './scrutiny_in_words.js';
 import {
   attributionInWords,
   comparisonInWords,
@@ -90,10 +91,12 @@ function detail(requirement: RequirementRun, spec: SpecRun): string {
     ...attributionInWords(requirement, spec),
     waiverInWords(requirement),
   ];
+  const nearest = shrunkInWords(requirement);
   const parts = [
     ...why.map((text) => said(text, 300)),
     ...since.flatMap((text) => (text === undefined ? [] : [said(text, 300)])),
-    `plant: ${said(plantInWords(worst), 400)}`,
+    ...(nearest === undefined ? [] : [said(nearest, 300)]),
+    `worst plant: ${said(plantInWords(worst), 400)}`,
     ...(reason === undefined ? [] : [`reason: ${said(reason, 300)}`]),
   ];
   return `- **${said(name, 60)}** (${said(place.file, 120)}, line ${place.line}): ${parts.join('; ')}`;

@@ -11,6 +11,7 @@ import {
   limitNumbers,
   measureInWords,
 } from '../requirement_in_words.js';
+import { effectsInWords, proofInWords, reachInWords, shrunkInWords } from '../scrutiny_in_words.js';
 import { comparisonInWords, headroomChange, waiverInWords } from '../since_latched.js';
 import { dataTable, termList } from './data_table.js';
 import { plotFigures } from './figures.js';
@@ -50,6 +51,10 @@ function numbers(requirement: RequirementRun): Markup {
     ['worst', `${formatResult(worst.result, requirement, limits)}${ratioBeside(requirement, worst)}`],
     ['', note],
     ['headroom', formatHeadroom(worst.headroom)],
+    ['nearest to nominal', shrunkInWords(requirement)],
+    ['reach', reachInWords(requirement)],
+    ['matters most', effectsInWords(requirement)],
+    ['proof', proofInWords(requirement)],
     ['since latched', comparisonInWords(requirement)],
     ['', headroomChange(requirement)],
     ['waiver', waiverInWords(requirement)],
