@@ -98,6 +98,18 @@ test('the number formats name every word of theirs, and the example of them load
   expect(errorsOf(smallSpec({ settings: `every: 1 ms\n${example}` }))).toEqual([]);
 });
 
+test.each(['### firmware', '### builds'])('the examples of %s load', (heading) => {
+  const examples = [...section(heading).matchAll(/```yaml\n(firmware:.*?)```/gs)].map(
+    ([, example]) => example,
+  );
+  expect(examples.length).toBeGreaterThan(0);
+  for (const example of examples) {
+    const gain = example.includes('taps:') ? 'kp*taps[0]' : 'kp';
+    const spec = smallSpec({ signals: `command: { value: "${gain}*(goal - seen)", unit: V }` });
+    expect(errorsOf(spec.replace(/firmware:\n.*?\n(?=\w)/s, example))).toEqual([]);
+  }
+});
+
 test('every section has a heading', () => {
   for (const key of keysOf(spec)) expect(reference).toMatch(new RegExp(`^### .*\\b${key}\\b`, 'm'));
 });
