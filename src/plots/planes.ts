@@ -6,9 +6,10 @@ import type { Spec } from '../spec/spec.js';
 import { judge } from '../verdict/judge.js';
 import type { JudgedSpec } from '../verdict/judge_spec.js';
 import type { RequirementRun } from '../verdict/run.js';
+import { affordable, type Clock } from './fineness.js';
 
-/** Values of each parameter. */
-const steps = 9;
+/** Values of each parameter; fewer, or no plane, where a plant takes long. */
+const fineness = [9, 7, 5];
 /** Planes are drawn for what blocks the merge and for what comes nearest to it, so many in all. */
 const mostPlanes = 3;
 
@@ -20,12 +21,13 @@ export function headroomPlanes(
   spec: Spec,
   coefficients: CoefficientValues,
   { requirements, halvings }: JudgedSpec,
+  now: Clock,
 ): HeadroomPlane[] {
   const chosen = requirements
     .filter(({ effects, holdsFor }) => holdsFor !== 'nominal' && (effects?.length ?? 0) >= 2)
     .sort((a, b) => urgency(a) - urgency(b))
     .slice(0, mostPlanes);
-  return chosen.map((run) => planeOf(spec, coefficients, run, halvings));
+  return chosen.flatMap((run) => planeOf(spec, coefficients, run, halvings, now));
 }
 
 function urgency({ verdict, worst }: RequirementRun): number {
@@ -37,11 +39,17 @@ function planeOf(
   coefficients: CoefficientValues,
   run: RequirementRun,
   halvings: number,
-): HeadroomPlane {
+  now: Clock,
+): HeadroomPlane[] {
   const requirement = spec.requirements.find(({ name }) => name === run.name)!;
   const evaluator = new PlantEvaluator({ ...spec, requirements: [requirement] }, coefficients);
   const space = new ParameterSpace(spec.parameters, spec.perturbation);
-  const [x, y] = run.effects!.slice(0, 2).map(({ name }) => axisOf(spec, run, name));
+  const measure = (plant: Float64Array) => evaluator.evaluate(plant, halvings)[0];
+  const cells = fineness.map((steps) => steps * steps);
+  const count = affordable(cells, () => measure(space.nominal), now);
+  if (count === undefined) return [];
+  const steps = fineness[cells.indexOf(count)];
+  const [x, y] = run.effects!.slice(0, 2).map(({ name }) => axisOf(spec, run, name, steps));
   const [column, row] = [x, y].map((axis) =>
     spec.parameters.findIndex(({ name }) => name === axis.parameter),
   );
@@ -51,18 +59,14 @@ function planeOf(
     plant[row] = valueY;
     space.completed(plant);
     if (!space.allows(plant)) return Number.NaN;
-    const judgement = judge(requirement, evaluator.evaluate(plant, halvings)[0]);
+    const judgement = judge(requirement, measure(plant));
     return judgement.kind === 'unjudged' ? Number.NaN : (judgement.headroom ?? Number.NEGATIVE_INFINITY);
   };
-  return {
-    requirement: run.name,
-    x,
-    y,
-    headroom: y.values.map((valueY) => x.values.map((valueX) => headroomAt(valueX, valueY))),
-  };
+  const headroom = y.values.map((valueY) => x.values.map((valueX) => headroomAt(valueX, valueY)));
+  return [{ requirement: run.name, x, y, headroom }];
 }
 
-function axisOf({ parameters }: Spec, { worst }: RequirementRun, name: string): PlaneAxis {
+function axisOf({ parameters }: Spec, { worst }: RequirementRun, name: string, steps: number): PlaneAxis {
   const { unit, nominal, low, high } = parameters.find((parameter) => parameter.name === name)!;
   return {
     parameter: name,

@@ -79,7 +79,9 @@ export class ScenarioTraces {
     const schedule = this.commonSchedule ?? scheduleOf(this.loop, plant);
     const run = this.run.run(plant, rest?.point, schedule, this.halvings);
     if (run.pieces === 0) return undefined;
-    return new Map(this.signals.map((name) => [name, samples(this.run.curve(run, name), this.times)]));
+    // Of a run that ends early the last piece is drawn out to the end of the scenario.
+    const last = run.times[run.end.kind === 'complete' ? run.pieces : run.pieces - 1];
+    return new Map(this.signals.map((name) => [name, samples(this.run.curve(run, name), this.times, last)]));
   }
 }
 
@@ -91,9 +93,10 @@ function instantsOf(lasts: number, changes: readonly number[], count: number): n
   return [...apart, ...twice].sort((a, b) => a - b);
 }
 
-function samples(curve: Curve, times: readonly number[]): number[] {
+/** The values at some times, not-a-number after `last`. */
+function samples(curve: Curve, times: readonly number[], last: number): number[] {
   return times.map((time, at) => {
-    if (time > endOf(curve)) return Number.NaN;
+    if (time > last) return Number.NaN;
     const isBefore = times[at + 1] === time;
     return isBefore || time === endOf(curve) ? valueBefore(curve, time) : valueAfter(curve, time);
   });

@@ -4,11 +4,16 @@ import type { TracePlot } from '../report/index.js';
 import type { Dimension, Requirement, Scenario, Spec, Unit } from '../spec/spec.js';
 import { signalsOfStatement } from '../spec/statement.js';
 import type { JudgedSpec } from '../verdict/judge_spec.js';
+import { thinnedPlants } from './band_plants.js';
 import { type FenceContext, fencesOf } from './fences.js';
+import { affordable, type Clock } from './fineness.js';
 import { valuesOfPlant } from './plant_values.js';
 import { ScenarioTraces } from './scenario_traces.js';
 
 type Sampled = Map<string, number[]> | undefined;
+
+/** So many plants show the width of the bounds; fewer where a run takes long. */
+const bandSizes = [40, 20, 10, 5];
 
 /** A signal that is drawn in a scenario, and the requirements that are measured on it. */
 interface Drawn {
@@ -18,23 +23,27 @@ interface Drawn {
 
 /**
  * One plot for each scenario and signal that a requirement looks at.
- * @param band plants whose traces make the band; the nominal and the worst plants are added to them.
+ * @param wide plants whose traces make the band, or some of them; the nominal and the worst plants are added.
  */
 export function tracePlots(
   spec: Spec,
   coefficients: CoefficientValues,
   judged: JudgedSpec,
-  band: readonly Float64Array[],
+  wide: readonly Float64Array[],
+  now: Clock,
 ): TracePlot[] {
-  return spec.scenarios.flatMap((scenario) => plotsOfScenario(spec, coefficients, judged, band, scenario));
+  return spec.scenarios.flatMap((scenario) =>
+    plotsOfScenario(spec, coefficients, judged, wide, scenario, now),
+  );
 }
 
 function plotsOfScenario(
   spec: Spec,
   coefficients: CoefficientValues,
   judged: JudgedSpec,
-  band: readonly Float64Array[],
+  wide: readonly Float64Array[],
   scenario: Scenario,
+  now: Clock,
 ): TracePlot[] {
   const drawn = drawnIn(spec, scenario);
   if (drawn.length === 0) return [];
@@ -44,6 +53,8 @@ function plotsOfScenario(
   const plantOf = new Map(judged.requirements.map(({ name, worst }) => [name, valuesOfPlant(worst)]));
   const nominalValues = Float64Array.from(spec.parameters, (parameter) => parameter.nominal);
   const nominal = traces.of(nominalValues);
+  const most = affordable(bandSizes, () => traces.of(nominalValues), now) ?? bandSizes[bandSizes.length - 1];
+  const band = thinnedPlants(wide, most);
   const worstOf = new Map(
     drawn.map(({ requirements: [first] }) => [first.name, traces.of(plantOf.get(first.name)!)]),
   );

@@ -1,4 +1,5 @@
 import { beforeAll, describe, expect, it } from 'vitest';
+import { affordable } from '../../src/plots/fineness.js';
 import { plotsOf } from '../../src/plots/index.js';
 import { htmlReport, type SpecPlots } from '../../src/report/index.js';
 import type { Spec } from '../../src/spec/spec.js';
@@ -41,7 +42,7 @@ beforeAll(async () => {
     new Map(),
     { workers: 1 },
   );
-  plots = plotsOf(spec, new Map(), judged);
+  plots = plotsOf(spec, new Map(), judged, () => 0);
 });
 
 const numberOf = (name: string, which: 'nominal' | 'worst' = 'nominal'): number => {
@@ -219,11 +220,19 @@ it('survives plants that cannot be followed: the worst one runs away and the ban
       '{ name: R2, measure: phase_margin, at: output, at_least: 40 deg }',
     ],
   });
-  const run = await judgeSpec(
+  const found = await judgeSpec(
     { ...unstable, perturbation: { ...unstable.perturbation, plants: 5, search: 5 } },
     new Map(),
     { workers: 1 },
   );
+  // A plant that is sure to leave the finite numbers: e^(400·11).
+  const run = {
+    ...found,
+    requirements: found.requirements.map((one) => ({
+      ...one,
+      worst: { ...one.worst, parameters: one.worst.parameters.map((each) => ({ ...each, value: 400 })) },
+    })),
+  };
   const { traces } = plotsOf(unstable, new Map(), run);
   const [{ nominal, worst, low, high }] = traces;
   expect(nominal.every(Number.isFinite)).toBe(true);
@@ -237,4 +246,34 @@ it('survives plants that cannot be followed: the worst one runs away and the ban
       },
     ),
   ).not.toMatch(/NaN/);
+});
+
+describe('a spec whose plants take long', () => {
+  it('has fewer plants in its bands, and no planes, so that a report is not waited for', async () => {
+    let time = 0;
+    const slow = plotsOf(spec, new Map(), judged, () => {
+      time += 60;
+      return time;
+    });
+    expect(slow.planes).toEqual([]);
+    expect(slow.traces.map(({ plants }) => plants)).toEqual([5 + 3, 5 + 3, 5 + 2]);
+    expect(slow.loops).toEqual(plots.loops);
+  });
+});
+
+describe('affordable', () => {
+  it('is the largest count whose runs fit into half a second', () => {
+    const clock = (each: number) => {
+      let time = 0;
+      return () => {
+        time += each;
+        return time;
+      };
+    };
+    const counts = [81, 49, 25];
+    expect(affordable(counts, () => {}, clock(1))).toBe(81);
+    expect(affordable(counts, () => {}, clock(8))).toBe(49);
+    expect(affordable(counts, () => {}, clock(20))).toBe(25);
+    expect(affordable(counts, () => {}, clock(21))).toBeUndefined();
+  });
 });
