@@ -9,12 +9,12 @@ export function attributionTable({ name, comparison }: RequirementRun, spec: Spe
   if (!comparison || comparison.attribution.length === 0) return undefined;
   const rows = comparison.attribution.map(
     (row) =>
-      html`<tr><th scope="row">${playerInWords(row, spec)}</th><td>${bar(row.share)}</td><td class="number">${shareText(row, comparison)}</td><td class="number">${formatNumber(row.lost * 100, 3)}</td></tr>
+      html`<tr><th scope="row">${playerInWords(row, spec)}</th><td>${bar(row.share)}</td><td class="number">${shareText(row, comparison)}</td><td class="wide number">${formatNumber(row.lost * 100, 3)}</td></tr>
 `,
   );
   const sampled = comparison.sampledOrders;
   const how = sampled === undefined ? '' : `, sampled from ${sampled} orders of the changes`;
-  return html`<div class="scroll" role="region" aria-label="What lost the headroom of ${name}" tabindex="0"><table><caption>What lost the headroom of ${name}${how}</caption><thead><tr><th scope="col">changed since the latched reference</th><th scope="col" colspan="2">share of the loss</th><th scope="col" class="number">points of headroom</th></tr></thead><tbody>
+  return html`<div class="scroll" role="region" aria-label="What lost the headroom of ${name}" tabindex="0"><table class="losses"><caption>What lost the headroom of ${name}${how}</caption><thead><tr><th scope="col">changed since the latched reference</th><th scope="col" colspan="2">share of the loss</th><th scope="col" class="wide number">points of headroom</th></tr></thead><tbody>
 ${rows}</tbody></table></div>`;
 }
 

@@ -34,7 +34,7 @@ tr>:last-child{padding-right:0}
 .met-side{border-left-color:var(--petrol)}.broken-side{border-left-color:var(--brick);border-left-style:double}.slipped-side{border-left-color:var(--brick);border-left-style:dotted}.unjudged-side{border-left-color:var(--slate);border-left-style:dashed}
 .requirement h3{margin-top:14px;display:flex;flex-wrap:wrap;gap:2px 12px;align-items:baseline}.requirement h3 .sign{align-self:center}
 .why{font-weight:600}
-.share{display:block;width:120px;height:14px}.share .lost{fill:var(--brick)}.share .gained{fill:var(--petrol)}
+.share{display:block;width:120px;height:14px}.losses tbody th{overflow-wrap:anywhere;min-width:9ch}.share .lost{fill:var(--brick)}.share .gained{fill:var(--petrol)}
 .columns{display:grid;grid-template-columns:repeat(auto-fill,minmax(min(100%,430px),1fr));gap:12px 32px;align-items:start}
 @media(max-width:940px){.stack{display:contents}.plot{order:1}}
 figure{margin:10px 0 4px;max-width:560px}
@@ -70,6 +70,6 @@ footer{border-top:3px solid var(--ink);margin-top:48px;padding-top:14px;padding-
 .nominal-line-key::before{border-top:2.5px solid var(--petrol)}
 .worst-line-key::before{border-top:2.5px dashed var(--brick)}
 .target-key::before{border-top:2px dotted var(--slate)}
-@media(max-width:640px){header,main,footer{padding:0 14px}.wide{display:none}h1{font-size:1.45rem}.requirement{padding:2px 12px 12px}th,td{padding-right:9px}th,td{font-size:.92rem}.verdict{gap:5px}.sign{width:27px}dl>div{gap:8px}.drawing{font-size:16px}}
+@media(max-width:640px){.share{width:64px;height:9px}.losses thead th{white-space:normal}header,main,footer{padding:0 14px}.wide{display:none}h1{font-size:1.45rem}.requirement{padding:2px 12px 12px}th,td{padding-right:9px}th,td{font-size:.92rem}.verdict{gap:5px}.sign{width:27px}dl>div{gap:8px}.drawing{font-size:16px}}
 @media print{:root{--ground:#fff;--sheet:#fff;--ink:#000;--slate:#333;--line:#999;--hair:#ccc;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030}body{font-size:10pt}.summary tbody td{white-space:normal}.summary .verdict{white-space:nowrap}th,td{font-size:9pt;padding-right:8px}figure{max-width:420px}.scroll,pre{overflow:visible;max-height:none}figure,.requirement h3,tr{break-inside:avoid}h2,h3{break-after:avoid}a{color:inherit;text-decoration:none}.skip{display:none}}
 `;
