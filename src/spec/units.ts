@@ -37,7 +37,7 @@ export const kelvin: Unit = { text: 'K', dimension: [0, 0, 0, 0, 1, 0, 0, 0], sc
 
 const one: Size = { dimension: plainNumber, times: 1, over: 1, tens: 0 };
 const symbolTable = new Map(unitSymbols.map((symbol) => [symbol.symbol, symbol]));
-const largestExponent = 12;
+const largestExponent = 60;
 
 /**
  * Reads a unit: symbols with SI prefixes, joined by `*` and `/`, with powers (`kg*m^2`, `N*m*s/rad`, `1/s`,

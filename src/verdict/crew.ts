@@ -1,3 +1,4 @@
+import { setMaxListeners } from 'node:events';
 import { availableParallelism } from 'node:os';
 import type { Tinypool } from 'tinypool';
 import type { CoefficientValues } from '../loop/parts.js';
@@ -114,6 +115,8 @@ export class Crew {
 /** The result, unless the signal is aborted before: then its reason is thrown. */
 async function orAborted<T>(work: Promise<T>, signal: AbortSignal | undefined): Promise<T> {
   if (!signal) return work;
+  // Many batches wait at once, and each listens: that is no leak.
+  setMaxListeners(0, signal);
   let stop = (): void => {};
   const aborted = new Promise<never>((_, reject) => {
     stop = () => reject(signal.reason);
