@@ -44,7 +44,9 @@ export function coefficientRows(read: Omit<CoefficientRead, 'place'>): string[][
       shortened(oneLine(name), mostOfAName) + index,
       shortened(oneLine(path), mostOfAName) + index,
       elementText(element, read),
-      at === 0 ? shortened(oneLine(coefficient.type), mostOfAName) : '',
+      at === 0
+        ? shortened(oneLine(coefficient.type), mostOfAName) + (coefficient.scaling ? ', scaled' : '')
+        : '',
       element.stored,
       addressText(element.address),
       at === 0 && declaredAt ? shortened(`${oneLine(declaredAt.file)}:${declaredAt.line}`, mostOfAName) : '',

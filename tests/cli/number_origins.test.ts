@@ -153,12 +153,12 @@ describe('numbers that a command prints', () => {
 
 describe('a coefficient with a scale and an offset', () => {
   // azimuth_notch[0] is 14903 (azimuth_settings.c).
-  it('has the value stored × scale + offset, and the stored bits as they are', async () => {
+  it('has the value stored × scale + offset, says so, and shows the stored bits as they are', async () => {
     expect(await table(elf, '{ at: "azimuth_notch[0]", scale: 0.01, offset: -40 }')).toMatch(
-      /^k +azimuth_notch\[0\] +109\.03 +int16_t +0x3a37/m,
+      /^k +azimuth_notch\[0\] +109\.03 +int16_t, scaled +0x3a37/m,
     );
     expect(await table(elf, '{ at: "azimuth_notch[0]", scale: 1/256 }')).toMatch(
-      / 58\.2148438 +int16_t +0x3a37/,
+      / 58\.2148438 +int16_t, scaled +0x3a37/,
     );
   });
 
