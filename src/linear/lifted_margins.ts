@@ -32,7 +32,8 @@ export interface LiftedMargins {
 /**
  * The margins of a lifted sampled loop transfer L with K inputs and K outputs, exact: with a scalar c on every change of
  * the signal the loop is at the edge of stability where an eigenvalue of L is −1/c, so gain and phase margins are read from
- * the loci of the eigenvalues; peaks are the largest singular values of the closed loop over frequency.
+ * the loci of the eigenvalues; peaks are the largest singular values of the closed loop over frequency. Each is worked out
+ * when it is asked for, since loci and peaks take long.
  * @throws NumericFailure when the loop cannot be closed or an entry is not finite.
  */
 export function liftedMargins(loop: StateEquations): LiftedMargins {
@@ -40,23 +41,49 @@ export function liftedMargins(loop: StateEquations): LiftedMargins {
   const poles = polesOf(sensitivity.a, loop.period);
   const decayRate = modesOf(sensitivity.a, loop.period)[0]?.decayRate ?? Number.POSITIVE_INFINITY;
   if (!(stabilityReserve(poles, loop.period) > 0)) return { ...unstable, decayRate };
-  const loci = new GainLoci(sensitivity, [...poles, ...polesOf(loop.a, loop.period)]);
+  const features = [...poles, ...polesOf(loop.a, loop.period)];
   const one = identity(loop.b.columns);
-  const sensitivityPeak = largestGain(sensitivity).value;
-  const complementary = {
-    ...sensitivity,
-    c: scale(sensitivity.c, -1),
-    d: add(one, sensitivity.d, -1),
+  const loci = once(() => new GainLoci(sensitivity, features));
+  const margins = {
+    gainMargin: once(() => gainMarginOf(negativeCrossings(loci()))),
+    phaseMargin: once(() => smallestPhase(loci())),
+    sensitivityPeak: once(() => largestGain(sensitivity).value),
+    complementaryPeak: once(() => {
+      const complementary = { c: scale(sensitivity.c, -1), d: add(one, sensitivity.d, -1) };
+      return largestGain({ ...sensitivity, ...complementary }).value;
+    }),
+    discMargin: once(() => 1 / largestGain({ ...sensitivity, d: add(sensitivity.d, one, -0.5) }).value),
   };
   return {
     stable: true,
-    gainMargin: gainMarginOf(negativeCrossings(loci)),
-    phaseMargin: smallestPhase(loci),
-    modulusMargin: 1 / sensitivityPeak,
-    sensitivityPeak,
-    complementaryPeak: largestGain(complementary).value,
-    discMargin: 1 / largestGain({ ...sensitivity, d: add(sensitivity.d, one, -0.5) }).value,
     decayRate,
+    get gainMargin() {
+      return margins.gainMargin();
+    },
+    get phaseMargin() {
+      return margins.phaseMargin();
+    },
+    get modulusMargin() {
+      return 1 / margins.sensitivityPeak();
+    },
+    get sensitivityPeak() {
+      return margins.sensitivityPeak();
+    },
+    get complementaryPeak() {
+      return margins.complementaryPeak();
+    },
+    get discMargin() {
+      return margins.discMargin();
+    },
+  };
+}
+
+/** Works a value out when it is first asked for. */
+function once<T>(work: () => T): () => T {
+  let result: { value: T } | undefined;
+  return () => {
+    result ??= { value: work() };
+    return result.value;
   };
 }
 
