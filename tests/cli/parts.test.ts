@@ -1,6 +1,7 @@
 import { readdirSync } from 'node:fs';
 import { join } from 'node:path';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { runHere } from './in_process.js';
 import { type Ended, Workplace } from './workplace.js';
 
 /** Few plants, on the image that breaks two requirements, so that searching, shrinking and reach have work to do. */
@@ -67,7 +68,7 @@ describe('a run in three parts', () => {
   });
 
   it('is refused where a part is missing or there twice', async () => {
-    const { status, output, errors } = await place.pawl('join', parts[0], parts[0]);
+    const { status, output, errors } = await runHere(place.folder, ['join', parts[0], parts[0]]);
     expect({ status, output }).toEqual({ status: 2, output: '' });
     expect(errors.split('\n')).toEqual([
       'part 1 of 3 is there 2 times',
@@ -115,7 +116,12 @@ describe('a run in three parts', () => {
     ],
   ];
   it.each(others)('is refused for %s', async (_, change, line) => {
-    const { status, errors } = await place.pawl('join', parts[0], changed('other.json', change), parts[2]);
+    const { status, errors } = await runHere(place.folder, [
+      'join',
+      parts[0],
+      changed('other.json', change),
+      parts[2],
+    ]);
     expect(status).toBe(2);
     expect(errors).toMatch(line);
   });
@@ -123,7 +129,7 @@ describe('a run in three parts', () => {
   it('is refused when the spec has changed since, and for files that are no parts', async () => {
     const text = place.read(place.spec);
     place.write(place.spec, text.replace('at_most: 25 %', 'at_most: 26 %'));
-    const moved = await place.pawl('join', ...parts);
+    const moved = await runHere(place.folder, ['join', ...parts]);
     expect(moved.status).toBe(2);
     expect(moved.errors).toMatch(/not the spec that the parts were tried with/);
     place.write(place.spec, text);
@@ -132,7 +138,7 @@ describe('a run in three parts', () => {
       [place.spec, /is no part/],
       ['none.json', /no such file/],
     ] as const) {
-      const { status, errors } = await place.pawl('join', file);
+      const { status, errors } = await runHere(place.folder, ['join', file]);
       expect(status).toBe(2);
       expect(errors).toMatch(line);
     }
@@ -148,7 +154,7 @@ describe('a part', () => {
       [['--part', 'one', '--of', '3', '--out', 'x'], /is no part/],
       [['--part', '1', '--of', '3'], /needs '--out DIR'/],
     ] as const) {
-      const { status, errors } = await place.pawl('check', place.spec, '--skip-build', ...words);
+      const { status, errors } = await runHere(place.folder, ['check', place.spec, '--skip-build', ...words]);
       expect(status).toBe(2);
       expect(errors).toMatch(line);
     }
