@@ -15,8 +15,11 @@ import { type MarginsFound, marginBrackets, modulusBracket } from './margin_brac
 import { valuesOfPlant } from './plant_values.js';
 
 const points = 320;
-/** The picture reaches so far below the lowest crossing and above the highest. */
-const beyond = 30;
+/** The picture reaches so far below the lowest crossing that matters and above the highest: what margins are read from. */
+const below = 30;
+const above = 8;
+/** A phase crossing at which the gain is so far from one, as a factor, tells nothing. */
+const farthestFactor = 100;
 /** Without a crossing it covers so much of the range up to half the sampling frequency. */
 const coveredWithoutCrossing = 1e4;
 
@@ -76,7 +79,11 @@ function plotOf(
     frequencies,
     nominal: curveOf(found.nominal, frequencies),
     worst: curveOf(found.worst, frequencies),
-    margins: runs.flatMap((run) => marginBrackets(run, found)).filter(({ frequency }) => frequency > 0),
+    margins: runs
+      .flatMap((run) => marginBrackets(run, found))
+      .filter(
+        ({ frequency }) => frequency >= frequencies[0] && frequency <= frequencies[frequencies.length - 1],
+      ),
     modulus: runs.map((run) => modulusBracket(run, found)).find((one) => one !== undefined),
   };
 }
@@ -86,17 +93,20 @@ function marginsFound(view: LoopView): MarginsFound {
 }
 
 /**
- * Evenly spread over the logarithm, up to half the sampling frequency at most, with every crossing among them so that no
- * margin lies between two.
+ * Evenly spread over the logarithm, up to half the sampling frequency at most, with every crossing that matters among them so
+ * that no margin lies between two.
  */
 function frequenciesOf({ period }: LoopView, found: readonly MarginsFound[]): number[] {
   const end = Math.PI / period;
   const crossings = found
-    .flatMap(({ margins }) => [...margins.gainCrossings, ...margins.phaseCrossings])
+    .flatMap(({ margins: { gainCrossings, phaseCrossings } }) => [
+      ...gainCrossings,
+      ...phaseCrossings.filter(({ factor }) => Math.max(factor, 1 / factor) < farthestFactor),
+    ])
     .map(({ frequency }) => frequency)
     .filter((frequency) => frequency > end / 1e7 && frequency <= end);
-  const highest = crossings.length > 0 ? Math.min(end, beyond * Math.max(...crossings)) : end;
-  const lowest = Math.min(end / coveredWithoutCrossing, ...crossings.map((one) => one / beyond));
+  const highest = crossings.length > 0 ? Math.min(end, above * Math.max(...crossings)) : end;
+  const lowest = Math.min(end / coveredWithoutCrossing, ...crossings.map((one) => one / below));
   const ratio = highest / lowest;
   const even = Array.from({ length: points }, (_, at) => lowest * ratio ** (at / (points - 1)));
   return [...new Set([...even.slice(0, -1), ...crossings, highest])].sort((a, b) => a - b);
