@@ -27,7 +27,7 @@ describe('the README', () => {
 
   it('has commands of every kind', () => {
     const kinds = new Set(pawlCommands.map((line) => line.split(' ')[2]));
-    expect([...kinds].sort()).toEqual(['check', 'join', 'latch', 'read', 'schema', 'start']);
+    expect([...kinds].sort()).toEqual(['check', 'join', 'latch', 'read', 'replay', 'schema', 'start']);
   });
 
   it.each(pawlCommands)('%s', async (line) => {
