@@ -46,7 +46,7 @@ function broken(of: Record<string, number>): string[] {
 }
 
 // Each far plant has some parameters at those bounds where the broken requirements are hard to meet.
-const demos = [
+const demos: { spec: string; image: string; far: Record<string, number>; breaks: string[] }[] = [
   {
     spec: 'specs/rootzone-heating/rootzone-heating.pawl.yaml',
     image: 'rootzone',
