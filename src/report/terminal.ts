@@ -156,12 +156,18 @@ function closing(spec: SpecRun): string[] {
   const merge = mergeInWords(spec);
   const improvements = improvementsInWords(spec);
   const effort = effortInWords(spec);
+  const tried =
+    spec.triedSeconds === undefined
+      ? undefined
+      : `the plants alone in ${formatNumber(spec.triedSeconds, 3)} s`;
   return [
     ...claims,
     ...scrutinyLines(spec),
     ...(merge === undefined ? [] : [`merge: ${oneLine(merge)}`]),
     ...movedButMet(spec),
     ...(improvements === undefined ? [] : [improvements]),
-    `judged in ${formatNumber(spec.seconds, 3)} s${effort === undefined ? '' : `; ${effort}`}`,
+    [`judged in ${formatNumber(spec.seconds, 3)} s`, tried, effort]
+      .filter((part) => part !== undefined)
+      .join('; '),
   ];
 }

@@ -6,12 +6,16 @@ export type Judgement =
   | { kind: 'met' | 'broken'; headroom: number | undefined; rank: number }
   | { kind: 'unjudged'; why: string; rank: number };
 
+/** No number ranks as bad as an event that never came, or a trace that left the numbers. */
+const worstNumber = -1e8;
+
 /** Judges one result against a requirement's limit. A smaller `rank` is worse; it orders results without a number too. */
 export function judge(requirement: Requirement, result: MeasureResult): Judgement {
   switch (result.kind) {
     case 'value': {
-      const rank = distanceOf(requirement.limit, requirement.scale, result.value);
-      return { kind: rank >= 0 ? 'met' : 'broken', headroom: Math.min(1, rank), rank };
+      const distance = distanceOf(requirement.limit, requirement.scale, result.value);
+      const headroom = Math.min(1, distance);
+      return { kind: distance >= 0 ? 'met' : 'broken', headroom, rank: Math.max(worstNumber, distance) };
     }
     case 'never':
       return { kind: 'broken', headroom: undefined, rank: -1e9 * (1 + saturating(result.left)) };

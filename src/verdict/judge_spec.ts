@@ -20,7 +20,7 @@ import { tryPlants } from './try_plants.js';
 import { verdictOf } from './verdict_of.js';
 
 /** What judging adds to a spec's run. */
-export type JudgedSpec = Pick<SpecRun, 'requirements' | 'plants' | 'halvings' | 'effort'>;
+export type JudgedSpec = Pick<SpecRun, 'requirements' | 'plants' | 'halvings' | 'effort' | 'triedSeconds'>;
 
 /** How a spec is judged; the result does not depend on the number of workers. */
 export interface JudgeOptions {
@@ -45,7 +45,9 @@ export async function judgeSpec(
 ): Promise<JudgedSpec> {
   try {
     const space = new ParameterSpace(spec.parameters, spec.perturbation);
+    const started = performance.now();
     const { tallies, landmarks, effects, halvings, plants } = await tryPlants(spec, space, crew, saved);
+    const triedSeconds = (performance.now() - started) / 1000;
     const scrutinies = await Promise.all(
       spec.requirements.map((_, index) =>
         scrutinise({
@@ -61,6 +63,7 @@ export async function judgeSpec(
       plants,
       halvings,
       effort: sumOf(scrutinies.map(({ effort }) => effort)),
+      triedSeconds,
     };
   } finally {
     await crew.dismiss();

@@ -145,6 +145,8 @@ export interface SpecRun {
   plants: Record<Exclude<PlantOrigin, 'searched'>, number>;
   /** What searching, shrinking and reach took on top of it, for all requirements together. */
   effort?: Effort;
+  /** Wall time of trying the plants alone, in s; for the terminal only. */
+  triedSeconds?: number;
   scenarios: { name: string; lasts: number }[];
   /** How often the first step of the integration was halved for all plants. */
   halvings: number;

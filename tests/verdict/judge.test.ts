@@ -50,6 +50,7 @@ describe('judging one result', () => {
       { kind: 'overflow', why: 'w', time: 3 },
       { kind: 'never', why: 'w', left: Number.POSITIVE_INFINITY },
       { kind: 'never', why: 'w', left: 0.2 },
+      value(1e52),
       value(1e6),
       value(10),
       value(0),
