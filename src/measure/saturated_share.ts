@@ -1,5 +1,6 @@
 import { plainNumber } from '../spec/dimension.js';
 import { scaled } from './curve.js';
+import { smallest } from './extremes.js';
 import { signalKey, windowKeys } from './keys.js';
 import { measured, type TraceMeasure, unformed } from './measure.js';
 import { timeAtOrAbove } from './time_at_or_above.js';
@@ -23,7 +24,10 @@ export const saturatedShare: TraceMeasure = {
     if (!range) return unformed('the signal has no range');
     const margin = range.resolution / 2;
     const high = timeAtOrAbove(of, range.high - margin, from, until);
-    const low = timeAtOrAbove(scaled(of, -1), margin - range.low, from, until);
-    return measured((high + low) / (until - from));
+    const low = range.low + margin;
+    // Most signals never reach their low end: then no curve needs to be turned over.
+    const isFree = smallest(of, from, until).value > low;
+    const atLow = isFree ? 0 : timeAtOrAbove(scaled(of, -1), -low, from, until);
+    return measured((high + atLow) / (until - from));
   },
 };
