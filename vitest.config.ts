@@ -4,6 +4,7 @@ export default defineConfig({
   test: {
     include: ['tests/**/*.test.ts'],
     globalSetup: ['tests/build_once.ts'],
+    setupFiles: ['tests/repeatable.ts'],
     testTimeout: 60_000,
     hookTimeout: 120_000,
   },
