@@ -126,15 +126,22 @@ export function largestSoFar(curve: Curve): Curve {
     const [t0, t1] = [curve.times[piece], curve.times[piece + 1]];
     const points = pieceOf(curve, piece);
     best = Math.max(best, points[0]);
-    const gap = (level: number): number[] => Array.from(points, (point) => point - level);
-    const places = [0, ...signChanges(differences(points)), ...signChanges(gap(best)), 1].sort(
-      (a, b) => a - b,
-    );
-    for (let i = 1; i < places.length; i++) {
-      if (!(places[i] > places[i - 1])) continue;
-      const part = partOf(points, places[i - 1], places[i]);
-      const rises = integralOf(part) > best;
-      builder.add(t0 + places[i - 1] * (t1 - t0), rises ? part : part.map(() => best));
+    const turns = [0, ...signChanges(differences(points)), 1];
+    for (let i = 1; i < turns.length; i++) {
+      if (!(turns[i] > turns[i - 1])) continue;
+      const part = partOf(points, turns[i - 1], turns[i]);
+      const [from, to] = [turns[i - 1], turns[i]].map((place) => t0 + place * (t1 - t0));
+      // A rise overtakes the best so far of this very moment, which an earlier top of the piece may have set.
+      const level = best;
+      const overtaken = part[0] < level ? signChanges(part.map((point) => point - level)) : [];
+      const rises = part[part.length - 1] > level;
+      const place = rises ? (overtaken[0] ?? 0) : 1;
+      if (place > 0)
+        builder.add(
+          from,
+          part.map(() => level),
+        );
+      if (place < 1) builder.add(from + place * (to - from), partOf(part, place, 1));
       best = Math.max(best, part[part.length - 1]);
     }
   }

@@ -126,6 +126,14 @@ describe('arithmetic of curves', () => {
     );
   });
 
+  it('keeps a top that a later rise of the same piece has not overtaken yet', () => {
+    const points = Float64Array.from([0, 0, 5, 0, 0, 3]);
+    const a = { times: Float64Array.from([0, 1]), points, pieces: 1 };
+    for (const t of [0.3, 0.6, 0.75, 0.9, 0.97]) {
+      expect(at(largestSoFar(a), t)).toBeCloseTo(largest(a, 0, t).value, 9);
+    }
+  });
+
   it('keeps the largest so far', () => {
     fc.assert(
       fc.property(curve(4), fc.double({ min: 0.01, max: 3.99, noNaN: true }), (a, t) => {
