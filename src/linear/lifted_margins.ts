@@ -97,8 +97,11 @@ const unstable = {
   discMargin: 0,
 };
 
-/** (I + L)⁻¹ = I − (I + L)⁻¹·L in state equations. */
-function liftedSensitivity(loop: StateEquations): StateEquations {
+/**
+ * (I + L)⁻¹ = I − (I + L)⁻¹·L in state equations, of a lifted L.
+ * @throws NumericFailure when the loop cannot be closed.
+ */
+export function liftedSensitivity(loop: StateEquations): StateEquations {
   const { a, b, c, d, period } = loop;
   const closing = solve(add(identity(d.rows), d), identity(d.rows));
   const entered = multiply(b, closing);
