@@ -97,9 +97,9 @@ export class ScenarioRun {
         this.loop.states.map(({ start }) => start),
         layout.state,
       );
+    m.set(rest?.memory ?? this.loop.memories.map(({ start }) => start), layout.memory);
     if (rest) {
       m.set(rest.state, layout.state);
-      m.set(rest.memory, layout.memory);
       m.set(rest.held, layout.held);
     }
     for (const { state, value } of this.startAt) m[layout.state + state] = value;
