@@ -3,6 +3,7 @@ import { counted } from '../report/format_value.js';
 import { type Share, tryShare } from '../verdict/parts.js';
 import type { CheckOptions } from './check.js';
 import { eachBuild } from './each_build.js';
+import { setupOf } from './latched_reference.js';
 import { digestOf, type PartTarget, writePart } from './part_file.js';
 import { shownPath } from './read_spec.js';
 import { type ExitStatus, Fault, type Surroundings } from './surroundings.js';
@@ -34,9 +35,9 @@ export async function checkPart(
     async (target, watch): Promise<PartTarget> => ({
       file: target.spec.file,
       build: target.name,
-      specDigest: digestOf(target.spec, target.saved),
+      specDigest: digestOf(target),
       read: target.build,
-      rounds: await tryShare(target, share, watch),
+      rounds: await tryShare(setupOf(target), target.saved, share, watch),
     }),
   );
   if (faults.length > 0) {

@@ -3,7 +3,7 @@ import { JoiningCrew, PartsDisagree } from '../verdict/parts.js';
 import { report, statusOf } from './check.js';
 import type { Target } from './each_build.js';
 import { type JudgedTarget, judgedFiles, judgeTarget } from './judge_files.js';
-import { readLatched } from './latched_reference.js';
+import { readLatched, setupOf } from './latched_reference.js';
 import { digestOf, type PartFile, type PartTarget, readPart } from './part_file.js';
 import { valuesOf } from './read_build.js';
 import { readSpec } from './read_spec.js';
@@ -52,14 +52,16 @@ async function joinTarget(
   const spec = build ? { ...whole, firmware: build.firmware } : whole;
   const latched = await readLatched(around.cwd, spec, name);
   const saved = [...(await savedPlants(around.cwd, spec)), ...(latched?.plants ?? [])];
-  if (digestOf(spec, saved) !== specDigest)
-    throw new Fault([`${file}: is not the spec that the parts were tried with; check out the same commit`]);
+  if (digestOf({ spec, saved, latched }) !== specDigest)
+    throw new Fault([
+      `${file}: is not the spec that the parts were tried with, or its latched reference is not; check out the same commit`,
+    ]);
   const label = name === undefined ? spec.loop : `${spec.loop}, build ${name}`;
   const coefficients = valuesOf(read);
   const target: Target = { spec, name, label, build: read, coefficients, saved, latched };
   const rounds = parts.map((part) => part.rounds);
   const watch = { signal: around.interrupted };
-  const crew = new JoiningCrew(spec, coefficients, rounds, watch);
+  const crew = new JoiningCrew(setupOf(target), rounds, watch);
   return judgeTarget(target, { crew, watch }, around.today);
 }
 

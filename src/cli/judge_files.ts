@@ -3,7 +3,7 @@ import type { Fault as SpecFault, SpecPlots } from '../report/index.js';
 import { type JudgedSpec, type JudgeOptions, judgeSpec } from '../verdict/judge_spec.js';
 import type { FinishedRun, SpecRun } from '../verdict/run.js';
 import { eachBuild, type SpecChoice, type Target, type Telling } from './each_build.js';
-import { heldAgainstLatched } from './latched_reference.js';
+import { heldAgainstLatched, setupOf } from './latched_reference.js';
 import { version } from './version.js';
 
 /** What judging gave: a run of all specs that could be judged, and why the others could not. */
@@ -58,7 +58,8 @@ export async function judgeTarget(
 ): Promise<JudgedTarget> {
   const { spec, coefficients, saved } = target;
   const started = performance.now();
-  const judged = await judgeSpec(spec, coefficients, { saved, ...options });
+  const { latched } = setupOf(target);
+  const judged = await judgeSpec(spec, coefficients, { saved, latched, ...options });
   const held = await heldAgainstLatched(target, judged, today, options);
   const seconds = (performance.now() - started) / 1000;
   return {

@@ -3,6 +3,7 @@ import { basename, dirname, join } from 'node:path';
 import { referenceJson } from '../report/index.js';
 import { formatSpecError } from '../spec/index.js';
 import { judgeSpec } from '../verdict/judge_spec.js';
+import { asLatched } from '../verdict/latched/coefficient_changes.js';
 import { latchObstacles, referenceOf } from '../verdict/latched/reference_of.js';
 import { eachBuild, type SpecChoice, type Target } from './each_build.js';
 import { specRun } from './judge_files.js';
@@ -38,7 +39,11 @@ export async function latch(options: LatchOptions, around: Surroundings): Promis
     ]);
   const { results, faults } = await eachBuild(around.cwd, options, around, (target, watch) =>
     toWrite(target, reason, options.withUnjudged, around, () =>
-      judgeSpec(target.spec, target.coefficients, { watch, saved: target.saved }),
+      judgeSpec(target.spec, target.coefficients, {
+        ...{ watch, saved: target.saved },
+        // What is latched is what changes are counted from: latching it accepts every change.
+        latched: asLatched(target.coefficients),
+      }),
     ),
   );
   const lines = [

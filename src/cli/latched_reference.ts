@@ -4,9 +4,11 @@ import { formatSpecError } from '../spec/index.js';
 import type { Spec } from '../spec/spec.js';
 import type { JudgedSpec, JudgeOptions } from '../verdict/judge_spec.js';
 import { againstReference } from '../verdict/latched/against_reference.js';
-import { mergeFault } from '../verdict/latched/law_changes.js';
+import { coefficientUnits, latchedNumbers } from '../verdict/latched/coefficient_changes.js';
+import { mergeFault } from '../verdict/latched/merge_fault.js';
 import { type Reference, readReference } from '../verdict/latched/reference.js';
 import { referencePlants } from '../verdict/latched/reference_plants.js';
+import type { PlantSetup } from '../verdict/plant_answers.js';
 import type { SpecRun } from '../verdict/run.js';
 import type { Target } from './each_build.js';
 import { shownPath } from './read_spec.js';
@@ -62,6 +64,21 @@ async function textOf(path: string, shown: string, spec: Spec): Promise<string |
 function unreadable(shown: string, what: string, { merge }: Spec): Fault {
   const message = `the latched reference ${shown} cannot be read: ${what}; take it from version control, or delete it and write it anew with pawl latch`;
   return new Fault([formatSpecError({ place: merge!.place, message })]);
+}
+
+/** What the plants of a build are measured with: its coefficients, and what they are compared with. */
+export function setupOf({
+  spec,
+  coefficients,
+  latched,
+}: Pick<Target, 'spec' | 'coefficients' | 'latched'>): PlantSetup {
+  const { path, reference } = latched ?? {};
+  if (reference) {
+    const numbers = latchedNumbers(reference, coefficients, coefficientUnits(spec));
+    return { spec, coefficients, latched: numbers };
+  }
+  const why = `there is no latched reference ${path} yet to compare with; write it with pawl latch`;
+  return { spec, coefficients, latched: new Map([...coefficients.keys()].map((name) => [name, why])) };
 }
 
 /**

@@ -1,8 +1,8 @@
 import { createHash } from 'node:crypto';
 import { mkdir, readFile, writeFile } from 'node:fs/promises';
 import { join, resolve } from 'node:path';
-import type { Spec } from '../spec/spec.js';
 import type { PartialRound, Share } from '../verdict/parts.js';
+import type { Target } from './each_build.js';
 import { exactJson, fromExactJson } from './exact_json.js';
 import type { BuildRead } from './read_build.js';
 import { shownPath } from './read_spec.js';
@@ -19,16 +19,17 @@ export interface PartFile extends Share {
 export interface PartTarget {
   file: string;
   build: string | undefined;
-  /** Of the checked spec with all that it includes. */
+  /** Of the checked spec with all that it includes, and of what was saved and latched. */
   specDigest: string;
   read: BuildRead | undefined;
   rounds: PartialRound[];
 }
 
-/** SHA-256 of a checked spec and the saved counterexamples, so that parts of different ones are told apart. */
-export function digestOf(spec: Spec, saved: readonly Float64Array[]): string {
+/** SHA-256 of a checked spec, the saved counterexamples and the latched reference, so that parts of different ones are told apart. */
+export function digestOf({ spec, saved, latched }: Pick<Target, 'spec' | 'saved' | 'latched'>): string {
   const plants = saved.map((values) => [...values]);
-  return createHash('sha256').update(exactJson({ spec, plants })).digest('hex');
+  const reference = latched?.reference;
+  return createHash('sha256').update(exactJson({ spec, plants, reference })).digest('hex');
 }
 
 /** Writes a part into a folder, which is made where there is none. @returns its path. */

@@ -9,6 +9,7 @@ import type { Requirement, Spec, Unit } from '../spec/spec.js';
 import { judge } from '../verdict/judge.js';
 import { parameterValues } from '../verdict/parameter_values.js';
 import { PlantMeasurer } from '../verdict/plant_answers.js';
+import { readLatched, setupOf } from './latched_reference.js';
 import { nearestOf } from './nearest_word.js';
 import { readBuild, valuesOf } from './read_build.js';
 import { readSpec, shownPath } from './read_spec.js';
@@ -61,13 +62,13 @@ export async function replay(options: ReplayOptions, around: Surroundings): Prom
       `${spec.file}: has no requirement '${options.requirement}' any more; run 'pawl check' again`,
     ]);
   }
-  const image = options.image ?? reported.provenance?.image;
-  const build = await readBuild(cwd, spec, { image: spec.firmware ? image : undefined, skipBuild: true });
+  const build = await readBuild(cwd, spec, { image: imageOf(spec, reported, options), skipBuild: true });
   const isSame = build?.provenance.sha256 === reported.provenance?.sha256;
   const values = plantOf(spec, entry.shrunk?.plant ?? entry.plant);
   const coefficients = valuesOf(build);
+  const setup = setupOf({ spec, coefficients, latched: await readLatched(cwd, spec, undefined) });
   const task = { plants: [values], halvings: reported.halvings, settle: true, wanted: [index] };
-  const [{ results, halvings }] = new PlantMeasurer(spec, coefficients).answers(task);
+  const [{ results, halvings }] = new PlantMeasurer(setup).answers(task);
   const requirement = spec.requirements[index];
   const judgement = judge(requirement, results[0]);
   const traced = traces(spec, coefficients, requirement, values, halvings);
@@ -92,6 +93,12 @@ export async function replay(options: ReplayOptions, around: Surroundings): Prom
     ),
   );
   return judgement.kind === 'met' ? 0 : 1;
+}
+
+/** The image to run: none where the spec has its numbers from a command, which is run again. */
+function imageOf({ firmware }: Spec, { provenance }: Reported, { image }: ReplayOptions): string | undefined {
+  if (image !== undefined || !firmware || firmware.numbers.kind === 'command') return image;
+  return provenance?.image;
 }
 
 async function readReport(cwd: string, report: string): Promise<Reported[]> {

@@ -17,6 +17,7 @@ import { LoopPoint, type LoopViewResult } from './loop_point.js';
 import {
   isLoopMeasure,
   isTraceMeasure,
+  type LatchedNumbers,
   type LoopMeasure,
   type MeasureResult,
   type TraceContext,
@@ -58,12 +59,16 @@ export class PlantEvaluator {
   private readonly commonSchedule: Schedule | undefined;
   private readonly firmwareResults: Map<number, MeasureResult>;
 
-  /** @throws {LoopError} where the build's numbers do not fit the spec. */
+  /**
+   * @param latched what coefficients are compared with, where a requirement asks for their change.
+   * @throws {LoopError} where the build's numbers do not fit the spec.
+   */
   constructor(
     private readonly spec: Spec,
     coefficients: CoefficientValues,
+    latched?: LatchedNumbers,
   ) {
-    this.firmwareResults = firmwareResults(spec, coefficients);
+    this.firmwareResults = firmwareResults(spec, coefficients, latched);
     this.loop = expandLoop(spec, coefficients);
     this.linearisation = new Linearisation(this.loop);
     const nominal = Float64Array.from(spec.parameters, (parameter) => parameter.nominal);

@@ -3,15 +3,24 @@ import type { CoefficientValues } from '../loop/parts.js';
 import { scaled } from '../spec/decimal.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import { measureNamed } from './index.js';
-import { type FirmwareContext, isFirmwareMeasure, type MeasureResult } from './measure.js';
+import {
+  type FirmwareContext,
+  isFirmwareMeasure,
+  type LatchedNumbers,
+  type MeasureResult,
+} from './measure.js';
 
 /** The results of the requirements about the build's numbers alone, by their place in the spec: the same for every plant. */
-export function firmwareResults(spec: Spec, coefficients: CoefficientValues): Map<number, MeasureResult> {
+export function firmwareResults(
+  spec: Spec,
+  coefficients: CoefficientValues,
+  latched: LatchedNumbers = new Map(),
+): Map<number, MeasureResult> {
   const results = new Map<number, MeasureResult>();
   spec.requirements.forEach((requirement, index) => {
     const measure = measureNamed(requirement.measure);
     if (!isFirmwareMeasure(measure)) return;
-    results.set(index, measure.measure(numbersOf(requirement, spec, coefficients)));
+    results.set(index, measure.measure(numbersOf(requirement, spec, coefficients, latched)));
   });
   return results;
 }
@@ -21,6 +30,7 @@ function numbersOf(
   { signals, place }: Requirement,
   { firmware }: Spec,
   coefficients: CoefficientValues,
+  latched: LatchedNumbers,
 ): FirmwareContext {
   const name = signals.of;
   const found = coefficients.get(name);
@@ -28,5 +38,9 @@ function numbersOf(
   const stored = 'format' in found ? found : undefined;
   const values = stored ? stored.values : (found as readonly number[]);
   const unit = firmware?.coefficients.find((one) => one.name === name)?.unit;
-  return { name, values, si: (value) => scaled(value, unit?.scale ?? 1), stored };
+  return {
+    ...{ name, values, stored },
+    si: (value) => scaled(value, unit?.scale ?? 1),
+    latched: latched.get(name) ?? 'there is no latched reference to compare with',
+  };
 }

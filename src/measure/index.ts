@@ -1,6 +1,7 @@
 import { absoluteDeviationIntegral } from './absolute_deviation_integral.js';
 import { activity } from './activity.js';
 import { bandwidth } from './bandwidth.js';
+import { changeSinceLatched } from './change_since_latched.js';
 import { coefficientValue } from './coefficient_value.js';
 import { complementaryPeak } from './complementary_peak.js';
 import { corridorClearance } from './corridor_clearance.js';
@@ -116,6 +117,7 @@ export const measures: readonly Measure[] = [
   leastRise,
   leastFall,
   storedRangeUse,
+  changeSinceLatched,
 ];
 
 const byName = new Map(measures.map((measure) => [measure.description.name, measure]));

@@ -85,7 +85,12 @@ export interface FirmwareContext {
   si: (value: number) => number;
   /** The same as they are stored, with their format; undefined where a scale or an offset made others of them. */
   stored: StoredNumbers | undefined;
+  /** As many numbers of the latched reference, in the same unit, or why there are none. */
+  latched: readonly number[] | string;
 }
+
+/** The numbers of the latched reference by coefficient, or why there are none to compare with, in words for people. */
+export type LatchedNumbers = ReadonlyMap<string, readonly number[] | string>;
 
 /** A measure of the build's numbers alone, whatever the plant. */
 export interface FirmwareMeasure {

@@ -50,7 +50,7 @@ export function replayText(replayed: Replayed, { width }: { width: number }): st
 
 function plotOf({ requirement, traces }: Replayed, width: number): string {
   const of = traces?.signals.find(({ name }) => name === requirement.signals.of);
-  if (!traces || !of) return 'no trace: the requirement is about the loop, not about a scenario';
+  if (!traces || !of) return 'no trace: the requirement is about the loop or the build, not about a scenario';
   const inUnit = (values: readonly number[]): number[] => values.map((value) => value / of.unit.scale);
   const to = traces.signals.find(({ name }) => name === requirement.signals.to);
   const lines: PlotLine[] = [

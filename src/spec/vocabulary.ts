@@ -108,6 +108,8 @@ export interface MeasureDescription {
   takesHertz?: boolean;
   /** `lower`: a smaller value is better. */
   better: 'lower' | 'higher';
+  /** Whether it is itself about what changed since the latched reference, which is then needed. */
+  againstLatched?: boolean;
   /** No plant gives less (or more) than this, SI: a limit beyond it guards nothing. */
   least?: number;
   most?: number;

@@ -1,9 +1,7 @@
 import { setMaxListeners } from 'node:events';
 import { availableParallelism } from 'node:os';
 import type { Tinypool } from 'tinypool';
-import type { CoefficientValues } from '../loop/parts.js';
-import type { Spec } from '../spec/spec.js';
-import { type PlantAnswer, PlantMeasurer, type PlantTask } from './plant_answers.js';
+import { type PlantAnswer, PlantMeasurer, type PlantSetup, type PlantTask } from './plant_answers.js';
 
 /** Plants for one worker at a time: enough to hide the cost of handing them over, few enough to share evenly. */
 const batch = 16;
@@ -34,12 +32,11 @@ export class Crew {
    * @throws {LoopError} where the build's numbers do not fit the spec.
    */
   constructor(
-    private readonly spec: Spec,
-    readonly coefficients: CoefficientValues,
+    readonly setup: PlantSetup,
     private readonly workers = Math.min(mostWorkers, availableParallelism()),
     private readonly watch: Watch = {},
   ) {
-    this.measurer = new PlantMeasurer(spec, coefficients);
+    this.measurer = new PlantMeasurer(setup);
   }
 
   /**
@@ -106,7 +103,7 @@ export class Crew {
       runtime: 'worker_threads',
       minThreads: this.workers,
       maxThreads: this.workers,
-      workerData: { spec: this.spec, coefficients: this.coefficients },
+      workerData: this.setup,
     });
     return this.pool;
   }

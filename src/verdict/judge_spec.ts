@@ -1,4 +1,5 @@
 import type { CoefficientValues } from '../loop/parts.js';
+import type { LatchedNumbers } from '../measure/measure.js';
 import { ParameterSpace } from '../perturb/parameter_space.js';
 import type { Effect } from '../perturb/screening.js';
 import type { Spec } from '../spec/spec.js';
@@ -28,6 +29,8 @@ export interface JudgeOptions {
   workers?: number;
   /** Counterexamples of earlier runs (SI, in the order of the parameters), tried first. */
   saved?: readonly Float64Array[];
+  /** What coefficients are compared with, where a requirement asks for their change. */
+  latched?: LatchedNumbers;
   /** Who wants to know how far it is, or to stop it. */
   watch?: Watch;
   /** Who measures, where that is not to be this machine alone; `workers` and `watch` are then its own. */
@@ -41,8 +44,10 @@ export interface JudgeOptions {
 export async function judgeSpec(
   spec: Spec,
   coefficients: CoefficientValues,
-  { workers, saved = [], watch, crew = new Crew(spec, coefficients, workers, watch) }: JudgeOptions = {},
+  options: JudgeOptions = {},
 ): Promise<JudgedSpec> {
+  const { workers, saved = [], latched, watch } = options;
+  const crew = options.crew ?? new Crew({ spec, coefficients, latched }, workers, watch);
   try {
     const space = new ParameterSpace(spec.parameters, spec.perturbation);
     const started = performance.now();

@@ -1,9 +1,7 @@
-import type { CoefficientValues } from '../loop/parts.js';
 import { unformed } from '../measure/measure.js';
 import { ParameterSpace } from '../perturb/parameter_space.js';
-import type { Spec } from '../spec/spec.js';
 import { Crew, type Watch } from './crew.js';
-import type { PlantAnswer } from './plant_answers.js';
+import type { PlantAnswer, PlantSetup } from './plant_answers.js';
 import { tryPlants } from './try_plants.js';
 
 /** One part of several that together try all plants: its number counts from 1. */
@@ -25,15 +23,13 @@ export interface PartialRound {
  * @throws {LoopError} where the build's numbers do not fit the spec.
  */
 export async function tryShare(
-  {
-    spec,
-    coefficients,
-    saved,
-  }: { spec: Spec; coefficients: CoefficientValues; saved: readonly Float64Array[] },
+  setup: PlantSetup,
+  saved: readonly Float64Array[],
   share: Share,
   watch?: Watch,
 ): Promise<PartialRound[]> {
-  const crew = new ShareCrew(spec, coefficients, share, watch);
+  const { spec } = setup;
+  const crew = new ShareCrew(setup, share, watch);
   try {
     await tryPlants(spec, new ParameterSpace(spec.parameters, spec.perturbation), crew, saved);
     return crew.rounds;
@@ -52,14 +48,13 @@ class ShareCrew extends Crew {
   readonly rounds: PartialRound[] = [];
 
   constructor(
-    spec: Spec,
-    coefficients: CoefficientValues,
+    setup: PlantSetup,
     private readonly share: Share,
     watch?: Watch,
   ) {
-    super(spec, coefficients, undefined, watch);
+    super(setup, undefined, watch);
     this.foreign = {
-      results: spec.requirements.map(() => unformed('it belongs to another part')),
+      results: setup.spec.requirements.map(() => unformed('it belongs to another part')),
       halvings: 0,
     };
   }
@@ -90,12 +85,11 @@ export class JoiningCrew extends Crew {
 
   /** @param parts the rounds of every part, in the order of the parts. */
   constructor(
-    spec: Spec,
-    coefficients: CoefficientValues,
+    setup: PlantSetup,
     private readonly parts: readonly (readonly PartialRound[])[],
     watch?: Watch,
   ) {
-    super(spec, coefficients, undefined, watch);
+    super(setup, undefined, watch);
   }
 
   override async measure(

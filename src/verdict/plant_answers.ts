@@ -1,8 +1,16 @@
 import type { CoefficientValues } from '../loop/parts.js';
 import { PlantEvaluator } from '../measure/evaluate_plant.js';
-import type { MeasureResult } from '../measure/measure.js';
+import type { LatchedNumbers, MeasureResult } from '../measure/measure.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import { settleSteps } from './settle_steps.js';
+
+/** What plants are measured with. */
+export interface PlantSetup {
+  spec: Spec;
+  coefficients: CoefficientValues;
+  /** What coefficients are compared with, where a requirement asks for their change. */
+  latched?: LatchedNumbers;
+}
 
 /** Plants to measure at so many halvings of the step; `settle` then halves on until no measure changes any more. */
 export interface PlantTask {
@@ -27,10 +35,7 @@ export class PlantMeasurer {
   >();
 
   /** @throws {LoopError} where the build's numbers do not fit the spec. */
-  constructor(
-    private readonly spec: Spec,
-    private readonly coefficients: CoefficientValues,
-  ) {
+  constructor(private readonly setup: PlantSetup) {
     this.part(undefined);
   }
 
@@ -48,8 +53,9 @@ export class PlantMeasurer {
     const key = wanted?.join() ?? 'all';
     let part = this.parts.get(key);
     if (!part) {
-      const requirements = wanted?.map((index) => this.spec.requirements[index]) ?? this.spec.requirements;
-      const evaluator = new PlantEvaluator({ ...this.spec, requirements }, this.coefficients);
+      const { spec, coefficients, latched } = this.setup;
+      const requirements = wanted?.map((index) => spec.requirements[index]) ?? spec.requirements;
+      const evaluator = new PlantEvaluator({ ...spec, requirements }, coefficients, latched);
       part = { evaluator, requirements };
       this.parts.set(key, part);
     }

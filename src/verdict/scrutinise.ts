@@ -88,7 +88,7 @@ function prove(task: ScrutinyTask): Proof | undefined {
     return { plant: { origin: 'searched', values }, result, judgement: judge(requirement, result) };
   };
   const breaks = (values: Float64Array): boolean => tryAt(values).judgement.kind === 'broken';
-  const found = proofOf(spec, crew.coefficients, requirement, space, breaks);
+  const found = proofOf(spec, crew.setup.coefficients, requirement, space, breaks);
   if (found?.counterexample) tally.add(tryAt(found.counterexample));
   return found?.proof;
 }

@@ -2,7 +2,7 @@ import type { CoefficientValues } from '../../loop/parts.js';
 import type { Spec } from '../../spec/spec.js';
 import type { JudgedSpec, JudgeOptions } from '../judge_spec.js';
 import type { RequirementRun, SinceLatched } from '../run.js';
-import { coefficientChanges } from './coefficient_changes.js';
+import { coefficientChanges, coefficientUnits } from './coefficient_changes.js';
 import { compareRequirements } from './compare.js';
 import { compilerChanges, type LawCode, lawChanges } from './law_changes.js';
 import type { Reference } from './reference.js';
@@ -31,8 +31,7 @@ export async function againstReference(
   options: JudgeOptions = {},
 ): Promise<{ requirements: RequirementRun[]; sinceLatched: SinceLatched }> {
   const { spec, judged, coefficients, reference, path, law, compilers, today } = task;
-  const units = new Map(spec.firmware?.coefficients.map(({ name, unit }) => [name, unit?.text]));
-  const changes = reference ? coefficientChanges(reference, coefficients, units) : [];
+  const changes = reference ? coefficientChanges(reference, coefficients, coefficientUnits(spec)) : [];
   const sinceLatched: SinceLatched = {
     path,
     reference: reference && { reason: reference.reason, pawl: reference.pawl },

@@ -46,7 +46,7 @@ export function shareLosses(
     changed.forEach((name, at) => {
       if (members[at]) values.set(name, today.get(name)!);
     });
-    const measurer = new PlantMeasurer(spec, values);
+    const measurer = new PlantMeasurer({ spec, coefficients: values });
     return losses.map((loss) => -headroomOf(spec, measurer, loss, halvings));
   };
   try {

@@ -1,4 +1,6 @@
 import type { CoefficientValues, StoredNumbers } from '../../loop/parts.js';
+import type { LatchedNumbers } from '../../measure/measure.js';
+import type { Spec } from '../../spec/spec.js';
 import type { CoefficientChange } from '../run.js';
 import type { Reference } from './reference.js';
 import { latchedValues } from './reference.js';
@@ -23,6 +25,37 @@ export function coefficientChanges(
       unlike: 'the spec no longer names it',
     }));
   return [...changes, ...gone];
+}
+
+/** What today's coefficients are compared with, by name: latched numbers in the same unit, or why there are none. */
+export function latchedNumbers(
+  reference: Reference,
+  today: CoefficientValues,
+  units: ReadonlyMap<string, string | undefined>,
+): LatchedNumbers {
+  const unlike = new Map(coefficientChanges(reference, today, units).map((one) => [one.name, one.unlike]));
+  const latched = latchedValues(reference);
+  return new Map(
+    [...today.keys()].map((name) => {
+      const why = unlike.get(name);
+      return [
+        name,
+        why === undefined
+          ? numbersOf(latched.get(name)!)
+          : `the latched reference has no numbers to compare '${name}' with: ${why}; accept it with pawl latch`,
+      ];
+    }),
+  );
+}
+
+/** Today's coefficients as what they are compared with once they are latched. */
+export function asLatched(today: CoefficientValues): LatchedNumbers {
+  return new Map([...today].map(([name, now]) => [name, numbersOf(now)]));
+}
+
+/** Units of a spec's coefficients by name, as they are written. */
+export function coefficientUnits({ firmware }: Spec): Map<string, string | undefined> {
+  return new Map(firmware?.coefficients.map(({ name, unit }) => [name, unit?.text]));
 }
 
 /** Today's numbers with the latched ones in their place, for the coefficients of these changes. */

@@ -1,6 +1,7 @@
 import { LoopError } from '../../loop/loop.js';
 import type { CoefficientValues } from '../../loop/parts.js';
-import type { Spec } from '../../spec/spec.js';
+import { measureNamed } from '../../measure/index.js';
+import type { Requirement, Spec } from '../../spec/spec.js';
 import type { JudgedSpec, JudgeOptions } from '../judge_spec.js';
 import type { CoefficientChange, ComparedResult, Comparison, RequirementRun } from '../run.js';
 import { type LossToShare, shareLosses } from './attribution.js';
@@ -20,9 +21,13 @@ export interface ToCompare {
 
 /**
  * Compares every requirement of today's run with the latched reference, like with like: the latched coefficients are run
- * again under today's spec, so that what the firmware changed and what the spec changed are told apart.
+ * again under today's spec, so that what the firmware changed and what the spec changed are told apart. A requirement that is
+ * itself about the change has no comparison: its limit says what a change may be.
  */
-export async function compareRequirements(task: ToCompare, options: JudgeOptions): Promise<Comparison[]> {
+export async function compareRequirements(
+  task: ToCompare,
+  options: JudgeOptions,
+): Promise<(Comparison | undefined)[]> {
   const { spec, reference, today, changes, judged } = task;
   const latched = withLatched(today, reference, changes);
   const isSame = !changes.some((change) => isLike(change) && change.today !== undefined);
@@ -42,7 +47,12 @@ export async function compareRequirements(task: ToCompare, options: JudgeOptions
       attribution: [],
     };
   });
-  return Array.isArray(reruns) ? attributed(task, latched, reruns, comparisons) : comparisons;
+  const found = Array.isArray(reruns) ? attributed(task, latched, reruns, comparisons) : comparisons;
+  return found.map((comparison, index) => (isOfTheChange(spec.requirements[index]) ? undefined : comparison));
+}
+
+function isOfTheChange({ measure }: Requirement): boolean {
+  return measureNamed(measure).description.againstLatched === true;
 }
 
 async function rerunOrWhy(
@@ -65,7 +75,9 @@ function attributed(
   comparisons: readonly Comparison[],
 ): Comparison[] {
   const changed = changes.filter((change) => isLike(change)).map(({ name }) => name);
-  const losing = [...comparisons.keys()].filter((index) => hasLost(comparisons[index]));
+  const losing = [...comparisons.keys()].filter(
+    (index) => hasLost(comparisons[index]) && !isOfTheChange(spec.requirements[index]),
+  );
   const losses = losing.map((index): LossToShare => {
     const { nominal, worst, holdsFor } = judged.requirements[index];
     const plants = holdsFor === 'nominal' ? [nominal] : [nominal, worst];

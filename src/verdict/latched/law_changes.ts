@@ -1,4 +1,3 @@
-import type { Spec, SpecError } from '../../spec/spec.js';
 import type { Reference } from './reference.js';
 
 /** The machine code of one function of the control law. */
@@ -33,11 +32,4 @@ export function compilerChanges(then: readonly string[], now: readonly string[])
   const gone = [...old].filter((word) => !young.has(word)).map((word) => `${word} is gone`);
   const added = [...young].filter((word) => !old.has(word)).map((word) => `${word} is new`);
   return [...gone, ...added].join(', ');
-}
-
-/** The fault of a spec that names functions of a law and has no reference to keep their digests. */
-export function mergeFault({ firmware, merge }: Spec): SpecError | undefined {
-  const [first] = firmware?.law ?? [];
-  if (!first || merge) return undefined;
-  return { place: first.place, message: '`law` needs a `merge:` section: its `reference` keeps the digests' };
 }

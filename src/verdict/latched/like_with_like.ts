@@ -26,9 +26,9 @@ export async function rerunLatched(
   spec: Spec,
   latched: CoefficientValues,
   today: JudgedSpec,
-  { workers, saved = [] }: JudgeOptions,
+  { workers, saved = [], watch }: JudgeOptions,
 ): Promise<Rerun[]> {
-  const crew = new Crew(spec, latched, workers);
+  const crew = new Crew({ spec, coefficients: latched }, workers, watch);
   try {
     const space = new ParameterSpace(spec.parameters, spec.perturbation);
     const { tallies, halvings } = await tryPlants(spec, space, crew, saved);

@@ -9,8 +9,8 @@ export interface ToSettle {
   spec: Spec;
   reference: Reference | undefined;
   since: SinceLatched;
-  /** One for each requirement; none where there is no reference. */
-  comparisons: readonly Comparison[];
+  /** One for each requirement, but for those about the change itself; none where there is no reference. */
+  comparisons: readonly (Comparison | undefined)[];
   /** What changed in how the compilers were called, in words; empty where nothing did or it is not known. */
   compilers: string;
   /** YYYY-MM-DD */
@@ -24,7 +24,7 @@ export interface ToSettle {
 export function settleVerdicts(requirements: readonly RequirementRun[], task: ToSettle): RequirementRun[] {
   const { spec, reference, today } = task;
   return requirements.map((requirement, index) => {
-    const comparison: Comparison | undefined = task.comparisons[index];
+    const comparison = task.comparisons[index];
     const verdict = settledVerdict(requirement.verdict, comparison, task);
     const waiver = spec.merge?.waivers?.find((one) => one.requirement === requirement.name);
     const latched = reference?.requirements[requirement.name];

@@ -1,7 +1,8 @@
 import { describe, expect, it } from 'vitest';
 import type { Requirement, Waiver } from '../../../src/spec/spec.js';
 import { coefficientChanges, withLatched } from '../../../src/verdict/latched/coefficient_changes.js';
-import { compilerChanges, lawChanges, mergeFault } from '../../../src/verdict/latched/law_changes.js';
+import { compilerChanges, lawChanges } from '../../../src/verdict/latched/law_changes.js';
+import { mergeFault } from '../../../src/verdict/latched/merge_fault.js';
 import type { LatchedRequirement, Reference } from '../../../src/verdict/latched/reference.js';
 import { referencePlants } from '../../../src/verdict/latched/reference_plants.js';
 import { settleVerdicts } from '../../../src/verdict/latched/settle.js';
