@@ -8,6 +8,7 @@ import { armPlaces } from '../../src/firmware/code/arm_places.js';
 import { functionCode } from '../../src/firmware/code/function_code.js';
 import { openElf } from '../../src/firmware/elf/elf_file.js';
 import { openImage } from '../../src/firmware/image.js';
+import { base, intelHex, sRecords } from '../cli/flash_files.js';
 import { allocated, elfOf, progBits, type SymbolSpec } from './elf_builder.js';
 import { leaveOut, run } from './toolchain.js';
 
@@ -157,6 +158,55 @@ describe('the digest of a function', () => {
     }
     // readelf -s: azimuth_step has 368 bytes.
     expect(functionCode(imageOf(`${demo}azimuth.elf`), 'azimuth_step').size).toBe(368);
+  });
+});
+
+describe('the machine code of what is flashed', () => {
+  // The first segment of the demo image, 0xb10 bytes from 0x1000 of the file on, stands at 0x08000000 (readelf --segments);
+  // azimuth_step has the 368 bytes from 0x080000b0 on (nm --print-size).
+  const elf = imageOf(`${demo}azimuth.elf`);
+  const flash = readFileSync(`${demo}azimuth.elf`).subarray(0x1000, 0x1000 + 0xb10);
+  const stepAt = 0xb0;
+  const files: [string, (bytes: Uint8Array) => Uint8Array, number?][] = [
+    ['Intel HEX', (bytes) => Buffer.from(intelHex(bytes))],
+    ['S-records', (bytes) => Buffer.from(sRecords(bytes))],
+    ['a raw binary', (bytes) => bytes, base],
+  ];
+
+  describe.each(files)('%s', (_, fileOf, baseAddress) => {
+    const flashed = (bytes: Uint8Array) =>
+      functionCode(openImage(fileOf(bytes), 'a.bin', { symbols: elf, baseAddress }), 'azimuth_step');
+
+    it('is that of the ELF file, and does not depend on what stands elsewhere', () => {
+      const linked = functionCode(elf, 'azimuth_step');
+      expect(flashed(flash)).toEqual(linked);
+      expect(flashed(flash.with(stepAt - 1, flash[stepAt - 1] ^ 1))).toEqual(linked);
+    });
+
+    it.each([0, 201, 367])('is refused where byte %i is another: it is not the law of these names', (at) => {
+      const place = `0x${(base + stepAt + at - (at % 4)).toString(16)}`;
+      expect(() => flashed(flash.with(stepAt + at, flash[stepAt + at] ^ 1))).toThrow(
+        expect.objectContaining({
+          code: 'sources_disagree',
+          message: expect.stringMatching(
+            new RegExp(
+              `the function “azimuth_step”: “a.bin” holds the bytes [0-9a-f]+ at ${place}, “a.elf” `,
+            ),
+          ),
+        }),
+      );
+    });
+
+    it('is refused where it is not in the file', () => {
+      expect(() => flashed(flash.subarray(0, stepAt + 367))).toThrow(
+        expect.objectContaining({
+          code: 'no_contents',
+          message: expect.stringContaining(
+            '“a.bin” has no 368 bytes at 0x80000b0; it holds 0x8000000 to 0x800021e',
+          ),
+        }),
+      );
+    });
   });
 });
 

@@ -2,6 +2,7 @@ import { createHash } from 'node:crypto';
 import { readMemory } from '../elf/memory.js';
 import { allSymbols, type ElfSymbol, symbolsNamed, symbolType, undefinedSection } from '../elf/symbols.js';
 import { FirmwareError, quoted } from '../failure.js';
+import { checkFlashed } from '../flash/flash_image.js';
 import type { ElfImage, FirmwareImage } from '../image.js';
 import { nearestNames } from '../nearest.js';
 import { type AddressPlace, armPlaces } from './arm_places.js';
@@ -24,9 +25,10 @@ export interface FunctionCode {
 const largest = 1 << 20;
 
 /**
- * The machine code of a function.
+ * The machine code of a function. Where the image has no names, it must stand in what is flashed as it does in the ELF file that
+ * gives them: what ships is what counts.
  * @param name its name in the symbol table.
- * @throws FirmwareError `no_such_symbol`, `ambiguous_name`, `no_contents`, `unsupported` or `needs_relocation`
+ * @throws FirmwareError `no_such_symbol`, `ambiguous_name`, `no_contents`, `sources_disagree`, `unsupported` or `needs_relocation`
  */
 export function functionCode(image: FirmwareImage, name: string): FunctionCode {
   const elf = elfOf(image, name);
@@ -34,7 +36,9 @@ export function functionCode(image: FirmwareImage, name: string): FunctionCode {
   const isArm = elf.elf.machine === armMachine;
   const mark = isArm ? symbol.address & 1 : 0;
   const address = symbol.address - mark;
-  const bytes = readMemory(elf.elf, address, symbol.size, { what: `the function ${quoted(name)}` });
+  const what = `the function ${quoted(name)}`;
+  const bytes = readMemory(elf.elf, address, symbol.size, { what });
+  if (elf.flash) checkFlashed(elf.flash, elf.elf, address, bytes, what);
   const places = isArm ? armPlaces(elf.elf, bytes, address, mark === 1) : [];
   return { name, size: symbol.size, digest: digestOf(bytes, outside(places, address, bytes.length), elf) };
 }
@@ -44,7 +48,7 @@ function elfOf(image: FirmwareImage, name: string): ElfImage {
   if (!elf) {
     throw new FirmwareError(
       'unsupported',
-      `the machine code of ${quoted(name)} cannot be found in ${quoted(image.name)}, which has no symbol table; give the ELF file`,
+      `the machine code of ${quoted(name)} cannot be found in ${quoted(image.name)}, which has no symbol table; give the ELF file of the same build`,
     );
   }
   if (elf.elf.relocatable) {

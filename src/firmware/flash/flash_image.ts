@@ -41,10 +41,12 @@ export function checkFlashed(
 ): void {
   const place = physicalAddress(elf, address);
   const flashed = readFlash(flash, place, bytes.length, what);
-  if (Buffer.compare(flashed, bytes) === 0) return;
-  const text = (some: Uint8Array) => Buffer.from(some.subarray(0, 16)).toString('hex');
+  const differs = bytes.findIndex((byte, at) => byte !== flashed[at]);
+  if (differs < 0) return;
+  const from = differs - (differs % 4);
+  const text = (some: Uint8Array) => Buffer.from(some.subarray(from, from + 16)).toString('hex');
   throw new FirmwareError(
     'sources_disagree',
-    `${what}: ${quoted(flash.name)} holds the bytes ${text(flashed)} at ${hex(place)}, ${quoted(elf.name)} ${text(bytes)}; they are not of the same build`,
+    `${what}: ${quoted(flash.name)} holds the bytes ${text(flashed)} at ${hex(place + from)}, ${quoted(elf.name)} ${text(bytes)}; they are not of the same build`,
   );
 }
