@@ -27,6 +27,7 @@ export {
 } from './report/index.js';
 export { formatSpecError, loadSpec } from './spec/index.js';
 export { jsonSchemaOf } from './spec/json_schema.js';
-export type { LoadedSpec, Place, Requirement, Spec, SpecError } from './spec/spec.js';
+export type { LoadedSpec } from './spec/load_spec.js';
+export type { Place, Requirement, Spec, SpecError } from './spec/spec.js';
 export { judgeSpec } from './verdict/judge_spec.js';
 export type { FinishedRun, RequirementRun, SpecRun, Verdict } from './verdict/run.js';

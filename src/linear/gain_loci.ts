@@ -20,6 +20,8 @@ export interface LocusStep {
 const farthest = 0.2;
 /** A locus is only taken to go on in a value that is nearer than the others by this factor. */
 const plainly = 2;
+/** Values that are as near as this are one, as of two loops that are the same. */
+const coinciding = 1e-9;
 const mostHalvings = 12;
 /** A zero is found to this share of its frequency, or in so many rounds. */
 const narrowest = 1e-12;
@@ -84,8 +86,13 @@ export class GainLoci {
     const matched = matchedTo(before.values, after.values);
     const far = before.values.some((value, i) => {
       const moved = relativelyApart(value, matched[i]);
-      const others = after.values.filter((other) => other !== matched[i]);
-      return moved > farthest || others.some((other) => relativelyApart(value, other) < plainly * moved);
+      if (moved > farthest) return true;
+      const others = after.values.filter(
+        (other) =>
+          relativelyApart(value, other) < plainly * moved && relativelyApart(other, matched[i]) > coinciding,
+      );
+      // Which of several it goes on in tells nothing where none is on another side of what margins are read from.
+      return others.length > 0 && !onOneSide([value, matched[i], ...others]);
     });
     if (far && depth < mostHalvings) {
       const middle = this.spectrum((before.frequency + after.frequency) / 2);
@@ -124,6 +131,15 @@ function matchedTo(values: readonly Complex[], next: readonly Complex[]): Comple
     taken.add(j);
   }
   return result as Complex[];
+}
+
+/** Whether all are on one side of the real axis and on one side of the circle of radius one. */
+function onOneSide(values: readonly Complex[]): boolean {
+  const [first] = values;
+  const [above, outside] = [first.imaginary > 0, Math.hypot(first.real, first.imaginary) > 1];
+  return values.every(
+    ({ real, imaginary }) => imaginary > 0 === above && Math.hypot(real, imaginary) > 1 === outside,
+  );
 }
 
 function between(a: Complex, b: Complex, share: number): Complex {

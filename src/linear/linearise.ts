@@ -31,7 +31,7 @@ export class Linearisation {
       reading: loop.readings.map(({ sampled }) => sampled),
       memory: loop.memories.map(({ next }) => next),
       held: loop.held.map(({ value }) => value),
-      returned: loop.opening ? [loop.opening.returned] : [],
+      returned: loop.openings.map(({ returned }) => returned),
     };
     const columns: Record<ColumnGroup, number> = {
       state: loop.states.length,
@@ -39,7 +39,7 @@ export class Linearisation {
       held: loop.held.length,
       memory: loop.memories.length,
       reading: loop.readings.length,
-      injected: loop.opening ? 1 : 0,
+      injected: loop.openings.length,
     };
     const derivative = new Derivative(loop.graph);
     for (const [rowGroup, nodes] of Object.entries(this.roots) as [RowGroup, Node[]][]) {

@@ -21,16 +21,17 @@ export class NoisePath {
   private readonly driven: Linearisation;
 
   /**
-   * @param loop opened at the sensor.
+   * @param loop opened at the sensor alone.
    * @param held index of the held value.
    */
   constructor(loop: Loop, held: number) {
     const { graph } = loop;
-    const { returned } = loop.opening!;
+    const [opening] = loop.openings;
+    const { returned } = opening;
     const value = graph.leaf('held', held);
     const mixed = (all: Node, little: Node): Linearisation => {
       const both = graph.apply('add', all, graph.apply('multiply', graph.number(trace), little));
-      return new Linearisation({ ...loop, opening: { ...loop.opening!, returned: both } });
+      return new Linearisation({ ...loop, openings: [{ ...opening, returned: both }] });
     };
     this.seen = mixed(returned, value);
     this.driven = mixed(value, returned);

@@ -12,15 +12,18 @@ type Row = Float64Array;
 /**
  * The loop transfer L = −(returned / injected) of an opened loop over one cycle of its schedule, exact: states move by the
  * matrix exponential between instants, and everything else happens at its instant, delays and several rates included.
- * One injection in a cycle gives one input and one output; more give the lifted loop.
+ * One injection in a cycle gives one input and one output. More give the lifted loop: an input and the output that belongs
+ * to it for each change of each opened signal, in the order in which they come.
  * @param leaves parameters, inputs, and the point at which the loop is linearised.
+ * @param sizes what counts as one of each opened signal, in its own unit; one unit unless given.
  */
 export function openedLoop(
   linearisation: Linearisation,
   schedule: Schedule,
   leaves: LeafValues,
+  sizes: readonly number[] = linearisation.loop.openings.map(() => 1),
 ): StateEquations {
-  return new Cycle(linearisation, schedule, new Evaluation(leaves, 'off')).run();
+  return new Cycle(linearisation, schedule, new Evaluation(leaves, 'off'), sizes).run();
 }
 
 class Cycle {
@@ -31,6 +34,8 @@ class Cycle {
   /** Results under way, oldest first, by channel; each a row for every held value of the channel. */
   private readonly queues: Row[][][];
   private readonly returned: Row[] = [];
+  /** For each of these the size of its signal. */
+  private readonly returnedSizes: number[] = [];
   private readonly slopeCache = new Map<string, Matrix>();
   private readonly moves = new Map<number, { phi: Matrix; gamma: Matrix }>();
 
@@ -38,12 +43,15 @@ class Cycle {
     private readonly linearisation: Linearisation,
     private readonly schedule: Schedule,
     private readonly evaluation: Evaluation,
+    private readonly sizes: readonly number[],
   ) {
     const { loop } = linearisation;
-    const opening = loop.opening!;
     const settled = Math.max(0, ...schedule.channels.map(({ task, delay }) => schedule.phase[task] + delay));
     this.start = Math.ceil(settled / schedule.cycle) * schedule.cycle;
-    const injections = schedule.cycle / schedule.period[opening.task];
+    const injections = loop.openings.reduce(
+      (sum, { task }) => sum + schedule.cycle / schedule.period[task],
+      0,
+    );
     const underWay = schedule.channels.map((_, channel) => resultsUnderWay(schedule, channel, this.start));
     const heldBy = loop.channels.map(
       (_, channel) => loop.held.filter((held) => held.channel === channel).length,
@@ -52,7 +60,7 @@ class Cycle {
       loop.states.length +
       loop.held.length +
       loop.memories.length +
-      1 +
+      loop.openings.length +
       underWay.reduce((sum, count, channel) => sum + count * heldBy[channel], 0);
     this.width = this.known + injections;
     let next = 0;
@@ -62,7 +70,7 @@ class Cycle {
       held: fresh(loop.held.length),
       memory: fresh(loop.memories.length),
       reading: loop.readings.map(() => new Float64Array(this.width)),
-      injected: fresh(1),
+      injected: fresh(loop.openings.length),
     };
     this.queues = underWay.map((count, channel) =>
       Array.from({ length: count }, () => fresh(heldBy[channel])),
@@ -155,7 +163,7 @@ class Cycle {
 
   private compute(task: number): void {
     const { loop } = this.linearisation;
-    if (loop.opening!.task === task) this.inject();
+    this.inject(task);
     const from = ['reading', 'memory', 'held', 'injected'] as const;
     const memories = this.evaluate('memory', (i) => loop.memories[i].task === task, [...from]);
     const channels = this.schedule.channels.flatMap((channel, index) =>
@@ -171,12 +179,20 @@ class Cycle {
     for (const [i, row] of memories) this.rows.memory[i] = row;
   }
 
-  /** Keeps what the signal would have been, and lets its consumers see the next injected value. */
-  private inject(): void {
+  /**
+   * Lets the consumers of the task's opened signals see their next injected values, and keeps what those signals would have
+   * been: one that is computed from another at the same instant sees what is injected there.
+   */
+  private inject(task: number): void {
+    const { openings } = this.linearisation.loop;
+    const isOfTask = (index: number): boolean => openings[index].task === task;
+    let next = this.known + this.returned.length;
+    this.rows.injected = this.rows.injected.map((row, index) => (isOfTask(index) ? this.unit(next++) : row));
     const from = ['state', 'reading', 'memory', 'held', 'injected'] as const;
-    const returned = this.evaluate('returned', () => true, [...from]).get(0)!;
-    this.rows.injected = [this.unit(this.known + this.returned.length)];
-    this.returned.push(returned);
+    for (const [index, row] of this.evaluate('returned', isOfTask, [...from])) {
+      this.returned.push(row);
+      this.returnedSizes.push(this.sizes[index]);
+    }
   }
 
   private stateEquations(): StateEquations {
@@ -184,21 +200,22 @@ class Cycle {
     const end = [...state, ...held, ...memory, ...injected, ...this.queues.flat(2)];
     const kept = influential(end, this.returned, this.known);
     const inputs = Array.from({ length: this.width - this.known }, (_, i) => this.known + i);
-    const pick = (rows: Row[], columns: number[], sign: number): Matrix => {
+    const sizes = this.returnedSizes;
+    const pick = (rows: Row[], columns: number[], factor: (i: number, j: number) => number): Matrix => {
       const matrix = zeros(rows.length, columns.length);
       rows.forEach((row, i) => {
         columns.forEach((column, j) => {
-          matrix.data[i * columns.length + j] = sign * row[column];
+          matrix.data[i * columns.length + j] = factor(i, j) * row[column];
         });
       });
       return matrix;
     };
     const rows = kept.map((index) => end[index]);
     return stateEquations(
-      pick(rows, kept, 1),
-      pick(rows, inputs, 1),
-      pick(this.returned, kept, -1),
-      pick(this.returned, inputs, -1),
+      pick(rows, kept, () => 1),
+      pick(rows, inputs, (_, j) => sizes[j]),
+      pick(this.returned, kept, (i) => -1 / sizes[i]),
+      pick(this.returned, inputs, (i, j) => -sizes[j] / sizes[i]),
       this.schedule.cycle / this.schedule.ticksPerSecond,
     );
   }

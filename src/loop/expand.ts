@@ -1,3 +1,4 @@
+import { openedAt } from '../spec/opened_at.js';
 import type { Scenario, Spec } from '../spec/spec.js';
 import { ControllerRoom } from './controller_room.js';
 import { countersOf } from './counters.js';
@@ -9,15 +10,15 @@ import { PlantRoom } from './plant_room.js';
 import { tracedSignals } from './traced_signals.js';
 
 /**
- * Expands a spec with its coefficients into the loop's equations. With `openAt` every consumer of that sensor, controller or
- * actuator signal sees an injected value instead.
+ * Expands a spec with its coefficients into the loop's equations. With `openAt` every consumer of each of those sensor,
+ * controller or actuator signals sees an injected value of its own instead.
  * The equations of a `scenario` have what its inputs do; without one all inputs are constant.
  * @throws {LoopError} where the build's numbers do not fit the spec, or the loop cannot be opened there.
  */
 export function expandLoop(
   spec: Spec,
   coefficients: CoefficientValues,
-  { openAt, scenario }: { openAt?: string; scenario?: Scenario } = {},
+  { openAt = [], scenario }: { openAt?: readonly string[]; scenario?: Scenario } = {},
 ): Loop {
   const parts = new Parts(spec.inputs, coefficients);
   const controllers = orderTasks(spec);
@@ -30,7 +31,10 @@ export function expandLoop(
   parts.finish();
   const signals = tracedSignals(spec, controllers, parts, plant, room);
   const counted = countersOf(controllers, parts, room);
-  const asked = spec.requirements.find((requirement) => requirement.signals.at === openAt);
+  const asked = spec.requirements.find((requirement) => {
+    const names = openedAt(requirement);
+    return openAt.every((name) => names.includes(name));
+  });
   return {
     graph: parts.graph,
     parameters: spec.parameters.map(({ name }) => name),
@@ -54,6 +58,6 @@ export function expandLoop(
     })),
     noises: parts.noises,
     signals: new Map([...signals, ...counted.signals]),
-    opening: cut.opening(asked?.place ?? controllers[0].place),
+    openings: cut.openings(asked?.place ?? controllers[0].place),
   };
 }

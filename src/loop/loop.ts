@@ -109,7 +109,7 @@ export type TracedSignal = {
   | { kind: 'sampled'; task: number; value: Node }
 );
 
-/** Where the loop is cut: every consumer of the signal sees `injected` 0 instead. */
+/** Where the loop is cut: every consumer of the signal sees the leaf `injected` of the same index instead. */
 export interface Opening {
   at: string;
   /** The task at whose sampling instants the injected value changes. */
@@ -144,7 +144,8 @@ export interface Loop {
   /** For each independent noise source the task at whose sampling instants it is drawn. */
   noises: number[];
   signals: Map<string, TracedSignal>;
-  opening: Opening | undefined;
+  /** None for the closed loop. */
+  openings: Opening[];
 }
 
 /** Something that only shows when the build's numbers are in: a mistake at a place in the spec. */

@@ -1,5 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { comparedLoopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -8,14 +8,14 @@ export const complementaryPeak: LoopMeasure = {
   description: {
     name: 'complementary_peak',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [comparedLoopPointsKey],
     dimension: () => plainNumber,
     ratio: true,
     better: 'lower',
     least: 0,
     window: undefined,
     meaning:
-      'max |L/(1 + L)| over frequency (of several rates: the largest singular value of the lifted L/(1 + L)); a ratio or dB; infinite when the closed loop is unstable',
+      'max |L/(1 + L)| over frequency (of several rates or signals: the largest singular value of the matrix L(I + L)⁻¹); a ratio or dB; infinite when the closed loop is unstable',
   },
   measure: ({ loop }) =>
     ofStableLoop(loop, Number.POSITIVE_INFINITY, () =>

@@ -1,5 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { comparedLoopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -8,7 +8,7 @@ export const discMargin: LoopMeasure = {
   description: {
     name: 'disc_margin',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [comparedLoopPointsKey],
     dimension: () => plainNumber,
     ratio: false,
     better: 'higher',
@@ -16,7 +16,7 @@ export const discMargin: LoopMeasure = {
     most: 2,
     window: undefined,
     meaning:
-      'α = 1/max |S − 1/2| over frequency (of several rates: of the lifted S): factors (1 + αδ/2)/(1 − αδ/2), |δ| < 1, on the loop leave it stable; a plain number; 0 when the closed loop is unstable',
+      'α = 1/max |S − 1/2| over frequency (of several rates or signals: one over the largest singular value of the matrix S − I/2): factors (1 + αδ/2)/(1 − αδ/2), |δ| < 1, on the loop leave it stable, of several signals each with a δ of its own at the same time, so that it is then a guaranteed lower bound; a plain number; 0 when the closed loop is unstable',
   },
   measure: ({ loop }) =>
     ofStableLoop(loop, 0, () =>

@@ -13,7 +13,7 @@ import { signalsOfStatement } from '../spec/statement.js';
 import { type Curve, isConstant } from './curve.js';
 import { firmwareResults } from './firmware_results.js';
 import { measureNamed } from './index.js';
-import { LoopPoint, type LoopViewResult } from './loop_point.js';
+import { LoopPoint, type LoopViewResult, openingsOf } from './loop_point.js';
 import {
   isLoopMeasure,
   isTraceMeasure,
@@ -118,7 +118,7 @@ export class PlantEvaluator {
     this.spec.requirements.forEach((requirement, index) => {
       if (measureNamed(requirement.measure).description.basis !== 'loop') return;
       const around = requirement.around.map(({ name, value }) => [name, value]);
-      const key = JSON.stringify([requirement.signals.at, requirement.signals.of, around]);
+      const key = JSON.stringify([openingsOf(this.spec, requirement), requirement.signals.of, around]);
       let group = groups.get(key);
       if (!group) {
         group = { point: new LoopPoint(this.spec, coefficients, requirement), requirements: [] };

@@ -1,5 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { loopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -8,14 +8,14 @@ export const gainMargin: LoopMeasure = {
   description: {
     name: 'gain_margin',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [loopPointsKey],
     dimension: () => plainNumber,
     ratio: true,
     better: 'higher',
     least: 1,
     window: undefined,
     meaning:
-      'smallest factor above one by which the gain may be multiplied or divided, from L real and negative (of several rates: from an eigenvalue of the lifted L); a ratio or dB; infinite where there is none, 1 when the closed loop is unstable',
+      'smallest factor above one by which the gain may be multiplied or divided, from L real and negative (of several rates or signals: from an eigenvalue of the matrix L, with the same factor on all at once); a ratio or dB; infinite where there is none, 1 when the closed loop is unstable',
   },
   measure: ({ loop }) =>
     ofStableLoop(loop, 1, () =>

@@ -25,12 +25,22 @@ export const targetKey: MeasureKey = {
   meaning: 'what it should follow',
 };
 
-export const loopPointKey: MeasureKey = {
+export const loopPointKey: Extract<MeasureKey, { kind: 'loop_point' }> = {
   name: 'at',
   kind: 'loop_point',
   optional: false,
   meaning: 'where the loop is opened',
 };
+
+/** For measures that do not depend on the units of signals. */
+export const loopPointsKey: typeof loopPointKey = {
+  ...loopPointKey,
+  several: 'of_any_unit',
+  meaning: 'where the loop is opened; a list opens it at several signals at once',
+};
+
+/** For measures that compare signals in size. */
+export const comparedLoopPointsKey: typeof loopPointKey = { ...loopPointsKey, several: 'of_comparable_size' };
 
 export const coefficientKey: MeasureKey = {
   name: 'of',

@@ -8,26 +8,32 @@ import { expandLoop } from '../loop/expand.js';
 import { LoopError } from '../loop/loop.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import type { Schedule } from '../loop/schedule.js';
+import { openedAt } from '../spec/opened_at.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import { LoopView } from './loop_view.js';
+import { OpenedSizes } from './opened_sizes.js';
 
 /** The opened loop of one plant, or why it cannot be formed. */
 export type LoopViewResult = { kind: 'loop'; loop: LoopView } | { kind: 'unformed'; why: string };
 
-/** The loop opened at one signal and linearised at one point, for plant after plant. */
+/** The loop opened at one signal or at several at once, and linearised at one point, for plant after plant. */
 export class LoopPoint {
   readonly linearisation: Linearisation;
   /** The leaves that `around` sets, SI. */
   readonly overrides: { group: 'state' | 'input' | 'held'; index: number; value: number }[];
 
+  private readonly sizes: OpenedSizes;
   /** Where the requirement asks for what noise drives. */
   private readonly noise: { path: NoisePath; scale: number } | undefined;
 
-  constructor(spec: Spec, coefficients: CoefficientValues, { signals, around, place }: Requirement) {
-    const at = sensorFedBy(spec, signals.at) ?? signals.at;
-    this.linearisation = new Linearisation(expandLoop(spec, coefficients, { openAt: at }));
+  constructor(spec: Spec, coefficients: CoefficientValues, requirement: Requirement) {
+    const { signals, around, place } = requirement;
+    const openAt = openingsOf(spec, requirement);
+    const loop = expandLoop(spec, coefficients, { openAt });
+    this.linearisation = new Linearisation(loop);
+    this.sizes = new OpenedSizes(spec, loop);
     this.overrides = around.map(({ name, value, place }) => ({ ...this.leafNamed(name, place), value }));
-    this.noise = signals.of === undefined ? undefined : this.noisePath(spec, at, signals.of, place);
+    this.noise = signals.of === undefined ? undefined : this.noisePath(spec, openAt[0], signals.of, place);
   }
 
   private noisePath(spec: Spec, at: string, of: string, place: Requirement['place']): LoopPoint['noise'] {
@@ -69,8 +75,13 @@ export class LoopPoint {
     if (why) return { kind: 'unformed', why };
     const { noise } = this;
     const noiseGain = noise && (() => noise.path.gain(schedule, leaves) / noise.scale);
-    const equations = openedLoop(this.linearisation, schedule, leaves);
-    return { kind: 'loop', loop: new LoopView(equations, noiseGain) };
+    const found = this.sizes.at(new Evaluation(leaves, 'off'));
+    if (found.kind === 'unformed') return found;
+    const equations = openedLoop(this.linearisation, schedule, leaves, found.sizes);
+    const periods = this.linearisation.loop.openings.map(
+      ({ task }) => equations.period! / (schedule.cycle / schedule.period[task]),
+    );
+    return { kind: 'loop', loop: new LoopView(equations, noiseGain, periods) };
   }
 
   private leaves(parameters: Float64Array, rest: PointOfRest): LeafValues {
@@ -82,10 +93,15 @@ export class LoopPoint {
       mode: rest.mode,
     };
     for (const { group, index, value } of this.overrides) point[group][index] = value;
-    // The injected value stands at what the signal is at rest, so that the point is the closed loop's own.
-    const closed = withReadings(loop, { parameter: parameters, memory: rest.memory, ...point });
-    const injected = [new Evaluation(closed, 'off').of(loop.opening!.returned)];
-    return withReadings(loop, { ...closed, injected });
+    // Injected values stand at what the signals are at rest, so that the point is the closed loop's own. One that is computed
+    // from another is known a round after it, and no chain of them is longer than their number.
+    let leaves = withReadings(loop, { parameter: parameters, memory: rest.memory, ...point });
+    for (let round = 0; round < loop.openings.length; round++) {
+      const evaluation = new Evaluation(leaves, 'off');
+      const injected = loop.openings.map(({ returned }) => evaluation.of(returned));
+      leaves = withReadings(loop, { ...leaves, injected });
+    }
+    return leaves;
   }
 
   private edge(leaves: LeafValues): string | undefined {
@@ -96,7 +112,7 @@ export class LoopPoint {
       ...loop.readings.map(({ sensor, sampled }) => ({ name: sensor, node: sampled })),
       ...loop.memories.map(({ name, next }) => ({ name, node: next })),
       ...loop.held.map(({ name, value }) => ({ name, node: value })),
-      { name: loop.opening!.at, node: loop.opening!.returned },
+      ...loop.openings.map(({ at, returned }) => ({ name: at, node: returned })),
     ];
     for (const { name, node } of named) {
       const edge = edgeOf(node, evaluation);
@@ -104,6 +120,13 @@ export class LoopPoint {
     }
     return undefined;
   }
+}
+
+/** Where a requirement opens the loop, in an order that does not depend on how it is written. */
+export function openingsOf(spec: Spec, requirement: Requirement): string[] {
+  return openedAt(requirement)
+    .map((name) => sensorFedBy(spec, name) ?? name)
+    .sort();
 }
 
 /** A continuous signal that feeds exactly one sensor means that sensor. */

@@ -7,8 +7,9 @@ import { type ClosedLoopDecay, closedLoopDecay } from '../linear/modes.js';
 import type { StateEquations } from '../linear/state_equations.js';
 
 /**
- * A loop opened at a signal, of which measures take what they need: each result is worked out once. A signal that changes
- * more than once in a cycle of all controllers gives a lifted loop, with one input and output for each change.
+ * A loop opened at a signal or at several at once, of which measures take what they need: each result is worked out once. A
+ * signal that changes more than once in a cycle of all controllers gives a lifted loop, and so do several signals, with one
+ * input and output for each change of each signal.
  */
 export class LoopView {
   private single: LoopMargins | undefined;
@@ -18,21 +19,23 @@ export class LoopView {
 
   /**
    * @param equations the loop transfer L, −(returned / injected), over one cycle.
+   * @param periods time between two changes of each opened signal, s.
    * @param noiseGain root-mean-square gain from noise at the loop point to the measure's `of`, SI; where it has one.
    */
   constructor(
     readonly equations: StateEquations,
     readonly noiseGain?: (() => number) | undefined,
+    readonly periods: readonly number[] = [equations.period! / equations.b.columns],
   ) {}
 
-  /** How often the signal changes in a cycle of all controllers. */
+  /** How often the opened signals change in a cycle of all controllers, all counted together. */
   get changes(): number {
     return this.equations.b.columns;
   }
 
-  /** Time between two changes of the signal, s. */
+  /** Time between two changes of the one signal, of several of the one that changes most often, s. */
   get period(): number {
-    return this.equations.period! / this.changes;
+    return Math.min(...this.periods);
   }
 
   /** Whether the closed loop is stable. */

@@ -1,5 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { comparedLoopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -8,14 +8,14 @@ export const modulusMargin: LoopMeasure = {
   description: {
     name: 'modulus_margin',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [comparedLoopPointsKey],
     dimension: () => plainNumber,
     ratio: true,
     better: 'higher',
     least: 0,
     window: undefined,
     meaning:
-      'min |1 + L| over frequency = 1/max |S| (of several rates: one over the largest singular value of the lifted S); a plain number; 0 when the closed loop is unstable',
+      'min |1 + L| over frequency = 1/max |S| (of several rates or signals: one over the largest singular value of the matrix S); a plain number; 0 when the closed loop is unstable',
   },
   measure: ({ loop }) =>
     ofStableLoop(loop, 0, () =>

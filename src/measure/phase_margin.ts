@@ -1,5 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { loopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -8,7 +8,7 @@ export const phaseMargin: LoopMeasure = {
   description: {
     name: 'phase_margin',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [loopPointsKey],
     dimension: () => plainNumber,
     ratio: false,
     better: 'higher',
@@ -16,7 +16,7 @@ export const phaseMargin: LoopMeasure = {
     most: Math.PI,
     window: undefined,
     meaning:
-      'smallest |π + arg L| over all frequencies with |L| = 1 (of several rates: with an eigenvalue of the lifted L of size 1); an angle; infinite without a crossover, 0 when the closed loop is unstable',
+      'smallest |π + arg L| over all frequencies with |L| = 1 (of several rates or signals: with an eigenvalue of the matrix L of size 1, and the same phase on all at once); an angle; infinite without a crossover, 0 when the closed loop is unstable',
   },
   measure: ({ loop }) =>
     ofStableLoop(loop, 0, () =>

@@ -1,5 +1,5 @@
 import { plainNumber } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { comparedLoopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
@@ -8,14 +8,14 @@ export const sensitivityPeak: LoopMeasure = {
   description: {
     name: 'sensitivity_peak',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [comparedLoopPointsKey],
     dimension: () => plainNumber,
     ratio: true,
     better: 'lower',
     least: 0,
     window: undefined,
     meaning:
-      'max |S| over frequency, S = 1/(1 + L) (of several rates: the largest singular value of the lifted S); a ratio or dB; infinite when the closed loop is unstable',
+      'max |S| over frequency, S = 1/(1 + L) (of several rates or signals: the largest singular value of the matrix S); a ratio or dB; infinite when the closed loop is unstable',
   },
   measure: ({ loop }) =>
     ofStableLoop(loop, Number.POSITIVE_INFINITY, () =>

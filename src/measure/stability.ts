@@ -1,5 +1,5 @@
 import { rateDimension } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { loopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 
 /** How far the slowest mode of the closed loop is from not dying out. */
@@ -7,7 +7,7 @@ export const stability: LoopMeasure = {
   description: {
     name: 'stability',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [loopPointsKey],
     dimension: () => rateDimension,
     ratio: false,
     better: 'higher',

@@ -101,7 +101,11 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
   const controllers = readControllers(childOf(root, 'controllers'), reading);
   const actuators = readActuators(childOf(root, 'actuators'), reading);
   const scenarios = readScenarios(childOf(root, 'scenarios'), reading);
-  const requirements = readRequirements(childOf(root, 'requirements'), { scenarios, sensors }, reading);
+  const requirements = readRequirements(
+    childOf(root, 'requirements'),
+    { scenarios, sensors, controllers, actuators },
+    reading,
+  );
   const perturbation = readPerturbation(childOf(root, 'perturbation'), parameters, reading);
   const merge = readMerge(entryOf(root, 'merge'), requirements, reading);
   const spec: Spec = {

@@ -45,6 +45,14 @@ export function aKind(kind: NameKind): string {
   return /^[aeiou]/.test(kind) ? `an ${kind}` : `a ${kind}`;
 }
 
+/** "a sensor, controller signal or actuator": of several kinds. */
+export function oneOfKinds(kinds: readonly NameKind[]): string {
+  return `${aKind(kinds[0])}${kinds
+    .slice(1, -1)
+    .map((kind) => `, ${kind}`)
+    .join('')} or ${kinds.at(-1)}`;
+}
+
 /** The role in a checked expression; constants have become numbers by then. */
 export const roleOf: Readonly<Record<Exclude<NameKind, 'constant'>, NameRole>> = {
   'plant signal': 'signal',

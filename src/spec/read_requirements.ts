@@ -4,11 +4,12 @@ import { readAngularFrequency } from './read_angular_frequency.js';
 import { readAround } from './read_around.js';
 import { readBound } from './read_bound.js';
 import { readLimit } from './read_limit.js';
+import { type Openable, readLoopPoints } from './read_loop_points.js';
 import { readQuantity, readShare } from './read_quantity.js';
 import { readSignalKeys } from './read_signal_keys.js';
 import { readStatement } from './read_statement.js';
 import type { Reading } from './reading.js';
-import type { Dimension, HoldsFor, Requirement, Scenario, SensorDefinition } from './spec.js';
+import type { Dimension, HoldsFor, Requirement, Scenario } from './spec.js';
 import {
   childOf,
   entriesOf,
@@ -23,9 +24,8 @@ import { plainUnit } from './units.js';
 import type { MeasureDescription } from './vocabulary.js';
 
 /** What requirements refer to. */
-export interface Referred {
+export interface Referred extends Openable {
   scenarios: Scenario[];
-  sensors: SensorDefinition[];
 }
 
 /** `requirements:` each one measure with one limit. */
@@ -75,7 +75,13 @@ function readRequirement(
   reading: Reading,
 ): Requirement {
   checkKeys(item, measure, reading);
-  const signals = readSignalKeys(item, measure, referred.sensors, reading);
+  const points = measure.keys.some(({ kind }) => kind === 'loop_point')
+    ? (readLoopPoints(childOf(item, 'at'), measure, referred, reading) ?? [])
+    : [];
+  const signals: Record<string, string> = {
+    ...(points.length === 1 && { at: points[0] }),
+    ...readSignalKeys(item, measure, reading),
+  };
   // A loop measure has no `of`; without one the result is a plain number.
   const needsOf = measure.keys.some((key) => key.name === 'of');
   const ofDimension = needsOf ? dimensionOf(signals.of, reading) : plainNumber;
@@ -92,6 +98,7 @@ function readRequirement(
     place,
     measure: measure.name,
     signals,
+    ...(points.length > 1 && { atSeveral: points }),
     in: readScenarioName(item, measure, referred.scenarios, reading),
     quantities: readQuantities(item, measure, ofDimension, reading),
     ...readStatements(item, measure, ofDimension, reading),

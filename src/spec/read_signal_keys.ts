@@ -1,28 +1,28 @@
 import { formatMismatch } from './format_dimension.js';
-import { aKind, type NameEntry, type NameKind } from './names.js';
+import { aKind, type NameKind, oneOfKinds } from './names.js';
 import { suggestion } from './nearest.js';
 import { readCoefficientName } from './read_coefficient_name.js';
 import type { Reading } from './reading.js';
 import { sameUnit } from './same_unit.js';
-import type { SensorDefinition } from './spec.js';
 import { childOf, type MapTree, type TextTree, textOf } from './tree.js';
 import type { MeasureDescription, MeasureKey } from './vocabulary.js';
 
 const traced: readonly NameKind[] = ['plant signal', 'controller signal', 'sensor', 'actuator', 'input'];
-const openable: readonly NameKind[] = ['sensor', 'controller signal', 'actuator'];
 
-/** Reads the keys of a requirement that name signals or coefficients, and checks that `to` can be compared with `of`. */
+/**
+ * Reads the keys of a requirement that name signals or coefficients, but for where the loop is opened, and checks that `to`
+ * can be compared with `of`.
+ */
 export function readSignalKeys(
   item: MapTree,
   measure: MeasureDescription,
-  sensors: readonly SensorDefinition[],
   reading: Reading,
 ): Record<string, string> {
   const signals: Record<string, string> = {};
   for (const key of measure.keys) {
     const text = textOf(childOf(item, key.name));
     if (text === undefined) continue;
-    const found = readKey(text, key, sensors, reading);
+    const found = readKey(text, key, reading);
     if (found !== undefined) signals[key.name] = found;
   }
   checkComparable(item, signals, reading);
@@ -30,17 +30,11 @@ export function readSignalKeys(
 }
 
 /** Undefined also where the key names nothing. */
-function readKey(
-  text: TextTree,
-  key: MeasureKey,
-  sensors: readonly SensorDefinition[],
-  reading: Reading,
-): string | undefined {
+function readKey(text: TextTree, key: MeasureKey, reading: Reading): string | undefined {
   switch (key.kind) {
     case 'signal':
     case 'target':
-    case 'loop_point':
-      return readSignalKey(text, key, sensors, reading);
+      return readSignalKey(text, key, reading);
     case 'controller':
       return readController(text, key.signal, reading);
     case 'coefficient':
@@ -61,43 +55,19 @@ function readController(
   return undefined;
 }
 
-function readSignalKey(
-  text: TextTree,
-  key: MeasureKey,
-  sensors: readonly SensorDefinition[],
-  reading: Reading,
-): string | undefined {
+function readSignalKey(text: TextTree, key: MeasureKey, reading: Reading): string | undefined {
   const entry = reading.names.entries.get(text.text);
   reading.names.used.add(text.text);
-  const accepted = key.kind === 'loop_point' ? openable : traced;
-  if (entry !== undefined && accepted.includes(entry.kind)) return entry.name;
-  if (entry?.kind === 'plant signal') return onlySensorOf(entry, text, sensors, reading);
-  const known = [...reading.names.entries.values()].filter(({ kind }) => accepted.includes(kind));
+  if (entry !== undefined && traced.includes(entry.kind)) return entry.name;
+  const known = [...reading.names.entries.values()].filter(({ kind }) => traced.includes(kind));
   const near = suggestion(
     text.text,
     known.map(({ name }) => name),
   );
   const fault =
     entry === undefined ? `unknown signal \`${text.text}\`` : `\`${text.text}\` is ${aKind(entry.kind)}`;
-  const expected = entry === undefined ? '' : `, but \`${key.name}\` names ${article(accepted)}`;
+  const expected = entry === undefined ? '' : `, but \`${key.name}\` names ${oneOfKinds(traced)}`;
   reading.problems.add(text.place, `${fault}${expected}${near}`);
-  return undefined;
-}
-
-/** A loop opened at a continuous signal is opened at the one sensor that reads it. */
-function onlySensorOf(
-  entry: NameEntry,
-  text: TextTree,
-  sensors: readonly SensorDefinition[],
-  reading: Reading,
-): string | undefined {
-  const reads = sensors.filter(({ of }) => of.kind === 'name' && of.name === entry.name);
-  if (reads.length === 1) return reads[0].name;
-  const found = reads.length === 0 ? 'no sensor reads it by itself' : `${reads.length} sensors read it`;
-  reading.problems.add(
-    text.place,
-    `the loop cannot be opened at the plant signal \`${entry.name}\`, since ${found}; name ${article(openable)}`,
-  );
   return undefined;
 }
 
@@ -109,8 +79,4 @@ function checkComparable(item: MapTree, signals: Record<string, string>, reading
     to.place,
     `what \`${signals.of}\` is compared with ${formatMismatch(b.dimension, a.dimension)}`,
   );
-}
-
-function article(kinds: readonly NameKind[]): string {
-  return `a ${kinds.slice(0, -1).join(', ')} or ${kinds.at(-1)}`;
 }

@@ -315,8 +315,14 @@ const bound = z
   .array(z.tuple([text('a time'), text('a value')]).describe('a time and a value, such as [0 s, 1 V]'))
   .describe('corners in brackets, such as [[0 s, 1 V], [2 s, 1.1 V]]');
 
+/** Which measures take a list is checked when it is read. */
+const loopPoints = z
+  .union([text('a signal'), z.array(text('the name of a signal')).min(1)])
+  .describe('where the loop is opened: a signal, or a list such as [duty_pan, duty_tilt]');
+
 function measureSlot(key: MeasureKey) {
   if (key.kind === 'statement') return statementSlot().describe(key.meaning);
+  if (key.kind === 'loop_point') return loopPoints;
   return key.kind === 'bound' ? bound : text(key.meaning);
 }
 

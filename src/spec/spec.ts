@@ -264,6 +264,8 @@ export interface Requirement {
   measure: string;
   /** Signal names by key (`of`, `to`, `at` …), as the measure's description asks for them. */
   signals: Record<string, string>;
+  /** Where the loop is opened at several signals at once, in the order written; one alone is `signals.at`. */
+  atSeveral?: string[];
   /** Scenario name, for measures of a trace. */
   in: string | undefined;
   /** Numbers by key (`band` …) in SI. */
@@ -395,6 +397,3 @@ export interface SpecError {
   place: Place;
   message: string;
 }
-
-/** A spec, or all its errors: half a spec cannot be used by forgetting to look. */
-export type LoadedSpec = { kind: 'spec'; spec: Spec } | { kind: 'errors'; errors: SpecError[] };

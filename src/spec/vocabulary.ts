@@ -69,7 +69,8 @@ export interface BlockDescription {
 /**
  * One key of a measure.
  * `signal`: any signal that has a trace; `target`: an input or signal to which the response is compared;
- * `loop_point`: a sensor, controller or actuator signal where the loop is opened; `quantity`: a number with a dimension;
+ * `loop_point`: a sensor, controller or actuator signal where the loop is opened, or with `several` a list of them, of any
+ * units or only such as can be compared in size; `quantity`: a number with a dimension;
  * `share`: a plain number such as `5 %`; `frequency`: an angular frequency in rad/s, or a frequency in Hz which is multiplied by
  * 2π; `statement`: a comparison of signals, or a mapping that says when it holds; `bound`: corners of a bound, each a time and
  * a value of the dimension of `of`; `controller`: the name of a controller, of which a signal of the loop's own is followed;
@@ -77,16 +78,9 @@ export interface BlockDescription {
  */
 export type MeasureKey = { name: string; optional: boolean; meaning: string } & (
   | {
-      kind:
-        | 'signal'
-        | 'target'
-        | 'loop_point'
-        | 'share'
-        | 'frequency'
-        | 'statement'
-        | 'bound'
-        | 'coefficient';
+      kind: 'signal' | 'target' | 'share' | 'frequency' | 'statement' | 'bound' | 'coefficient';
     }
+  | { kind: 'loop_point'; several?: 'of_any_unit' | 'of_comparable_size' }
   | { kind: 'quantity'; dimension: (of: Dimension) => Dimension }
   | { kind: 'controller'; signal: (controller: string) => string }
 );

@@ -107,7 +107,7 @@ actuators: { drive: { of: push, unit: rad/s^2 } }
 ${step}
 requirements: [{ name: gain, measure: gain_margin, at: drive, at_least: 1.1 }]
 `);
-        const loop = expandLoop(spec, new Map(), { openAt: 'drive' });
+        const loop = expandLoop(spec, new Map(), { openAt: ['drive'] });
         const linearisation = new Linearisation(loop);
         const opened = openedLoop(linearisation, scheduleOf(loop, []), { input: [0] });
         const numerator = expected[`numerator_${names[i]}`].value as number[];

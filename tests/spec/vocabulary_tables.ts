@@ -83,7 +83,7 @@ function measureText(): string {
     '',
     table(head, rows('trace')),
     '',
-    'Of the loop, opened `at:` a signal:',
+    'Of the loop, opened `at:` a signal, or [at several](#opening-a-loop-at-several-signals) at once where the key is `at` …:',
     '',
     table(head, rows('loop')),
     '',
@@ -93,8 +93,10 @@ function measureText(): string {
   ].join('\n');
 }
 
-function keyText({ name, optional }: MeasureKey): string {
-  return optional ? `[\`${name}\`]` : `\`${name}\``;
+function keyText(key: MeasureKey): string {
+  const { name, optional } = key;
+  const more = key.kind === 'loop_point' && key.several !== undefined ? ' …' : '';
+  return optional ? `[\`${name}\`]` : `\`${name}\`${more}`;
 }
 
 /** A unit that shows what becomes of the signal's own. */

@@ -27,6 +27,10 @@ export class LoopFamily {
     const { loop } = point.linearisation;
     if (!timingIsCommon(loop)) throw new Unprovable('the timing of a controller moves with a parameter');
     if (loop.modes.length > 0) throw new Unprovable('the plant has a part that jumps');
+    if (loop.openings.length > 1) {
+      const names = loop.openings.map(({ at }) => at).join(', ');
+      throw new Unprovable(`the loop is opened at several signals at once (${names})`);
+    }
     this.schedule = scheduleOf(loop, space.nominal);
     this.derived = space.parameters.map(({ derived }) => derived && this.lowered(loop, derived));
     this.restsAtZero = this.zeroIsRest();
@@ -51,7 +55,7 @@ export class LoopFamily {
   private evaluation(field: SlopeField): SlopeEvaluation {
     const { loop } = this.point.linearisation;
     const closed = this.evaluationWith(field, () => field.constant(0));
-    return this.evaluationWith(field, () => closed.of(loop.opening!.returned));
+    return this.evaluationWith(field, () => closed.of(loop.openings[0].returned));
   }
 
   private evaluationWith(field: SlopeField, injected: () => Slope): SlopeEvaluation {

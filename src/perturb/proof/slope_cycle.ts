@@ -17,6 +17,7 @@ type Known = 'state' | 'held' | 'memory' | 'reading' | 'injected';
 
 /**
  * The loop transfer over one cycle of the schedule, as `openedLoop` gives it for one plant, for every plant of a box at once.
+ * The loop is opened at one signal.
  * @returns undefined where the opened signal changes more than once in a cycle.
  */
 export function openedLoopOver(
@@ -24,7 +25,7 @@ export function openedLoopOver(
   schedule: Schedule,
   evaluation: SlopeEvaluation,
 ): SlopeLoop | undefined {
-  if (schedule.cycle !== schedule.period[linearisation.loop.opening!.task]) return undefined;
+  if (schedule.cycle !== schedule.period[linearisation.loop.openings[0].task]) return undefined;
   return new SlopeCycle(linearisation, schedule, evaluation).run();
 }
 
@@ -171,7 +172,7 @@ class SlopeCycle {
 
   private compute(task: number): void {
     const { loop } = this.linearisation;
-    if (loop.opening!.task === task) this.inject();
+    if (loop.openings[0].task === task) this.inject();
     const from: Known[] = ['reading', 'memory', 'held', 'injected'];
     const memories = this.evaluate('memory', (i) => loop.memories[i].task === task, from);
     const channels = this.schedule.channels.flatMap((channel, at) => (channel.task === task ? [at] : []));

@@ -49,7 +49,9 @@ function specText({ signals, period = 0.1, arithmetic = 'float64', unit = '1', .
 }
 
 function expanded(law: Law, openAt?: string) {
-  return expandLoop(specOf(specText(law)), new Map(Object.entries(law.coefficients ?? {})), { openAt });
+  return expandLoop(specOf(specText(law)), new Map(Object.entries(law.coefficients ?? {})), {
+    openAt: openAt === undefined ? [] : [openAt],
+  });
 }
 
 /** One sample: the value of `x` and of the further inputs; the first in its declared unit, the others in SI. */
