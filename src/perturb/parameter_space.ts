@@ -9,15 +9,21 @@ export interface MoveBox {
   readonly most: readonly number[];
 }
 
+/** For each free parameter with a list of values the moves to them; undefined for those that glide between bounds. */
+export interface ListedMoves {
+  readonly listed: readonly (readonly number[] | undefined)[];
+}
+
 /**
  * The box of the free parameters. A plant is a vector of all parameters in SI, in the order of the spec; a *move* is a
  * vector with one number for each free parameter: 0 at nominal, -1 at the lower and 1 at the upper bound.
  */
-export class ParameterSpace implements MoveBox {
+export class ParameterSpace implements MoveBox, ListedMoves {
   /** Indices of the parameters that can move. */
   readonly free: readonly number[];
   readonly least: readonly number[];
   readonly most: readonly number[];
+  readonly listed: readonly (readonly number[] | undefined)[];
   readonly nominal: Float64Array;
   private readonly correlated: Correlate | undefined;
 
@@ -29,6 +35,12 @@ export class ParameterSpace implements MoveBox {
     this.free = parameters.flatMap(({ low, high }, i) => (low < high ? [i] : []));
     this.least = this.free.map((i) => (parameters[i].low < parameters[i].nominal ? -1 : 0));
     this.most = this.free.map((i) => (parameters[i].high > parameters[i].nominal ? 1 : 0));
+    this.listed = this.free.map((i) => {
+      const { distribution } = parameters[i];
+      return distribution?.kind === 'values'
+        ? distribution.values.map((value) => moveTo(value, parameters[i]))
+        : undefined;
+    });
     this.nominal = Float64Array.from(parameters, (parameter) => parameter.nominal);
     this.correlated = correlate(parameters, relations.correlations ?? []);
   }
@@ -49,11 +61,7 @@ export class ParameterSpace implements MoveBox {
 
   /** The move of a plant. */
   moveOf(values: ArrayLike<number>): Float64Array {
-    return Float64Array.from(this.free, (i) => {
-      const { nominal, low, high } = this.parameters[i];
-      const way = values[i] - nominal;
-      return way === 0 ? 0 : way / (way < 0 ? nominal - low : high - nominal);
-    });
+    return Float64Array.from(this.free, (i) => moveTo(values[i], this.parameters[i]));
   }
 
   /** A plant with the derived parameters made to follow the others. */
@@ -86,6 +94,11 @@ export class ParameterSpace implements MoveBox {
   private indexOf(name: string): number {
     return this.parameters.findIndex((parameter) => parameter.name === name);
   }
+}
+
+function moveTo(value: number, { nominal, low, high }: ParameterDefinition): number {
+  const way = value - nominal;
+  return way === 0 ? 0 : way / (way < 0 ? nominal - low : high - nominal);
 }
 
 function valueAt(parameter: ParameterDefinition, move: number): number {
