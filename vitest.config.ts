@@ -7,5 +7,7 @@ export default defineConfig({
     setupFiles: ['tests/repeatable.ts'],
     testTimeout: 60_000,
     hookTimeout: 120_000,
+    // Tests keep no state of their own, so that files may share what they load: half the processor time.
+    isolate: false,
   },
 });
