@@ -1,69 +1,68 @@
 import { sensitivityOf } from './closed_loop.js';
-import { sweepOf } from './frequency_sweep.js';
-import type { ClosedLoopRatio } from './loop_peaks.js';
+import { prepareLoopLevels } from './loop_levels.js';
+import type { LoopResponse } from './loop_response.js';
 import type { Peak } from './peak.js';
-import { polesOf } from './poles.js';
+import { frequencyNear, polesOf } from './poles.js';
+import { type Band, type GainProbe, polished, provenPeak } from './proven_peak.js';
 import { expectSingle } from './response.js';
 import { rootBetween } from './root_finding.js';
 import type { StateEquations } from './state_equations.js';
-import { transmissionZeros } from './transmission_zeros.js';
+import { prepareTransfer } from './transfer.js';
 
-/** A response of a loop: `open` without closing it, as a polynomial in L alone. */
-export type LoopResponse = ClosedLoopRatio & { open?: boolean };
-
-/** The loop transfer L itself. */
-export const LOOP_GAIN: LoopResponse = { loopWeight: 1, unitWeight: 0, open: true };
-
-/** The largest and the smallest size of a response over a band. */
-export interface BandExtremes {
-  largest: Peak;
-  smallest: Peak;
-}
+export { LOOP_GAIN, type LoopResponse } from './loop_response.js';
 
 /**
- * The extremes of a response of a loop transfer L over a band of frequencies, its ends included. Between them they are
- * zeros of the exact slope, sought between the points of a grid that is short near every pole and zero of L and of the
- * closed loop.
+ * The largest or the smallest size of a response of a loop transfer L over a band of frequencies, its ends included, proved
+ * to a share of 1e-10 by the frequencies at which the size is a level (see `provenPeak`). A size below 1e-13 counts as zero,
+ * one above 1e13 as without bound.
  * @param response `LOOP_GAIN`, or a closed-loop response.
- * @param low rad/s
- * @param high rad/s, up to half the sampling frequency.
- * @throws RangeError for several inputs or outputs, NumericFailure when the loop cannot be closed.
+ * @param band rad/s, up to half the sampling frequency.
+ * @throws RangeError for several inputs or outputs, NumericFailure when the loop cannot be closed or a search meets its cap.
  */
-export function extremesOverBand(
+export function extremeOverBand(
   loop: StateEquations,
   response: LoopResponse,
-  low: number,
-  high: number,
-): BandExtremes {
+  which: 'largest' | 'smallest',
+  band: Band,
+): Peak {
   expectSingle(loop);
-  const poles = polesOf(loop.a, loop.period);
-  const typical = Math.max(0, ...poles.map(({ real, imaginary }) => Math.hypot(real, imaginary))) || 1;
-  const features = [
-    ...poles,
-    ...polesOf(sensitivityOf(loop).a, loop.period),
-    ...transmissionZeros(loop, typical),
-  ];
-  const { transfer, frequencies } = sweepOf(loop, features);
+  const sensitivity = sensitivityOf(loop);
+  const probe = probeOf(loop, response, which);
+  const near = polesOf(sensitivity.a, loop.period).map((pole) => frequencyNear(pole, loop.period));
+  const within = near.filter((frequency) => frequency > band.low && frequency < band.high);
+  const start = [band.low, band.high, ...within]
+    .map((frequency) => ({ value: probe.gainAt(frequency), frequency }))
+    .reduce((best, peak) => (peak.value > best.value ? peak : best));
+  const levels = prepareLoopLevels(sensitivity, response);
+  const levelsOf = which === 'largest' ? levels : (gain: number) => levels(1 / gain);
+  const found = polished(
+    band.low < band.high ? provenPeak(levelsOf, start, probe, band) : start,
+    probe,
+    band,
+  );
+  return which === 'largest' ? found : { ...found, value: 1 / found.value };
+}
+
+/** The response looked at; where its smallest size is sought, one over it. */
+function probeOf(loop: StateEquations, response: LoopResponse, which: 'largest' | 'smallest'): GainProbe {
+  const transfer = prepareTransfer(loop);
   const parts = new Float64Array(8);
-  const sizeAt = (frequency: number): Peak => {
+  const sign = which === 'largest' ? 1 : -1;
+  const gainAt = (frequency: number): number => {
     transfer.evaluate(frequency, parts);
-    return { value: sizeOf(parts, response), frequency };
+    return sizeOf(parts, response) ** sign;
   };
   const slopeAt = (frequency: number): number => {
     transfer.evaluateWithSlope(frequency, parts);
-    return slopeOf(parts, response);
+    return sign * slopeOf(parts, response);
   };
-  const inside = frequencies.filter((frequency) => frequency > low && frequency < high);
-  const grid = [low, ...inside, ...(high > low ? [high] : [])];
-  const slopes = grid.map(slopeAt);
-  const turns = grid.slice(1).flatMap((to, i) => {
-    if (!(slopes[i] * slopes[i + 1] < 0)) return [];
-    return [rootBetween(slopeAt, grid[i], to)];
-  });
-  const peaks = [...grid, ...turns].map(sizeAt);
   return {
-    largest: peaks.reduce((best, peak) => (peak.value > best.value ? peak : best)),
-    smallest: peaks.reduce((best, peak) => (peak.value < best.value ? peak : best)),
+    gainAt,
+    peakBetween(left, right) {
+      if (!(slopeAt(left) > 0 && slopeAt(right) < 0)) return undefined;
+      const frequency = rootBetween(slopeAt, left, right);
+      return { value: gainAt(frequency), frequency };
+    },
   };
 }
 

@@ -1,8 +1,8 @@
-import { continuousImage } from './bilinear.js';
 import type { Complex } from './complex.js';
+import { prepareLevelFrequencies } from './level_frequencies.js';
 import type { Peak } from './peak.js';
-import { areStable, polesOf } from './poles.js';
-import { type GainProbe, provenPeak } from './proven_peak.js';
+import { areStable, frequencyNear, polesOf } from './poles.js';
+import { type GainProbe, polished, provenPeak } from './proven_peak.js';
 import { rootBetween } from './root_finding.js';
 import { largestSingularValue } from './singular_value.js';
 import type { StateEquations } from './state_equations.js';
@@ -25,30 +25,13 @@ export function largestGain(system: StateEquations): Peak {
     const value = frequency === Number.POSITIVE_INFINITY ? feedthroughGain(system) : probe.gainAt(frequency);
     if (value > start.value) start = { value, frequency };
   }
-  const image = period === undefined ? system : continuousImage(system);
-  return polished(provenPeak(image, start, probe, frequencyOfImage(period)), probe);
+  const band = { low: 0, high: end };
+  return polished(provenPeak(prepareLevelFrequencies(system), start, probe, band), probe, band);
 }
 
-/** The same peak with its frequency to the last digits, where it does not lie at an end of the range. */
-function polished(peak: Peak, { peakBetween }: GainProbe): Peak {
-  const { frequency } = peak;
-  if (frequency === undefined || frequency === 0 || frequency === Number.POSITIVE_INFINITY) return peak;
-  const found = peakBetween(frequency * (1 - POLISHED_OVER), frequency * (1 + POLISHED_OVER));
-  return found && found.value >= peak.value ? found : peak;
-}
-
-/** A peak proved to a share of 1e-10 is known to about the root of that in frequency, against its width. */
-const POLISHED_OVER = 1e-3;
-
-/** The frequency in rad/s that belongs to one of the continuous image of a system with this period. */
-export function frequencyOfImage(period: number | undefined): (imageFrequency: number) => number {
-  if (period === undefined) return (frequency) => frequency;
-  return (imageFrequency) => (2 * Math.atan((imageFrequency * period) / 2)) / period;
-}
-
-function frequenciesNear({ real, imaginary }: Complex, period: number | undefined): number[] {
-  if (period !== undefined) return [Math.abs(Math.atan2(imaginary, 1 + real)) / period];
-  return [Math.abs(imaginary), Math.hypot(real, imaginary)];
+function frequenciesNear(pole: Complex, period: number | undefined): number[] {
+  const near = frequencyNear(pole, period);
+  return period === undefined ? [near, Math.hypot(pole.real, pole.imaginary)] : [near];
 }
 
 function feedthroughGain({ d }: StateEquations): number {

@@ -1,4 +1,3 @@
-import { continuousImage } from './bilinear.js';
 import { sensitivityOf } from './closed_loop.js';
 import type { Complex } from './complex.js';
 import { gainCrossings } from './crossings.js';
@@ -16,8 +15,8 @@ export interface LoopAnalysis {
   sweep: FrequencySweep;
   /** What L tends to at infinite frequency, at its worst angle when there is a dead time; undefined for a sampled loop. */
   atInfinity: number | undefined;
-  /** 1/(1 + L) in continuous form, for proofs about its peaks; undefined with a dead time or for an unstable loop. */
-  sensitivityImage: StateEquations | undefined;
+  /** 1/(1 + L), for proofs about its peaks; undefined with a dead time or for an unstable loop. */
+  sensitivity: StateEquations | undefined;
 }
 
 /**
@@ -50,7 +49,7 @@ export function analyseLoop(loop: StateEquations, deadTime: number): LoopAnalysi
       ),
       sweep: sweepOf(loop, features, deadTime),
       atInfinity: -Math.abs(feedthrough),
-      sensitivityImage: undefined,
+      sensitivity: undefined,
     };
   }
   const stable = areStable(closed, period);
@@ -58,11 +57,7 @@ export function analyseLoop(loop: StateEquations, deadTime: number): LoopAnalysi
     stable,
     sweep: sweepOf(loop, features),
     atInfinity: period === undefined ? feedthrough : undefined,
-    sensitivityImage: stable
-      ? period === undefined
-        ? sensitivity
-        : continuousImage(sensitivity)
-      : undefined,
+    sensitivity: stable ? sensitivity : undefined,
   };
 }
 

@@ -1,34 +1,20 @@
 import type { FrequencySweep } from './frequency_sweep.js';
-import { frequencyOfImage } from './largest_gain.js';
 import type { LoopAnalysis } from './loop_analysis.js';
-import { fromRows, scale } from './matrix.js';
+import { prepareLoopLevels } from './loop_levels.js';
+import type { ClosedLoopRatio } from './loop_response.js';
 import type { Peak } from './peak.js';
 import { provenPeak } from './proven_peak.js';
 import { rootBetween } from './root_finding.js';
 
-/** A closed-loop response (loopWeight·L + unitWeight)/(1 + L). */
-export interface ClosedLoopRatio {
-  loopWeight: number;
-  unitWeight: number;
-}
-
-/** 1/(1 + L) */
-export const SENSITIVITY: ClosedLoopRatio = { loopWeight: 0, unitWeight: 1 };
-/** L/(1 + L) */
-export const COMPLEMENTARY: ClosedLoopRatio = { loopWeight: 1, unitWeight: 0 };
-/** 1/(1 + L) − 1/2 */
-export const BALANCED: ClosedLoopRatio = { loopWeight: -0.5, unitWeight: 0.5 };
+export { BALANCED, COMPLEMENTARY, SENSITIVITY } from './loop_response.js';
 
 /**
  * The largest size of a closed-loop response of a stable loop: the best of the sweep, then proved to be the largest.
  * With a dead time the sweep alone stands, because the proof needs a rational response.
  */
-export function peakOfLoop(
-  { sweep, atInfinity, sensitivityImage }: LoopAnalysis,
-  ratio: ClosedLoopRatio,
-): Peak {
+export function peakOfLoop({ sweep, atInfinity, sensitivity }: LoopAnalysis, ratio: ClosedLoopRatio): Peak {
   const start = sweptPeak(sweep, ratio, atInfinity);
-  if (sensitivityImage === undefined) return start;
+  if (sensitivity === undefined) return start;
   const parts = new Float64Array(4);
   const probe = {
     gainAt: (frequency: number): number => {
@@ -37,14 +23,8 @@ export function peakOfLoop(
     },
     peakBetween: (left: number, right: number) => refinedPeak(sweep, ratio, left, right),
   };
-  // (loopWeight·L + unitWeight)/(1 + L) = loopWeight + (unitWeight − loopWeight)/(1 + L)
-  const factor = ratio.unitWeight - ratio.loopWeight;
-  const image = {
-    ...sensitivityImage,
-    c: scale(sensitivityImage.c, factor),
-    d: fromRows([[ratio.loopWeight + factor * sensitivityImage.d.data[0]]]),
-  };
-  return provenPeak(image, start, probe, frequencyOfImage(sweep.period));
+  const high = sweep.period === undefined ? Number.POSITIVE_INFINITY : Math.PI / sweep.period;
+  return provenPeak(prepareLoopLevels(sensitivity, ratio), start, probe, { low: 0, high });
 }
 
 /** Grid values down to this share of the largest one are refined: between two points a peak rises by a few per cent only. */

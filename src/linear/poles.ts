@@ -35,3 +35,8 @@ function oneLessModulus(real: number, imaginary: number): number {
   const excess = 2 * real + real * real + imaginary * imaginary;
   return -excess / (1 + Math.sqrt(1 + excess));
 }
+
+/** The frequency in rad/s on the boundary of stability that is nearest to a pole, by its angle. @param pole as `polesOf` gives it. */
+export function frequencyNear({ real, imaginary }: Complex, period: number | undefined): number {
+  return period === undefined ? Math.abs(imaginary) : Math.abs(Math.atan2(imaginary, 1 + real)) / period;
+}

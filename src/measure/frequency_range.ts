@@ -1,13 +1,46 @@
-import { extremesOverBand, type LoopResponse } from '../linear/band_extremes.js';
+import type { LoopResponse } from '../linear/loop_response.js';
+import { plainNumber } from '../spec/dimension.js';
+import { frequencyRangeKeys, loopPointKey } from './keys.js';
 import type { LoopView } from './loop_view.js';
-import { type MeasureResult, measured, unformed } from './measure.js';
+import { type LoopContext, type LoopMeasure, type MeasureResult, measured, unformed } from './measure.js';
+import { ofSingleRate, ofStableLoop } from './stable_loop.js';
 
-/** The largest or smallest size of a response of the loop over the frequencies that a requirement names. */
-export function extremeOverRange(
+/** What one measure of the size of a response over a range of frequencies has of its own. */
+interface SizeOverRange {
+  name: string;
+  response: LoopResponse;
+  /** The extreme that counts: the largest size is better when lower, the smallest when higher. */
+  which: 'largest' | 'smallest';
+  meaning: string;
+}
+
+/** A measure of the largest or smallest size of a response of the loop over the frequencies that a requirement names. */
+export function sizeOverRange({ name, response, which, meaning }: SizeOverRange): LoopMeasure {
+  return {
+    description: {
+      name,
+      basis: 'loop',
+      keys: [loopPointKey, ...frequencyRangeKeys],
+      dimension: () => plainNumber,
+      ratio: true,
+      better: which === 'largest' ? 'lower' : 'higher',
+      least: 0,
+      window: undefined,
+      meaning,
+    },
+    // A response of the closed loop has no size where that is unstable; the loop itself has.
+    measure: ({ loop, quantity }) => {
+      const extreme = () => ofSingleRate(loop, () => extremeOverRange(loop, response, which, quantity));
+      return response.open ? extreme() : ofStableLoop(loop, Number.POSITIVE_INFINITY, extreme);
+    },
+  };
+}
+
+function extremeOverRange(
   loop: LoopView,
   response: LoopResponse,
-  which: 'largest' | 'smallest',
-  quantity: (name: string) => number | undefined,
+  which: SizeOverRange['which'],
+  quantity: LoopContext['quantity'],
 ): MeasureResult {
   const highest = Math.PI / loop.period;
   const single = quantity('frequency');
@@ -20,7 +53,8 @@ export function extremeOverRange(
     );
   }
   if (low > high) return unformed(`the range begins at ${hertz(low)}, above its end at ${hertz(high)}`);
-  return measured(extremesOverBand(loop.equations, response, low, Math.min(high, highest))[which].value);
+  const band = { low: Math.min(low, highest), high: Math.min(high, highest) };
+  return measured(loop.extremeOverBand(response, which, band).value);
 }
 
 function hertz(frequency: number): string {

@@ -1,9 +1,13 @@
+import { extremeOverBand } from '../linear/band_extremes.js';
 import { bandwidthOf } from '../linear/bandwidth.js';
 import { complementaryOf } from '../linear/closed_loop.js';
 import { type DiscMargin, discMarginOfLoop } from '../linear/disc_margin.js';
 import { type LiftedMargins, liftedMargins } from '../linear/lifted_margins.js';
+import type { LoopResponse } from '../linear/loop_response.js';
 import { type LoopMargins, marginsOfLoop } from '../linear/margins.js';
 import { type ClosedLoopDecay, closedLoopDecay } from '../linear/modes.js';
+import type { Peak } from '../linear/peak.js';
+import type { Band } from '../linear/proven_peak.js';
 import type { StateEquations } from '../linear/state_equations.js';
 
 /**
@@ -70,5 +74,10 @@ export class LoopView {
   /** Of a loop with one change a cycle, rad/s. @throws NumericFailure as `bandwidthOf`. */
   bandwidth(): number {
     return bandwidthOf(complementaryOf(this.equations));
+  }
+
+  /** Of a loop with one change a cycle. @param band rad/s. @throws NumericFailure as `extremeOverBand`. */
+  extremeOverBand(response: LoopResponse, which: 'largest' | 'smallest', band: Band): Peak {
+    return extremeOverBand(this.equations, response, which, band);
   }
 }

@@ -1,23 +1,10 @@
-import { LOOP_GAIN } from '../linear/band_extremes.js';
-import { plainNumber } from '../spec/dimension.js';
-import { extremeOverRange } from './frequency_range.js';
-import { frequencyRangeKeys, loopPointKey } from './keys.js';
-import type { LoopMeasure } from './measure.js';
-import { ofSingleRate } from './stable_loop.js';
+import { LOOP_GAIN } from '../linear/loop_response.js';
+import { sizeOverRange } from './frequency_range.js';
 
 /** The smallest loop gain over a range of frequencies, as rejection of slow disturbances asks for. */
-export const smallestLoopGain: LoopMeasure = {
-  description: {
-    name: 'smallest_loop_gain',
-    basis: 'loop',
-    keys: [loopPointKey, ...frequencyRangeKeys],
-    dimension: () => plainNumber,
-    ratio: true,
-    better: 'higher',
-    least: 0,
-    window: undefined,
-    meaning: 'min |L| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB',
-  },
-  measure: ({ loop, quantity }) =>
-    ofSingleRate(loop, () => extremeOverRange(loop, LOOP_GAIN, 'smallest', quantity)),
-};
+export const smallestLoopGain = sizeOverRange({
+  name: 'smallest_loop_gain',
+  response: LOOP_GAIN,
+  which: 'smallest',
+  meaning: 'min |L| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB',
+});
