@@ -35,19 +35,33 @@ export function measureName(measure: string): string {
   return oneLine(measure).replaceAll('_', ' ');
 }
 
-/** The measure with its signals and scenario: "overshoot of angle to target in slew", "phase margin at duty". */
+/** The measure with its signals and scenario: "overshoot of angle to target in slew", "phase margin at duty and valve". */
 export function measureInWords(
-  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'scenario'>,
+  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'atSeveral' | 'scenario'>,
 ): string {
-  const { measure, signals, scenario } = requirement;
-  const parts = Object.entries(signals).map(([key, signal]) => ` ${oneLine(key)} ${oneLine(signal)}`);
+  const { measure, scenario } = requirement;
+  const parts = signalsInWords(requirement).map(([key, signal]) => ` ${oneLine(key)} ${signal}`);
   return measureName(measure) + parts.join('') + (scenario === undefined ? '' : ` in ${oneLine(scenario)}`);
 }
 
-/** The measure with the one signal that it is taken from: "overshoot of angle". */
-export function measureWithSignal({ measure, signals }: Pick<RequirementRun, 'measure' | 'signals'>): string {
-  const key = ['of', 'at'].find((one) => Object.hasOwn(signals, one));
-  return key === undefined ? measureName(measure) : `${measureName(measure)} ${key} ${oneLine(signals[key])}`;
+/** The measure with what it is taken from: "overshoot of angle". */
+export function measureWithSignal(
+  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'atSeveral'>,
+): string {
+  const words = new Map(signalsInWords(requirement));
+  const key = ['of', 'at'].find((one) => words.has(one));
+  const name = measureName(requirement.measure);
+  return key === undefined ? name : `${name} ${key} ${words.get(key)}`;
+}
+
+function signalsInWords({
+  signals,
+  atSeveral,
+}: Pick<RequirementRun, 'signals' | 'atSeveral'>): [string, string][] {
+  const single = Object.entries(signals).map(([key, signal]): [string, string] => [key, oneLine(signal)]);
+  if (atSeveral === undefined) return single;
+  const names = atSeveral.map((name) => oneLine(name));
+  return [...single, ['at', `${names.slice(0, -1).join(', ')} and ${names.at(-1)}`]];
 }
 
 /** For which plants it must hold, where that is not every one: "for 99 % of plants", "at nominal". */

@@ -48,7 +48,7 @@ function requirementJson(requirement: RequirementRun, root: string | undefined):
     name: requirement.name,
     at: placeJson(requirement.place, root),
     measure: requirement.measure,
-    signals: { ...requirement.signals },
+    signals: { ...requirement.signals, ...(requirement.atSeveral && { at: requirement.atSeveral }) },
     scenario: requirement.scenario ?? null,
     reason: requirement.reason ?? null,
     limit: limitJson(requirement.limit),

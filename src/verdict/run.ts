@@ -71,6 +71,8 @@ export interface RequirementRun {
   measure: string;
   /** Signals by key as the spec gives them, and the scenario. */
   signals: Record<string, string>;
+  /** Where the loop is opened at several signals at once; one alone is among `signals`. */
+  atSeveral?: string[];
   scenario: string | undefined;
   reason: string | undefined;
   limit: Limit;
@@ -150,6 +152,8 @@ export interface SpecRun {
   scenarios: { name: string; lasts: number }[];
   /** How often the first step of the integration was halved for all plants. */
   halvings: number;
+  /** The work was interrupted: what is here was found before, and no requirement is met. */
+  partial?: true;
   /** Said of the `merge:` section. */
   merge: string | undefined;
   /** What changed since the latched reference was written. */

@@ -46,6 +46,14 @@ describe('a measure in words', () => {
     expect(measureWithSignal({ measure: 'cost', signals: {} })).toBe('cost');
   });
 
+  it('names all signals at which the loop is opened at once', () => {
+    const two = { measure: 'gain_margin', signals: {}, atSeveral: ['pan', 'tilt'], scenario: undefined };
+    expect(measureInWords(two)).toBe('gain margin at pan and tilt');
+    expect(measureWithSignal({ ...two, atSeveral: ['pan', 'tilt', 'focus'] })).toBe(
+      'gain margin at pan, tilt and focus',
+    );
+  });
+
   it('says for which plants it must hold', () => {
     expect(holdsForInWords({ holdsFor: 'all' })).toBe('for all plants');
     expect(holdsForInWords({ holdsFor: 'nominal' })).toBe('at the nominal plant');

@@ -53,6 +53,13 @@ describe('runJson', () => {
     });
   });
 
+  it('gives the signals of a loop that is opened at several as a list', () => {
+    const several = requirement({ measure: 'gain_margin', signals: {}, atSeveral: ['pan', 'tilt'] });
+    const [first] = parsed(sampleRun({ requirements: [several] })).requirements;
+    expect(first.signals).toEqual({ at: ['pan', 'tilt'] });
+    expect(named('AZ-6').signals).toEqual({ at: 'duty' });
+  });
+
   it('gives a coefficient with its stored bits and place, a scalar as a value and an array as values', () => {
     const [scalar, array] = parsed().coefficients;
     expect(scalar).toMatchObject({ value: kp.elements[0].value, stored: '0x3e99999a', type: 'float' });

@@ -21,7 +21,8 @@ export function partsOfSpec(spec: Spec): Record<string, string> {
 /** A digest of what a requirement asks for, apart from its limit. */
 export function askedOf(requirement: Requirement): string {
   const { measure, signals, in: scenario, quantities, statement, bounds, around, scale } = requirement;
-  return digestOf({ measure, signals, scenario, quantities, statement, bounds, around, scale });
+  const atSeveral = requirement.atSeveral?.toSorted();
+  return digestOf({ measure, signals, atSeveral, scenario, quantities, statement, bounds, around, scale });
 }
 
 /** What changed in a spec since the reference was written and bears on every requirement, in words for people. */

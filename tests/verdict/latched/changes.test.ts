@@ -166,6 +166,23 @@ describe('changes of the spec', () => {
     expect(of({ signals: { of: 'encoder', to: 'target' } })).toEqual(['what it measures']);
     expect(of({ name: 'new', limit: { at_most: 0.2 } })).toEqual([]);
   });
+
+  it('are told where the loop is opened at other signals, whatever their order', () => {
+    const margin = { ...spec.requirements[5], signals: {}, atSeveral: ['duty', 'encoder'] };
+    const reference = referenceWith({
+      requirements: {
+        [margin.name]: {
+          ...latchedOf(),
+          limit: margin.limit,
+          holds_for: margin.holdsFor,
+          asked: askedOf(margin),
+        },
+      },
+    });
+    const of = (atSeveral: string[]) => requirementChanges(reference, { ...margin, atSeveral });
+    expect(of(['encoder', 'duty'])).toEqual([]);
+    expect(of(['duty', 'command'])).toEqual(['what it measures']);
+  });
 });
 
 describe('changes of all requirements', () => {
