@@ -12,7 +12,7 @@ export const largestValue: TraceMeasure = {
     ratio: false,
     better: 'lower',
     window: 'from_first_event',
-    meaning: 'max of in the window; in the unit of `of`',
+    meaning: 'max of `of` in the window; in the unit of `of`',
   },
   measure: ({ of, window }) => measured(largest(of, window.from, window.until).value),
 };

@@ -12,7 +12,7 @@ export const smallestValue: TraceMeasure = {
     ratio: false,
     better: 'higher',
     window: 'from_first_event',
-    meaning: 'min of in the window; in the unit of `of`',
+    meaning: 'min of `of` in the window; in the unit of `of`',
   },
   measure: ({ of, window }) => measured(smallest(of, window.from, window.until).value),
 };

@@ -7,6 +7,9 @@ import type {
   SettingDescription,
   ShapeDescription,
 } from '../../src/spec/vocabulary.js';
+import type { Example } from './examples/example.js';
+import { blockExamples, measureGroups, shapeExamples } from './examples/index.js';
+import { exampleText, measureGroupText, shapeExampleText } from './examples/written_examples.js';
 
 const cell = (text: string): string => text.replaceAll('|', '\\|');
 const table = (head: string[], rows: string[][]): string =>
@@ -18,7 +21,8 @@ function shapeRows({ key, length, meaning, settings }: ShapeDescription): string
     const takes = kind === 'frequency' ? ', in Hz or as a time' : '';
     return `  - \`${name}\`${optional ? ' (may be left out)' : ''}: ${what}${takes}`;
   });
-  return [`- \`${key}\`: ${meaning}${during}`, ...own];
+  const examples = shapeExamples.filter(({ of }) => of === key).map(shapeExampleText);
+  return [`- \`${key}\`: ${meaning}${during}`, ...own, ...examples];
 }
 
 function blockText(block: BlockDescription): string {
@@ -42,8 +46,13 @@ function blockText(block: BlockDescription): string {
     `In ${rooms}.${takes} ${block.meaning}.`,
     '',
     table(['setting', 'takes', '', 'meaning'], rows),
+    ...examplesOf(block).flatMap((example) => ['', exampleText(example)]),
   ].join('\n');
 }
+
+/** Of a block in one room, or in both; of two blocks with one key each has its own room. */
+export const examplesOf = ({ key, rooms }: BlockDescription): Example[] =>
+  blockExamples.filter(({ of, room }) => of === key && (room === undefined || rooms.includes(room)));
 
 function kindOf(setting: SettingDescription): string {
   switch (setting.kind) {
@@ -78,19 +87,75 @@ function measureText(): string {
         measure.better,
       ]);
   const head = ['measure', 'keys', 'definition', 'unit', 'better'];
+  const part = (basis: MeasureDescription['basis'], title: string): string[] => [
+    title,
+    '',
+    table(head, rows(basis)),
+    ...measureGroups[basis].flatMap((group) => ['', measureGroupText(group)]),
+  ];
   return [
-    'Of a trace, with `in:` a scenario:',
+    ...part('trace', '### Of a trace\n\nWith `in:` a scenario.'),
     '',
-    table(head, rows('trace')),
+    ...part('loop', '### Of the loop\n\nOpened `at:` a signal.'),
     '',
-    'Of the loop, opened `at:` a signal, or [at several](#opening-a-loop-at-several-signals) at once where the key is `at` …:',
+    ...part(
+      'firmware',
+      '### Of the build alone\n\nWith `of:` a coefficient; the same for every plant, so that no scenario and no `holds_for:` is given.',
+    ),
     '',
-    table(head, rows('loop')),
+    '### Keys of the measures',
     '',
-    'Of the build alone, `of:` a coefficient; the same for every plant, so that no scenario and no `holds_for:` is given:',
-    '',
-    table(head, rows('firmware')),
+    table(['key', 'of', 'takes', 'meaning'], measureKeyRows()),
   ].join('\n');
+}
+
+/** The keys of measures, each once for each meaning that it has; which measure takes which stands in their tables. */
+function measureKeyRows(): string[][] {
+  const uses = new Map<string, { key: MeasureKey; measures: string[] }>();
+  for (const { name: measure, keys } of vocabulary.measures) {
+    for (const key of keys) {
+      const same = `${key.name} ${key.kind} ${key.meaning}`;
+      const use = uses.get(same) ?? { key, measures: [] };
+      use.measures.push(measure);
+      uses.set(same, use);
+    }
+  }
+  const all = [...uses.values()].sort((a, b) =>
+    a.key.name < b.key.name ? -1 : a.key.name > b.key.name ? 1 : 0,
+  );
+  return all.map(({ key, measures }) => [
+    `\`${key.name}\``,
+    measures.length > fewMeasures ? 'those that have it' : measures.map((name) => `\`${name}\``).join(', '),
+    takenBy(key),
+    key.meaning,
+  ]);
+}
+
+const fewMeasures = 6;
+
+function takenBy({ kind }: MeasureKey): string {
+  switch (kind) {
+    case 'signal':
+      return 'a signal';
+    case 'target':
+      return 'an input or a signal';
+    case 'loop_point':
+      return 'a sensor, controller signal or actuator';
+    case 'share':
+      return 'a share';
+    case 'frequency':
+      return 'a frequency in Hz or rad/s';
+    case 'statement':
+      return 'a statement';
+    case 'bound':
+      return 'a list of [time, value]';
+    case 'controller':
+      return 'a controller';
+    case 'coefficient':
+      return 'a coefficient';
+    case 'quantity':
+      return 'a quantity';
+  }
 }
 
 function keyText(key: MeasureKey): string {

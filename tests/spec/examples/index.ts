@@ -1,0 +1,20 @@
+import { actuatorMeasures } from './actuator_measures.js';
+import { buildMeasures } from './build_measures.js';
+import { controllerBlocks } from './controller_blocks.js';
+import type { Example, MeasureGroup } from './example.js';
+import { loopMeasures } from './loop_measures.js';
+import { pidExamples } from './pid.js';
+import { plantBlocks } from './plant_blocks.js';
+import { stepMeasures } from './step_measures.js';
+
+/** Examples of every block. */
+export const blockExamples: readonly Example[] = [...plantBlocks, ...pidExamples, ...controllerBlocks];
+
+export { shapeExamples } from './shapes.js';
+
+/** Examples of every measure, by what it is of. */
+export const measureGroups: Record<'trace' | 'loop' | 'firmware', readonly MeasureGroup[]> = {
+  trace: [...stepMeasures, ...actuatorMeasures],
+  loop: loopMeasures,
+  firmware: buildMeasures,
+};
