@@ -37,8 +37,8 @@ export interface Plant {
 
 /** Up to so many parameters every corner of the box is tried; beyond, a seeded choice of as many corners. */
 const parametersWithAllCorners = 10;
-const spreadPlants = 64;
-const edgeBiasedPlants = 64;
+/** Of plants of a low-discrepancy sequence, and of edge-biased ones, as many as of independent ones, and so many at most. */
+const mostExtras = 64;
 const mostDraws = 10_000;
 
 /**
@@ -58,9 +58,10 @@ export function* plantsToTry(
   yield* allowed(space, 'saved', saved);
   yield* allowed(space, 'single', singleExtremes(space));
   yield* allowed(space, 'corner', corners(space, seed));
-  yield* allowed(space, 'spread', spreadOut(space, seed));
+  const extras = Math.min(mostExtras, plants);
+  yield* allowed(space, 'spread', spreadOut(space, extras, seed));
   yield* independentPlants(space, plants, seed, onlyWhere?.[0]?.place);
-  yield* allowed(space, 'edge_biased', edgeBiased(space, seed));
+  yield* allowed(space, 'edge_biased', edgeBiased(space, extras, seed));
 }
 
 function* allowed(space: ParameterSpace, origin: PlantOrigin, all: Iterable<Float64Array>): Generator<Plant> {
@@ -88,11 +89,11 @@ function* corners(space: ParameterSpace, seed: number): Generator<Float64Array> 
 }
 
 /** The low-discrepancy points lie evenly between the bounds; with more parameters than it has dimensions the rest is drawn. */
-function* spreadOut(space: ParameterSpace, seed: number): Generator<Float64Array> {
+function* spreadOut(space: ParameterSpace, count: number, seed: number): Generator<Float64Array> {
   const points = sobolPoints(Math.min(space.size, sobolDimensions));
   const generator = xoroshiro128plus(seed ^ 0x2545f491);
   points.next();
-  for (let count = 0; count < spreadPlants; count++) {
+  for (let done = 0; done < count; done++) {
     const point = points.next().value;
     yield space.plantAt(
       Float64Array.from(space.free, (_, k) => {
@@ -127,7 +128,7 @@ function* independentPlants(
 }
 
 /** Plants as fast-check's bias to edges finds them: bounds, values next to them, and small moves from nominal. */
-function edgeBiased(space: ParameterSpace, seed: number): Float64Array[] {
+function edgeBiased(space: ParameterSpace, count: number, seed: number): Float64Array[] {
   const found: Float64Array[] = [];
   const moves = fc.tuple(
     ...space.free.map((_, k) => fc.double({ min: space.least[k], max: space.most[k], noNaN: true })),
@@ -135,6 +136,6 @@ function edgeBiased(space: ParameterSpace, seed: number): Float64Array[] {
   const collect = fc.property(moves, (drawn) => {
     found.push(space.plantAt(drawn));
   });
-  fc.assert(collect, { seed, numRuns: edgeBiasedPlants, endOnFailure: true });
+  fc.assert(collect, { seed, numRuns: count, endOnFailure: true });
   return found;
 }

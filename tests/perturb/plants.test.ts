@@ -81,6 +81,15 @@ describe('the plants to try', () => {
   });
 });
 
+it('a run with few independent plants has no more extras of each kind, and one without any has none', () => {
+  const space = new ParameterSpace(unitBox(3));
+  for (const count of [0, 5]) {
+    const plants = plantsOf(space, count);
+    expect(from('spread', plants)).toHaveLength(count);
+    expect(from('edge_biased', plants)).toHaveLength(count);
+  }
+});
+
 describe('many parameters', () => {
   it('with ten every corner is tried', () => {
     const corners = from('corner', plantsOf(new ParameterSpace(unitBox(10)), 0));
@@ -94,7 +103,7 @@ describe('many parameters', () => {
   });
 
   it('with more than the sequence has dimensions the rest is drawn', () => {
-    const points = from('spread', plantsOf(new ParameterSpace(unitBox(45)), 0));
+    const points = from('spread', plantsOf(new ParameterSpace(unitBox(45)), 70));
     expect(points).toHaveLength(64);
     expect(new Set(points.map((values) => values[44])).size).toBe(64);
   });
