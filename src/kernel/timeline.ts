@@ -65,8 +65,8 @@ export function timelineOf(
     at(Math.abs(tick - whole) < sameInstant ? whole : tick).changes.push(change);
   }
   const ticks = [...byTick.keys()].filter((tick) => tick < end).sort((a, b) => a - b);
-  const actions = new Indexed<Action>((action) => JSON.stringify(action));
-  const durations = new Indexed<number>(String);
+  const actions = new Indexed<Action, string>(keyOf);
+  const durations = new Indexed<number, number>((duration) => duration);
   const following = [...ticks.slice(1), end];
   return {
     times: Float64Array.from([...ticks.map((tick) => tick / rate), lasts]),
@@ -92,12 +92,16 @@ function latenessOf(
   };
 }
 
-/** Numbers equal items by their first appearance. */
-class Indexed<T> {
-  readonly items: T[] = [];
-  private readonly known = new Map<string, number>();
+function keyOf({ changes, deliver, compute }: Action): string {
+  return `${compute} ${deliver} ${changes.length === 0 ? '' : JSON.stringify(changes)}`;
+}
 
-  constructor(private readonly keyOf: (item: T) => string) {}
+/** Numbers equal items by their first appearance. */
+class Indexed<T, K> {
+  readonly items: T[] = [];
+  private readonly known = new Map<K, number>();
+
+  constructor(private readonly keyOf: (item: T) => K) {}
 
   indexOf(item: T): number {
     const key = this.keyOf(item);
