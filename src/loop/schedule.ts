@@ -35,17 +35,20 @@ const longestCycle = 1e7;
  */
 export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule {
   const evaluation = new Evaluation({ parameter: parameters });
-  const timeOf = (task: number, word: string, node: Node): Fraction => {
+  const timeOf = (task: number, word: string, node: Node): number => {
     const time = evaluation.of(node);
     const least = word === 'sampling period' ? Number.MIN_VALUE : 0;
-    if (time >= least && Number.isFinite(time))
-      return asFraction(dependsOn(node, ['parameter']) ? toNanosecond(time) : time);
+    if (time >= least && Number.isFinite(time)) return time;
     const { name, place } = loop.tasks[task];
     const expected = least === 0 ? '0 or more' : 'one above 0';
     throw new LoopError(`controller '${name}' has a ${word} of ${time} s, expected ${expected}`, place);
   };
-  const periods = loop.tasks.map(({ period }, task) => timeOf(task, 'sampling period', period));
-  const phases = loop.tasks.map(({ phase }, task) => timeOf(task, 'phase', phase));
+  const exactly = (time: number, node: Node): Fraction => asFraction(moves(node) ? toNanosecond(time) : time);
+  const periods = periodsOf(
+    loop,
+    loop.tasks.map(({ period }, task) => timeOf(task, 'sampling period', period)),
+  );
+  const phases = loop.tasks.map(({ phase }, task) => exactly(timeOf(task, 'phase', phase), phase));
   const jitters = loop.tasks.map(({ jitter, name, place }, task) => {
     const time = evaluation.of(jitter);
     const period = evaluation.of(loop.tasks[task].period);
@@ -55,7 +58,7 @@ export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule 
       place,
     );
   });
-  const delays = loop.channels.map(({ task, delay }) => timeOf(task, 'delay', delay));
+  const delays = loop.channels.map(({ task, delay }) => exactly(timeOf(task, 'delay', delay), delay));
   const perSecond = leastCommonMultiple(
     [...periods, ...phases, ...delays].map(({ denominator }) => denominator),
   );
@@ -70,6 +73,29 @@ export function scheduleOf(loop: Loop, parameters: ArrayLike<number>): Schedule 
     channels: loop.channels.map(({ task }, i) => ({ task, delay: inTicks(delays[i]) })),
     cycle: cycleOf(loop, period),
   };
+}
+
+function moves(node: Node): boolean {
+  return dependsOn(node, ['parameter']);
+}
+
+/** A ratio of periods with larger terms than this is one of clocks that have nothing to do with one another. */
+const largestTerm = 10_000n;
+
+/** Periods that move with a parameter keep a simple ratio to the first such one: the error of one clock moves them together. */
+function periodsOf({ tasks }: Loop, periods: readonly number[]): Fraction[] {
+  const first = tasks.findIndex(({ period }) => moves(period));
+  return periods.map((time, task) => {
+    if (!moves(tasks[task].period)) return asFraction(time);
+    const base = asFraction(toNanosecond(periods[first]));
+    const ratio = asFraction(time / periods[first]);
+    if (ratio.numerator > largestTerm || ratio.denominator > largestTerm)
+      return asFraction(toNanosecond(time));
+    return {
+      numerator: base.numerator * ratio.numerator,
+      denominator: base.denominator * ratio.denominator,
+    };
+  });
 }
 
 /** Times that differ from plant to plant would else have no common tick with the others. */

@@ -5,7 +5,7 @@ import { NumericFailure } from '../linear/numeric_failure.js';
 import { pointOfRest, type RestResult } from '../linear/point_of_rest.js';
 import { Evaluation } from '../loop/evaluate.js';
 import { expandLoop } from '../loop/expand.js';
-import type { Loop } from '../loop/loop.js';
+import { type Loop, LoopError } from '../loop/loop.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import { type Schedule, scheduleOf } from '../loop/schedule.js';
 import type { Requirement, Spec } from '../spec/spec.js';
@@ -88,6 +88,8 @@ export class PlantEvaluator {
       (_, index) => this.firmwareResults.get(index) ?? unformed('it was not measured'),
     );
     const plant = this.plantCase(parameters, halvings);
+    if (typeof plant === 'string')
+      return results.map((_, i) => this.firmwareResults.get(i) ?? unformed(plant));
     for (const group of this.traceGroups) this.traceResults(group, plant, results);
     for (const group of this.loopGroups) this.loopResults(group, plant, results);
     return results;
@@ -136,6 +138,7 @@ export class PlantEvaluator {
   staysStill(parameters: Float64Array): boolean[] {
     const still = this.spec.requirements.map(() => false);
     const plant = this.plantCase(parameters, 0);
+    if (typeof plant === 'string') return still;
     for (const group of this.traceGroups) {
       const traces = tracesOf(group, plant);
       if (typeof traces === 'string') continue;
@@ -146,10 +149,21 @@ export class PlantEvaluator {
     return still;
   }
 
-  private plantCase(parameters: Float64Array, halvings: number): PlantCase {
-    const schedule = this.commonSchedule ?? scheduleOf(this.loop, parameters);
+  /** The plant, or why its controllers cannot be timed: a fault of this plant alone, since the nominal one can. */
+  private plantCase(parameters: Float64Array, halvings: number): PlantCase | string {
+    const schedule = this.commonSchedule ?? this.scheduleOrFault(parameters);
+    if (typeof schedule === 'string') return schedule;
     const rest = pointOfRest(this.linearisation, parameters, this.loop.inputRest);
     return { parameters, rest, schedule, halvings };
+  }
+
+  private scheduleOrFault(parameters: Float64Array): Schedule | string {
+    try {
+      return scheduleOf(this.loop, parameters);
+    } catch (error) {
+      if (error instanceof LoopError) return error.message;
+      throw error;
+    }
   }
 
   private traceResults(group: TraceGroup, plant: PlantCase, results: MeasureResult[]): void {
