@@ -133,7 +133,8 @@ function schemaAt(schema: z.core.$ZodType, path: Path, tree: Tree | undefined): 
     const options = inner.options as z.core.$ZodType[];
     const wanted = tree?.kind === 'list' ? z.ZodArray : z.ZodObject;
     const option = options.find((candidate) => candidate instanceof wanted);
-    return option === undefined ? undefined : schemaAt(option, path, tree);
+    if (option !== undefined) return schemaAt(option, path, tree);
+    return path.length === 0 ? schema : undefined;
   }
   if (path.length === 0) return schema;
   const next = stepInto(inner, path[0]);

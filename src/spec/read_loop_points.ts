@@ -122,10 +122,11 @@ function checkComparable(
   });
   const unbounded = named.filter(({ entry }) => !hasRange(entry.name, openable));
   if (other === undefined || unbounded.length === 0) return;
-  const names = unbounded.map(({ entry }) => `\`${entry.name}\``).join(' and ');
+  const names = unbounded.map(({ entry }) => `\`${entry.name}\``);
+  const whose = [names.slice(0, -1).join(', '), names.at(-1)].filter((part) => part !== '').join(' and ');
   reading.problems.add(
     other.text.place,
-    `\`${name}\` compares signals in size, but ${unitInWords(other.entry)} and ${unitInWords(first.entry)}; give ${names} a \`range:\` of its own, so that each signal counts as a share of its range, or open the loop at signals of one dimension`,
+    `\`${name}\` compares signals in size, but ${unitInWords(other.entry)} and ${unitInWords(first.entry)}; give ${whose} a \`range:\`, so that every signal counts as a share of its own, or open the loop at signals of one dimension`,
   );
 }
 

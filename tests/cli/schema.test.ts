@@ -41,6 +41,11 @@ describe('pawl schema', () => {
     expect(faults(example)).toEqual([]);
   });
 
+  it('takes a loop that is opened at one signal or at several', () => {
+    for (const at of ['duty', '[duty]', '[duty, encoder]'])
+      expect(faults(demo.replaceAll('at: duty,', `at: ${at},`))).toEqual([]);
+  });
+
   const broken: [name: string, change: (spec: string) => string, fault: string][] = [
     ['a misspelt section', (spec) => spec.replace('inputs:', 'input:'), 'additionalProperties input'],
     [
@@ -64,6 +69,16 @@ describe('pawl schema', () => {
       'one bound for a range',
       (spec) => spec.replace('range: [-1, 1] }\n\nscen', 'range: [-1] }\n\nscen'),
       '/actuators/duty/range minItems',
+    ],
+    [
+      'an empty list of signals',
+      (spec) => spec.replace('at: duty,', 'at: [],'),
+      '/requirements/4/at minItems',
+    ],
+    [
+      'a mapping of signals',
+      (spec) => spec.replace('at: duty,', 'at: { first: duty },'),
+      '/requirements/4/at type',
     ],
     [
       'a build that is no list',

@@ -105,6 +105,8 @@ const blocks: BlockDescription[] = [
 const of: MeasureKey = { name: 'of', kind: 'signal', optional: false, meaning: 'the response' };
 const to: MeasureKey = { name: 'to', kind: 'target', optional: false, meaning: 'the target' };
 const at: MeasureKey = { name: 'at', kind: 'loop_point', optional: false, meaning: 'where it is opened' };
+const several: MeasureKey = { ...at, several: 'of_any_unit' };
+const compared: MeasureKey = { ...at, several: 'of_comparable_size' };
 const band: MeasureKey = { name: 'band', kind: 'share', optional: false, meaning: 'a share of the step' };
 
 function measure(
@@ -142,7 +144,7 @@ export const vocabulary: Vocabulary = {
     }),
     measure('saturated_share', 'trace', [of], { window: 'from_first_event' }),
     measure('phase_margin', 'loop', [at], { better: 'higher' }),
-    measure('gain_margin', 'loop', [at], { better: 'higher', ratio: true }),
-    measure('modulus_margin', 'loop', [at], { better: 'higher' }),
+    measure('gain_margin', 'loop', [several], { better: 'higher', ratio: true }),
+    measure('modulus_margin', 'loop', [compared], { better: 'higher' }),
   ],
 };
