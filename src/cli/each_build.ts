@@ -121,7 +121,7 @@ async function workOn<T>(
   const label = name === undefined ? spec.loop : `${spec.loop}, build ${name}`;
   telling.progress?.(`${label}: reading the build`);
   const latched = await readLatched(cwd, spec, name);
-  const build = await readBuild(cwd, spec, choice);
+  const build = await readBuild(cwd, spec, { ...choice, interrupted: telling.interrupted });
   const saved = [...(await savedPlants(cwd, spec)), ...(latched?.plants ?? [])];
   const target: Target = { spec, name, label, build, coefficients: valuesOf(build), saved, latched };
   try {

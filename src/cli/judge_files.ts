@@ -1,5 +1,6 @@
 import { plotsOf } from '../plots/index.js';
 import type { Fault as SpecFault, SpecPlots } from '../report/index.js';
+import { notCompared } from '../verdict/interrupted.js';
 import { type JudgedSpec, type JudgeOptions, judgeSpec } from '../verdict/judge_spec.js';
 import type { FinishedRun, SpecRun } from '../verdict/run.js';
 import { eachBuild, type SpecChoice, type Target, type Telling } from './each_build.js';
@@ -39,9 +40,16 @@ export async function judgeFiles(
 
 /** The whole of what was judged. */
 export function judgedFiles(results: readonly JudgedTarget[], faults: SpecFault[]): JudgedFiles {
+  const partial = results.filter(({ run }) => run.partial);
   return {
     run: { version, specs: results.map(({ run }) => run) },
-    faults,
+    faults: [
+      ...faults,
+      ...partial.map(({ run: { file } }) => ({
+        specFile: file,
+        messages: [`${file}: interrupted before it was finished; no requirement of it is taken for met`],
+      })),
+    ],
     plots: () => results.map(({ plots }) => plots()),
   };
 }
@@ -60,12 +68,26 @@ export async function judgeTarget(
   const started = performance.now();
   const { latched } = setupOf(target);
   const judged = await judgeSpec(spec, coefficients, { saved, latched, ...options });
-  const held = await heldAgainstLatched(target, judged, today, options);
+  const held = judged.partial ? {} : await heldOrInterrupted(target, judged, today, options);
   const seconds = (performance.now() - started) / 1000;
   return {
     run: specRun(target, { ...judged, ...held }, seconds),
     plots: () => plotsOf(spec, coefficients, judged),
   };
+}
+
+async function heldOrInterrupted(
+  target: Target,
+  judged: JudgedSpec,
+  today: string,
+  options: JudgeOptions,
+): Promise<Partial<SpecRun>> {
+  try {
+    return await heldAgainstLatched(target, judged, today, options);
+  } catch (error) {
+    if (!options.watch?.signal?.aborted) throw error;
+    return { requirements: judged.requirements.map(notCompared), partial: true };
+  }
 }
 
 /** The run of a build, judged and perhaps held against its latched reference. */

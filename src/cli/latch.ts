@@ -76,7 +76,9 @@ async function toWrite(
       `${spec.file}: has no merge section, which says where its latched reference is: merge: { reference: … }`,
     ]);
   }
-  const run = specRun(target, await judge(), 0);
+  const judged = await judge();
+  if (judged.partial) throw new Fault([`${spec.file}: interrupted before it was judged to the end`]);
+  const run = specRun(target, judged, 0);
   const law = build?.law ?? [];
   const path = referencePath(cwd, spec, name);
   const counts = `${run.requirements.length} requirements and ${run.coefficients.length} coefficients`;

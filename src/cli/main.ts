@@ -5,8 +5,13 @@ import { type ExitStatus, Fault, isoDay } from './surroundings.js';
 import { version } from './version.js';
 
 const interrupt = new AbortController();
-process.once('SIGINT', () => interrupt.abort());
-process.once('SIGTERM', () => interrupt.abort());
+for (const signal of ['SIGINT', 'SIGTERM', 'SIGHUP'] as const) {
+  process.on(signal, () => {
+    if (!interrupt.signal.aborted) return interrupt.abort();
+    process.stderr.write('interrupted again: ended at once, and reports may be missing\n');
+    process.exit(2);
+  });
+}
 // Who reads only the beginning of what is printed has seen enough.
 process.stdout.on('error', (error: NodeJS.ErrnoException) => {
   if (error.code !== 'EPIPE') throw error;

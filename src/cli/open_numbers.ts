@@ -30,17 +30,22 @@ type SourceOrigin = ChosenOrigin & { kind: 'source' };
 
 /**
  * Opens what holds the numbers of a build.
+ * @param interrupted aborted when the user ends the work; ends programs that are run for it.
  * @throws {Fault} at the place in the spec that names it.
  */
-export async function openNumbers(origin: ChosenOrigin, folders: Folders): Promise<FirmwareImage> {
+export async function openNumbers(
+  origin: ChosenOrigin,
+  folders: Folders,
+  interrupted?: AbortSignal,
+): Promise<FirmwareImage> {
   switch (origin.kind) {
     case 'image':
       return openImageOf(origin, folders);
     case 'source':
-      return openSourceOf(origin, folders);
+      return openSourceOf(origin, folders, interrupted);
     case 'command':
       return placed(origin.place, folders, () =>
-        openCommand({ command: origin.command, cwd: folders.folder }),
+        openCommand({ command: origin.command, cwd: folders.folder, interrupted }),
       );
   }
 }
@@ -113,14 +118,25 @@ async function beginsLikeElf(path: string): Promise<boolean> {
   }
 }
 
-async function openSourceOf(origin: SourceOrigin, folders: Folders): Promise<ValuesImage> {
+async function openSourceOf(
+  origin: SourceOrigin,
+  folders: Folders,
+  interrupted: AbortSignal | undefined,
+): Promise<ValuesImage> {
   const place = origin.replaced ? undefined : origin.place;
   const path = resolve(folders.folder, origin.path);
   const name = shownPath(folders.cwd, path);
   const { includePaths, defines, compiler } = origin;
   const image = await placed(place, folders, async () => {
     await mustExist(path, name);
-    return openSource({ path: origin.path, cwd: folders.folder, includePaths, defines, compiler });
+    return openSource({
+      path: origin.path,
+      cwd: folders.folder,
+      includePaths,
+      defines,
+      compiler,
+      interrupted,
+    });
   });
   return { ...image, name, values: withRelativePlaces(image.values, folders.folder) };
 }

@@ -25,7 +25,7 @@ export interface ReadOptions extends BuildOptions {
 /** Prints the coefficients of a spec, or of an image, as the build holds them, or what differs from another image. */
 export async function read(options: ReadOptions, around: Surroundings): Promise<ExitStatus> {
   const isSpec = /\.ya?ml$/.test(options.source);
-  const read = isSpec ? await readOfSpec(options, around.cwd) : await readOfImage(options, around.cwd);
+  const read = isSpec ? await readOfSpec(options, around) : await readOfImage(options, around.cwd);
   around.print(options.json ? read.json() : read.text());
   return 0;
 }
@@ -36,11 +36,14 @@ interface Shown {
   json: () => string;
 }
 
-async function readOfSpec(options: ReadOptions, cwd: string): Promise<Shown> {
+async function readOfSpec(
+  options: ReadOptions,
+  { cwd, interrupted }: Pick<Surroundings, 'cwd' | 'interrupted'>,
+): Promise<Shown> {
   if (options.paths.length > 0)
     throw new Fault([`'pawl read SPEC' shows what the spec names, so '${options.paths[0]}' means nothing`]);
   const spec = await readSpec(cwd, options.source);
-  const build = await readBuild(cwd, spec, options);
+  const build = await readBuild(cwd, spec, { ...options, interrupted });
   if (!build) throw new Fault([`${spec.file}: has no firmware section, so there is nothing to read`]);
   if (options.against !== undefined) {
     const before = await readBuild(cwd, spec, { image: options.against, skipBuild: true });

@@ -24,6 +24,8 @@ export interface BuildOptions {
   /** Relative to the working folder. */
   image: string | undefined;
   skipBuild: boolean;
+  /** Aborted when the user ends the work; ends what is run to get the numbers. */
+  interrupted?: AbortSignal;
 }
 
 /** The numbers of a build, and where they come from. */
@@ -54,8 +56,9 @@ export async function readBuild(
   const folders = { cwd, folder: dirname(resolve(cwd, spec.file)) };
   const origin = chosenOrigin(spec.file, firmware, options, folders);
   const wanted = firmware.build && !origin.replaced && !options.skipBuild;
-  const build = wanted ? await runBuildOf(firmware, origin, folders) : undefined;
-  const image = await openNumbers(origin, folders);
+  const { interrupted } = options;
+  const build = wanted ? await runBuildOf(firmware, origin, folders, interrupted) : undefined;
+  const image = await openNumbers(origin, folders, interrupted);
   const places = [
     cwd,
     folders.folder,
@@ -84,7 +87,12 @@ function chosenOrigin(
   return { ...numbers, path: relative(folder, resolve(cwd, image)), replaced: true };
 }
 
-async function runBuildOf(firmware: Firmware, origin: ChosenOrigin, folders: Folders): Promise<BuildRecord> {
+async function runBuildOf(
+  firmware: Firmware,
+  origin: ChosenOrigin,
+  folders: Folders,
+  interrupted: AbortSignal | undefined,
+): Promise<BuildRecord> {
   // The reader of specs lets no build stand beside a command.
   const path = origin.kind === 'command' ? '' : origin.path;
   try {
@@ -93,6 +101,7 @@ async function runBuildOf(firmware: Firmware, origin: ChosenOrigin, folders: Fol
       cwd: folders.folder,
       timeLimitSeconds: buildTimeLimitSeconds,
       imagePath: resolve(folders.folder, path),
+      interrupted,
     });
   } catch (error) {
     throw asFault(error, firmware.place, folders);

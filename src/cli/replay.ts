@@ -62,7 +62,9 @@ export async function replay(options: ReplayOptions, around: Surroundings): Prom
       `${spec.file}: has no requirement '${options.requirement}' any more; run 'pawl check' again`,
     ]);
   }
-  const build = await readBuild(cwd, spec, { image: imageOf(spec, reported, options), skipBuild: true });
+  const { interrupted } = around;
+  const choice = { image: imageOf(spec, reported, options), skipBuild: true, interrupted };
+  const build = await readBuild(cwd, spec, choice);
   const isSame = build?.provenance.sha256 === reported.provenance?.sha256;
   const values = plantOf(spec, entry.shrunk?.plant ?? entry.plant);
   const coefficients = valuesOf(build);

@@ -1,15 +1,14 @@
 import { createHash } from 'node:crypto';
 import { readFile, stat } from 'node:fs/promises';
 import { FirmwareError, quoted } from './failure.js';
-import { watchGroup } from './process_group.js';
+import { type ProgramLimits, watchGroup } from './process_group.js';
 
 /** What to build, where, and what comes out. */
-export interface BuildRequest {
+export interface BuildRequest extends ProgramLimits {
   /** Program and arguments; no shell is involved. */
   command: readonly string[];
   /** Folder to run it in. */
   cwd: string;
-  timeLimitSeconds: number;
   /** The image which the build makes. */
   imagePath: string;
 }
@@ -32,7 +31,8 @@ const mostOutput = 64 * 1024;
 const lastLines = 8;
 
 /**
- * Runs a build command without a shell, ends it with all its children at the time limit, and checks that the image is there.
+ * Runs a build command without a shell, ends it with all its children at the time limit or when it is interrupted, and checks
+ * that the image is there.
  * @throws FirmwareError `build_failed`, `build_too_slow` or `image_missing`, with the last lines of the output
  */
 export async function runBuild(request: BuildRequest): Promise<BuildRecord> {
@@ -90,12 +90,14 @@ async function run(program: string, args: string[], request: BuildRequest): Prom
       outputCut = true;
     }
   });
-  const group = watchGroup(subprocess.pid, request.timeLimitSeconds);
-  const result = await Promise.race([subprocess, group.ended]);
-  group.release();
+  const result = await watchGroup(subprocess, request);
   const command = quoted([program, ...args].join(' '));
+  if (result === 'too slow' || result === 'interrupted') subprocess.all?.destroy();
+  if (result === 'interrupted') {
+    const failure = new FirmwareError('build_failed', `the build ${command} was interrupted`);
+    return { output, outputCut, failure };
+  }
   if (result === 'too slow') {
-    subprocess.all?.destroy();
     const limit = `the build ${command} was ended after its time limit of ${request.timeLimitSeconds} s`;
     return { output, outputCut, failure: new FirmwareError('build_too_slow', limit + lastOf(output)) };
   }

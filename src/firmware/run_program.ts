@@ -1,11 +1,10 @@
 import { FirmwareError, quoted } from './failure.js';
-import { watchGroup } from './process_group.js';
+import { type ProgramLimits, watchGroup } from './process_group.js';
 
 /** A program to run without a shell. */
-export interface ProgramRequest {
+export interface ProgramRequest extends ProgramLimits {
   command: readonly string[];
   cwd: string;
-  timeLimitSeconds: number;
   /** What the program reads from its standard input. */
   input?: string;
 }
@@ -32,9 +31,8 @@ export async function outputOf(request: ProgramRequest): Promise<string> {
     stripFinalNewline: false,
     detached: process.platform !== 'win32',
   });
-  const group = watchGroup(subprocess.pid, request.timeLimitSeconds);
-  const result = await Promise.race([subprocess, group.ended]);
-  group.release();
+  const result = await watchGroup(subprocess, request);
+  if (result === 'interrupted') throw new FirmwareError('build_failed', `${written} was interrupted`);
   if (result === 'too slow') {
     throw new FirmwareError(
       'build_too_slow',

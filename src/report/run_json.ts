@@ -27,6 +27,7 @@ function specJson(spec: SpecRun, root: string | undefined): Json {
   return {
     file: portablePath(spec.file, root),
     ...(spec.build !== undefined && { build: spec.build }),
+    ...(spec.partial && { partial: true }),
     loop: spec.loop,
     seed: spec.seed,
     confidence: spec.confidence,

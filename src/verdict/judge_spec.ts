@@ -5,6 +5,7 @@ import type { Effect } from '../perturb/screening.js';
 import type { Spec } from '../spec/spec.js';
 import { claimOf } from './claim.js';
 import { Crew, type Watch } from './crew.js';
+import { interruptedRequirement } from './interrupted.js';
 import { parameterValues } from './parameter_values.js';
 import type {
   Effort,
@@ -17,11 +18,14 @@ import type {
 } from './run.js';
 import { type Scrutiny, scrutinise } from './scrutinise.js';
 import type { Tally, TriedPlant } from './tally.js';
-import { tryPlants } from './try_plants.js';
+import { Trying, tryPlants } from './try_plants.js';
 import { verdictOf } from './verdict_of.js';
 
 /** What judging adds to a spec's run. */
-export type JudgedSpec = Pick<SpecRun, 'requirements' | 'plants' | 'halvings' | 'effort' | 'triedSeconds'>;
+export type JudgedSpec = Pick<
+  SpecRun,
+  'requirements' | 'plants' | 'halvings' | 'effort' | 'triedSeconds' | 'partial'
+>;
 
 /** How a spec is judged; the result does not depend on the number of workers. */
 export interface JudgeOptions {
@@ -38,7 +42,8 @@ export interface JudgeOptions {
 }
 
 /**
- * Tries every plant of a spec against every requirement, and scrutinises each requirement.
+ * Tries every plant of a spec against every requirement, and scrutinises each requirement. Where it is interrupted after the
+ * first plants, what these gave is `partial`, with every requirement unjudged; before them the reason is thrown.
  * @throws {LoopError} where the build's numbers do not fit the spec.
  */
 export async function judgeSpec(
@@ -48,10 +53,12 @@ export async function judgeSpec(
 ): Promise<JudgedSpec> {
   const { workers, saved = [], latched, watch } = options;
   const crew = options.crew ?? new Crew({ spec, coefficients, latched }, workers, watch);
+  const space = new ParameterSpace(spec.parameters, spec.perturbation);
+  const trying = new Trying(spec, space, crew);
   try {
-    const space = new ParameterSpace(spec.parameters, spec.perturbation);
     const started = performance.now();
-    const { tallies, landmarks, effects, halvings, plants } = await tryPlants(spec, space, crew, saved);
+    const tried = await tryPlants(spec, space, crew, saved, trying);
+    const { tallies, landmarks, effects, halvings, plants } = tried;
     const triedSeconds = (performance.now() - started) / 1000;
     const scrutinies = await Promise.all(
       spec.requirements.map((_, index) =>
@@ -70,9 +77,21 @@ export async function judgeSpec(
       effort: sumOf(scrutinies.map(({ effort }) => effort)),
       triedSeconds,
     };
+  } catch (error) {
+    if (!watch?.signal?.aborted || !trying.tallies[0]?.nominal) throw error;
+    return interruptedSpec(spec, trying);
   } finally {
     await crew.dismiss();
   }
+}
+
+function interruptedSpec(spec: Spec, { tallies, counts, halvings }: Trying): JudgedSpec {
+  const effort = { searched: 0, shrinking: 0, reach: 0 };
+  const requirements = tallies.map((tally, index) => {
+    const scrutiny = { worst: tally.worst[0], shrunk: undefined, reach: undefined, proof: undefined, effort };
+    return interruptedRequirement(requirementRun(spec, index, tally, scrutiny, []));
+  });
+  return { requirements, plants: counts, halvings, effort, partial: true };
 }
 
 function requirementRun(

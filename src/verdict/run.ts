@@ -152,6 +152,8 @@ export interface SpecRun {
   scenarios: { name: string; lasts: number }[];
   /** How often the first step of the integration was halved for all plants. */
   halvings: number;
+  /** The work was interrupted: what is here was found before, and no requirement is met. */
+  partial?: true;
   /** Said of the `merge:` section. */
   merge: string | undefined;
   /** What changed since the latched reference was written. */

@@ -31,14 +31,15 @@ const largestRank = 10;
  * Tries every plant against every requirement. The steps are settled on the nominal plant and the corners; the finest of them
  * then serves every plant.
  * @param saved counterexamples of earlier runs, tried right after the nominal plant.
+ * @param trying takes in what is tried; whoever hands it in has it also where the work ends early.
  */
 export async function tryPlants(
   spec: Spec,
   space: ParameterSpace,
   crew: Crew,
   saved: readonly Float64Array[],
+  trying = new Trying(spec, space, crew),
 ): Promise<TriedSpec> {
-  const trying = new Trying(spec, space, crew);
   const plants = plantsToTry(space, spec.perturbation, saved);
   const first: Plant[] = [];
   let next = plants.next();
@@ -60,7 +61,8 @@ export async function tryPlants(
 /** These come first: the few plants on which the steps are settled, and those between them. */
 const settledOrigins: ReadonlySet<PlantOrigin> = new Set(['nominal', 'saved', 'single', 'corner']);
 
-class Trying {
+/** What was tried so far. */
+export class Trying {
   readonly tallies: Tally[];
   readonly landmarks: Ranked[][];
   readonly counts = Object.fromEntries(

@@ -110,6 +110,21 @@ describe('a build', () => {
     expect(await isGone(child)).toBe(true);
   });
 
+  test.each([100, 0])(
+    'that is interrupted %i ms after its start is ended with its children',
+    async (after) => {
+      const cwd = freshFolder();
+      const code = `require('node:child_process').spawn(process.execPath, ['-e', 'setInterval(() => {}, 1000)'], { stdio: 'inherit' });
+      require('node:fs').writeFileSync('pid', String(process.pid)); setInterval(() => {}, 1000);`;
+      const interrupted = after === 0 ? AbortSignal.abort() : AbortSignal.timeout(after);
+      const error = await failureOf(runBuild({ ...request(cwd, script(cwd, code)), interrupted }));
+      expect(error.code).toBe('build_failed');
+      expect(error.message).toMatch(/^the build .* was interrupted$/);
+      if (existsSync(join(cwd, 'pid')))
+        expect(await isGone(Number(readFileSync(join(cwd, 'pid'), 'utf8')))).toBe(true);
+    },
+  );
+
   test('that prints without end keeps only the end', async () => {
     const cwd = freshFolder();
     const code = `${makeImage} for (let i = 0; i < 40000; i++) console.log('line ' + i + ' of a very talkative compiler');`;
@@ -191,7 +206,9 @@ describe('a program which prints coefficients', () => {
     ['another name', '{"kp": 1}', 'kq', /has no “kq”; nearest: “kp”/],
     ['a name of every object', '{"kp": 1}', 'constructor', /has no “constructor”/],
   ])('%s is an error', async (_, printed, at, message) => {
-    expect(() => open(printed).then((image) => readCoefficient(image, asked(at)))).rejects.toThrow(message);
+    await expect(() => open(printed).then((image) => readCoefficient(image, asked(at)))).rejects.toThrow(
+      message,
+    );
   });
 
   test.each([

@@ -1,6 +1,7 @@
 import { readFile } from 'node:fs/promises';
 import { isAbsolute, relative, resolve } from 'node:path';
 import { FirmwareError } from '../failure.js';
+import type { ProgramLimits } from '../process_group.js';
 import { outputOf } from '../run_program.js';
 import type { NamedValue, ValueNode } from '../values/value_tree.js';
 import type { ValuesImage } from '../values/values_image.js';
@@ -11,7 +12,7 @@ import { type DataModel, formatOf, usualModel } from './c_type.js';
 import { TokenReader } from './token_reader.js';
 
 /** A C or C++ source or header, and how to preprocess it. */
-export interface SourceRequest {
+export interface SourceRequest extends Partial<ProgramLimits> {
   /** Path of the file, in `cwd`. */
   path: string;
   cwd: string;
@@ -22,7 +23,6 @@ export interface SourceRequest {
   compiler?: readonly string[];
   /** Widths of types on the target; those of a 32-bit target by default. */
   dataModel?: Partial<DataModel>;
-  timeLimitSeconds?: number;
 }
 
 const defaultSeconds = 30;
@@ -67,7 +67,13 @@ async function preprocess(request: SourceRequest, input: string, flags: string[]
     '-',
   ];
   const timeLimitSeconds = request.timeLimitSeconds ?? defaultSeconds;
-  const text = await outputOf({ command, cwd: request.cwd, input, timeLimitSeconds });
+  const text = await outputOf({
+    command,
+    cwd: request.cwd,
+    input,
+    timeLimitSeconds,
+    interrupted: request.interrupted,
+  });
   // Messages and reports name no folder of one machine.
   return text.replaceAll(`"${resolve(request.cwd)}/`, '"');
 }

@@ -1,14 +1,14 @@
 import { FirmwareError, quoted } from '../failure.js';
+import type { ProgramLimits } from '../process_group.js';
 import { outputOf } from '../run_program.js';
 import type { NamedValue, ValueNode } from './value_tree.js';
 import type { ValuesImage } from './values_image.js';
 
 /** A program which prints coefficients. */
-export interface CommandRequest {
+export interface CommandRequest extends Partial<ProgramLimits> {
   /** Program and arguments; no shell is involved. */
   command: readonly string[];
   cwd: string;
-  timeLimitSeconds?: number;
 }
 
 const defaultSeconds = 60;
