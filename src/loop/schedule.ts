@@ -117,27 +117,28 @@ export function queueLength({ channels, period }: Schedule, channel: number): nu
 }
 
 /** The instants from tick `from` (included) to `to` (excluded), in order of time. */
-export function instantsBetween(schedule: Schedule, from: number, to: number): Instant[] {
-  const { period, phase, channels } = schedule;
-  const byTick = new Map<number, Instant>();
-  const at = (tick: number): Instant => {
-    const instant = byTick.get(tick) ?? { tick, deliver: [], compute: [] };
-    byTick.set(tick, instant);
-    return instant;
-  };
-  period.forEach((every, task) => {
-    for (const tick of multiples(phase[task], every, from, to)) at(tick).compute.push(task);
-  });
-  channels.forEach(({ task, delay }, channel) => {
-    if (delay === 0) return;
-    for (const tick of multiples(phase[task] + delay, period[task], from, to)) at(tick).deliver.push(channel);
-  });
-  return [...byTick.values()].sort((a, b) => a.tick - b.tick);
-}
-
-function multiples(first: number, period: number, from: number, to: number): number[] {
-  const start = first + Math.max(0, Math.ceil((from - first) / period)) * period;
-  const ticks: number[] = [];
-  for (let tick = start; tick < to; tick += period) ticks.push(tick);
-  return ticks;
+export function instantsBetween({ period, phase, channels }: Schedule, from: number, to: number): Instant[] {
+  const series = [
+    ...period.map((every, index) => ({ what: 'compute' as const, index, every, first: phase[index] })),
+    ...channels.flatMap(({ task, delay }, index) =>
+      delay === 0
+        ? []
+        : [{ what: 'deliver' as const, index, every: period[task], first: phase[task] + delay }],
+    ),
+  ].map((one) => ({
+    ...one,
+    next: one.first + Math.max(0, Math.ceil((from - one.first) / one.every)) * one.every,
+  }));
+  const instants: Instant[] = [];
+  for (;;) {
+    const tick = Math.min(...series.map(({ next }) => next));
+    if (!(tick < to)) return instants;
+    const instant: Instant = { tick, deliver: [], compute: [] };
+    for (const one of series) {
+      if (one.next !== tick) continue;
+      instant[one.what].push(one.index);
+      one.next += one.every;
+    }
+    instants.push(instant);
+  }
 }
