@@ -3,7 +3,7 @@ import { vocabulary } from '../../src/cli/vocabulary.js';
 import { computed } from './examples/computed.js';
 import { type Example, type Outcome, usualTolerance } from './examples/example.js';
 import { valueOfFormula } from './examples/formula.js';
-import { blockExamples, measureGroups, shapeExamples } from './examples/index.js';
+import { blockExamples, measureGroups, sectionExamples, shapeExamples } from './examples/index.js';
 import { worthTelling } from './examples/written_examples.js';
 import { examplesOf } from './vocabulary_tables.js';
 
@@ -24,7 +24,9 @@ const named = (examples: readonly Example[]) =>
 
 /** The page promises this of every example, where it says nothing else beside the number. */
 test('a tolerance that the page does not tell is small', () => {
-  const groups = [blockExamples, shapeExamples, ...Object.values(measureGroups)].flat();
+  const groups = [blockExamples, shapeExamples, measureGroups, sectionExamples].flatMap((one) =>
+    Object.values(one).flat(),
+  );
   const within = groups.flatMap(({ outcomes }) =>
     outcomes.map((outcome) => outcome.within ?? usualTolerance),
   );
@@ -32,6 +34,10 @@ test('a tolerance that the page does not tell is small', () => {
 });
 
 test.each(named(blockExamples))('the block %s', (_, example) => {
+  expectOutcomes(example);
+});
+
+test.each(named(Object.values(sectionExamples).flat()))('the section %s', (_, example) => {
   expectOutcomes(example);
 });
 

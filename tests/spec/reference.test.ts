@@ -17,6 +17,7 @@ import { errorsOf, heliostatWith } from './loading.js';
 import { functionTable, mistakes, unitTable } from './reference_tables.js';
 import { smallSpec } from './small_spec.js';
 import { vocabulary } from './vocabulary.js';
+import { written } from './vocabulary_tables.js';
 
 const reference = readFileSync(new URL('../../specs/README.md', import.meta.url), 'utf8');
 
@@ -150,7 +151,7 @@ test.each(mistakes)('the example with `%s` as `%s` gives what the reference show
   );
 });
 
-test.each(['blocks', 'measures', 'shapes'])('there is one place for the table of %s', (name) => {
+test.each(Object.keys(written()))('there is one place for the %s that are written from the code', (name) => {
   expect(reference.split(`<!-- ${name}: written from the code -->`)).toHaveLength(2);
   expect(reference.split(`<!-- end of ${name} -->`)).toHaveLength(2);
 });

@@ -8,7 +8,7 @@ import type {
   ShapeDescription,
 } from '../../src/spec/vocabulary.js';
 import type { Example } from './examples/example.js';
-import { blockExamples, measureGroups, shapeExamples } from './examples/index.js';
+import { blockExamples, measureGroups, sectionExamples, shapeExamples } from './examples/index.js';
 import { exampleText, measureGroupText, shapeExampleText } from './examples/written_examples.js';
 
 const cell = (text: string): string => text.replaceAll('|', '\\|');
@@ -175,4 +175,7 @@ export const written = (): Record<string, string> => ({
   shapes: ['', ...vocabulary.shapes.flatMap(shapeRows)].join('\n'),
   blocks: vocabulary.blocks.map(blockText).join('\n\n'),
   measures: measureText(),
+  ...Object.fromEntries(
+    Object.entries(sectionExamples).map(([name, examples]) => [name, examples.map(exampleText).join('\n\n')]),
+  ),
 });

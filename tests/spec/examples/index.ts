@@ -5,6 +5,13 @@ import type { Example, MeasureGroup } from './example.js';
 import { loopMeasures } from './loop_measures.js';
 import { pidExamples } from './pid.js';
 import { plantBlocks } from './plant_blocks.js';
+import {
+  actuatorExamples,
+  arithmeticExamples,
+  controllerExamples,
+  sensorExamples,
+  signalExamples,
+} from './section_examples.js';
 import { stepMeasures } from './step_measures.js';
 
 /** Examples of every block. */
@@ -17,4 +24,13 @@ export const measureGroups: Record<'trace' | 'loop' | 'firmware', readonly Measu
   trace: [...stepMeasures, ...actuatorMeasures],
   loop: loopMeasures,
   firmware: buildMeasures,
+};
+
+/** Examples of the keys of sections, by the mark at which they stand on the page. */
+export const sectionExamples: Record<string, readonly Example[]> = {
+  'examples of signals': signalExamples,
+  'examples of sensors': sensorExamples,
+  'examples of controllers': controllerExamples,
+  'examples of number formats': arithmeticExamples,
+  'examples of actuators': actuatorExamples,
 };
