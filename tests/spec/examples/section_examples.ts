@@ -19,7 +19,7 @@ export const signalExamples: readonly Example[] = [
     hidden: 'inputs: { wish: { unit: m } }',
     when: { wish: '{ step: 1 m, at: 0 s }' },
     outcomes: [
-      { signal: 'gate', at: '3 s', unit: 'm', formula: '0.1·3', within: 1e-6 },
+      { signal: 'gate', at: '3 s', unit: 'm', formula: '0.1·3' },
       { signal: 'ram', at: '1 s', unit: 'm', formula: '0.8·(1 − e^(−1/2))', within: 1e-6 },
       { signal: 'ram', at: '20 s', unit: 'm', formula: '0.5' },
       { signal: 'tank', at: '5 s', unit: 'm', formula: '1.5 + 1/50·5' },
