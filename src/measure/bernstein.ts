@@ -4,11 +4,17 @@
  */
 export type ControlPoints = ArrayLike<number>;
 
+/** Room for one evaluation: there are so many that arrays of their own would be a burden. */
+const scratch = new Float64Array(16);
+
 /** The value at s, by repeated interpolation (de Casteljau 1959): exact at both ends, and everywhere where it is constant. */
 export function valueAt(points: ControlPoints, s: number): number {
-  if (s === 1) return points[points.length - 1];
-  const work = Array.from(points);
-  for (let left = work.length - 1; left > 0; left--) {
+  const last = points.length - 1;
+  if (s === 0) return points[0];
+  if (s === 1) return points[last];
+  const work = scratch.length > last ? scratch : Array.from(points);
+  for (let i = 0; i <= last; i++) work[i] = points[i];
+  for (let left = last; left > 0; left--) {
     for (let i = 0; i < left; i++) work[i] += s * (work[i + 1] - work[i]);
   }
   return work[0];
@@ -32,7 +38,9 @@ function firstPart(points: ControlPoints, s: number): number[] {
 
 /** Differences of neighbours: the control points of the derivative over s, divided by the degree. */
 export function differences(points: ControlPoints): number[] {
-  return Array.from({ length: points.length - 1 }, (_, i) => points[i + 1] - points[i]);
+  const found = new Array<number>(points.length - 1);
+  for (let i = 0; i < found.length; i++) found[i] = points[i + 1] - points[i];
+  return found;
 }
 
 /** Halvings after which two zeros are told apart no more: the last bit of s. */
@@ -44,7 +52,7 @@ const mostHalvings = 52;
  */
 export function signChanges(points: ControlPoints): number[] {
   const found: number[] = [];
-  collect(Array.from(points), 0, 1, 0, found);
+  if (countChanges(points) > 0) collect(Array.from(points), 0, 1, 0, found);
   return found;
 }
 
@@ -79,11 +87,11 @@ function halves(points: readonly number[]): [number[], number[]] {
   return [left, right.reverse()];
 }
 
-function countChanges(points: readonly number[]): number {
+function countChanges(points: ControlPoints): number {
   let changes = 0;
   let sign = 0;
-  for (const point of points) {
-    const next = Math.sign(point);
+  for (let i = 0; i < points.length; i++) {
+    const next = Math.sign(points[i]);
     if (next === 0 || Number.isNaN(next)) continue;
     if (sign !== 0 && next !== sign) changes++;
     sign = next;
