@@ -2,7 +2,7 @@ import { NumericFailure } from '../linear/numeric_failure.js';
 
 /**
  * Coefficients of a linearly implicit method of order four with four stages, L-stable (Hairer and Wanner, 'Solving Ordinary
- * Differential Equations II', 1996, section IV.7; the numbers from memory; they belong to this gamma, and a test shows their order and that constant rates are exact).
+ * Differential Equations II', 1996, section IV.7; from memory: a test shows their order, and that they belong to this gamma).
  */
 const gamma = 0.57282;
 const a21 = 2;
