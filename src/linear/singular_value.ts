@@ -13,7 +13,7 @@ const MOST_ROUNDS = 60;
 /**
  * The largest singular value, by plane rotations that make the columns orthogonal (Hestenes, 1958).
  * @param matrix one row for each output; not empty. It is not changed.
- * @throws NumericFailure when the rotations do not settle within their cap.
+ * @throws NumericFailure when an entry is not finite or the rotations do not settle within their cap.
  */
 export function largestSingularValue(matrix: readonly (readonly Complex[])[]): LargestSingularValue {
   const inputs = matrix[0].length;
@@ -30,6 +30,11 @@ export function largestSingularValue(matrix: readonly (readonly Complex[])[]): L
     }
   }
   const lengths = columns.map((column) => Math.sqrt(dot(column, column).real));
+  if (!lengths.every(Number.isFinite)) {
+    throw new NumericFailure(
+      `a ${matrix.length} x ${inputs} response is not finite, so that it has no singular values`,
+    );
+  }
   const largest = lengths.indexOf(Math.max(...lengths));
   const value = lengths[largest];
   const output = columns[largest].map(({ real, imaginary }) =>
