@@ -1,3 +1,4 @@
+import { AffineForm } from '../loop/affine.js';
 import { Derivative } from '../loop/derivative.js';
 import { inOrder, type Node } from '../loop/graph.js';
 import type { Loop, TracedSignal } from '../loop/loop.js';
@@ -14,6 +15,14 @@ export interface CompiledLoop {
   step: (m: Float64Array, h: number) => void;
   /** The same by a method for fast poles next to slow ones. */
   stiffStep: (m: Float64Array, h: number) => void;
+  /** Writes the slopes of the rates in the states, row by row. */
+  slopes: (m: Float64Array, slopes: Float64Array) => void;
+  /** The rates as sums, where they are such between two jumps: the plant is linear then. */
+  affine: AffineForm | undefined;
+  /** Writes the values of the sources and then the switches of `affine`. */
+  readSources: (m: Float64Array, values: Float64Array) => void;
+  /** Takes anew the modes that go with the motion; undefined where there are none. */
+  follow: ((m: Float64Array) => void) | undefined;
   /** Takes modes anew and corrects states, from the states as they are; undefined where the loop has neither. */
   settle: ((m: Float64Array) => void) | undefined;
   /** Whether settling would now make the plant jump: 1 or 0; undefined where nothing jumps. */
@@ -32,18 +41,22 @@ export function compileLoop(loop: Loop, traced: readonly string[]): CompiledLoop
   const sampled = signals.filter((signal) => signal.kind === 'sampled');
   const layout = layOut(loop, sampled.length);
   const tasks = loop.tasks.map((_, task) => task);
+  const derivatives = loop.states.map(({ derivative }) => derivative);
+  const rates = makeFunction('m, rates', listText(derivatives, layout, 'rates'));
+  const slopes = makeFunction('m, slopes', listText(slopesOf(loop), layout, 'slopes'));
+  const affine = AffineForm.of(derivatives, loop.modes);
+  const sources = affine ? [...affine.sources, ...affine.switches] : [];
   return {
     loop,
     layout,
     step: makeFunction('m, h', stepText(loop, layout)),
-    stiffStep: stiffStep(
-      {
-        rates: makeFunction('m, rates', ratesText(loop, layout)),
-        slopes: makeFunction('m, slopes', slopesText(loop, layout)),
-      },
-      layout.state,
-      loop.states.length,
-    ),
+    stiffStep: stiffStep({ rates, slopes }, layout.state, loop.states.length),
+    slopes,
+    affine,
+    readSources: makeFunction('m, values', listText(sources, layout, 'values')),
+    follow: loop.modes.some(({ taken }) => taken === 'with_motion')
+      ? makeFunction('m', assignments(movedModes(loop, layout), layout))
+      : undefined,
     settle:
       loop.modes.length + loop.corrections.length > 0
         ? makeFunction('m', settleText(loop, layout))
@@ -85,28 +98,32 @@ function stepText(loop: Loop, layout: Layout): string[] {
   return lines;
 }
 
-function ratesText(loop: Loop, layout: Layout): string[] {
-  const { lines, results } = statements(
-    loop.states.map(({ derivative }) => derivative),
-    inArray(layout),
-    'v',
-  );
-  return [...lines, ...results.map((result, i) => `rates[${i}] = ${result};`)];
+/** Writes the values of expressions into the list of this name. */
+function listText(nodes: readonly Node[], layout: Layout, list: string): string[] {
+  const { lines, results } = statements(nodes, inArray(layout), 'v');
+  return [...lines, ...results.map((result, i) => `${list}[${i}] = ${result};`)];
 }
 
-function slopesText(loop: Loop, layout: Layout): string[] {
+/** Of the states' rates in the states, row by row. */
+function slopesOf(loop: Loop): Node[] {
   const derivative = new Derivative(loop.graph);
-  const slopes = loop.states.flatMap((row) =>
+  return loop.states.flatMap((row) =>
     loop.states.map((_, column) => derivative.of(row.derivative, loop.graph.leaf('state', column))),
   );
-  const { lines, results } = statements(slopes, inArray(layout), 'v');
-  return [...lines, ...results.map((result, i) => `slopes[${i}] = ${result};`)];
+}
+
+function movedModes({ modes }: Loop, layout: Layout): { place: number; node: Node }[] {
+  return modes.flatMap(({ taken, next }, i) =>
+    taken === 'with_motion' ? [{ place: layout.mode + i, node: next }] : [],
+  );
 }
 
 /** Pairs of values that differ when the plant is about to jump. */
 function jumpConditions({ graph, modes, corrections }: Loop): [Node, Node][] {
   return [
-    ...modes.flatMap(({ jumps, next }, i): [Node, Node][] => (jumps ? [[graph.leaf('mode', i), next]] : [])),
+    ...modes.flatMap(({ taken, next }, i): [Node, Node][] =>
+      taken === 'at_jumps' ? [[graph.leaf('mode', i), next]] : [],
+    ),
     ...corrections.map(({ state, value }): [Node, Node] => [graph.leaf('state', state), value]),
   ];
 }

@@ -1,17 +1,17 @@
 import type { CompiledLoop } from './compile.js';
-import type { Movement } from './movement.js';
+import { finestShare, type Movement } from './movement.js';
 
 /** A relay that switches more often than this in one step is followed by whole steps only. */
 const mostJumps = 100;
-/** The time of a jump is found to this share of a step. */
-const resolution = 1e-12;
+/** At one moment one jump may bring about another so many times. */
+const mostRounds = 20;
 
 /** Moves a plant so that a relay that switches, or a stop that is reached, ends the step there. */
 export class JumpFinder {
   private readonly before: Float64Array;
   private found = 0;
-  /** From the start of the last move to just after its jump, s; undefined where it had none. */
-  private beyond: number | undefined;
+  /** From where the last move ended to just after its jump, as a share of the step; 0 where it had none. */
+  private beyond = 0;
 
   constructor(
     private readonly compiled: CompiledLoop,
@@ -26,36 +26,63 @@ export class JumpFinder {
   }
 
   /**
-   * Moves by at most h (s), to just before the first jump.
-   * @returns how far it moved, s, up to just after the jump.
+   * Moves by at most the share `most` of a step of h (s), to just before the first jump.
+   * @returns the share by which it moved, up to just after the jump.
    */
-  move(m: Float64Array, h: number): number {
-    const { compiled, before } = this;
-    const { state } = compiled.layout;
-    before.set(m.subarray(state, state + before.length));
-    this.movement.move(m, h);
-    this.beyond = undefined;
-    if (this.found >= mostJumps || compiled.jumps!(m) === 0) return h;
+  move(m: Float64Array, h: number, most: number): number {
+    const { compiled } = this;
+    this.keep(m);
+    this.go(m, h, most);
+    this.beyond = 0;
+    if (this.found >= mostJumps || compiled.jumps!(m) === 0) return most;
     this.found++;
-    let [free, jumped] = [0, h];
-    while (jumped - free > resolution * h) {
-      const middle = (free + jumped) / 2;
-      this.again(m, middle);
-      if (compiled.jumps!(m) === 0) free = middle;
-      else jumped = middle;
+    this.goBack(m);
+    let free = 0;
+    for (let part = 0.5; part >= finestShare; part /= 2) {
+      if (free + part < most && this.isFree(m, h, part)) free += part;
     }
-    this.again(m, free);
-    this.beyond = jumped;
-    return jumped;
+    this.beyond = finestShare;
+    // Rounding may put the jump a little later on this way than on the one that found it.
+    while (free + this.beyond < most && this.isFree(m, h, this.beyond)) {
+      this.goBack(m);
+      this.beyond = Math.min(2 * this.beyond, most - free);
+    }
+    return free + this.beyond;
   }
 
-  /** Moves on to just after the jump that ended the last move. */
-  cross(m: Float64Array): void {
-    if (this.beyond !== undefined) this.again(m, this.beyond);
+  /** Moves on to just after the jump that ended the last move, if one did. */
+  cross(m: Float64Array, h: number): void {
+    if (this.beyond > 0) this.go(m, h, this.beyond);
   }
 
-  private again(m: Float64Array, h: number): void {
+  /** Lets everything jump that does at this moment. */
+  settle(m: Float64Array): void {
+    const { settle, jumps } = this.compiled;
+    settle!(m);
+    for (let round = 1; round < mostRounds && jumps!(m) !== 0; round++) settle!(m);
+  }
+
+  /** Moves by a share of the step if nothing jumps until there, and else stays. */
+  private isFree(m: Float64Array, h: number, share: number): boolean {
+    this.keep(m);
+    this.go(m, h, share);
+    if (this.compiled.jumps!(m) === 0) return true;
+    this.goBack(m);
+    return false;
+  }
+
+  private go(m: Float64Array, h: number, share: number): void {
+    this.movement.move(m, h, share);
+    this.compiled.follow?.(m);
+  }
+
+  private keep(m: Float64Array): void {
+    const { state } = this.compiled.layout;
+    this.before.set(m.subarray(state, state + this.before.length));
+  }
+
+  private goBack(m: Float64Array): void {
     m.set(this.before, this.compiled.layout.state);
-    if (h > 0) this.movement.move(m, h);
+    this.compiled.follow?.(m);
   }
 }

@@ -68,22 +68,23 @@ export function runPlant(request: RunRequest): Run {
   );
   const finder = compiled.jumps && new JumpFinder(compiled, movement);
   const advance = advanceOf(compiled, movement, finder);
+  const settle = settleOf(compiled, finder);
   let piece = 0;
   let end: RunEnd = { kind: 'complete' };
   for (let segment = 0; segment < timeline.action.length; segment++) {
     tasks.perform(timeline.actions[timeline.action[segment]]);
-    compiled.settle?.(m);
+    settle(m);
     let time = timeline.times[segment];
     for (const h of stepsOf[timeline.duration[segment]]) {
-      for (let left = h; left > 0; piece++) {
+      for (let left = 1; left > 0; piece++) {
         if (piece >= store.times.length - 1) store.reserve(signals, 2 * piece + 16);
         store.times[piece] = time;
         compiled.record(m, store.records, 4 * piece);
-        const moved = advance(m, left, left === h);
+        const moved = advance(m, h, left);
         compiled.record(m, store.records, 4 * piece + 2);
-        finder?.cross(m);
-        compiled.settle?.(m);
-        time += moved;
+        finder?.cross(m, h);
+        settle(m);
+        time += moved * h;
         left -= moved;
       }
     }
@@ -98,21 +99,27 @@ export function runPlant(request: RunRequest): Run {
   return { times: store.times, records: store.records, pieces: piece, end, lend };
 }
 
-/** Moves by at most h (s) and returns how far; `fresh` says that a step of the movement begins. */
-type Advance = (m: Float64Array, h: number, fresh: boolean) => number;
+/** Moves by at most a share of a step of h (s), 1 where the step begins, and returns by which. */
+type Advance = (m: Float64Array, h: number, most: number) => number;
 
 function advanceOf(compiled: CompiledLoop, movement: Movement, finder: JumpFinder | undefined): Advance {
-  if (compiled.loop.states.length === 0) return (_, h) => h;
+  if (compiled.loop.states.length === 0) return (_, __, most) => most;
   if (!finder) {
-    return (m, h) => {
-      movement.move(m, h);
-      return h;
+    return (m, h, most) => {
+      movement.move(m, h, most);
+      return most;
     };
   }
-  return (m, h, fresh) => {
-    if (fresh) finder.newStep();
-    return finder.move(m, h);
+  return (m, h, most) => {
+    if (most === 1) finder.newStep();
+    return finder.move(m, h, most);
   };
+}
+
+/** Takes modes anew and corrects states where something has happened. */
+function settleOf({ settle }: CompiledLoop, finder: JumpFinder | undefined): (m: Float64Array) => void {
+  if (finder) return (m) => finder.settle(m);
+  return settle ?? (() => {});
 }
 
 /** The first state that left the finite numbers. One beyond 1e100 is on its way out of them. */

@@ -1,9 +1,9 @@
 import type { ActuatorDefinition } from '../spec/spec.js';
-import type { Evaluation } from './evaluate.js';
 import { limited } from './expand_block.js';
 import type { Node } from './graph.js';
 import type { Parts } from './parts.js';
 import type { PlantRoom } from './plant_room.js';
+import { isRunning, running } from './running.js';
 
 /** When a result takes effect that is ready `delay` s after the sampling instant: at once, or at the next start or middle. */
 export function updateDelay(
@@ -43,11 +43,7 @@ export function actuatorValue(
     const last: Node = parts.addMemory(`${actuator.name} last output`, task, 0, () => kept);
     const slewed = graph.apply('limit', value, plain.subtract(last, step), plain.add(last, step));
     // At rest nothing changes, and a search for it must not be slowed down.
-    const moving = graph.apply(
-      'unequal',
-      running(`${actuator.name} slew`, () => 1, parts),
-      graph.number(0),
-    );
+    const moving = isRunning(`${actuator.name} slew`, parts);
     const kept = graph.apply('choose', moving, slewed, value);
     value = kept;
   }
@@ -76,22 +72,9 @@ export function feltValue(
     graph.apply('choose', graph.apply('less_or_equal', one, carrier), plain.subtract(carrier, one), carrier),
   );
   const share = plain.divide(plain.subtract(held, low), plain.subtract(high, low));
-  const on = parts.addMode(`${name} is on`, 0, true, () => graph.apply('less', carrier, share));
+  const on = parts.addMode(`${name} is on`, 0, 'at_jumps', () => graph.apply('less', carrier, share));
   const switched = graph.apply('choose', on, high, low);
   return graph.apply('choose', graph.apply('unequal', rate, zero), switched, held);
-}
-
-/** Nothing at rest and in linear analysis; from the start of a scenario on the value given. */
-function running(name: string, value: (plant: Evaluation) => number, parts: Parts): Node {
-  const input = parts.addInput(name, 0);
-  parts.program.push({
-    kind: 'input',
-    index: input.index,
-    how: 'set',
-    common: false,
-    changes: (plant) => [{ time: 0, value: value(plant) }],
-  });
-  return input;
 }
 
 /** Zero within a band around zero, and the distance from the band outside; each side has a slope of its own. */

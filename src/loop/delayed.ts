@@ -55,10 +55,10 @@ export class DelayedCopies {
     const later = (node: Node): Node => this.of(node, delay, place);
     switch (kind) {
       case 'state':
-        return parts.addDelayedState(index, delay, () => later(parts.states[index].derivative));
+        return parts.addDelayedState(index, delay, later);
       case 'mode': {
         const original = parts.modes[index];
-        return parts.addMode(`${original.name} delayed`, original.start, original.jumps, () =>
+        return parts.addMode(`${original.name} delayed`, original.start, original.taken, () =>
           later(original.next),
         );
       }

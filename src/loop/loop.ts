@@ -10,15 +10,17 @@ export interface ContinuousState {
 }
 
 /**
- * A value of the plant that changes by jumps (which side of a backlash is in contact, whether a relay is on): taken anew after
- * every step of the movement from the states as they are then.
+ * When a value that is no state is taken anew: at the moment of a change, which is found (a relay that switches, a gap that
+ * closes); after every step (what drifts); or with the motion, so that it is what an expression was before anything jumped.
  */
+export type ModeTaken = 'at_jumps' | 'after_steps' | 'with_motion';
+
+/** A value of the plant that is no state (which side of a backlash is in contact, whether a relay is on). */
 export interface Mode {
   name: string;
   next: Node;
   start: number;
-  /** Whether the time of a change must be found (a relay that switches, a gap that closes). */
-  jumps: boolean;
+  taken: ModeTaken;
 }
 
 /** After every step of the movement a state is brought to a value: a stop that it cannot pass, a reset. */

@@ -10,6 +10,7 @@ import {
   LoopError,
   type Memory,
   type Mode,
+  type ModeTaken,
   type ProgrammedChange,
   type Reading,
 } from './loop.js';
@@ -66,9 +67,9 @@ export class Parts {
     return this.graph.leaf('state', this.states.push(state) - 1);
   }
 
-  /** A value that changes by jumps, taken anew after every step of the movement. */
-  addMode(name: string, start: number, jumps: boolean, next: () => Node): Node {
-    const mode = { name, start, jumps, next: this.graph.number(0) };
+  /** A value of the plant that is no state. */
+  addMode(name: string, start: number, taken: ModeTaken, next: () => Node): Node {
+    const mode = { name, start, taken, next: this.graph.number(0) };
     this.late.push(() => {
       mode.next = next();
     });
@@ -104,10 +105,15 @@ export class Parts {
   }
 
   /** A state as it was some time ago; it is set, where a scenario sets it, as much later. */
-  addDelayedState(source: number, delay: Node, derivative: () => Node): Node {
+  addDelayedState(source: number, delay: Node, later: (node: Node) => Node): Node {
     const { name, start } = this.states[source];
-    const copy = this.addState(`${name} delayed`, start, derivative);
+    const copy = this.addState(`${name} delayed`, start, () => later(this.states[source].derivative));
     this.delayedSources.push({ kind: 'state', index: copy.index, source, delay });
+    this.late.push(() => {
+      for (const { state, value } of this.corrections.filter((one) => one.state === source)) {
+        if (value !== this.graph.leaf('state', state)) this.addCorrection(copy, () => later(value));
+      }
+    });
     return copy;
   }
 

@@ -96,7 +96,7 @@ export class PlantRoom {
       room: 'plant',
       arithmetic: parts.plain,
       addState: (name, derivative, own) => parts.addState(name, own ?? start ?? 0, derivative),
-      addMode: (name, jumps, next, own) => parts.addMode(name, own ?? start ?? 0, jumps, next),
+      addMode: (name, taken, next, own) => parts.addMode(name, own ?? start ?? 0, taken, next),
       rateOf: (value) => parts.rateOf(value),
       addCorrection: (state, value) => parts.addCorrection(state, value),
       delayed: (node, delay) => this.delayedCopies.of(node, delay, place),

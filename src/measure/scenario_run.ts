@@ -1,5 +1,5 @@
 import { type CompiledLoop, compileLoop } from '../kernel/compile.js';
-import { MovementChoice } from '../kernel/movement.js';
+import { movementOf } from '../kernel/movement.js';
 import { runPlant, type TraceStore } from '../kernel/run_plant.js';
 import { type ScenarioChange, type Timeline, timelineOf } from '../kernel/timeline.js';
 import type { Run } from '../kernel/trace.js';
@@ -17,7 +17,6 @@ import type { ScenarioEvents } from './scenario_events.js';
 /** Runs one scenario for plant after plant; what plants have in common is made once. */
 export class ScenarioRun {
   readonly compiled: CompiledLoop;
-  private readonly choice: MovementChoice;
   private readonly noises: Float64Array[] = [];
   private shared: { schedule: Schedule; timeline: Timeline } | undefined;
   private readonly recorded: RecordedSignals;
@@ -35,7 +34,6 @@ export class ScenarioRun {
   ) {
     this.recorded = new RecordedSignals(loop, traced);
     this.compiled = compileLoop(this.recorded.loop, this.recorded.names);
-    this.choice = new MovementChoice(this.compiled);
     this.startAt = scenario.startAt.map(({ name, value, place }) => {
       const state = loop.states.findIndex((one) => one.name === name);
       if (state >= 0) return { state, value };
@@ -56,7 +54,7 @@ export class ScenarioRun {
       start,
       schedule,
       timeline,
-      movement: this.choice.of(start, Math.max(...timeline.durations), halvings),
+      movement: movementOf(this.compiled, start, Math.max(...timeline.durations), halvings),
       noise: this.noise(schedule),
       signals: this.recorded.names.length,
       store: this.store,

@@ -27,11 +27,11 @@ export const backlash: Block = {
     const input = use.input();
     const [low, high] = [a.subtract(input, half), a.add(input, half)];
     const [one, zero, minusOne] = [1, 0, -1].map((value) => a.number(value));
-    const position: Node = addMode(use.name, false, () => output);
+    const position: Node = addMode(use.name, 'after_steps', () => output);
     // The side of the gap in contact: 1 pushes up, −1 pulls down. It ends when the driver turns round.
     const contact: Node = addMode(
       `${use.name} contact`,
-      true,
+      'at_jumps',
       () => {
         const rate = rateOf(input);
         const closing = a.apply(

@@ -2,6 +2,7 @@ import type { Place } from '../../spec/spec.js';
 import type { BlockDescription, Room } from '../../spec/vocabulary.js';
 import type { TargetArithmetic } from '../arithmetic.js';
 import type { Node } from '../graph.js';
+import type { ModeTaken } from '../loop.js';
 
 /** One use of a block in a spec, with every name already turned into an expression. */
 export interface BlockUse {
@@ -35,7 +36,7 @@ export interface BlockUse {
   pair: { target: () => Node; measurement: () => Node } | undefined;
   coefficients: (name: string) => Node[];
   range: { low: Node; high: Node } | undefined;
-  /** Largest rate in either direction; in the plant only for blocks that keep it themselves. */
+  /** Largest rate in either direction, for blocks that keep it themselves. */
   slew: () => Node | undefined;
 }
 
@@ -47,10 +48,10 @@ export interface Workshop {
   /** Adds a continuous state and returns it; it starts at the signal's `start:` unless said otherwise. Plant only. */
   addState: (name: string, derivative: () => Node, start?: number) => Node;
   /**
-   * Adds a value that is taken anew after every step of the movement. Plant only.
-   * @param jumps whether the time of a change must be found: for a relay, not for a value that drifts.
+   * Adds a value that is no state; it starts at the signal's `start:` unless said otherwise. Plant only.
+   * @param taken when it is taken anew: `at_jumps` for a relay, `after_steps` for a value that drifts.
    */
-  addMode: (name: string, jumps: boolean, next: () => Node, start?: number) => Node;
+  addMode: (name: string, taken: ModeTaken, next: () => Node, start?: number) => Node;
   /** Rate of an expression along the motion of the plant; only from a mode's deferred function. Plant only. */
   rateOf: (value: Node) => Node;
   /** Brings a state to a value after every step of the movement. Plant only. */
@@ -77,7 +78,7 @@ export interface Block {
   description: BlockDescription;
   /** Whether the block itself keeps its output in the range. */
   keepsRange: boolean;
-  /** Whether the block itself keeps to the slew, by the rate of its state; in the plant no other can have one. */
+  /** Whether the block itself keeps to the slew, by the rate of its state. */
   keepsSlew?: boolean;
   /** Adds states and memories, and returns the signal's value. */
   expand: (use: BlockUse, workshop: Workshop) => Node;

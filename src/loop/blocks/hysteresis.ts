@@ -60,7 +60,10 @@ export const hysteresis: Block = {
     };
     const name = `${use.name} is on`;
     const last: Node =
-      room === 'plant' ? addMode(name, true, () => switched(), start) : addMemory(name, () => switched());
-    return a.apply('choose', switched(), use.setting('on')!, use.setting('off')!);
+      room === 'plant'
+        ? addMode(name, 'at_jumps', () => switched(), start)
+        : addMemory(name, () => switched());
+    // In the plant a switch is found at its moment; in a controller the instant itself already counts.
+    return a.apply('choose', room === 'plant' ? last : switched(), use.setting('on')!, use.setting('off')!);
   },
 };

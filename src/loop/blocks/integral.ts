@@ -64,7 +64,7 @@ export const integral: Block = {
     const resets = use.has('reset_when');
     if (!low && !high && !resets) return state;
     const condition = (): Node => a.apply('unequal', use.setting('reset_when')!, a.number(0));
-    const was = resets ? addMode(`${use.name} reset condition`, true, condition, 0) : undefined;
+    const was = resets ? addMode(`${use.name} reset condition`, 'at_jumps', condition, 0) : undefined;
     addCorrection(state, () => {
       const above = low ? a.apply('max', state, low) : state;
       const inside = high ? a.apply('min', above, high) : above;
