@@ -6,6 +6,7 @@ import { LoopError } from './loop.js';
 import { lower, type Surroundings } from './lower.js';
 import { placed } from './number_rules.js';
 import type { Parts } from './parts.js';
+import { rateLimited } from './rate_limiter.js';
 import { slewed } from './slew.js';
 
 const blockByKey = new Map(
@@ -47,11 +48,7 @@ function expanded(
   if (workshop.room === 'controller') {
     return slewed(definition.name, node, lower(definition.slew, around), bounded, workshop);
   }
-  if (block.keepsSlew) return node;
-  throw new LoopError(
-    `'slew' of '${definition.name}' bounds the rate of a state, but '${definition.block}' has none of its own; put it on a lag, an integral or an actuator`,
-    definition.place,
-  );
+  return block.keepsSlew ? node : rateLimited(definition.name, node, () => use.slew()!, workshop, parts);
 }
 
 /** A value kept inside a range, where there is one. */

@@ -124,6 +124,33 @@ requirements:
     expect(results.delay).toBeCloseTo(1.37, 12);
   });
 
+  it('shows the stops and resets of a signal as they were', () => {
+    const results = measured(
+      driven(
+        `  heap: { integral: { integral: (1 1/s)*target, high_stop: 2 m }, unit: m }
+  saw: { integral: { integral: (1 1/s)*target, reset_when: saw > (1.5 m) }, unit: m }
+  late_heap: { dead_time: 0.9 s, of: heap, unit: m }
+  late_saw: { dead_time: 0.9 s, of: saw, unit: m }`,
+        ['heap', 'saw']
+          .flatMap((name) => [
+            requirement(name, 'travel', `of: ${name}, at_most: 900 m`),
+            requirement(`late ${name}`, 'travel', `of: late_${name}, from: 0.9 s, at_most: 900 m`),
+            requirement(`late ${name} top`, 'largest_value', `of: late_${name}, at_most: 900 m`),
+          ])
+          .join('\n'),
+        '1 m',
+        '10.9 s',
+      ).replace(/(name: (heap|saw), .*?)at_most/g, '$1until: 10 s, at_most'),
+      { halvings: 1 },
+    );
+    expect(results['late heap top']).toBeCloseTo(2, 9);
+    expect(results['late heap']).toBeCloseTo(results.heap, 9);
+    expect(results['late saw top']).toBeCloseTo(1.5, 9);
+    // Up by 10 m in 10 s, and back by 1.5 m six times.
+    expect(results.saw).toBeCloseTo(19, 9);
+    expect(results['late saw']).toBeCloseTo(19, 9);
+  });
+
   it('inside a continuous loop is refused at its place, with what to do', () => {
     const spec = driven(
       '  y: { lag: 1 s, of: target - late, unit: m }\n  late: { dead_time: 0.2 s, of: y, unit: m }',
@@ -308,16 +335,6 @@ describe('slew in the plant', () => {
       { halvings: 5 },
     );
     expect(results.settling).toBeCloseTo(8 + 2 * Math.log(0.2 / 0.05), 6);
-  });
-
-  it('of a signal without a state of its own is refused', () => {
-    const spec = driven(
-      '  y: { value: target, slew: 0.1 m/s, unit: m }',
-      requirement('top', 'largest_value', 'of: y, at_most: 9 m'),
-    );
-    expect(() => resultsOf(spec)).toThrow(
-      "'slew' of 'y' bounds the rate of a state, but 'value' has none of its own",
-    );
   });
 });
 
