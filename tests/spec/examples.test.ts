@@ -3,7 +3,14 @@ import { vocabulary } from '../../src/cli/vocabulary.js';
 import { computed } from './examples/computed.js';
 import { type Example, type Outcome, usualTolerance } from './examples/example.js';
 import { valueOfFormula } from './examples/formula.js';
-import { blockExamples, measureGroups, sectionExamples, shapeExamples } from './examples/index.js';
+import {
+  blockExamples,
+  measureGroups,
+  patterns,
+  sectionExamples,
+  shapeExamples,
+  statements,
+} from './examples/index.js';
 import { worthTelling } from './examples/written_examples.js';
 import { examplesOf } from './vocabulary_tables.js';
 
@@ -11,8 +18,8 @@ import { examplesOf } from './vocabulary_tables.js';
 function expectOutcomes(example: Omit<Example, 'of'>): void {
   const values = computed(example);
   example.outcomes.forEach((outcome: Outcome, at) => {
-    const { formula, within = usualTolerance } = outcome;
-    const expected = valueOfFormula(formula);
+    const { formula, where, within = usualTolerance } = outcome;
+    const expected = valueOfFormula(formula, where);
     const error = Math.abs(values[at] - expected);
     const what = `${JSON.stringify(outcome)}: ${expected} by hand, computed ${values[at]}`;
     expect(error, what).toBeLessThanOrEqual(within * Math.max(1, Math.abs(expected)));
@@ -24,9 +31,14 @@ const named = (examples: readonly Example[]) =>
 
 /** The page promises this of every example, where it says nothing else beside the number. */
 test('a tolerance that the page does not tell is small', () => {
-  const groups = [blockExamples, shapeExamples, measureGroups, sectionExamples].flatMap((one) =>
-    Object.values(one).flat(),
-  );
+  const groups = [
+    blockExamples,
+    shapeExamples,
+    measureGroups,
+    sectionExamples,
+    patterns,
+    [statements],
+  ].flatMap((one) => Object.values(one).flat());
   const within = groups.flatMap(({ outcomes }) =>
     outcomes.map((outcome) => outcome.within ?? usualTolerance),
   );
@@ -39,6 +51,14 @@ test.each(named(blockExamples))('the block %s', (_, example) => {
 
 test.each(named(Object.values(sectionExamples).flat()))('the section %s', (_, example) => {
   expectOutcomes(example);
+});
+
+test.each(named(patterns))('the %s', (_, example) => {
+  expectOutcomes(example);
+});
+
+test('the statements over time', () => {
+  expectOutcomes(statements);
 });
 
 test.each(named(shapeExamples))('the input shape %s', (_, example) => {

@@ -12,6 +12,7 @@ import {
 } from '../../src/spec/names.js';
 import { defaultPerturbation } from '../../src/spec/read_run.js';
 import { skeletonsOf } from '../../src/spec/skeleton.js';
+import { headingsOf } from './contents.js';
 import { heliostat } from './heliostat_example.js';
 import { errorsOf, heliostatWith } from './loading.js';
 import { functionTable, mistakes, unitTable } from './reference_tables.js';
@@ -157,11 +158,6 @@ test.each(Object.keys(written()))('there is one place for the %s that are writte
 });
 
 test('every link inside the page leads to a heading of it', () => {
-  const headings = [...reference.matchAll(/^#+ (.*)$/gm)].map(([, title]) =>
-    title
-      .toLowerCase()
-      .replaceAll(/[^a-z ]/g, '')
-      .replaceAll(' ', '-'),
-  );
+  const headings = headingsOf(reference).map(({ anchor }) => anchor);
   for (const [, target] of reference.matchAll(/\]\(#([^)]+)\)/g)) expect(headings).toContain(target);
 });

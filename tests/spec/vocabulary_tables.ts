@@ -8,8 +8,15 @@ import type {
   ShapeDescription,
 } from '../../src/spec/vocabulary.js';
 import type { Example } from './examples/example.js';
-import { blockExamples, measureGroups, sectionExamples, shapeExamples } from './examples/index.js';
-import { exampleText, measureGroupText, shapeExampleText } from './examples/written_examples.js';
+import {
+  blockExamples,
+  measureGroups,
+  patterns,
+  sectionExamples,
+  shapeExamples,
+  statements,
+} from './examples/index.js';
+import { exampleText, measureGroupText, patternText, shapeExampleText } from './examples/written_examples.js';
 
 const cell = (text: string): string => text.replaceAll('|', '\\|');
 const table = (head: string[], rows: string[][]): string =>
@@ -41,9 +48,9 @@ function blockText(block: BlockDescription): string {
     setting.meaning,
   ]);
   return [
-    `### ${block.key}`,
+    `### ${headingOf(block, rooms)}`,
     '',
-    `In ${rooms}.${takes} ${block.meaning}.`,
+    `In ${rooms}.${takes} ${block.meaning}.${block.key === 'pid' ? ` All of it: ${lineByLine}.` : ''}`,
     '',
     table(['setting', 'takes', '', 'meaning'], rows),
     ...examplesOf(block).flatMap((example) => ['', exampleText(example)]),
@@ -53,6 +60,14 @@ function blockText(block: BlockDescription): string {
 /** Of a block in one room, or in both; of two blocks with one key each has its own room. */
 export const examplesOf = ({ key, rooms }: BlockDescription): Example[] =>
   blockExamples.filter(({ of, room }) => of === key && (room === undefined || rooms.includes(room)));
+
+/** Two blocks with one key are told apart by their rooms. */
+function headingOf({ key }: BlockDescription, rooms: string): string {
+  const alike = vocabulary.blocks.filter((block) => block.key === key);
+  return alike.length > 1 ? `${key} in ${rooms}` : key;
+}
+
+const lineByLine = '[three-term control, line by line](#three-term-control-line-by-line)';
 
 function kindOf(setting: SettingDescription): string {
   switch (setting.kind) {
@@ -175,6 +190,8 @@ export const written = (): Record<string, string> => ({
   shapes: ['', ...vocabulary.shapes.flatMap(shapeRows)].join('\n'),
   blocks: vocabulary.blocks.map(blockText).join('\n\n'),
   measures: measureText(),
+  statements: measureGroupText(statements),
+  patterns: patterns.map(patternText).join('\n\n'),
   ...Object.fromEntries(
     Object.entries(sectionExamples).map(([name, examples]) => [name, examples.map(exampleText).join('\n\n')]),
   ),

@@ -1,3 +1,4 @@
+import { vocabulary } from '../../../src/cli/vocabulary.js';
 import { TraceStore } from '../../../src/kernel/run_plant.js';
 import { Linearisation } from '../../../src/linear/linearise.js';
 import { pointOfRest } from '../../../src/linear/point_of_rest.js';
@@ -9,9 +10,8 @@ import { type Curve, pieceAt, pieceOf } from '../../../src/measure/curve.js';
 import { PlantEvaluator } from '../../../src/measure/evaluate_plant.js';
 import { ScenarioEvents } from '../../../src/measure/scenario_events.js';
 import { ScenarioRun } from '../../../src/measure/scenario_run.js';
-import type { Spec } from '../../../src/spec/spec.js';
+import { formatSpecError, loadSpec, type Spec } from '../../../src/spec/index.js';
 import { parseUnit } from '../../../src/spec/units.js';
-import { specOf } from '../../loop/spec_of.js';
 import { numberOf } from '../../small_loop.js';
 import type { Example, Outcome, SignalOutcome } from './example.js';
 import { isSignalOutcome, scenarioName, seconds, wholeSpec } from './whole_spec.js';
@@ -21,7 +21,7 @@ const usualHalvings = 4;
 
 /** What pawl computes for each outcome of an example, in the unit of the outcome. @throws Error where it gives no number. */
 export function computed(example: Omit<Example, 'of'>): number[] {
-  const spec = specOf(wholeSpec(example));
+  const spec = specOf(example);
   const build: CoefficientValues = new Map(
     Object.entries(example.build ?? {}).map(([name, held]) => [name, held]),
   );
@@ -43,6 +43,15 @@ export function computed(example: Omit<Example, 'of'>): number[] {
       outcome.unit,
     ),
   );
+}
+
+function specOf(example: Omit<Example, 'of'>): Spec {
+  const files = example.files ?? {};
+  const loaded = loadSpec(wholeSpec(example), 'example.pawl.yaml', vocabulary, {
+    read: (path) => files[path],
+  });
+  if (loaded.kind === 'errors') throw new Error(loaded.errors.map(formatSpecError).join('\n'));
+  return loaded.spec;
 }
 
 function curvesOf(

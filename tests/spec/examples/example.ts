@@ -9,6 +9,10 @@ export interface Example {
   room?: 'plant' | 'controller';
   /** What it shows, where a thing has several examples: begins with a small letter. */
   shows?: string;
+  /** Sentences before it. */
+  intro?: string;
+  /** Files beside the spec. */
+  files?: Record<string, string>;
   /** Sections of a spec as the page shows them. */
   shown: string;
   /** What makes a whole spec of them, and needs no showing: units of inputs, sensors, actuators. */
@@ -36,6 +40,8 @@ interface Number {
   unit: string;
   /** What a reader works out by hand; see formula.ts for how it is written. */
   formula: string;
+  /** Names in the formula, with their formulas. */
+  where?: Record<string, string>;
   /** Where the formula is from, where it does not speak for itself. */
   why?: string;
   /** How far the computed number may be from it, relative to its size; `usualTolerance` unless given. */

@@ -15,13 +15,15 @@ const names = Object.getOwnPropertyNames(Math).filter((name) => name !== 'constr
 /**
  * The value of a formula: numbers, `+ − · / ^`, parentheses, `√(…)`, `e`, `π`, `ln`, and the functions sin, cos, tan, asin, acos,
  * atan, sinh, tanh, abs, log10, max.
- * @throws Error where it is none.
+ * @param where further names in it, with their formulas.
+ * @throws Error where it has none.
  */
-export function valueOfFormula(formula: string): number {
+export function valueOfFormula(formula: string, where: Record<string, string> = {}): number {
+  const own = Object.entries(where).map(([name, text]): [string, unknown] => [name, valueOfFormula(text)]);
+  const known = [...names.map((name): [string, unknown] => [name, Reflect.get(Math, name)]), ...own];
   const text = written.reduce((so, [from, to]) => so.replace(from, to), formula);
-  const value: unknown = new Function(...names, `'use strict'; return (${text});`)(
-    ...names.map((name) => Reflect.get(Math, name)),
-  );
+  const form = new Function(...known.map(([name]) => name), `'use strict'; return (${text});`);
+  const value: unknown = form(...known.map(([, one]) => one));
   if (typeof value === 'number' && Number.isFinite(value)) return value;
   throw new Error(`\`${formula}\` has no value`);
 }

@@ -17,7 +17,9 @@ import { stepMeasures } from './step_measures.js';
 /** Examples of every block. */
 export const blockExamples: readonly Example[] = [...plantBlocks, ...pidExamples, ...controllerBlocks];
 
+export { patterns } from './patterns.js';
 export { shapeExamples } from './shapes.js';
+export { statements } from './statements.js';
 
 /** Examples of every measure, by what it is of. */
 export const measureGroups: Record<'trace' | 'loop' | 'firmware', readonly MeasureGroup[]> = {

@@ -49,6 +49,7 @@ export function wholeSpec({
   );
   return stringify(
     [
+      'pawl: "1"\nloop: An example of the reference',
       shown,
       hidden,
       inputsAtRest(rests ?? {}),

@@ -12,13 +12,14 @@ function figures(value: number): string {
 }
 
 /** What an outcome gives: the number with its unit, and how it is worked out. */
-function given({ formula, unit, why, within = 0 }: Outcome): { number: string; how: string } {
-  const plain = figures(valueOfFormula(formula));
+function given({ formula, where = {}, unit, why, within = 0 }: Outcome): { number: string; how: string } {
+  const plain = figures(valueOfFormula(formula, where));
+  const names = Object.entries(where).map(([name, text]) => `${name} = ${code(text)}`);
   const same = plain === formula.replaceAll('−', '-');
   const number = `${plain}${unit === '' ? '' : ` ${unit}`}`;
   return {
     number: within > worthTelling ? `${number} to ${Number((100 * within).toPrecision(2))} %` : number,
-    how: [...(same ? [] : [code(formula)]), ...(why ? [why] : [])].join(', '),
+    how: [...(same ? [] : [code(formula)]), ...names, ...(why ? [why] : [])].join(', '),
   };
 }
 
@@ -70,14 +71,32 @@ function listed(numbers: number[] | { values: number[]; format: string }): strin
 
 /** An example as text of the page. */
 export function exampleText(example: Example): string {
-  const { outcomes, shown, shows } = example;
+  const title = example.shows ? `Example, ${example.shows}:` : 'Example:';
+  return [title, yaml(example.shown), resultsText(example)].join('\n\n');
+}
+
+/** An example of several things together, with a heading and an introduction of its own. */
+export function patternText(example: Example): string {
+  const files = Object.entries(example.files ?? {}).map(
+    ([path, text]) => `${code(path)}:\n\n\`\`\`${path.endsWith('.yaml') ? 'yaml' : 'text'}\n${text}\n\`\`\``,
+  );
+  const here = files.length > 0 ? ['The spec:'] : [];
+  return [
+    `### ${example.shows}`,
+    example.intro,
+    ...files,
+    ...here,
+    yaml(example.shown),
+    resultsText(example),
+  ].join('\n\n');
+}
+
+function resultsText(example: Example): string {
+  const { outcomes } = example;
   const before = circumstances(example);
-  const title = shows ? `Example, ${shows}:` : 'Example:';
-  const results =
-    outcomes.length === 1
-      ? sentence(`${before === '' ? '' : `${before}, `}${said(outcomes[0])}.`)
-      : `${sentence(before === '' ? 'it gives' : before)}:\n\n${outcomes.map((outcome) => `- ${said(outcome)}`).join('\n')}`;
-  return [title, yaml(shown), results].join('\n\n');
+  return outcomes.length === 1
+    ? sentence(`${before === '' ? '' : `${before}, `}${said(outcomes[0])}.`)
+    : `${sentence(before === '' ? 'it gives' : before)}:\n\n${outcomes.map((outcome) => `- ${said(outcome)}`).join('\n')}`;
 }
 
 const sentence = (text: string): string => {
