@@ -72,7 +72,16 @@ export async function judgeTarget(
   const seconds = (performance.now() - started) / 1000;
   return {
     run: specRun(target, { ...judged, ...held }, seconds),
-    plots: () => plotsOf(spec, coefficients, judged),
+    plots: () =>
+      plotsOf(
+        spec,
+        coefficients,
+        { ...judged, ...held },
+        {
+          reference: target.latched?.reference,
+          since: held.sinceLatched,
+        },
+      ),
   };
 }
 

@@ -2,6 +2,12 @@ import { ParameterSpace } from '../perturb/parameter_space.js';
 import { type PlantOrigin, plantsToTry } from '../perturb/plants.js';
 import type { Spec } from '../spec/spec.js';
 
+/** So many plants show the width of the bounds; fewer where one takes long. */
+export const bandSizes = [40, 20, 10, 5];
+
+/** As many lie evenly between the bounds as where so many independent ones are asked for. */
+const spreadOut = 64;
+
 /** These come before the independent ones and reach to every side of the bounds. */
 const wideOrigins: ReadonlySet<PlantOrigin> = new Set(['nominal', 'single', 'corner', 'spread']);
 
@@ -9,7 +15,7 @@ const wideOrigins: ReadonlySet<PlantOrigin> = new Set(['nominal', 'single', 'cor
 export function widePlants({ parameters, perturbation }: Spec): Float64Array[] {
   const space = new ParameterSpace(parameters, perturbation);
   const wide: Float64Array[] = [];
-  for (const { origin, values } of plantsToTry(space, { ...perturbation, plants: 0 })) {
+  for (const { origin, values } of plantsToTry(space, { ...perturbation, plants: spreadOut })) {
     if (!wideOrigins.has(origin)) break;
     wide.push(values);
   }

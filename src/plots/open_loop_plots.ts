@@ -1,90 +1,82 @@
-import { Linearisation } from '../linear/linearise.js';
+import type { Complex } from '../linear/complex.js';
 import { NumericFailure } from '../linear/numeric_failure.js';
-import { pointOfRest } from '../linear/point_of_rest.js';
 import { prepareResponse } from '../linear/response.js';
-import { expandLoop } from '../loop/expand.js';
-import type { CoefficientValues } from '../loop/parts.js';
-import { scheduleOf } from '../loop/schedule.js';
-import { measureNamed } from '../measure/index.js';
-import { LoopPoint } from '../measure/loop_point.js';
 import type { LoopView } from '../measure/loop_view.js';
 import type { FrequencyCurve, OpenLoopPlot } from '../report/index.js';
-import type { Requirement, Spec } from '../spec/spec.js';
 import type { RequirementRun } from '../verdict/run.js';
+import { crossingsOf, frequenciesAbout } from './frequencies.js';
+import { lookedAt } from './gain_fences.js';
+import { liftedLoop, seenAtOneFrequency } from './lifted_loop.js';
 import { type MarginsFound, marginBrackets, modulusBracket } from './margin_brackets.js';
+import type { OpenedLoop } from './opened_loops.js';
 import { valuesOfPlant } from './plant_values.js';
 
-const points = 320;
-/** The picture reaches so far below the lowest crossing that matters and above the highest: what margins are read from. */
-const below = 30;
-const above = 8;
-/** A phase crossing at which the gain is so far from one, as a factor, tells nothing. */
-const farthestFactor = 100;
-/** Without a crossing it covers so much of the range up to half the sampling frequency. */
-const coveredWithoutCrossing = 1e4;
+/** The open loops of the nominal plant, of the same with latched coefficients, and of the first requirement's worst plant. */
+export interface Views {
+  nominal: LoopView;
+  latched: LoopView | undefined;
+  worst: LoopView;
+}
 
-/**
- * One plot for each point at which requirements open and linearise the loop. A loop whose signal changes several times in
- * a cycle of all controllers has no single curve and none is drawn; nor is a loop that cannot be formed.
- */
-export function openLoopPlots(
-  spec: Spec,
-  coefficients: CoefficientValues,
-  judged: readonly RequirementRun[],
-): OpenLoopPlot[] {
-  const closed = new Linearisation(expandLoop(spec, coefficients));
-  const openedAt = (point: LoopPoint, plant: Float64Array): LoopView | undefined => {
-    try {
-      const rest = pointOfRest(closed, plant, closed.loop.inputRest);
-      if (rest.kind === 'none') return undefined;
-      const found = point.view(plant, rest.point, scheduleOf(closed.loop, plant));
-      return found.kind === 'loop' && found.loop.changes === 1 ? found.loop : undefined;
-    } catch (error) {
-      if (error instanceof NumericFailure) return undefined;
-      throw error;
-    }
+/** L of an opened loop over frequency; undefined where it cannot be formed for the nominal or the worst plant,
+ * or is opened at several signals at once: L is a matrix then, and no curve. */
+export function openLoopPlot(loop: OpenedLoop): OpenLoopPlot | undefined {
+  if (loop.signals.length > 1) return undefined;
+  const opened = { ...loop, runs: marginsFirst(loop.runs) };
+  const [first] = opened.runs;
+  const [nominal, worst] = [first.nominal, first.worst].map((plant) => opened.of(valuesOfPlant(plant)));
+  if (nominal.kind !== 'loop' || worst.kind !== 'loop') return undefined;
+  const views: Views = {
+    nominal: nominal.loop,
+    latched: opened.latched(valuesOfPlant(first.nominal)),
+    worst: worst.loop,
   };
-  return groupsOf(spec).flatMap((group): OpenLoopPlot[] => {
-    const runs = group.map(({ name }) => judged.find((run) => run.name === name)!);
-    const point = new LoopPoint(spec, coefficients, group[0]);
-    const nominal = openedAt(point, valuesOfPlant(runs[0].nominal));
-    const worst = openedAt(point, valuesOfPlant(runs[0].worst));
-    return nominal && worst ? [plotOf(group[0].signals.at, runs, nominal, worst)] : [];
-  });
+  return views.nominal.changes === 1 ? singlePlot(opened, views) : liftedPlot(opened, views);
 }
 
-/** Requirements on the same opened loop, linearised at the same point. */
-function groupsOf({ requirements }: Spec): Requirement[][] {
-  const groups = new Map<string, Requirement[]>();
-  for (const requirement of requirements) {
-    if (measureNamed(requirement.measure).description.basis !== 'loop') continue;
-    const around = requirement.around.map(({ name, value }) => [name, value]);
-    const key = JSON.stringify([requirement.signals.at, around]);
-    groups.set(key, [...(groups.get(key) ?? []), requirement]);
-  }
-  return [...groups.values()];
+/** What is read from L itself comes before what has a picture of its own: the worst plant that is drawn is the first one's. */
+function marginsFirst(runs: OpenedLoop['runs']): OpenedLoop['runs'] {
+  const isRead = (run: RequirementRun): boolean => !lookedAt(run) || run.measure === 'modulus_margin';
+  return [...runs.filter(isRead), ...runs.filter((run) => !isRead(run))];
 }
 
-function plotOf(
-  at: string,
-  runs: readonly RequirementRun[],
-  nominalView: LoopView,
-  worstView: LoopView,
-): OpenLoopPlot {
-  const found = { nominal: marginsFound(nominalView), worst: marginsFound(worstView) };
-  const frequencies = frequenciesOf(nominalView, Object.values(found));
+function singlePlot({ at, runs }: OpenedLoop, views: Views): OpenLoopPlot {
+  const found = { nominal: marginsFound(views.nominal), worst: marginsFound(views.worst) };
+  const mattering = [views.nominal, views.worst].flatMap(crossingsOf);
+  const frequencies = frequenciesAbout(mattering, Math.PI / views.nominal.period);
+  const [lowest, highest] = [frequencies[0], frequencies[frequencies.length - 1]];
   return {
-    requirements: runs.map(({ name }) => name),
-    at,
-    frequencies,
-    nominal: curveOf(found.nominal, frequencies),
-    worst: curveOf(found.worst, frequencies),
+    ...curvesOf(at, runs, views, frequencies, (view) => prepareResponse(view.equations)),
     margins: runs
       .flatMap((run) => marginBrackets(run, found))
-      .filter(
-        ({ frequency }) => frequency >= frequencies[0] && frequency <= frequencies[frequencies.length - 1],
-      ),
+      .filter(({ frequency }) => frequency >= lowest && frequency <= highest),
     modulus: runs.map((run) => modulusBracket(run, found)).find((one) => one !== undefined),
+  };
+}
+
+function liftedPlot({ at, runs }: OpenedLoop, views: Views): OpenLoopPlot {
+  const frequencies = frequenciesAbout([], Math.PI / views.nominal.period);
+  return {
+    ...curvesOf(at, runs, views, frequencies, seenAtOneFrequency),
+    ...{ margins: [], modulus: undefined },
+    lifted: liftedLoop(runs, views),
+  };
+}
+
+type ResponseAt = (angularFrequency: number) => Complex;
+
+function curvesOf(
+  at: string,
+  runs: OpenedLoop['runs'],
+  { nominal, latched, worst }: Views,
+  frequencies: readonly number[],
+  responseOf: (view: LoopView) => ResponseAt,
+): Pick<OpenLoopPlot, 'requirements' | 'at' | 'frequencies' | 'nominal' | 'latched' | 'worst'> {
+  const curve = (view: LoopView): FrequencyCurve => curveOf(responseOf(view), frequencies);
+  return {
+    requirements: runs.map(({ name }) => name),
+    ...{ at, frequencies, nominal: curve(nominal), worst: curve(worst) },
+    ...(latched && { latched: curve(latched) }),
   };
 }
 
@@ -92,28 +84,8 @@ function marginsFound(view: LoopView): MarginsFound {
   return { margins: view.margins(), response: prepareResponse(view.equations) };
 }
 
-/**
- * Evenly spread over the logarithm, up to half the sampling frequency at most, with every crossing that matters among them so
- * that no margin lies between two.
- */
-function frequenciesOf({ period }: LoopView, found: readonly MarginsFound[]): number[] {
-  const end = Math.PI / period;
-  const crossings = found
-    .flatMap(({ margins: { gainCrossings, phaseCrossings } }) => [
-      ...gainCrossings,
-      ...phaseCrossings.filter(({ factor }) => Math.max(factor, 1 / factor) < farthestFactor),
-    ])
-    .map(({ frequency }) => frequency)
-    .filter((frequency) => frequency > end / 1e7 && frequency <= end);
-  const highest = crossings.length > 0 ? Math.min(end, above * Math.max(...crossings)) : end;
-  const lowest = Math.min(end / coveredWithoutCrossing, ...crossings.map((one) => one / below));
-  const ratio = highest / lowest;
-  const even = Array.from({ length: points }, (_, at) => lowest * ratio ** (at / (points - 1)));
-  return [...new Set([...even.slice(0, -1), ...crossings, highest])].sort((a, b) => a - b);
-}
-
 /** Magnitude and phase, the phase without jumps and starting between −3π/2 and π/2. */
-function curveOf({ response }: MarginsFound, frequencies: readonly number[]): FrequencyCurve {
+function curveOf(response: ResponseAt, frequencies: readonly number[]): FrequencyCurve {
   const magnitude: number[] = [];
   const phase: number[] = [];
   for (const frequency of frequencies) {
@@ -125,10 +97,7 @@ function curveOf({ response }: MarginsFound, frequencies: readonly number[]): Fr
 }
 
 /** Not-a-number at a pole on the boundary itself, where the curve is broken. */
-function finiteResponse(
-  response: MarginsFound['response'],
-  frequency: number,
-): { real: number; imaginary: number } {
+function finiteResponse(response: ResponseAt, frequency: number): Complex {
   try {
     return response(frequency);
   } catch (error) {

@@ -4,16 +4,15 @@ import type { TracePlot } from '../report/index.js';
 import type { Dimension, Requirement, Scenario, Spec, Unit } from '../spec/spec.js';
 import { signalsOfStatement } from '../spec/statement.js';
 import type { JudgedSpec } from '../verdict/judge_spec.js';
-import { thinnedPlants } from './band_plants.js';
+import { bandSizes, thinnedPlants } from './band_plants.js';
 import { type FenceContext, fencesOf } from './fences.js';
 import { affordable, type Clock } from './fineness.js';
+import { type NumbersToDraw, whereItFits } from './numbers_to_draw.js';
 import { valuesOfPlant } from './plant_values.js';
+import { boundsOver } from './samples.js';
 import { ScenarioTraces } from './scenario_traces.js';
 
 type Sampled = Map<string, number[]> | undefined;
-
-/** So many plants show the width of the bounds; fewer where a run takes long. */
-const bandSizes = [40, 20, 10, 5];
 
 /** A signal that is drawn in a scenario, and the requirements that are measured on it. */
 interface Drawn {
@@ -27,19 +26,17 @@ interface Drawn {
  */
 export function tracePlots(
   spec: Spec,
-  coefficients: CoefficientValues,
+  numbers: NumbersToDraw,
   judged: JudgedSpec,
   wide: readonly Float64Array[],
   now: Clock,
 ): TracePlot[] {
-  return spec.scenarios.flatMap((scenario) =>
-    plotsOfScenario(spec, coefficients, judged, wide, scenario, now),
-  );
+  return spec.scenarios.flatMap((scenario) => plotsOfScenario(spec, numbers, judged, wide, scenario, now));
 }
 
 function plotsOfScenario(
   spec: Spec,
-  coefficients: CoefficientValues,
+  { today, latched }: NumbersToDraw,
   judged: JudgedSpec,
   wide: readonly Float64Array[],
   scenario: Scenario,
@@ -49,36 +46,39 @@ function plotsOfScenario(
   if (drawn.length === 0) return [];
   const targets = drawn.flatMap(({ requirements }) => targetOf(requirements) ?? []);
   const signals = [...new Set([...drawn.map(({ signal }) => signal), ...targets])];
-  const traces = new ScenarioTraces(spec, coefficients, scenario, signals, judged.halvings);
+  const followed = (numbers: CoefficientValues) =>
+    new ScenarioTraces(spec, numbers, scenario, signals, judged.halvings);
+  const traces = followed(today);
   const plantOf = new Map(judged.requirements.map(({ name, worst }) => [name, valuesOfPlant(worst)]));
   const nominalValues = Float64Array.from(spec.parameters, (parameter) => parameter.nominal);
   const nominal = traces.of(nominalValues);
+  const then = latched && whereItFits(() => followed(latched).of(nominalValues));
   const most = affordable(bandSizes, () => traces.of(nominalValues), now) ?? bandSizes[bandSizes.length - 1];
   const band = thinnedPlants(wide, most);
   const worstOf = new Map(
     drawn.map(({ requirements: [first] }) => [first.name, traces.of(plantOf.get(first.name)!)]),
   );
   const all = [nominal, ...worstOf.values(), ...band.map((plant) => traces.of(plant))];
-  return drawn.flatMap(({ signal, requirements }): TracePlot[] => {
+  return drawn.map(({ signal, requirements }): TracePlot => {
     const target = targetOf(requirements);
-    const targetValues = target === undefined ? undefined : nominal?.get(target);
     const none = traces.times.map(() => Number.NaN);
-    return [
-      {
-        requirements: requirements.map(({ name }) => name),
-        signal,
-        scenario: scenario.name,
-        unit: unitOf(spec, signal, requirements),
-        times: traces.times,
-        ...bounds(all, signal, traces.times.length),
-        nominal: nominal?.get(signal) ?? none,
-        worst: worstOf.get(requirements[0].name)?.get(signal) ?? none,
-        target: targetValues,
-        fences: requirements.flatMap((requirement) =>
-          fencesOf(requirement, contextOf(requirement, scenario, traces, nominal, nominalValues)),
-        ),
-      },
-    ];
+    const curves = all.flatMap((one) => (one ? [one.get(signal)!] : []));
+    const latchedValues = then?.get(signal);
+    return {
+      requirements: requirements.map(({ name }) => name),
+      signal,
+      scenario: scenario.name,
+      unit: unitOf(spec, signal, requirements),
+      times: traces.times,
+      ...boundsOver(curves, traces.times.length),
+      nominal: nominal?.get(signal) ?? none,
+      ...(latchedValues && { latched: latchedValues }),
+      worst: worstOf.get(requirements[0].name)?.get(signal) ?? none,
+      target: target === undefined ? undefined : nominal?.get(target),
+      fences: requirements.flatMap((requirement) =>
+        fencesOf(requirement, contextOf(requirement, scenario, traces, nominal, nominalValues)),
+      ),
+    };
   });
 }
 
@@ -102,21 +102,6 @@ function targetOf(requirements: readonly Requirement[]): string | undefined {
   return requirements.find(({ signals }) => signals.to !== undefined)?.signals.to;
 }
 
-/** Smallest and largest at each instant over the plants that have a value there. */
-function bounds(
-  all: readonly Sampled[],
-  signal: string,
-  count: number,
-): Pick<TracePlot, 'low' | 'high' | 'plants'> {
-  const traces = all.flatMap((one) => (one ? [one.get(signal)!] : []));
-  const over = (pick: (...values: number[]) => number): number[] =>
-    Array.from({ length: count }, (_, at) => {
-      const values = traces.map((trace) => trace[at]).filter(Number.isFinite);
-      return values.length === 0 ? Number.NaN : pick(...values);
-    });
-  return { low: over(Math.min), high: over(Math.max), plants: traces.length };
-}
-
 function contextOf(
   { signals, quantities }: Requirement,
   scenario: Scenario,
@@ -133,9 +118,13 @@ function contextOf(
   };
 }
 
-/** As a requirement's limit is written where it is of the signal's kind, else as the signal is declared. */
+/**
+ * As a requirement's limit is written where it is of the signal's kind, one of another scenario where there is none here, else
+ * as the signal is declared.
+ */
 function unitOf(spec: Spec, signal: string, requirements: readonly Requirement[]): Unit {
-  const written = requirements.find(
+  const elsewhere = spec.requirements.filter(({ signals }) => signals.of === signal);
+  const written = [...requirements, ...elsewhere].find(
     ({ measure, inDecibels }) => !inDecibels && keepsDimension(measureNamed(measure).description.dimension),
   );
   return written?.unit ?? declaredUnit(spec, signal);

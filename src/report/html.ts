@@ -62,8 +62,12 @@ function faultList(faults: readonly Fault[]): Markup | undefined {
 function specSection(spec: SpecRun, id: string, version: string, plots: SpecPlots | undefined): Markup {
   const idOf = (requirement: RequirementRun): string =>
     `${id}-r${spec.requirements.indexOf(requirement) + 1}`;
+  const idOfNamed = (name: string): string | undefined => {
+    const named = spec.requirements.find((one) => one.name === name);
+    return named && idOf(named);
+  };
   const articles = blockingFirst(spec.requirements).map((one) =>
-    requirementArticle(one, idOf(one), spec, plots),
+    requirementArticle(one, idOf(one), spec, plots, idOfNamed),
   );
   return html`<section aria-labelledby="${id}">
 <h2 id="${id}"><bdi>${spec.loop}</bdi></h2><p class="about"><code>${spec.file}</code></p>

@@ -9,7 +9,16 @@ export interface ReportPlots {
 export interface SpecPlots {
   traces: TracePlot[];
   loops: OpenLoopPlot[];
+  gains: GainPlot[];
   planes: HeadroomPlane[];
+  /** What is not drawn, and why. */
+  undrawn: Undrawn[];
+}
+
+/** Requirements whose loop has no picture: a sentence for people. */
+export interface Undrawn {
+  requirements: string[];
+  why: string;
 }
 
 /** A signal over time in one scenario, over some plants. All arrays have one entry for each time. */
@@ -28,6 +37,8 @@ export interface TracePlot {
   low: readonly number[];
   high: readonly number[];
   nominal: readonly number[];
+  /** The latched coefficients on the nominal plant, where there are some and they differ from today's. */
+  latched?: readonly number[];
   /** On the worst plant of the first requirement. */
   worst: readonly number[];
   /** What the signal is compared with, where there is such a signal, SI. */
@@ -53,11 +64,93 @@ export interface OpenLoopPlot {
   /** rad/s, rising, above zero. */
   frequencies: readonly number[];
   nominal: FrequencyCurve;
+  /** The latched coefficients on the nominal plant, where there are some and they differ from today's. */
+  latched?: FrequencyCurve;
   /** On the worst plant of the first requirement. */
   worst: FrequencyCurve;
   margins: MarginBracket[];
   /** The distance of L from −1, where a requirement asks for one. */
   modulus: ModulusBracket | undefined;
+  /**
+   * Of a signal that changes several times in a cycle of all controllers: the curves are then what is
+   * seen of L at one frequency. */
+  lifted?: LiftedLoop;
+}
+
+/** A loop whose signal changes several times in a cycle, with one input and output of L for each change. */
+export interface LiftedLoop {
+  changes: number;
+  /** The loci of the eigenvalues of L over all frequencies up to half that of the cycle. */
+  nominal: Locus[];
+  latched?: Locus[];
+  worst: Locus[];
+  /** Where margins are read from the loci. */
+  marks: LocusMark[];
+}
+
+/** A way through the complex plane. */
+export type Locus = readonly { real: number; imaginary: number }[];
+
+/** Where a locus crosses the negative real axis (`gain`) or the circle of radius one (`phase`) nearest to −1. */
+export interface LocusMark {
+  requirement: string;
+  kind: 'gain' | 'phase';
+  curve: 'nominal' | 'worst';
+  at: { real: number; imaginary: number };
+  text: string;
+}
+
+/**
+ * The size of a response of the loop over frequency with its limits. `sensitivity`: S = 1/(1 + L); `following`: L/(1 + L);
+ * `loop`: L itself. Sizes are plain ratios, one for each frequency, not-a-number where there is none.
+ */
+export interface GainPlot {
+  /** Names of the requirements whose limits are drawn; at least one. */
+  requirements: string[];
+  response: 'sensitivity' | 'following' | 'loop';
+  /** The signal at which the loop is opened, or the several, in words. */
+  at: string;
+  /** How often what is opened changes in a cycle of all controllers. */
+  changes: number;
+  /**
+   * What a size is. `response`: of the one response over frequency. Where there are several changes `any_signal`: the largest
+   * singular value; `sine`: the root-mean-square of all that a sine makes over that of the sine, of L what is seen of it at the
+   * same frequency.
+   */
+  meaning: 'response' | 'any_signal' | 'sine';
+  /** rad/s, rising, above zero. */
+  frequencies: readonly number[];
+  /** So many plants make the band. */
+  plants: number;
+  low: readonly number[];
+  high: readonly number[];
+  nominal: readonly number[];
+  /** The latched coefficients on the nominal plant, where there are some and they differ from today's. */
+  latched?: readonly number[];
+  /** The worst plants of the requirements, each drawn once, with the names of all whose worst it is. */
+  worst: { requirements: string[]; values: readonly number[] }[];
+  fences: GainFence[];
+  /** Of each requirement the place where its worst plant comes nearest to the limit or goes furthest beyond it. */
+  tightest: TightestPlace[];
+}
+
+/** A limit on a size over a band of frequencies (rad/s), and the side on which the size must not be. */
+export interface GainFence {
+  requirement: string;
+  from: number;
+  to: number;
+  value: number;
+  forbidden: 'above' | 'below';
+}
+
+/** A point of a worst curve. */
+export interface TightestPlace {
+  requirement: string;
+  /** rad/s */
+  frequency: number;
+  value: number;
+  /** The requirement's number there in its own unit, and its headroom. */
+  text: string;
 }
 
 /** Magnitude as a plain ratio and phase in rad, without jumps of 2π, one entry for each frequency. */

@@ -162,7 +162,7 @@ function partsOf(requirement: RequirementRun, comparison: Comparison): string[] 
 /** From one result to another, in the written unit: "-9 deg", "+1 deg", "none". */
 function step(from: ComparedResult, to: ComparedResult, written: WrittenUnit): string {
   if (from.result.kind === 'value' && to.result.kind === 'value') {
-    if (from.result.value === to.result.value) return 'nothing';
+    if (from.result.value === to.result.value || isRounding(from, to)) return 'nothing';
     const change = inWrittenUnit(to.result.value, written) - inWrittenUnit(from.result.value, written);
     const unit = unitText(written);
     if (Number.isFinite(change)) {
@@ -179,6 +179,12 @@ function plain({ result }: ComparedResult, written: WrittenUnit): string {
 
 function short({ result }: ComparedResult, requirement: RequirementRun): string {
   return oneLine(formatResultShort(result, requirement, limitNumbers(requirement.limit)));
+}
+
+/** Whether two results differ by less than a hundredth of a point of headroom: other plants were searched, nothing changed. */
+function isRounding(a: ComparedResult, b: ComparedResult): boolean {
+  if (a.headroom === undefined || b.headroom === undefined || a.headroom === 1) return false;
+  return Math.abs(a.headroom - b.headroom) < leastToSay / 10;
 }
 
 /** Whether there is a difference worth a line, in headroom or in what kind of result there is. */

@@ -42,7 +42,7 @@ beforeAll(async () => {
     new Map(),
     { workers: 1 },
   );
-  plots = plotsOf(spec, new Map(), judged, () => 0);
+  plots = plotsOf(spec, new Map(), judged, undefined, () => 0);
 });
 
 const numberOf = (name: string, which: 'nominal' | 'worst' = 'nominal'): number => {
@@ -251,7 +251,7 @@ it('survives plants that cannot be followed: the worst one runs away and the ban
 describe('a spec whose plants take long', () => {
   it('has fewer plants in its bands, and no planes, so that a report is not waited for', async () => {
     let time = 0;
-    const slow = plotsOf(spec, new Map(), judged, () => {
+    const slow = plotsOf(spec, new Map(), judged, undefined, () => {
       time += 60;
       return time;
     });

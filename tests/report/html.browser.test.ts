@@ -62,7 +62,7 @@ describe.runIf(hasBrowser)('the page in a browser', () => {
       expect(await heading.textContent()).toBe('merge blocked: 2 broken, 1 unjudged, 3 met');
       expect((await heading.boundingBox())!.y).toBeLessThan(100);
       expect(await page.getByRole('article').count()).toBe(6);
-      expect(await page.getByRole('img').count()).toBe(6 + 4);
+      expect(await page.getByRole('img').count()).toBe(6 + 5);
       expect(await page.getByRole('img', { name: 'AZ-1 against its limit' }).isVisible()).toBe(true);
     });
   });
@@ -87,7 +87,7 @@ describe.runIf(hasBrowser)('the page in a browser', () => {
 
   it('goes from a name in the table to its requirement', async () => {
     await shown(report, { width: 1280 }, async (page) => {
-      await page.getByRole('link', { name: 'AZ-7' }).press('Enter');
+      await page.getByRole('link', { name: 'AZ-7' }).first().press('Enter');
       await expect.poll(() => page.evaluate('scrollY')).toBeGreaterThan(900);
       expect(await page.evaluate('location.hash')).toBe('#s1-r6');
     });
@@ -96,8 +96,10 @@ describe.runIf(hasBrowser)('the page in a browser', () => {
   it('tells values on hovering', async () => {
     await shown(report, { width: 1280 }, async (page) => {
       const titles = await page.locator('.hover title').allTextContents();
-      expect(titles.some((title) => /^at 1.\d+ s: nominal [\d.]+ mrad, worst/.test(title))).toBe(true);
-      expect(titles.some((title) => /rad\/s: nominal .* dB/.test(title))).toBe(true);
+      expect(
+        titles.some((title) => /^at 1.\d+ s: nominal [\d.]+ mrad, latched [\d.]+ mrad, worst/.test(title)),
+      ).toBe(true);
+      expect(titles.some((title) => /^at [\d.]+ rad\/s \([\d.]+ Hz\): nominal .* dB/.test(title))).toBe(true);
     });
   });
 

@@ -6,7 +6,7 @@ import { htmlReport } from '../../src/report/html.js';
 import type { SpecPlots } from '../../src/report/plots.js';
 import { harmful, hostileNames } from './hostile.js';
 import { hostileRun } from './hostile_run.js';
-import { openLoopPlot, plane, samplePlots, tracePlot } from './sample_plots.js';
+import { gainPlot, openLoopPlot, plane, samplePlots, tracePlot } from './sample_plots.js';
 import { requirement, sampleRun } from './sample_run.js';
 
 const count = (text: string, part: string): number => text.split(part).length - 1;
@@ -59,7 +59,9 @@ describe('htmlReport', () => {
     const plots: SpecPlots = {
       traces: names.map((name) => ({ ...tracePlot, requirements: [name] })),
       loops: names.slice(0, 10).map((name) => ({ ...openLoopPlot, requirements: [name] })),
+      gains: names.slice(0, 20).map((name) => ({ ...gainPlot, requirements: [name] })),
       planes: names.map((name) => ({ ...plane, requirement: name })),
+      undrawn: [],
     };
     const run = sampleRun({ requirements: names.map((name) => requirement({ name })) });
     expect(htmlReport(run, { plots: { specs: [plots] } }).length).toBeLessThan(2e6);
@@ -86,6 +88,17 @@ describe('htmlReport', () => {
           modulus: { ...openLoopPlot.modulus!, requirement: name, text: name },
         },
       ],
+      gains: [
+        {
+          ...gainPlot,
+          requirements: [name, name],
+          at: name,
+          worst: gainPlot.worst.map((one) => ({ ...one, requirements: [name] })),
+          fences: gainPlot.fences.map((fence) => ({ ...fence, requirement: name })),
+          tightest: gainPlot.tightest.map((place) => ({ ...place, requirement: name, text: name })),
+        },
+      ],
+      undrawn: [{ requirements: [name], why: name }],
       planes: [
         {
           ...plane,

@@ -7,7 +7,7 @@ import { requirementArticle } from '../../src/report/html/requirement_article.js
 import { verdictBadge } from '../../src/report/html/sign.js';
 import { style } from '../../src/report/html/style.js';
 import { summaryTable } from '../../src/report/html/summary.js';
-import { openLoopPlot, plane, samplePlots, tracePlot } from './sample_plots.js';
+import { gainPlot, openLoopPlot, plane, samplePlots, tracePlot } from './sample_plots.js';
 import { plant, requirement, requirements, specRun, value } from './sample_run.js';
 
 /** The text that is seen, blanks as one. */
@@ -135,7 +135,7 @@ describe('plotFigures', () => {
   const captions = (name: string, plots = samplePlots.specs[0]) =>
     (
       plotFigures({ name }, 'r', plots)
-        .map(({ text }) => text)
+        .map(({ markup }) => markup.text)
         .join('')
         .match(/<strong>.*?<\/strong>/g) ?? []
     ).map(seen);
@@ -143,24 +143,28 @@ describe('plotFigures', () => {
   it('stand with the first requirement that they belong to', () => {
     expect(captions('AZ-2')).toEqual(['angle in slew']);
     expect(captions('AZ-1')).toEqual([]);
-    expect(captions('AZ-6')).toEqual(['Open loop at duty', 'Its locus']);
+    expect(captions('AZ-6')).toEqual(['Open loop at duty', 'Locus of the open loop at duty']);
     expect(captions('AZ-3')).toEqual(['Headroom over two parameters, all others nominal']);
   });
 
   it('are none where there is nothing to draw', () => {
     expect(plotFigures({ name: 'AZ-1' }, 'r', undefined)).toEqual([]);
-    expect(plotFigures({ name: 'AZ-1' }, 'r', { traces: [], loops: [], planes: [] })).toEqual([]);
+    expect(
+      plotFigures({ name: 'AZ-1' }, 'r', { traces: [], loops: [], gains: [], planes: [], undrawn: [] }),
+    ).toEqual([]);
   });
 
   it('have ids of their own where there are several', () => {
     const plots = {
       traces: [tracePlot, tracePlot],
       loops: [openLoopPlot, openLoopPlot],
+      gains: [gainPlot, gainPlot],
       planes: [plane, plane],
+      undrawn: [],
     };
-    const all = ['AZ-2', 'AZ-6', 'AZ-3']
+    const all = ['AZ-2', 'AZ-6', 'AZ-7', 'AZ-3']
       .flatMap((name) => plotFigures({ name }, 'r', plots))
-      .map(({ text }) => text)
+      .map(({ markup }) => markup.text)
       .join('');
     const ids = [...all.matchAll(/\sid="([^"]+)"/g)].map(([, id]) => id);
     expect(ids.length).toBeGreaterThan(16);

@@ -1,14 +1,17 @@
-import { scaleLinear } from 'd3-scale';
+import { scaleLinear, scaleLog } from 'd3-scale';
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { extent, extentAround, spread } from '../../src/report/plot/frame.js';
+import { fenceLines } from '../../src/report/plot/fence_lines.js';
+import { extent, extentAround } from '../../src/report/plot/frame.js';
+import { gainDrawing } from '../../src/report/plot/gain_plot.js';
 import { limitStrip } from '../../src/report/plot/limit_strip.js';
 import { locusDrawing } from '../../src/report/plot/locus_plot.js';
+import { logMarks } from '../../src/report/plot/log_axis.js';
 import { openLoopDrawing } from '../../src/report/plot/open_loop_plot.js';
 import { planeDrawing } from '../../src/report/plot/plane_plot.js';
-import { bracketPath, fencePath, pathThrough, thinned } from '../../src/report/plot/shape.js';
+import { bandBetween, bracketPath, fencePath, pathThrough, simplified } from '../../src/report/plot/shape.js';
 import { sampled, traceDrawing } from '../../src/report/plot/trace_plot.js';
-import { openLoopPlot, plane, tracePlot } from './sample_plots.js';
+import { gainPlot, openLoopPlot, plane, tracePlot } from './sample_plots.js';
 import { plant, requirement, requirements, value } from './sample_run.js';
 
 /** The numbers of an attribute of the first element of a class. */
@@ -19,24 +22,51 @@ function attribute(drawing: string, className: string, name: string): string {
 
 const numbers = (text: string): number[] => (text.match(/-?[\d.]+/g) ?? []).map(Number);
 
-describe('thinned', () => {
-  const series = fc.array(fc.double({ noNaN: true, min: -1e6, max: 1e6 }), { minLength: 1, maxLength: 300 });
+describe('simplified', () => {
+  const point = fc.tuple(
+    fc.double({ min: 0, max: 400, noNaN: true }),
+    fc.double({ min: 0, max: 300, noNaN: true }),
+  );
 
-  it('keeps the ends and the extremes, in order, and little more than asked for', () => {
+  it('keeps both ends, in order, and no point is farther from what is left than a screen shows', () => {
     fc.assert(
-      fc.property(series, fc.integer({ min: 4, max: 60 }), (values, most) => {
-        const kept = thinned(values, most);
-        expect(kept[0]).toBe(0);
-        expect(kept.at(-1)).toBe(values.length - 1);
-        expect(kept).toEqual([...kept].sort((a, b) => a - b));
-        expect(kept.length).toBeLessThanOrEqual(most + 2);
-        const left = kept.map((at) => values[at]);
-        expect(Math.max(...left)).toBe(Math.max(...values));
-        expect(Math.min(...left)).toBe(Math.min(...values));
+      fc.property(fc.array(point, { minLength: 1, maxLength: 80 }), (points) => {
+        const left = simplified(points);
+        expect([left[0], left.at(-1)]).toEqual([points[0], points.at(-1)]);
+        expect(left.map((one) => points.indexOf(one))).toEqual(
+          left.map((one) => points.indexOf(one)).sort((a, b) => a - b),
+        );
+        for (const one of points) {
+          const distances = left.map((start, at) => apart(one, start, left[at + 1] ?? start));
+          expect(Math.min(...distances)).toBeLessThanOrEqual(0.12 + 1e-9);
+        }
       }),
-      { seed: 51, numRuns: 300 },
+      { seed: 51, numRuns: 200 },
     );
   });
+
+  it('leaves of a straight stretch its ends', () => {
+    expect(simplified(Array.from({ length: 50 }, (_, at): [number, number] => [at, 2 * at]))).toEqual([
+      [0, 0],
+      [49, 98],
+    ]);
+  });
+
+  /** Distance of a point from a stretch, by trying many points of it. */
+  function apart(
+    [x, y]: readonly number[],
+    [x1, y1]: readonly number[],
+    [x2, y2]: readonly number[],
+  ): number {
+    const steps = 4000;
+    let least = Number.POSITIVE_INFINITY;
+    for (let at = 0; at <= steps; at++) {
+      const share = at / steps;
+      least = Math.min(least, Math.hypot(x - x1 - share * (x2 - x1), y - y1 - share * (y2 - y1)));
+    }
+    // Between two of the points tried lies at most an eighth of a px.
+    return least - Math.hypot(x2 - x1, y2 - y1) / (2 * steps);
+  }
 });
 
 describe('extent', () => {
@@ -71,13 +101,6 @@ describe('extent', () => {
   });
 });
 
-describe('spread', () => {
-  it('moves labels down until none stands on another, and keeps their order', () => {
-    expect(spread([10, 12, 50], 14)).toEqual([10, 24, 50]);
-    expect(spread([12, 10], 14)).toEqual([24, 10]);
-  });
-});
-
 describe('sampled', () => {
   it('takes evenly spread places with both ends', () => {
     expect(sampled(101, 3)).toEqual([0, 50, 100]);
@@ -98,6 +121,12 @@ describe('paths', () => {
         [4, 4],
       ]),
     ).toBe('M0,0L1,1M3,3L4,4');
+  });
+
+  it('of a band go up one side and down the other, broken where either is not finite', () => {
+    const upper: [number, number][] = [0, 1, 2, 3].map((x) => [x, x === 2 ? Number.NaN : 5 + x * x]);
+    const lower: [number, number][] = [0, 1, 2, 3].map((x) => [x, -x * x]);
+    expect(bandBetween(upper, lower)).toBe('M0,5L1,6L1,-1L0,0ZM3,14L3,-9Z');
   });
 
   it('of a fence carry ticks on one side only', () => {
@@ -249,5 +278,137 @@ describe('planeDrawing', () => {
     const broken = plane.headroom.flat().filter((share) => share < 0).length;
     const judged = plane.headroom.flat().filter((share) => !Number.isNaN(share)).length;
     expect(text).toContain(`${broken} of ${judged} plants in this plane break the limit`);
+  });
+});
+
+describe('gainDrawing', () => {
+  const text = gainDrawing(gainPlot, 'id').text;
+  const described = (drawing: string): string => drawing.match(/<desc[^>]*>(.*?)<\/desc>/)![1];
+
+  it('draws the band, every curve and each limit with its name, over the frequencies that it is for', () => {
+    for (const name of ['band', 'nominal', 'latched', 'worst', 'worst worst-2'])
+      expect(attribute(text, name, 'd').length).toBeGreaterThan(10);
+    const fences = [...text.matchAll(/class="fence" d="M([\d.]+) ([\d.]+)L([\d.]+) ([\d.]+)/g)].map((found) =>
+      found.slice(1).map(Number),
+    );
+    expect(fences).toHaveLength(2);
+    const [[left, top, right], [oneLeft, lower, oneRight]] = fences;
+    expect([left, right]).toEqual([52, 462]);
+    // A third of the way from 0.1 to 100 rad/s over the logarithm, drawn a little wide.
+    expect((oneLeft + oneRight) / 2).toBeCloseTo(52 + 410 / 3, 0);
+    expect(oneRight - oneLeft).toBeLessThan(20);
+    expect(lower).toBeGreaterThan(top);
+    expect([...text.matchAll(/class="fence-name"[^>]*>([^<]*)</g)].map(([, name]) => name)).toEqual([
+      'AZ-7',
+      'AZ-6',
+    ]);
+  });
+
+  it('puts the ring of the tightest place on the worst curve, on the broken side only where it breaks', () => {
+    const fence = Number(text.match(/class="fence" d="M[\d.]+ ([\d.]+)L/)![1]);
+    const ring = Number(attribute(text, 'bracket-end worst-end', 'cy'));
+    const [{ value }] = gainPlot.tightest;
+    expect(ring < fence).toBe(value > 2);
+  });
+
+  it('says limits, worst places and peaks in numbers for those who do not see it', () => {
+    expect(described(text)).toContain('AZ-7: not above 6.02 dB up to 100 rad/s (15.9 Hz)');
+    expect(described(text)).toContain('AZ-6: not above -6.02 dB at 1 rad/s (0.159 Hz)');
+    expect(described(text)).toContain('AZ-7: worst 5.1 dB, headroom 7\u00a0%, which is');
+    expect(described(text)).toMatch(/nominal plant [\d.]+ dB at [\d.]+ rad\/s/);
+  });
+
+  it('survives curves that are nowhere, and a size of zero', () => {
+    const none = gainPlot.frequencies.map(() => Number.NaN);
+    const empty = {
+      ...gainPlot,
+      plants: 0,
+      low: none,
+      high: none,
+      nominal: none,
+      worst: [],
+      latched: undefined,
+    };
+    expect(gainDrawing(empty, 'id').text).not.toMatch(/d="[^"]*(NaN|Infinity)/);
+    const zero = { ...gainPlot, nominal: gainPlot.nominal.map((size, at) => (at === 10 ? 0 : size)) };
+    expect(gainDrawing(zero, 'id').text).not.toMatch(/d="[^"]*(NaN|Infinity)/);
+  });
+});
+
+describe('fenceLines', () => {
+  const box = { left: 0, right: 400, top: 0, bottom: 300 };
+  const feet = (heights: number[]): number[] =>
+    fenceLines(
+      heights.map((height, at) => ({
+        requirement: `R${at}`,
+        from: [0, height],
+        to: [400, height],
+        forbidden: 'above',
+      })),
+      box,
+    ).map(({ text }) => Number(text.match(/<text[^>]* y="([-\d.]+)"/)![1]));
+
+  it('name each line on its broken side, and never over another name or line', () => {
+    expect(feet([100])).toEqual([92]);
+    fc.assert(
+      fc.property(fc.array(fc.integer({ min: 20, max: 200 }), { minLength: 1, maxLength: 4 }), (heights) => {
+        const all = feet(heights);
+        all.forEach((foot, at) => {
+          for (const other of all.filter((_, i) => i !== at))
+            expect(Math.abs(other - foot)).toBeGreaterThan(12);
+          const lines = heights.filter((height) => Math.abs(height - heights[at]) > 1);
+          for (const line of lines) expect(line < foot - 10 || line > foot + 3).toBe(true);
+        });
+      }),
+      { seed: 54, numRuns: 200 },
+    );
+  });
+});
+
+describe('logMarks', () => {
+  it('marks powers of ten, and 2 and 5 between where there are few', () => {
+    const marks = (low: number, high: number): string[] =>
+      logMarks(scaleLog([low, high], [0, 1])).map(({ text }) => text);
+    expect(marks(0.1, 1000)).toEqual(['0.1', '1', '10', '100', '1000']);
+    expect(marks(3, 40)).toEqual(['5', '10', '20']);
+  });
+});
+
+describe('a lifted loop', () => {
+  const circle = Array.from({ length: 50 }, (_, at) => ({
+    real: -0.5 + 0.3 * Math.cos(at),
+    imaginary: 0.3 * Math.sin(at),
+  }));
+  const lifted = {
+    changes: 2,
+    nominal: [circle, circle.map(({ real, imaginary }) => ({ real: real + 0.2, imaginary }))],
+    worst: [circle],
+    marks: [
+      {
+        requirement: 'AZ-6',
+        kind: 'gain' as const,
+        curve: 'worst' as const,
+        at: { real: -0.8, imaginary: 0 },
+        text: 'worst 1.9 dB, headroom 3 %',
+      },
+    ],
+  };
+  const text = locusDrawing({ ...openLoopPlot, modulus: undefined, lifted }, 'id').text;
+
+  it('has a way for each eigenvalue, and brackets its margins from −1', () => {
+    expect(attribute(text, 'nominal', 'd').match(/M/g)).toHaveLength(2);
+    expect(attribute(text, 'worst', 'd').match(/M/g)).toHaveLength(1);
+    const [, fromX, , toX] = attribute(text, 'bracket worst-bracket', 'd')
+      .match(/M([\d.]+) ([\d.]+)L([\d.]+)/)!
+      .map(Number);
+    const unit = Number(attribute(text, 'level', 'r'));
+    expect((toX - fromX) / unit).toBeCloseTo(0.2, 2);
+  });
+
+  it('is told as loci of so many eigenvalues', () => {
+    expect(text).toContain('The loci of the 2 eigenvalues of the lifted loop.');
+    expect(text).toContain(
+      'AZ-6, gain margin of the worst plant: worst 1.9 dB, headroom 3\u00a0%, read at -0.8 + 0j',
+    );
   });
 });

@@ -1,5 +1,6 @@
 import type {
   FrequencyCurve,
+  GainPlot,
   HeadroomPlane,
   OpenLoopPlot,
   ReportPlots,
@@ -36,6 +37,7 @@ export const tracePlot: TracePlot = {
   low: times.map((_, at) => Math.min(...family.map((one) => one[at]))),
   high: times.map((_, at) => Math.max(...family.map((one) => one[at]))),
   nominal: response(0.7, 4),
+  latched: response(0.9, 4),
   worst: response(0.25, 3),
   target: times.map((time) => (time < 0.2 ? 0 : step)),
   fences: [
@@ -103,6 +105,42 @@ export const openLoopPlot: OpenLoopPlot = {
   },
 };
 
+/** 1/(1 + L), from a magnitude and a phase. */
+function sensitivity({ magnitude, phase }: FrequencyCurve): number[] {
+  return magnitude.map(
+    (size, at) => 1 / Math.hypot(1 + size * Math.cos(phase[at]), size * Math.sin(phase[at])),
+  );
+}
+
+const [nominalSize, worstSize] = [openLoopPlot.nominal, openLoopPlot.worst].map(sensitivity);
+const peak = Math.max(...worstSize);
+
+export const gainPlot: GainPlot = {
+  requirements: ['AZ-7', 'AZ-6'],
+  ...{ response: 'sensitivity', at: 'duty', changes: 1, meaning: 'response', frequencies },
+  plants: 12,
+  low: nominalSize.map((size, at) => Math.min(size, worstSize[at]) * 0.9),
+  high: nominalSize.map((size, at) => Math.max(size, worstSize[at]) * 1.1),
+  nominal: nominalSize,
+  latched: sensitivity(loopCurve(3, 0.05, 0.02)),
+  worst: [
+    { requirements: ['AZ-7'], values: worstSize },
+    { requirements: ['AZ-6'], values: sensitivity(loopCurve(2, 0.09, 0.03)) },
+  ],
+  fences: [
+    { requirement: 'AZ-7', from: 0, to: 100, value: 2, forbidden: 'above' },
+    { requirement: 'AZ-6', from: 1, to: 1, value: 0.5, forbidden: 'above' },
+  ],
+  tightest: [
+    {
+      requirement: 'AZ-7',
+      frequency: frequencies[worstSize.indexOf(peak)],
+      value: peak,
+      text: 'worst 5.1 dB, headroom 7 %',
+    },
+  ],
+};
+
 const grid = Array.from({ length: 24 }, (_, at) => at / 23);
 
 export const plane: HeadroomPlane = {
@@ -127,5 +165,13 @@ export const plane: HeadroomPlane = {
 };
 
 export const samplePlots: ReportPlots = {
-  specs: [{ traces: [tracePlot], loops: [openLoopPlot], planes: [plane] }],
+  specs: [
+    {
+      traces: [tracePlot],
+      loops: [openLoopPlot],
+      gains: [gainPlot],
+      planes: [plane],
+      undrawn: [{ requirements: ['AZ-7'], why: 'The loop opened at duty and mirror is a matrix.' }],
+    },
+  ],
 };

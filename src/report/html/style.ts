@@ -36,7 +36,7 @@ tr>:last-child{padding-right:0}
 .why{font-weight:600}
 .share{display:block;width:120px;height:14px}.losses tbody th{overflow-wrap:anywhere;min-width:9ch}.share .lost{fill:var(--brick)}.share .gained{fill:var(--petrol)}
 .columns{display:grid;grid-template-columns:repeat(auto-fill,minmax(min(100%,430px),1fr));gap:12px 32px;align-items:start}
-@media(max-width:940px){.stack{display:contents}.plot{order:1}}
+@media(max-width:940px){.stack{display:contents}}
 figure{margin:10px 0 4px;max-width:560px}
 figcaption{font-size:.88rem}figcaption strong{color:var(--ink);margin-right:8px}
 dl{margin:10px 0}dl>div{display:grid;grid-template-columns:92px 1fr;gap:12px;padding:3px 0}dd{margin:0}
@@ -46,22 +46,26 @@ ul{padding-left:20px}li{margin:4px 0}
 footer{border-top:3px solid var(--ink);margin-top:48px;padding-top:14px;padding-bottom:40px}
 .drawing{display:block;width:100%;height:auto;font-size:13px}
 .drawing text{fill:var(--ink)}.drawing .mark,.drawing .axis-name{fill:var(--slate)}
-.drawing .fence-name,.drawing .bracket-name{font-weight:600;paint-order:stroke;stroke:var(--sheet);stroke-width:4px;stroke-linejoin:round}
+.drawing .fence-name,.drawing .bracket-name,.drawing .curve-name{font-weight:600;paint-order:stroke;stroke:var(--sheet);stroke-width:4px;stroke-linejoin:round}
 .drawing path,.drawing circle{fill:none}
 .axis{stroke:var(--slate)}.hair{stroke:var(--hair)}.level{stroke:var(--slate);stroke-width:1}
 .fence{stroke:var(--ink);stroke-width:1.3}
 .drawing .band{fill:var(--band)}
 .nominal{stroke:var(--petrol);stroke-width:2.2}.worst{stroke:var(--brick);stroke-width:2;stroke-dasharray:6 3}
+.worst-2{stroke-dasharray:2 3}.worst-3{stroke-dasharray:12 3}
+.latched{stroke:var(--ink);stroke-width:1.5;stroke-dasharray:10 3 2 3}
 .target{stroke:var(--slate);stroke-width:1.2;stroke-dasharray:1.5 3}
 .leader{stroke:var(--slate);stroke-width:.8}.bracket{stroke:var(--ink);stroke-width:1.6}.nominal-bracket{stroke:var(--petrol)}.worst-bracket{stroke:var(--brick)}
 .critical{stroke:var(--ink);stroke-width:2}
 .drawing .bracket-end{fill:var(--sheet);stroke-width:2}.nominal-end{stroke:var(--petrol)}.worst-end{stroke:var(--brick)}
-.drawing .nominal-point{fill:var(--sheet);stroke:var(--petrol);stroke-width:3}
+.drawing .under-point{fill:var(--sheet);stroke:none}.drawing .nominal-point{fill:var(--sheet);stroke:var(--petrol);stroke-width:3}
 .drawing .worst-point{fill:var(--brick);stroke:var(--sheet);stroke-width:1}
+.drawing .latched-point{fill:var(--sheet);stroke:var(--ink);stroke-width:2}
+.drawing .curve-name{font-style:italic;font-weight:400}
 .hover rect{fill:transparent}.hover rect:hover{fill:var(--band)}
 .drawing .cell{fill:var(--petrol);shape-rendering:crispEdges}.drawing .no-cell{fill:var(--hair)}
 .hatch{stroke:var(--slate);stroke-width:1.4}.edge{stroke:var(--ink);stroke-width:1.8}
-.key{white-space:nowrap;margin-right:12px}
+.key{display:inline-block;margin-right:12px}
 .key::before{content:"";display:inline-block;vertical-align:middle;margin-right:6px;width:20px;height:0}
 .nominal-key::before{width:12px;height:12px;border:3px solid var(--petrol);border-radius:50%}
 .worst-key::before{width:10px;height:10px;background:var(--brick);transform:rotate(45deg);margin:0 9px 0 3px}
@@ -69,6 +73,10 @@ footer{border-top:3px solid var(--ink);margin-top:48px;padding-top:14px;padding-
 .band-key::before{height:12px;background:var(--band)}
 .nominal-line-key::before{border-top:2.5px solid var(--petrol)}
 .worst-line-key::before{border-top:2.5px dashed var(--brick)}
+.worst-2-line-key::before{border-top:2.5px dotted var(--brick)}.worst-3-line-key::before{width:30px;height:2.5px;background:linear-gradient(90deg,var(--brick) 13px,transparent 13px 17px,var(--brick) 17px)}
+.latched-line-key::before{width:26px;height:1.5px;background:linear-gradient(90deg,var(--ink) 10px,transparent 10px 13px,var(--ink) 13px 15px,transparent 15px 18px,var(--ink) 18px)}
+.latched-key::before{width:11px;height:11px;border:2px solid var(--ink)}
+.ring-key::before{width:10px;height:10px;border:2px solid var(--brick);border-radius:50%}
 .target-key::before{border-top:2px dotted var(--slate)}
 @media(max-width:640px){.share{width:64px;height:9px}.losses thead th{white-space:normal}header,main,footer{padding:0 14px}.wide{display:none}h1{font-size:1.45rem}.requirement{padding:2px 12px 12px}th,td{padding-right:9px}th,td{font-size:.92rem}.verdict{gap:5px}.sign{width:27px}dl>div{gap:8px}.drawing{font-size:16px}}
 @media print{:root{--ground:#fff;--sheet:#fff;--ink:#000;--slate:#333;--line:#999;--hair:#ccc;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030}body{font-size:10pt}.summary tbody td{white-space:normal}.summary .verdict{white-space:nowrap}th,td{font-size:9pt;padding-right:8px}figure{max-width:420px}.scroll,pre{overflow:visible;max-height:none}figure,.requirement h3,tr{break-inside:avoid}h2,h3{break-after:avoid}a{color:inherit;text-decoration:none}.skip{display:none}}

@@ -46,18 +46,6 @@ export function axisLeft(box: Box, marks: readonly AxisMark[], name: string): Ma
   )}<text class="axis-name" x="${Math.min(6, box.left)}" y="${box.top - 9}">${name}</text>`;
 }
 
-/** Labels at their heights, moved down where they would stand on one another; `least` apart. */
-export function spread(heights: readonly number[], least: number): number[] {
-  const order = heights.map((height, at) => ({ height, at })).sort((a, b) => a.height - b.height);
-  const placed = [...heights];
-  let last = Number.NEGATIVE_INFINITY;
-  for (const { height, at } of order) {
-    last = Math.max(height, last + least);
-    placed[at] = last;
-  }
-  return placed;
-}
-
 /** Numbers beyond this are drawn at it, those below its inverse at zero: axes need room to compute. */
 const mostSize = 1e150;
 

@@ -12,13 +12,24 @@ const box: Box = { left: 26, right: 454, top: 30, bottom: 56 };
 const roomForWord = 52;
 const middle = (box.top + box.bottom) / 2;
 
-/** A requirement's number on a line: the limit as a fence, the nominal plant as a ring, the worst as a diamond. */
+/** Whether the latched coefficients gave a number under today's spec that is another one than today's. */
+export function isLatchedShown({ comparison }: Pick<RequirementRun, 'comparison'>): boolean {
+  const { rerun, today } = comparison ?? {};
+  if (rerun?.result.kind !== 'value' || !today) return false;
+  return today.result.kind !== 'value' || today.result.value !== rerun.result.value;
+}
+
+/**
+ * A requirement's number on a line: the limit as a fence, the nominal plant as a ring, the worst as a diamond, and what the
+ * latched coefficients give at their worst as a square.
+ */
 export function limitStrip(requirement: RequirementRun, id: string): Markup {
   const { limit, nominal, worst } = requirement;
   const written = (value: number): number => onTheLine(value, requirement);
   const limits = limitNumbers(limit).map(written);
-  const values = [nominal, worst].flatMap(({ result }) =>
-    result.kind === 'value' ? [written(result.value)] : [],
+  const latched = isLatchedShown(requirement) ? requirement.comparison!.rerun!.result : undefined;
+  const values = [nominal.result, worst.result, latched].flatMap((result) =>
+    result?.kind === 'value' ? [written(result.value)] : [],
   );
   const x = scaleLinear(extent([...limits, ...values]), [box.left, box.right]).clamp(true);
   const ends = [nominal, worst].flatMap((plant) => offTheLine(requirement, plant, x));
@@ -33,6 +44,7 @@ export function limitStrip(requirement: RequirementRun, id: string): Markup {
         html`<text class="mark" text-anchor="middle" x="${px(at)}" y="${box.bottom + 20}">${text}</text>`,
     ),
     limitNumbers(limit).map((number, at) => fence(requirement, number, x(limits[at]), at)),
+    latched?.kind === 'value' ? latchedPoint(requirement, latched.value, x) : undefined,
     point(requirement, nominal, 'nominal', x),
     point(requirement, worst, 'worst', x),
   ]);
@@ -65,6 +77,14 @@ function point(
   return html`<path class="worst-point" d="M${px(at)} ${middle - 7}l7 7l-7 7l-7 -7z"><title>${title}</title></path>`;
 }
 
+/** Left out where it is beyond both ends: it is told in words. */
+function latchedPoint(requirement: RequirementRun, value: number, x: Scale): Markup | undefined {
+  const own = onTheLine(value, requirement);
+  if (!Number.isFinite(own)) return undefined;
+  const title = `latched: ${formatValue(value, requirement, limitNumbers(requirement.limit))}`;
+  return html`<rect class="latched-point" x="${px(x(own) - 5)}" y="${middle - 5}" width="10" height="10"><title>${title}</title></rect>`;
+}
+
 /** A value in its unit; a ratio below zero has no decibels and lies below all of them. */
 function onTheLine(value: number, requirement: RequirementRun): number {
   const own = inWrittenUnit(value, requirement);
@@ -89,5 +109,8 @@ function offTheLine(
 function describe(requirement: RequirementRun): string {
   const { limit, nominal, worst } = requirement;
   const limits = limitNumbers(limit);
-  return `Limit ${limitInWords(limit, requirement)}; nominal ${formatResult(nominal.result, requirement, limits)}; worst ${formatResult(worst.result, requirement, limits)}.`;
+  const latched = isLatchedShown(requirement)
+    ? `; worst with the latched coefficients ${formatResult(requirement.comparison!.rerun!.result, requirement, limits)}`
+    : '';
+  return `Limit ${limitInWords(limit, requirement)}; nominal ${formatResult(nominal.result, requirement, limits)}; worst ${formatResult(worst.result, requirement, limits)}${latched}.`;
 }

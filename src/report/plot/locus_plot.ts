@@ -2,7 +2,7 @@ import { scaleLinear } from 'd3-scale';
 import { formatNumber } from '../format_value.js';
 import { html, type Markup } from '../html/markup.js';
 import { oneLine, shortened } from '../plain_text.js';
-import type { FrequencyCurve, ModulusBracket, OpenLoopPlot } from '../plots.js';
+import type { FrequencyCurve, LiftedLoop, Locus, LocusMark, ModulusBracket, OpenLoopPlot } from '../plots.js';
 import { axisBelow, axisLeft, type Box, drawing, drawingWidth } from './frame.js';
 import { type Point, pathThrough, px } from './shape.js';
 
@@ -28,10 +28,34 @@ export function locusDrawing(plot: OpenLoopPlot, id: string): Markup {
     axisLeft(box, marks(y), 'imaginary part'),
     axisBelow(box, marks(x), 'real part'),
     html`<clipPath id="${clip}"><rect x="${box.left}" y="${box.top}" width="${drawingWidth - box.left}" height="${box.bottom - box.top}"/></clipPath>`,
-    html`<g clip-path="url(#${clip})"><circle class="level" cx="${px(x(0))}" cy="${px(y(0))}" r="${px(unit)}"/>${plot.modulus && modulusCircle(plot.modulus, x, y, unit)}<path class="nominal" d="${locus(plot.nominal, x, y)}"/><path class="worst" d="${locus(plot.worst, x, y)}"/></g>`,
+    html`<g clip-path="url(#${clip})"><circle class="level" cx="${px(x(0))}" cy="${px(y(0))}" r="${px(unit)}"/>${plot.modulus && modulusCircle(plot.modulus, x, y, unit)}${lociOf(plot, x, y)}</g>`,
     html`<path class="critical" d="M${px(x(-1) - 5)} ${px(y(0))}h10m-5 -5v10"/>`,
     plot.modulus && modulusBracket(plot.modulus, x, y),
+    plot.lifted?.marks.map((mark, at) => marginMark(mark, at, x, y)),
   ]);
+}
+
+/** The curves, the latched one below the others; of a lifted loop every eigenvalue has its own. */
+function lociOf(plot: OpenLoopPlot, x: Scale, y: Scale): Markup[] {
+  return (['latched', 'nominal', 'worst'] as const).flatMap((which) => {
+    const shown = plot[which];
+    if (!shown) return [];
+    const loci = plot.lifted?.[which];
+    const path = loci ? loci.map((one) => way(one, x, y)).join('') : locus(shown, x, y);
+    return [html`<path class="${which}" d="${path}"/>`];
+  });
+}
+
+function way(points: Locus, x: Scale, y: Scale): string {
+  return pathThrough(points.map(({ real, imaginary }): Point => [x(real), y(imaginary)]));
+}
+
+/** Where a margin is read from a locus: a bracket from −1 to there, its label in a row of its own below the upper edge. */
+function marginMark({ requirement, curve, at, text }: LocusMark, row: number, x: Scale, y: Scale): Markup {
+  const [toX, toY] = [x(at.real), y(at.imaginary)];
+  const label = `${shortened(oneLine(requirement), 20)}: ${shortened(oneLine(text), 44)}`;
+  const height = box.top + 16 + 18 * row;
+  return html`<path class="leader" d="M${px(toX)} ${px(toY)}V${height + 4}"/><path class="bracket ${curve}-bracket" d="M${px(x(-1))} ${px(y(0))}L${px(toX)} ${px(toY)}"/><circle class="bracket-end ${curve}-end" cx="${px(toX)}" cy="${px(toY)}" r="3.5"/><text class="bracket-name" x="${box.left + 8}" y="${height}">${label}</text>`;
 }
 
 function locus({ magnitude, phase }: FrequencyCurve, x: Scale, y: Scale): string {
@@ -60,8 +84,20 @@ function modulusBracket(modulus: ModulusBracket, x: Scale, y: Scale): Markup {
   return html`<path class="bracket ${curve}-bracket" d="M${px(x(-1))} ${px(y(0))}L${px(to[0])} ${px(to[1])}"/><circle class="bracket-end ${curve}-end" cx="${px(to[0])}" cy="${px(to[1])}" r="3.5"/><text class="bracket-name" x="${box.left + 8}" y="${px(y(modulus.limit) - 10)}">${label}</text>`;
 }
 
-function describe({ modulus }: OpenLoopPlot): string {
+function describe({ modulus, lifted }: OpenLoopPlot): string {
+  if (lifted) return describeLifted(lifted);
   if (!modulus) return 'No requirement on the modulus margin.';
-  const { real, imaginary } = modulus.nearest;
-  return `${modulus.requirement}: ${modulus.text}; the ${modulus.curve} plant comes nearest to -1 at ${formatNumber(real)} ${imaginary < 0 ? '-' : '+'} ${formatNumber(Math.abs(imaginary))}j; it must stay ${formatNumber(modulus.limit)} away.`;
+  return `${modulus.requirement}: ${modulus.text}; the ${modulus.curve} plant comes nearest to -1 at ${complexText(modulus.nearest)}; it must stay ${formatNumber(modulus.limit)} away.`;
+}
+
+function describeLifted({ changes, marks }: LiftedLoop): string {
+  const read = marks.map(
+    ({ requirement, kind, curve, at, text }) =>
+      `${requirement}, ${kind} margin of the ${curve} plant: ${text}, read at ${complexText(at)}`,
+  );
+  return `The loci of the ${changes} eigenvalues of the lifted loop. ${read.join('. ') || 'No margin is marked'}.`;
+}
+
+function complexText({ real, imaginary }: { real: number; imaginary: number }): string {
+  return `${formatNumber(real)} ${imaginary < 0 ? '-' : '+'} ${formatNumber(Math.abs(imaginary))}j`;
 }

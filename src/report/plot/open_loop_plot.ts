@@ -3,16 +3,16 @@ import { formatNumber } from '../format_value.js';
 import { html, type Markup } from '../html/markup.js';
 import { columnsOf, oneLine, shortened } from '../plain_text.js';
 import type { FrequencyCurve, MarginBracket, OpenLoopPlot } from '../plots.js';
-import { type AxisMark, axisBelow, axisLeft, type Box, drawing, extent } from './frame.js';
-import { bracketPath, type Point, pathThrough, px, thinned } from './shape.js';
+import { axisBelow, axisLeft, type Box, drawing, extent } from './frame.js';
+import { latchedLabel } from './latched_label.js';
+import { decibels, frequencyText, logMarks } from './log_axis.js';
+import { bracketPath, type Point, pathThrough, px } from './shape.js';
 import { sampled } from './trace_plot.js';
 
 const height = 420;
 const upper: Box = { left: 52, right: 462, top: 26, bottom: 190 };
 const lower: Box = { left: 52, right: 462, top: 226, bottom: 380 };
 const slices = 36;
-/** So many points of a curve are finer than the drawing can show. */
-const mostPoints = 200;
 /** Of a label, px: the height of its row, and what a character takes at most. */
 const rowHeight = 17;
 const widthOfCharacter = 7.6;
@@ -23,13 +23,16 @@ type Scale = (value: number) => number;
 
 /** Magnitude and phase of the open loop over frequency, each margin a bracket labelled in place. */
 export function openLoopDrawing(plot: OpenLoopPlot, id: string): Markup {
-  const { frequencies, nominal, worst } = plot;
+  const { frequencies, nominal, worst, latched } = plot;
   const x = scaleLog([frequencies[0] ?? 1, frequencies.at(-1) ?? 10], [upper.left, upper.right]);
-  const gains = [...nominal.magnitude, ...worst.magnitude].map((ratio) => clampDecibels(decibels(ratio)));
-  const phases = [...nominal.phase, ...worst.phase].map(degrees);
+  const gains = [...nominal.magnitude, ...worst.magnitude, ...(latched?.magnitude ?? [])].map((ratio) =>
+    clampDecibels(decibels(ratio)),
+  );
+  const phases = [...nominal.phase, ...worst.phase, ...(latched?.phase ?? [])].map(degrees);
   const gain = scaleLinear(extent([...gains, 0]), [upper.bottom, upper.top]);
   const phase = scaleLinear(extent([...phases, -180]), [lower.bottom, lower.top]);
-  const marksX: AxisMark[] = decades(x.domain()).map((at) => ({ at: x(at), text: formatNumber(at) }));
+  const gainPoints = ({ magnitude }: FrequencyCurve): Point[] =>
+    magnitude.map((ratio, at) => [x(frequencies[at]), gain(shownDecibels(ratio))]);
   const phaseTicks = multiplesOf(stepOfPhase(phase.domain()), phase.domain());
   return drawing(id, height, `Open loop at ${plot.at} over frequency`, describe(plot), [
     axisLeft(
@@ -42,10 +45,12 @@ export function openLoopDrawing(plot: OpenLoopPlot, id: string): Markup {
       phaseTicks.map((at) => ({ at: phase(at), text: formatNumber(at) })),
       'phase (deg)',
     ),
-    axisBelow(lower, marksX, 'angular frequency (rad/s)'),
+    axisBelow(lower, logMarks(x), 'angular frequency (rad/s)'),
     levelLines(gain, phase),
-    curve(plot, 'nominal', x, gain, phase),
-    curve(plot, 'worst', x, gain, phase),
+    latched && curve(plot.frequencies, latched, 'latched', x, gain, phase),
+    curve(plot.frequencies, nominal, 'nominal', x, gain, phase),
+    curve(plot.frequencies, worst, 'worst', x, gain, phase),
+    latchedLabel(latched && gainPoints(latched), gainPoints(nominal), upper),
     (['gain', 'phase'] as const).map((kind) =>
       plot.margins.filter((one) => one.kind === kind).map((one, row) => bracket(one, row, x, gain, phase)),
     ),
@@ -63,13 +68,19 @@ function levelLines(
   return html`<path class="level" d="M${upper.left} ${px(gain(0)!)}H${upper.right}${lines}"/>`;
 }
 
-function curve(plot: OpenLoopPlot, which: 'nominal' | 'worst', x: Scale, gain: Scale, phase: Scale): Markup {
-  const { magnitude, phase: angle }: FrequencyCurve = plot[which];
-  const kept = thinned(magnitude, mostPoints);
-  const points = (y: (at: number) => number): Point[] => kept.map((at) => [x(plot.frequencies[at]), y(at)]);
+function curve(
+  frequencies: readonly number[],
+  { magnitude, phase: angle }: FrequencyCurve,
+  className: string,
+  x: Scale,
+  gain: Scale,
+  phase: Scale,
+): Markup {
+  const points = (y: (at: number) => number): Point[] =>
+    frequencies.map((frequency, at) => [x(frequency), y(at)]);
   const upperPath = pathThrough(points((at) => gain(shownDecibels(magnitude[at]))));
   const lowerPath = pathThrough(points((at) => phase(degrees(angle[at]))));
-  return html`<path class="${which}" d="${upperPath}${lowerPath}"/>`;
+  return html`<path class="${className}" d="${upperPath}${lowerPath}"/>`;
 }
 
 /** A bracket, and its label at the edge of its panel where the curves leave room, joined by a hairline. */
@@ -91,11 +102,13 @@ function hoverSlices(plot: OpenLoopPlot, x: Scale): Markup {
   const places = sampled(plot.frequencies.length, slices);
   const width = (upper.right - upper.left) / Math.max(1, places.length);
   const rows = places.map((i) => {
-    const values = (['nominal', 'worst'] as const).map((which) => {
-      const { magnitude, phase } = plot[which];
+    const values = (['nominal', 'latched', 'worst'] as const).flatMap((which) => {
+      const shown = plot[which];
+      if (!shown) return [];
+      const { magnitude, phase } = shown;
       return `${which} ${formatNumber(decibels(magnitude[i]))} dB, ${formatNumber(degrees(phase[i]))} deg`;
     });
-    return html`<rect x="${px(x(plot.frequencies[i]) - width / 2)}" y="${upper.top}" width="${px(width)}" height="${lower.bottom - upper.top}"><title>${formatNumber(plot.frequencies[i])} rad/s: ${values.join('; ')}</title></rect>`;
+    return html`<rect x="${px(x(plot.frequencies[i]) - width / 2)}" y="${upper.top}" width="${px(width)}" height="${lower.bottom - upper.top}"><title>at ${frequencyText(plot.frequencies[i])}: ${values.join('; ')}</title></rect>`;
   });
   return html`<g class="hover">${rows}</g>`;
 }
@@ -103,9 +116,24 @@ function hoverSlices(plot: OpenLoopPlot, x: Scale): Markup {
 function describe(plot: OpenLoopPlot): string {
   const margins = plot.margins.map(
     ({ requirement, kind, curve, text, frequency }) =>
-      `${requirement}, ${kind} margin of the ${curve} plant: ${text}, at ${formatNumber(frequency)} rad/s`,
+      `${requirement}, ${kind} margin of the ${curve} plant: ${text}, at ${frequencyText(frequency)}`,
   );
-  return margins.join('. ') || 'No margin is drawn.';
+  const crossovers = (['nominal', 'latched', 'worst'] as const).flatMap((which) => {
+    const shown = plot[which];
+    return shown ? crossoverText(plot.frequencies, shown, which) : [];
+  });
+  return [...(margins.length > 0 ? margins : ['No margin is drawn']), ...crossovers].join('. ');
+}
+
+/** Where the gain last falls through one, in words. */
+function crossoverText(
+  frequencies: readonly number[],
+  { magnitude }: FrequencyCurve,
+  which: string,
+): string[] {
+  const last = magnitude.findLastIndex((ratio) => ratio >= 1);
+  if (last < 0 || last === magnitude.length - 1) return [];
+  return [`The ${which} loop gain falls below 0 dB at about ${frequencyText(frequencies[last])}`];
 }
 
 /** The odd multiple of 180° nearest to a phase in degrees. */
@@ -124,12 +152,6 @@ function multiplesOf(step: number, [low, high]: readonly number[]): number[] {
   return Array.from({ length: count }, (_, at) => (first + at) * step + 0);
 }
 
-function decades([low, high]: readonly number[]): number[] {
-  const first = Math.ceil(Math.log10(low) - 1e-9);
-  const count = Math.min(20, Math.max(0, Math.floor(Math.log10(high) + 1e-9) - first + 1));
-  return Array.from({ length: count }, (_, at) => 10 ** (first + at));
-}
-
 /** Not-a-number beyond what is shown: the curve ends there. */
 function shownDecibels(ratio: number): number {
   const value = decibels(ratio);
@@ -138,11 +160,6 @@ function shownDecibels(ratio: number): number {
 
 function clampDecibels(value: number): number {
   return Math.min(mostDecibels, Math.max(-mostDecibels, value));
-}
-
-/** 20·log10 of an amplitude ratio. */
-function decibels(ratio: number): number {
-  return 20 * Math.log10(ratio);
 }
 
 function degrees(angle: number): number {

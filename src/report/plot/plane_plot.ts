@@ -29,10 +29,11 @@ export function planeDrawing(plane: HeadroomPlane, id: string): Markup {
   return drawing(id, height, title, describe(plane), [
     html`<defs><pattern id="${id}-h" width="6" height="6" patternUnits="userSpaceOnUse" patternTransform="rotate(45)"><path class="hatch" d="M0 0V6"/></pattern></defs>`,
     axisLeft(box, marks(left.copy().domain(top.domain()).range(top.range()), y), axisName(y)),
+    html`<rect class="under-point" x="${box.left}" y="${box.top}" width="${box.right - box.left}" height="${box.bottom - box.top}"/>`,
     [...cells].map(([step, path]) => cellPath(step, path, id)),
     html`<path class="edge" d="${edgeOfBroken(plane)}"/>`,
     axisBelow(box, marks(left, x), axisName(x)),
-    html`<circle class="nominal-point" cx="${px(left(x.nominal))}" cy="${px(top(y.nominal))}" r="5"/>`,
+    html`<circle class="under-point" cx="${px(left(x.nominal))}" cy="${px(top(y.nominal))}" r="8"/><circle class="nominal-point" cx="${px(left(x.nominal))}" cy="${px(top(y.nominal))}" r="5"/>`,
     html`<path class="worst-point" d="M${px(left(x.worst))} ${px(top(y.worst) - 6)}l6 6l-6 6l-6 -6z"/>`,
     ramp(id),
   ]);

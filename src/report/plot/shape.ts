@@ -8,36 +8,73 @@ export function px(value: number): number {
   return Math.round(value * 10) / 10 + 0;
 }
 
-const drawLine = line<Point>()
-  .defined(([x, y]) => Number.isFinite(x) && Number.isFinite(y))
-  .digits(1);
+const drawLine = line<Point>().digits(1);
+/** A path may miss its points by so much, px: less than a screen shows. */
+const tolerance = 0.12;
 
 /** The path through the points; it is broken where one is not finite. */
 export function pathThrough(points: readonly Point[]): string {
-  return drawLine(points) ?? '';
+  return finiteRuns(points)
+    .map((run) => drawLine(simplified(run)) ?? '')
+    .join('');
+}
+
+/** The closed path between two rows of points that stand one above another; it is broken where one is not finite. */
+export function bandBetween(upper: readonly Point[], lower: readonly Point[]): string {
+  const both = upper.map((point, at) => [point, lower[at]] as const);
+  const isThere = ([one, other]: readonly [Point, Point]): boolean =>
+    [...one, ...other].every(Number.isFinite);
+  return runsOf(both, isThere)
+    .map((run) => {
+      const above = simplified(run.map(([one]) => one));
+      const below = simplified(run.map(([, other]) => other)).reverse();
+      return `${drawLine([...above, ...below]) ?? ''}Z`;
+    })
+    .join('');
+}
+
+function finiteRuns(points: readonly Point[]): Point[][] {
+  return runsOf(points, (point) => point.every(Number.isFinite));
+}
+
+/** The stretches of a row in which all are so. */
+function runsOf<T>(row: readonly T[], isSo: (one: T) => boolean): T[][] {
+  const runs: T[][] = [];
+  row.forEach((one, at) => {
+    if (!isSo(one)) return;
+    if (at === 0 || !isSo(row[at - 1])) runs.push([]);
+    runs[runs.length - 1].push(one);
+  });
+  return runs;
 }
 
 /**
- * Places of at most about `most` of so many entries, first and last always, so that long series stay small. Between
- * two places the entries of least and greatest `value` are kept, so that no peak is lost.
+ * The fewest of the points, first and last among them, from whose lines the others are no farther than the tolerance (Ramer,
+ * 1972; Douglas and Peucker, 1973).
  */
-export function thinned(values: readonly number[], most: number): number[] {
-  const count = values.length;
-  if (count <= most) return values.map((_, at) => at);
-  const kept = new Set([0, count - 1]);
-  const groups = Math.max(1, Math.floor(most / 2));
-  for (let group = 0; group < groups; group++) {
-    const from = Math.floor((group * count) / groups);
-    const to = Math.floor(((group + 1) * count) / groups);
-    let least = from;
-    let greatest = from;
-    for (let at = from; at < to; at++) {
-      if (values[at] < values[least]) least = at;
-      if (values[at] > values[greatest]) greatest = at;
+export function simplified(points: readonly Point[]): Point[] {
+  const kept = new Set([0, points.length - 1]);
+  const open: [number, number][] = [[0, points.length - 1]];
+  for (let range = open.pop(); range; range = open.pop()) {
+    const [from, to] = range;
+    let farthest = { at: from, distance: tolerance };
+    for (let at = from + 1; at < to; at++) {
+      const distance = distanceTo(points[at], points[from], points[to]);
+      if (distance > farthest.distance) farthest = { at, distance };
     }
-    kept.add(least).add(greatest);
+    if (farthest.at === from) continue;
+    kept.add(farthest.at);
+    open.push([from, farthest.at], [farthest.at, to]);
   }
-  return [...kept].sort((a, b) => a - b);
+  return points.filter((_, at) => kept.has(at));
+}
+
+/** From a point to the stretch between two others. */
+function distanceTo([x, y]: Point, [x1, y1]: Point, [x2, y2]: Point): number {
+  const [dx, dy] = [x2 - x1, y2 - y1];
+  const square = dx * dx + dy * dy;
+  const share = square > 0 ? Math.min(1, Math.max(0, ((x - x1) * dx + (y - y1) * dy) / square)) : 0;
+  return Math.hypot(x - x1 - share * dx, y - y1 - share * dy);
 }
 
 /** Length of the ticks that a fence line carries on its forbidden side, and the distance between them, px. */

@@ -1,16 +1,15 @@
 import { scaleLinear } from 'd3-scale';
-import { area } from 'd3-shape';
 import { counted, formatNumber, unitText } from '../format_value.js';
 import { html, type Markup } from '../html/markup.js';
 import { oneLine, shortened } from '../plain_text.js';
 import type { Fence, TracePlot } from '../plots.js';
-import { axisBelow, axisLeft, type Box, drawing, extentAround, spread } from './frame.js';
-import { fencePath, type Point, pathThrough, px, thinned } from './shape.js';
+import { type FenceLine, fenceLines } from './fence_lines.js';
+import { axisBelow, axisLeft, type Box, drawing, extentAround } from './frame.js';
+import { latchedLabel } from './latched_label.js';
+import { bandBetween, type Point, pathThrough, px } from './shape.js';
 
 const height = 290;
 const box: Box = { left: 52, right: 462, top: 26, bottom: 250 };
-/** So many points of a curve are finer than the drawing can show. */
-const mostPoints = 220;
 const slices = 36;
 
 interface Scales {
@@ -20,19 +19,14 @@ interface Scales {
   shown: (value: number) => string;
 }
 
-const sides: Readonly<Record<Fence['forbidden'], Point>> = {
-  above: [0, -1],
-  below: [0, 1],
-  left: [-1, 0],
-  right: [1, 0],
-};
-
 /** A signal over time: many plants as a band, the nominal and the worst plant, the target, limits as fences. */
 export function traceDrawing(plot: TracePlot, id: string): Markup {
   const written = { unit: plot.unit, inDecibels: false };
   const scale = plot.unit.scale;
   const levels = plot.fences.flatMap(({ from, to }) => [from.value, to.value]);
-  const matter = [plot.nominal, plot.target ?? [], levels].flat().map((value) => value / scale);
+  const matter = [plot.nominal, plot.latched ?? [], plot.target ?? [], levels]
+    .flat()
+    .map((value) => value / scale);
   const others = [plot.low, plot.high, plot.worst].flat().map((value) => value / scale);
   const y = scaleLinear(extentAround(matter, others), [box.bottom, box.top]);
   const x = scaleLinear([plot.times[0] ?? 0, plot.times.at(-1) ?? 1], [box.left, box.right]);
@@ -42,6 +36,13 @@ export function traceDrawing(plot: TracePlot, id: string): Markup {
     y: (value) => y(value / scale),
     shown: (value) => `${formatNumber(value / scale)} ${unit}`.trimEnd(),
   };
+  const pointsOf = (values: readonly number[]): Point[] =>
+    values.map((value, at) => [x(plot.times[at]), scales.y(value)]);
+  const lineOf = ({ from, to, ...others }: Fence): FenceLine => ({
+    ...others,
+    from: [x(from.time), scales.y(from.value)],
+    to: [x(to.time), scales.y(to.value)],
+  });
   const marksX = x.ticks(6).map((at) => ({ at: x(at), text: formatNumber(at) }));
   const marksY = y.ticks(5).map((at) => ({ at: y(at), text: formatNumber(at) }));
   const name = `${shortened(oneLine(plot.signal), 40)}${unit === '' ? '' : ` (${unit})`}`;
@@ -49,44 +50,19 @@ export function traceDrawing(plot: TracePlot, id: string): Markup {
     axisLeft(box, marksY, name),
     axisBelow(box, marksX, 'time (s)'),
     html`<clipPath id="${id}-c"><rect x="${box.left}" y="${box.top}" width="${box.right - box.left}" height="${box.bottom - box.top}"/></clipPath><g clip-path="url(#${id}-c)">${curves(plot, scales)}</g>`,
-    fences(plot.fences, scales),
+    fenceLines(plot.fences.map(lineOf), box),
+    latchedLabel(plot.latched && pointsOf(plot.latched), pointsOf(plot.nominal), box),
     hoverSlices(plot, scales),
   ]);
 }
 
 function curves(plot: TracePlot, { x, y }: Scales): Markup {
-  const { times, low, high } = plot;
-  const at = [...new Set([...thinned(low, mostPoints / 2), ...thinned(high, mostPoints / 2)])].sort(
-    (a, b) => a - b,
-  );
-  const band = area<number>()
-    .defined((i) => Number.isFinite(low[i]) && Number.isFinite(high[i]))
-    .x((i) => x(times[i]))
-    .y0((i) => y(low[i]))
-    .y1((i) => y(high[i]))
-    .digits(1);
-  const path = (values: readonly number[]): string =>
-    pathThrough(thinned(values, mostPoints).map((i) => [x(times[i]), y(values[i])]));
-  const target = plot.target && html`<path class="target" d="${path(plot.target)}"/>`;
-  return html`<path class="band" d="${band(at) ?? ''}"/>${target}<path class="nominal" d="${path(plot.nominal)}"/><path class="worst" d="${path(plot.worst)}"/>`;
-}
-
-function fences(all: readonly Fence[], { x, y }: Scales): Markup[] {
-  const ends = all.map(({ from, to }) => [
-    [clamp(x(from.time), box.left, box.right), clamp(y(from.value), box.top, box.bottom)] as const,
-    [clamp(x(to.time), box.left, box.right), clamp(y(to.value), box.top, box.bottom)] as const,
-  ]);
-  const heights = spread(
-    ends.map(([, to], at) => to[1] + (all[at].forbidden === 'above' ? -8 : 15)),
-    14,
-  );
-  return all.map(({ requirement, forbidden }, at) => {
-    const [from, to] = ends[at];
-    const line = html`<path class="fence" d="${fencePath(from, to, sides[forbidden])}"/>`;
-    if (all.findIndex((one) => one.requirement === requirement) < at) return line;
-    const label = shortened(oneLine(requirement), 24);
-    return html`${line}<text class="fence-name" text-anchor="end" x="${px(Math.max(to[0], box.left + 60))}" y="${px(heights[at])}">${label}</text>`;
-  });
+  const pointsOf = (values: readonly number[]): Point[] =>
+    values.map((value, at) => [x(plot.times[at]), y(value)]);
+  const path = (className: string, values: readonly number[] | undefined): Markup | undefined =>
+    values && html`<path class="${className}" d="${pathThrough(pointsOf(values))}"/>`;
+  const band = bandBetween(pointsOf(plot.high), pointsOf(plot.low));
+  return html`<path class="band" d="${band}"/>${path('target', plot.target)}${path('latched', plot.latched)}${path('nominal', plot.nominal)}${path('worst', plot.worst)}`;
 }
 
 /** Invisible slices over the plot whose tooltips give the values there; they need no script. */
@@ -94,7 +70,8 @@ function hoverSlices(plot: TracePlot, { x, shown }: Scales): Markup {
   const places = plot.times.length === 0 ? [] : sampled(plot.times.length, slices);
   const width = (box.right - box.left) / Math.max(1, places.length);
   const rows = places.map((i) => {
-    const values = `at ${formatNumber(plot.times[i])} s: nominal ${shown(plot.nominal[i])}, worst ${shown(plot.worst[i])}, ${counted(plot.plants, 'plant')} ${shown(plot.low[i])} to ${shown(plot.high[i])}`;
+    const latched = plot.latched ? `, latched ${shown(plot.latched[i])}` : '';
+    const values = `at ${formatNumber(plot.times[i])} s: nominal ${shown(plot.nominal[i])}${latched}, worst ${shown(plot.worst[i])}, ${counted(plot.plants, 'plant')} ${shown(plot.low[i])} to ${shown(plot.high[i])}`;
     return html`<rect x="${px(x(plot.times[i]) - width / 2)}" y="${box.top}" width="${px(width)}" height="${box.bottom - box.top}"><title>${values}</title></rect>`;
   });
   return html`<g class="hover">${rows}</g>`;
@@ -102,9 +79,23 @@ function hoverSlices(plot: TracePlot, { x, shown }: Scales): Markup {
 
 function describe(plot: TracePlot, { shown }: Scales): string {
   const last = plot.times.length - 1;
-  const peak = (values: readonly number[]): string =>
-    shown(values.reduce((most, value) => (Math.abs(value) > Math.abs(most) ? value : most), 0));
-  return `The nominal plant's largest value is ${peak(plot.nominal)} and it ends at ${shown(plot.nominal[last])}; the worst plant's largest value is ${peak(plot.worst)} and it ends at ${shown(plot.worst[last])}. Limits drawn: ${plot.fences.map(({ requirement }) => requirement).join(', ') || 'none'}.`;
+  const said = (whose: string, values: readonly number[]): string => {
+    const peak = values.reduce((most, value) => (Math.abs(value) > Math.abs(most) ? value : most), 0);
+    return `${whose} largest value is ${shown(peak)} and it ends at ${shown(values[last])}`;
+  };
+  const curves = [
+    said("The nominal plant's", plot.nominal),
+    ...(plot.latched ? [said("with the latched coefficients the nominal plant's", plot.latched)] : []),
+    said("the worst plant's", plot.worst),
+  ];
+  const limits = plot.fences.map((fence) => limitText(fence, shown)).join('; ');
+  return `${curves.join('; ')}. Limits drawn: ${limits || 'none'}.`;
+}
+
+function limitText({ requirement, from, to, forbidden }: Fence, shown: Scales['shown']): string {
+  const level = from.value === to.value ? shown(from.value) : `${shown(from.value)} to ${shown(to.value)}`;
+  const times = `from ${formatNumber(from.time)} to ${formatNumber(to.time)} s`;
+  return `${requirement} not ${forbidden} ${level} ${times}`;
 }
 
 /** Evenly spread places among so many, first and last always, at most `most`. */
@@ -112,8 +103,4 @@ export function sampled(count: number, most: number): number[] {
   const steps = Math.min(count, most);
   if (steps <= 1) return count > 0 ? [0] : [];
   return Array.from({ length: steps }, (_, at) => Math.round((at * (count - 1)) / (steps - 1)));
-}
-
-function clamp(value: number, low: number, high: number): number {
-  return Math.min(high, Math.max(low, value));
 }
