@@ -1,12 +1,13 @@
 import { type Coefficient, compareImages, type ImageComparison } from '../firmware/index.js';
 import { coefficientTable, placeTable } from '../report/coefficient_table.js';
 import { comparisonTable } from '../report/comparison_table.js';
+import { lawTable } from '../report/law_table.js';
 import { type Json, stableJson } from '../report/stable_json.js';
 import type { CoefficientRead } from '../verdict/run.js';
 import { coefficientEntries, comparisonEntries } from './coefficient_entries.js';
 import { coefficientsAt } from './numbers_read.js';
 import { faultOf, openNamedImage } from './open_image.js';
-import { type BuildOptions, readBuild } from './read_build.js';
+import { type BuildOptions, type BuildRead, readBuild } from './read_build.js';
 import { readSpec } from './read_spec.js';
 import { type ExitStatus, Fault, type Surroundings } from './surroundings.js';
 
@@ -50,9 +51,13 @@ async function readOfSpec(
     return shownComparison(namedChanges(before!.coefficients, build.coefficients));
   }
   return {
-    text: () => coefficientTable(build.coefficients),
+    text: () => coefficientTable(build.coefficients) + lawText(build.law),
     json: () => entriesText(build.coefficients.flatMap(({ coefficient }) => coefficientEntries(coefficient))),
   };
+}
+
+function lawText(law: BuildRead['law']): string {
+  return law.length === 0 ? '' : `\n${lawTable(law)}`;
 }
 
 async function readOfImage(options: ReadOptions, cwd: string): Promise<Shown> {

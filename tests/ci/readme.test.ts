@@ -16,6 +16,7 @@ describe('the README', () => {
   beforeAll(() => {
     folder = mkdtempSync(join(tmpdir(), 'pawl-readme-'));
     cpSync('specs/heliostat', join(folder, 'specs/heliostat'), { recursive: true });
+    cpSync('reference/latched', join(folder, 'reference/latched'), { recursive: true });
     const spec = join(folder, 'specs/heliostat/heliostat.pawl.yaml');
     // As the demo, but quick.
     writeFileSync(spec, readFileSync(spec, 'utf8').replace('plants: 1000', 'plants: 8\n  search: 8'));

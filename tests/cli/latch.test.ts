@@ -227,6 +227,12 @@ describe('the demo firmware, latched and changed', () => {
     expect(folder.read('latched/axis.json')).not.toContain(folder.path);
   });
 
+  it('are shown by pawl read of the spec', async () => {
+    const { law } = JSON.parse(folder.read('latched/axis.json'));
+    const ended = await pawl('read');
+    expect(ended.output).toMatch(new RegExp(`^azimuth_step +368 +${law.azimuth_step.digest}$`, 'm'));
+  });
+
   it('shows in the terminal, in annotations and in files who did it, at the line of the initialiser', async () => {
     const image = imageWith({ 'azimuth.gains.kp': float(1.5) });
     cpSync(image, join(folder.path, 'firmware/azimuth.elf'));

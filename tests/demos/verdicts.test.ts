@@ -2,7 +2,7 @@ import { readFileSync } from 'node:fs';
 import { dirname, join } from 'node:path';
 import { describe, expect, it } from 'vitest';
 import { vocabulary } from '../../src/cli/vocabulary.js';
-import { openImage, readCoefficients } from '../../src/firmware/index.js';
+import { functionCode, openImage, readCoefficients } from '../../src/firmware/index.js';
 import { PlantEvaluator } from '../../src/measure/evaluate_plant.js';
 import type { MeasureResult } from '../../src/measure/measure.js';
 import { loadSpec, type Requirement, type Spec } from '../../src/spec/index.js';
@@ -78,5 +78,45 @@ describe.each(demos)('the demo with $image', ({ spec, image, far, breaks }) => {
       expect(text, name).not.toContain(process.cwd());
       expect(text, name).not.toMatch(/\/(root|work|tmp|Users)\//);
     }
+  });
+});
+
+describe.each([
+  ['heliostat', 'azimuth'],
+  ['rootzone-heating', 'rootzone'],
+  ['grain-conveyor', 'conveyor'],
+])('the law of %s', (name, file) => {
+  const source = `specs/${name}/firmware/${file}`;
+
+  it('is the latched one in both images in git: only numbers differ between them', () => {
+    const spec = specOf(`specs/${name}/${name}.pawl.yaml`);
+    const { law } = JSON.parse(readFileSync(`reference/latched/${name}.json`, 'utf8'));
+    const named = spec.firmware!.law!.map((one) => one.name);
+    expect(Object.keys(law)).toEqual([...named].sort());
+    for (const image of [`${source}.elf`, `${source}-regressed.elf`]) {
+      const opened = openImage(readFileSync(image), image);
+      for (const one of named) {
+        const { size, digest } = functionCode(opened, one);
+        expect({ size, digest }).toEqual(law[one]);
+      }
+    }
+  });
+
+  it('names every function that its functions call', () => {
+    const spec = specOf(`specs/${name}/${name}.pawl.yaml`);
+    const named = spec.firmware!.law!.map((one) => one.name);
+    // Functions of the same source that are called by another one, but for those that the compiler put into their callers.
+    const opened = openImage(readFileSync(`${source}.elf`), 'image');
+    const text = readFileSync(`${source}.c`, 'utf8');
+    const defined = [...text.matchAll(/^(?:static )?\w+ (\w+)\([^;]*\)\n\{/gm)].map(([, found]) => found);
+    expect(defined.length).toBeGreaterThanOrEqual(named.length);
+    const kept = defined.filter((one) => {
+      try {
+        return functionCode(opened, one).size > 0;
+      } catch {
+        return false;
+      }
+    });
+    expect(kept.sort()).toEqual([...named].sort());
   });
 });

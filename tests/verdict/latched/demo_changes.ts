@@ -34,6 +34,7 @@ export function quickText(): string {
   text = cut(text, /drive: {5}.*\n/, 'drive: { nominal: 180 N*m, spread: 0 % }\n');
   text = cut(text, / {2}- \{ name: AZ-2.*\n/, '');
   text = cut(text, / {2}- \{ name: AZ-4.*\n/, '');
+  text = cut(text, /^ {2}law: .*\n/m, '');
   text = cut(text, 'lasts: 4 s', 'lasts: 1 s');
   text = cut(text, 'lasts: 4 s', 'lasts: 1.5 s');
   text = cut(text, 'plants: 1000', 'plants: 4\n  search: 0');
