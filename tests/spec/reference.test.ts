@@ -12,6 +12,7 @@ import {
 } from '../../src/spec/names.js';
 import { defaultPerturbation } from '../../src/spec/read_run.js';
 import { skeletonsOf } from '../../src/spec/skeleton.js';
+import { defaultSearch } from '../../src/verdict/scrutinise.js';
 import { headingsOf } from './contents.js';
 import { heliostat } from './heliostat_example.js';
 import { errorsOf, heliostatWith } from './loading.js';
@@ -124,6 +125,7 @@ test('the keys that an included file may have are those named', () => {
 test('the defaults of the perturbation are those of the code', () => {
   const text = section('### perturbation');
   expect(text).toContain(`| \`plants\` | whole number | ${defaultPerturbation.plants} |`);
+  expect(text).toContain(`| \`search\` | whole number | ${defaultSearch} |`);
   expect(text).toContain(`| \`seed\` | whole number | ${defaultPerturbation.seed} |`);
   expect(text).toContain(`| \`confidence\` | share | ${defaultPerturbation.confidence * 100} % |`);
 });

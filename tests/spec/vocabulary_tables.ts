@@ -1,6 +1,8 @@
 import { vocabulary } from '../../src/cli/vocabulary.js';
-import { formatDimension } from '../../src/spec/index.js';
+import { baseUnits, formatDimension } from '../../src/spec/index.js';
+import type { Dimension } from '../../src/spec/spec.js';
 import type {
+  Axis,
   BlockDescription,
   MeasureDescription,
   MeasureKey,
@@ -41,18 +43,22 @@ function blockText(block: BlockDescription): string {
     block.takesGain ? '`gain:`' : '',
   ].filter((text) => text !== '');
   const takes = beside.length > 0 ? ` Beside it: ${beside.join(', ')}.` : '';
-  const rows = block.settings.map((setting) => [
-    `\`${setting.name}\``,
-    kindOf(setting),
-    setting.optional ? '' : 'needed',
-    setting.meaning,
-  ]);
+  const rows = block.settings.map((setting) => {
+    const { meaning, byDefault } = parted(setting.meaning);
+    return [
+      `\`${setting.name}\``,
+      kindOf(setting),
+      unitOfSetting(setting),
+      setting.optional ? (byDefault ?? 'left out') : 'needed',
+      meaning,
+    ];
+  });
   return [
     `### ${headingOf(block, rooms)}`,
     '',
     `In ${rooms}.${takes} ${block.meaning}.${block.key === 'pid' ? ` All of it: ${lineByLine}.` : ''}`,
     '',
-    table(['setting', 'takes', '', 'meaning'], rows),
+    table(['setting', 'takes', 'unit', 'default', 'meaning'], rows),
     ...examplesOf(block).flatMap((example) => ['', exampleText(example)]),
   ].join('\n');
 }
@@ -69,14 +75,60 @@ function headingOf({ key }: BlockDescription, rooms: string): string {
 
 const lineByLine = '[three-term control, line by line](#three-term-control-line-by-line)';
 
+/** What a description says last, `; 0 by default`, apart from the rest. */
+function parted(meaning: string): { meaning: string; byDefault: string | undefined } {
+  const [, rest, byDefault] = /^(.*); ([^;]*) by default$/.exec(meaning) ?? [];
+  return byDefault === undefined ? { meaning, byDefault } : { meaning: rest, byDefault };
+}
+
+/** The unit of a setting, from those of the signal itself (`y`) and of what it takes (`of`). */
+function unitOfSetting(setting: SettingDescription): string {
+  switch (setting.kind) {
+    case 'expression':
+      return inSignalUnits(setting.dimension({ output: ofSignal, input: ofInput, word: () => undefined }));
+    case 'time_constant':
+      return 's, Hz or rad/s';
+    case 'corner':
+      return 'Hz or rad/s';
+    case 'matrix':
+      return unitOfEntries(setting);
+    case 'signals':
+    case 'estimates':
+      return setting.name === 'estimate' ? '' : 'each its own';
+    case 'coefficients':
+    case 'word':
+      return '';
+  }
+}
+
+/** Mass stands for the unit of the signal, current for that of what it takes. */
+const [ofSignal, ofInput] = ['kg', 'A'].map((unit) => baseUnits.map((one) => (one === unit ? 1 : 0)));
+
+function inSignalUnits(dimension: Dimension): string {
+  return formatDimension(dimension)
+    .replace('a plain number', 'plain')
+    .replace('1/s (rad/s)', 'rad/s')
+    .replace('kg', 'y')
+    .replace('A', 'of');
+}
+
+function unitOfEntries({ rows, columns, entry }: Extract<SettingDescription, { kind: 'matrix' }>): string {
+  const axis = (of: Axis): string =>
+    typeof of === 'object' ? of.of : { plain: '', output: 'y', input: 'of' }[of];
+  const [row, column] = [axis(rows), axis(columns)];
+  if (row === '' && column === '') return 'plain';
+  if (column === '') return row;
+  return entry === 'product' ? `${row}*${column}` : `${row === '' ? '1' : row}/${column}`;
+}
+
 function kindOf(setting: SettingDescription): string {
   switch (setting.kind) {
     case 'expression':
       return 'expression';
     case 'time_constant':
-      return 'time, or corner in Hz or rad/s';
+      return 'time, or corner';
     case 'corner':
-      return 'corner in Hz or rad/s';
+      return 'corner';
     case 'coefficients':
       return 'a coefficient array';
     case 'word':
@@ -84,7 +136,7 @@ function kindOf(setting: SettingDescription): string {
     case 'signals':
       return 'a signal, or a list';
     case 'estimates':
-      return 'a list of signals';
+      return setting.name === 'estimate' ? 'an observer' : 'a list of signals';
     case 'matrix':
       return 'list, rows, or array';
   }

@@ -55,7 +55,7 @@ export const pidSettings: readonly SettingDescription[] = [
   number(
     'assumed_period',
     () => timeDimension,
-    'the period that the firmware computes with, where it is not that of its timer',
+    "the period that the firmware computes with, where it is not that of its timer; the controller's period by default",
   ),
   number(
     'target_weight',
@@ -70,7 +70,7 @@ export const pidSettings: readonly SettingDescription[] = [
   choice(
     'anti_windup',
     ['hold_integral', 'bound_integral', 'pull_back'],
-    'hold_integral: i stays at i₁ where u would pass the range and the sum would go further out; bound_integral: i stays inside the range; pull_back: i + (T/pull_back_time)·(u in the range − u) is kept',
+    'hold_integral: i stays at i₁ where u would pass the range and the sum would go further out; bound_integral: i stays inside the range; pull_back: i + (T/pull_back_time)·(u in the range − u) is kept; no rule by default',
   ),
   number('pull_back_time', times, 'time constant of pull_back, in seconds or samples as gains says'),
   number(
