@@ -52,7 +52,8 @@ export function liftedLoop(
 function lociOf({ equations }: LoopView): Locus[] {
   const sensitivity = liftedSensitivity(equations);
   const features = [sensitivity, equations].flatMap(({ a, period }) => polesOf(a, period));
-  return chained(new GainLoci(sensitivity, features).steps).map(thinned);
+  const above = chained(new GainLoci(sensitivity, features).steps).map(thinned);
+  return [...above, ...above.map(mirrored)];
 }
 
 /** Steps joined where one begins with the very value that another ends with. */
@@ -71,6 +72,11 @@ function chained(steps: readonly LocusStep[]): Complex[][] {
     endingIn.set(to.value, locus);
   }
   return loci;
+}
+
+/** At negative frequencies, where the loci go on. */
+function mirrored(locus: Locus): Locus {
+  return locus.map(({ real, imaginary }) => ({ real, imaginary: -imaginary }));
 }
 
 function thinned(locus: readonly Complex[]): Locus {

@@ -13,7 +13,8 @@ export function parameterRows({ parameters }: Pick<JudgedPlant, 'parameters'>): 
       formatNumber(inWrittenUnit(value, written), 6),
       unitText(written),
       formatNumber(inWrittenUnit(nominal, written), 6),
-      moveInWords(moved),
+      // What is computed from other parameters has no bounds of its own.
+      moved === 0 && value !== nominal ? 'follows from the others' : moveInWords(moved),
     ];
   });
 }

@@ -80,7 +80,7 @@ export interface OpenLoopPlot {
 /** A loop whose signal changes several times in a cycle, with one input and output of L for each change. */
 export interface LiftedLoop {
   changes: number;
-  /** The loci of the eigenvalues of L over all frequencies up to half that of the cycle. */
+  /** The loci of the eigenvalues of L over all frequencies up to half that of the cycle, of either sign. */
   nominal: Locus[];
   latched?: Locus[];
   worst: Locus[];

@@ -12,8 +12,9 @@ import {
   unitText,
   type WrittenUnit,
 } from './format_value.js';
-import { oneLine } from './plain_text.js';
+import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
+import { statementInWords } from './statement_in_words.js';
 
 /** The numbers of a limit, SI. */
 export function limitNumbers(limit: Limit): number[] {
@@ -35,19 +36,29 @@ export function measureName(measure: string): string {
   return oneLine(measure).replaceAll('_', ' ');
 }
 
-/** The measure with its signals and scenario: "overshoot of angle to target in slew", "phase margin at duty and valve". */
+/**
+ * The measure with its signals and scenario: "overshoot of angle to target in slew", "phase margin at duty and valve"; with what
+ * it says, where it is a statement over time.
+ */
 export function measureInWords(
-  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'atSeveral' | 'scenario'>,
+  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'atSeveral' | 'scenario' | 'statement'>,
 ): string {
-  const { measure, scenario } = requirement;
+  const { measure, scenario, statement } = requirement;
   const parts = signalsInWords(requirement).map(([key, signal]) => ` ${oneLine(key)} ${signal}`);
-  return measureName(measure) + parts.join('') + (scenario === undefined ? '' : ` in ${oneLine(scenario)}`);
+  const where = scenario === undefined ? '' : ` in ${oneLine(scenario)}`;
+  return (
+    measureName(measure) + parts.join('') + where + (statement ? `: ${statementInWords(statement)}` : '')
+  );
 }
 
-/** The measure with what it is taken from: "overshoot of angle". */
+/** So much of a statement stands in a row of a table, in characters. */
+const statementInRow = 48;
+
+/** The measure with what it is taken from: "overshoot of angle"; of a statement over time what it says, shortened. */
 export function measureWithSignal(
-  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'atSeveral'>,
+  requirement: Pick<RequirementRun, 'measure' | 'signals' | 'atSeveral' | 'statement'>,
 ): string {
+  if (requirement.statement) return shortened(statementInWords(requirement.statement), statementInRow);
   const words = new Map(signalsInWords(requirement));
   const key = ['of', 'at'].find((one) => words.has(one));
   const name = measureName(requirement.measure);

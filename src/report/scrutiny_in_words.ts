@@ -5,7 +5,9 @@ import { plantInWords } from './plant_in_words.js';
 
 /** The counterexample nearest to nominal: "breaks with friction 37 % of the way to its upper bound (52.4 N*m*s/rad); …". */
 export function shrunkInWords({ shrunk }: Pick<RequirementRun, 'shrunk'>): string | undefined {
-  return shrunk && `breaks with ${plantInWords(shrunk)}`;
+  if (!shrunk) return undefined;
+  const isNominal = shrunk.parameters.every(({ moved }) => moved === 0);
+  return isNominal ? 'the nominal plant itself breaks it' : `breaks with ${plantInWords(shrunk)}`;
 }
 
 /** How far the bounds may grow: "1.38-fold", or "beyond 3-fold" where no break was found. */
@@ -28,12 +30,15 @@ export function reachInWords({ reach }: Pick<RequirementRun, 'reach'>): string |
     : `the bounds may grow ${fold} before a break is found`;
 }
 
+/** What moves the headroom by less than this from bound to bound, a twentieth of a point, does not matter. */
+const leastEffect = 0.0005;
+
 /** What matters most, in points of headroom from bound to bound: "friction 51.8, drive_lag 14.5". */
 export function effectsInWords(
   { effects = [] }: Pick<RequirementRun, 'effects'>,
   most = 3,
 ): string | undefined {
-  const named = effects.filter(({ headroom }) => headroom > 0).slice(0, most);
+  const named = effects.filter(({ headroom }) => headroom > leastEffect).slice(0, most);
   if (named.length === 0) return undefined;
   return named.map(({ name, headroom }) => `${oneLine(name)} ${formatNumber(headroom * 100, 3)}`).join(', ');
 }

@@ -54,7 +54,8 @@ export function readComparison(
     right: smaller.expression,
     place: tree.place,
   };
-  return { kind: 'comparison', margin, scale, place: tree.place };
+  const asWritten = tree.source.trim().replace(/\s+/g, ' ');
+  return { kind: 'comparison', margin, scale, asWritten, place: tree.place };
 }
 
 /** A text and where it begins in the whole. */

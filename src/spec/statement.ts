@@ -8,8 +8,11 @@ export interface StatementWindow {
 
 /** What a requirement says of signals over time, checked; SI. */
 export type Statement =
-  /** Holds while `margin`, a combination of signals, is not below zero; `scale` is what counts as one of headroom. */
-  | { kind: 'comparison'; margin: Expression; scale: number; place: Place }
+  /**
+   * Holds while `margin`, a combination of signals, is not below zero; `scale` is what counts as one of headroom. `asWritten` is
+   * for people.
+   */
+  | { kind: 'comparison'; margin: Expression; scale: number; asWritten: string; place: Place }
   | ({ kind: 'throughout' | 'at_some_time'; that: Statement; place: Place } & StatementWindow)
   /** `holds` is so from now on until, within the window, `upTo` is so. */
   | ({ kind: 'holds_up_to'; holds: Statement; upTo: Statement; place: Place } & StatementWindow)

@@ -7,6 +7,7 @@ import { claimOf } from './claim.js';
 import { Crew, type Watch } from './crew.js';
 import { interruptedRequirement } from './interrupted.js';
 import { parameterValues } from './parameter_values.js';
+import type { PlantSetup } from './plant_answers.js';
 import type {
   Effort,
   Evidence,
@@ -39,6 +40,8 @@ export interface JudgeOptions {
   watch?: Watch;
   /** Who measures, where that is not to be this machine alone; `workers` and `watch` are then its own. */
   crew?: Crew;
+  /** The same for the run of the latched coefficients. */
+  latchedCrew?: (setup: PlantSetup) => Crew;
 }
 
 /**
@@ -109,6 +112,7 @@ function requirementRun(
   return {
     ...{ name, place, measure, signals, reason, limit, unit, inDecibels, holdsFor },
     ...(atSeveral && { atSeveral }),
+    ...(requirement.statement && { statement: requirement.statement }),
     scenario: requirement.in,
     verdict: verdictOf(requirement, nominal!.judgement, worst.judgement, independent, confidence),
     evidence: evidenceOf(nominalOnly, proof, counts.tried),

@@ -4,6 +4,7 @@ import type { MeasureResult } from '../measure/measure.js';
 import type { PlantOrigin } from '../perturb/plants.js';
 import type { Reach } from '../perturb/reach.js';
 import type { HoldsFor, Limit, Place, Unit } from '../spec/spec.js';
+import type { Statement } from '../spec/statement.js';
 
 /**
  * What a run says of a requirement. Only `met` lets a merge through, and `broken` where a waiver covers it. `slipped`: its limit
@@ -74,6 +75,8 @@ export interface RequirementRun {
   /** Where the loop is opened at several signals at once; one alone is among `signals`. */
   atSeveral?: string[];
   scenario: string | undefined;
+  /** What it says of signals over time, for a measure that asks for it. */
+  statement?: Statement;
   reason: string | undefined;
   limit: Limit;
   unit: Unit;

@@ -69,7 +69,7 @@ function loopFigures(plot: OpenLoopPlot, id: string): Figure[] {
     lifted &&
     html` <bdi>${plot.at}</bdi> changes ${lifted.changes} times in a cycle of all controllers. Drawn is what is seen of the loop at one frequency; a wave makes other frequencies too, so that margins are read from the loci, not from here.`;
   const ofLoci = lifted
-    ? html`The ${lifted.changes} eigenvalues of the lifted loop over frequency.`
+    ? html`The ${lifted.changes} eigenvalues of the lifted loop over frequencies of either sign.`
     : undefined;
   return [
     figure(openLoopDrawing(plot, `${id}-f`), html`<strong>Open loop at ${at}</strong> ${keys}${ofWave}`),

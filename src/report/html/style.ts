@@ -29,7 +29,7 @@ thead th{white-space:nowrap;color:var(--slate);font-size:.86rem;border-bottom:1p
 tbody th{font-weight:600}
 .number{text-align:right}
 tr>:last-child{padding-right:0}
-.summary tbody td{white-space:nowrap}.summary tbody th{overflow-wrap:anywhere;min-width:6ch}
+.summary tbody td{white-space:nowrap}.summary tbody td:nth-child(3){white-space:normal}.summary tbody th{overflow-wrap:anywhere;min-width:6ch}
 .requirement{background:var(--sheet);border:1px solid var(--line);border-left:6px solid;padding:2px 20px 16px;margin:18px 0}
 .met-side{border-left-color:var(--petrol)}.broken-side{border-left-color:var(--brick);border-left-style:double}.slipped-side{border-left-color:var(--brick);border-left-style:dotted}.unjudged-side{border-left-color:var(--slate);border-left-style:dashed}
 .requirement h3{margin-top:14px;display:flex;flex-wrap:wrap;gap:2px 12px;align-items:baseline}.requirement h3 .sign{align-self:center}

@@ -50,12 +50,17 @@ function way(points: Locus, x: Scale, y: Scale): string {
   return pathThrough(points.map(({ real, imaginary }): Point => [x(real), y(imaginary)]));
 }
 
-/** Where a margin is read from a locus: a bracket from −1 to there, its label in a row of its own below the upper edge. */
+/**
+ * Where a margin is read from a locus: a bracket from −1 to there, its label in a row of its own, in turn at the upper and at the
+ * lower edge, so that no leader crosses another's label.
+ */
 function marginMark({ requirement, curve, at, text }: LocusMark, row: number, x: Scale, y: Scale): Markup {
   const [toX, toY] = [x(at.real), y(at.imaginary)];
   const label = `${shortened(oneLine(requirement), 20)}: ${shortened(oneLine(text), 44)}`;
-  const height = box.top + 16 + 18 * row;
-  return html`<path class="leader" d="M${px(toX)} ${px(toY)}V${height + 4}"/><path class="bracket ${curve}-bracket" d="M${px(x(-1))} ${px(y(0))}L${px(toX)} ${px(toY)}"/><circle class="bracket-end ${curve}-end" cx="${px(toX)}" cy="${px(toY)}" r="3.5"/><text class="bracket-name" x="${box.left + 8}" y="${height}">${label}</text>`;
+  const down = 18 * Math.floor(row / 2);
+  const isAbove = row % 2 === 0;
+  const height = isAbove ? box.top + 16 + down : box.bottom - 10 - down;
+  return html`<path class="leader" d="M${px(toX)} ${px(toY)}V${isAbove ? height + 4 : height - 13}"/><path class="bracket ${curve}-bracket" d="M${px(x(-1))} ${px(y(0))}L${px(toX)} ${px(toY)}"/><circle class="bracket-end ${curve}-end" cx="${px(toX)}" cy="${px(toY)}" r="3.5"/><text class="bracket-name" x="${box.left + 8}" y="${height}">${label}</text>`;
 }
 
 function locus({ magnitude, phase }: FrequencyCurve, x: Scale, y: Scale): string {

@@ -94,10 +94,10 @@ function sameLimit(a: Limit, b: Limit): boolean {
   return JSON.stringify(a) === JSON.stringify(b);
 }
 
-/** Where a thing stands in the file is no part of it. */
+/** Where a thing stands in the file, and how it is spaced there, is no part of it. */
 function digestOf(value: unknown): string {
   const text = JSON.stringify(value, (key, inner) =>
-    key === 'place' || key.endsWith('Place') ? undefined : inner,
+    key === 'place' || key.endsWith('Place') || key === 'asWritten' ? undefined : inner,
   );
   return createHash('sha256').update(text).digest('hex').slice(0, 16);
 }
