@@ -1,5 +1,6 @@
+import { smallestCommonDelay } from '../linear/common_delay.js';
 import { timeDimension } from '../spec/dimension.js';
-import { loopPointKey } from './keys.js';
+import { loopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
 import { ofSingleRate, ofStableLoop } from './stable_loop.js';
 
@@ -8,15 +9,19 @@ export const delayMargin: LoopMeasure = {
   description: {
     name: 'delay_margin',
     basis: 'loop',
-    keys: [loopPointKey],
+    keys: [loopPointsKey],
     dimension: () => timeDimension,
     ratio: false,
     better: 'higher',
     least: 0,
     window: undefined,
     meaning:
-      'smallest (π + arg L)/ω, counted from 0 to 2π, over all frequencies with |L| = 1; s; infinite without a crossover, 0 when the closed loop is unstable',
+      'smallest (π + arg L)/ω, counted from 0 to 2π, over all frequencies with |L| = 1 (of several signals, each of which must change once in a cycle of all controllers: with the same delay on all at once, arg L and |L| those of an eigenvalue of the matrix L); s; infinite without a crossover, 0 when the closed loop is unstable',
   },
   measure: ({ loop }) =>
-    ofStableLoop(loop, 0, () => ofSingleRate(loop, () => measured(loop.margins().delayMargin))),
+    ofStableLoop(loop, 0, () =>
+      loop.periods.length > 1
+        ? measured(smallestCommonDelay(loop.equations, loop.periods.length))
+        : ofSingleRate(loop, () => measured(loop.margins().delayMargin)),
+    ),
 };

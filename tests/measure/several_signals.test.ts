@@ -5,12 +5,12 @@ import { measureSmall, type SmallLoop, smallValues } from '../small_loop.js';
 
 const T = 0.01;
 const margins = ['gain_margin', 'phase_margin', 'modulus_margin', 'disc_margin', 'stability'] as const;
+const units: Record<string, string> = { stability: '0 1/s, scale: 1 1/s', delay_margin: '1 us' };
 
 /** The values of measures with the loop opened somewhere. */
 function opened(loop: SmallLoop, at: string, measures: readonly string[] = margins): number[] {
-  const limit = (name: string): string => (name === 'stability' ? '0 1/s, scale: 1 1/s' : '0.1');
   const requirements = measures.map(
-    (name, i) => `{ name: R${i}, at: ${at}, measure: ${name}, at_least: ${limit(name)} }`,
+    (name, i) => `{ name: R${i}, at: ${at}, measure: ${name}, at_least: ${units[name] ?? '0.1'} }`,
   );
   return smallValues({ ...loop, requirements });
 }
@@ -52,8 +52,9 @@ describe('two loops that know nothing of one another, opened at once', () => {
       [x, 0],
       [0, y],
     ]);
-    const [pan, tilt] = [opened(loop, 'duty_pan'), opened(loop, 'duty_tilt')];
-    const together = opened(loop, both);
+    const all = [...margins, 'delay_margin'];
+    const [pan, tilt] = [opened(loop, 'duty_pan', all), opened(loop, 'duty_tilt', all)];
+    const together = opened(loop, both, all);
     expectNear(
       together,
       pan.map((value, i) => Math.min(value, tilt[i])),
@@ -78,17 +79,58 @@ describe('two loops that act upon one another, opened at once', () => {
         fc.integer({ min: 0, max: 100 }),
         (r, hundredths) => {
           const angle = hundredths / 100;
-          const [gain, phase, modulus] = opened(turned(r, angle), both);
+          const [gain, phase, modulus, delay] = opened(turned(r, angle), both, [
+            ...margins.slice(0, 3),
+            'delay_margin',
+          ]);
           // |1 − c·r·e^{jθ}| = 1 at c = 2·cos(θ)/r.
           expectNear([gain], [(2 * Math.cos(angle)) / r]);
           // |1 − r·e^{j(θ + φ)}| = 1 where cos(θ + φ) = r/2.
           expectNear([phase], [Math.acos(r / 2) - angle], 1e-8);
+          expectNear([delay], [((Math.acos(r / 2) - angle) * T) / (2 * Math.asin(r / 2))], 1e-8);
           // 1/(z − 1) = −1/2 + jt on the unit circle, so that L lies on a straight line, at this distance from −1.
           expectNear([modulus], [Math.cos(angle) - r / 2]);
         },
       ),
       { numRuns: 12 },
     );
+  });
+
+  it('are at the edge of stability with their delay margin on both', () => {
+    // A delay of whole periods is one also between the instants, so that a gain with which it is the margin can be sought.
+    const late = (factor: number, periods: number): SmallLoop => {
+      const loop = axes([
+        [0.1 * factor, 0.04 * factor],
+        [-0.06 * factor, 0.08 * factor],
+      ]);
+      const delay = `every: 10 ms${periods > 0 ? `\n  delay: ${10 * periods} ms` : ''}`;
+      return { ...loop, controllers: loop.controllers!.replace('every: 10 ms', delay) };
+    };
+    for (const periods of [1, 2]) {
+      const [factor] = opened(late(1, periods), both, ['gain_margin']);
+      expect(factor).toBeGreaterThan(2);
+      expectNear(opened(late(factor, 0), both, ['delay_margin']), [periods * T], 1e-8);
+    }
+  });
+
+  it('has none where the signals change at different rates, and says so', () => {
+    const slower = 'slower:\n  every: 20 ms\n  signals:\n    more: { value: u - seen_x }';
+    const loop = axes([
+      [0.5, 0.2],
+      [-0.3, 0.4],
+    ]);
+    const [result] = measureSmall({
+      ...loop,
+      plant: `${loop.plant}\nx: { integral: third*(1 1/s) }`,
+      sensors: `${loop.sensors}\nseen_x: { of: x }`,
+      controllers: `${loop.controllers}\n${slower}`,
+      actuators: `${loop.actuators}\nthird: { of: more }`,
+      requirements: ['{ name: A, at: [duty_pan, third], measure: delay_margin, at_least: 1 ms }'],
+    });
+    expect(result).toMatchObject({
+      kind: 'unformed',
+      why: expect.stringContaining('the 2 opened signals change 3 times together in a cycle'),
+    });
   });
 
   it('may be near the edge together where each alone is far from it', () => {
