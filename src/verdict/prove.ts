@@ -3,19 +3,18 @@ import { LoopPoint } from '../measure/loop_point.js';
 import type { ParameterSpace } from '../perturb/parameter_space.js';
 import { LoopFamily } from '../perturb/proof/loop_family.js';
 import type { LoopClaim } from '../perturb/proof/margin_statement.js';
-import {
-  mostVariables,
-  movingParameters,
-  proveClaim,
-  provenStableAt,
-  statesOf,
-} from '../perturb/proof/prove_claim.js';
+import { proveClaim, provenStableAt, statesAt } from '../perturb/proof/prove_claim.js';
 import { Unprovable } from '../perturb/proof/slope_evaluation.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import type { Proof } from './run.js';
 
-/** Boxes that a proof may look at: fewer where each costs more, which grows with the cube of the number of states. */
-const budgetOf = (states: number): number => Math.max(50, Math.min(1500, Math.floor(2e5 / states ** 3)));
+/**
+ * Boxes that a proof may look at: fewer where each costs more, which grows with the cube of the number of states and with the
+ * number of parameters.
+ */
+function budgetOf(states: number, parameters: number): number {
+  return Math.max(50, Math.min(1000, Math.floor(6e5 / (states ** 3 * (parameters + 3)))));
+}
 
 /** A proof, with the plant that refutes it where there is one. */
 export interface ProofFound {
@@ -72,21 +71,15 @@ function proveFamily(
   claim: LoopClaim,
   { nominal, failsAt, plantAt }: PlantsOfBox,
 ): ProofFound {
-  const moving = movingParameters(family);
-  if (moving > mostVariables) {
-    throw new Unprovable(
-      `${moving} parameters move the loop, and a proof is tried with up to ${mostVariables}`,
-    );
-  }
   if (!provenStableAt(family, nominal)) {
     throw new Unprovable('rounding leaves the bounds too wide even for the nominal plant alone');
   }
-  const mostBoxes = budgetOf(statesOf(family));
-  const result = proveClaim(family, claim, failsAt, mostBoxes);
+  const budget = budgetOf(statesAt(family, nominal), nominal.length);
+  const result = proveClaim(family, claim, failsAt, budget);
   if (result.kind === 'refuted') {
     return { proof: { kind: 'refuted', boxes: result.boxes }, counterexample: plantAt(result.at) };
   }
-  const why = `the budget of ${mostBoxes} boxes ended`;
+  const why = `the budget of ${budget} boxes ended`;
   return { proof: result.kind === 'open' ? { ...result, why } : result, counterexample: undefined };
 }
 

@@ -16,25 +16,30 @@ export interface BoxStatement {
   failsAt(point: readonly number[]): boolean;
   /** Along which variable to halve a box that could not be proved. */
   cut(box: readonly Interval[]): number;
+  /** How many plain boxes a look at this one cost; one where not given. */
+  work?(box: readonly Interval[]): number;
 }
 
 /**
  * Proves a statement on a box by halving what cannot be proved at once (branch and bound; Moore 1966), the largest box
- * first, until all is proved, a point is found where it is false, or so many boxes were looked at.
- * @param mostBoxes the budget; the result depends on nothing else.
+ * first, until all is proved, a point is found where it is false, or the budget is spent.
+ * @param budget how many plain boxes may be looked at; the result depends on nothing else.
  */
-export function proveOn(box: readonly Interval[], statement: BoxStatement, mostBoxes: number): ProofResult {
+export function proveOn(box: readonly Interval[], statement: BoxStatement, budget: number): ProofResult {
   let open: { box: readonly Interval[]; share: number }[] = [{ box, share: 1 }];
   let boxes = 0;
+  let spent = 0;
   while (open.length > 0) {
     const next: typeof open = [];
     for (const [at, one] of open.entries()) {
-      if (boxes >= mostBoxes) {
+      if (spent >= budget) {
         const left = [...open.slice(at), ...next];
         return { kind: 'open', boxes, openShare: left.reduce((sum, { share }) => sum + share, 0) };
       }
       boxes++;
-      if (statement.holdsOn(one.box)) continue;
+      const holds = statement.holdsOn(one.box);
+      spent += statement.work?.(one.box) ?? 1;
+      if (holds) continue;
       const centre = one.box.map(([low, high]) => low + (high - low) / 2);
       if (statement.failsAt(centre)) return { kind: 'refuted', boxes, at: centre };
       next.push(

@@ -4,7 +4,6 @@ import type { Loop } from '../../loop/loop.js';
 import { lower } from '../../loop/lower.js';
 import { type Schedule, scheduleOf } from '../../loop/schedule.js';
 import type { LoopPoint } from '../../measure/loop_point.js';
-import { timingIsCommon } from '../../measure/scenario_run.js';
 import type { ParameterSpace } from '../parameter_space.js';
 import type { Interval } from './interval.js';
 import { polynomialsOf } from './loop_polynomials.js';
@@ -12,6 +11,7 @@ import type { LoopPolynomials } from './margin_statement.js';
 import { isNothing, type Slope, SlopeField } from './slope.js';
 import { openedLoopOver } from './slope_cycle.js';
 import { SlopeEvaluation, Unprovable } from './slope_evaluation.js';
+import { type ManyOrders, timingsOver } from './slope_timing.js';
 
 /** The loop opened at one point, for all plants of a box of its free parameters (SI, in the order of `space.free`). */
 export class LoopFamily {
@@ -25,13 +25,15 @@ export class LoopFamily {
     private readonly space: ParameterSpace,
   ) {
     const { loop } = point.linearisation;
-    if (!timingIsCommon(loop)) throw new Unprovable('the timing of a controller moves with a parameter');
     if (loop.modes.length > 0) throw new Unprovable('the plant has a part that jumps');
     if (loop.openings.length > 1) {
       const names = loop.openings.map(({ at }) => at).join(', ');
       throw new Unprovable(`the loop is opened at several signals at once (${names})`);
     }
     this.schedule = scheduleOf(loop, space.nominal);
+    if (this.schedule.cycle !== this.schedule.period[loop.openings[0].task]) {
+      throw new Unprovable('the opened signal changes several times in a cycle of all controllers');
+    }
     this.derived = space.parameters.map(({ derived }) => derived && this.lowered(loop, derived));
     this.restsAtZero = this.zeroIsRest();
   }
@@ -42,13 +44,16 @@ export class LoopFamily {
   }
 
   /**
-   * Denominator and numerator of the loop transfer over a box; the field's first variables are the free parameters.
+   * Denominator and numerator of the loop transfer over a box, one pair for each order in which things may happen there; the
+   * field's first variables are the free parameters.
    * @throws {Unprovable} where intervals are not carried through the loop.
    */
-  polynomials(field: SlopeField): LoopPolynomials {
-    const loop = openedLoopOver(this.point.linearisation, this.schedule, this.evaluation(field));
-    if (!loop) throw new Unprovable('the opened signal changes several times in a cycle of all controllers');
-    return polynomialsOf(field, loop);
+  polynomials(field: SlopeField): LoopPolynomials[] | ManyOrders {
+    const { linearisation } = this.point;
+    const evaluation = this.evaluation(field);
+    const timings = timingsOver(linearisation.loop, this.schedule, evaluation);
+    if ('cut' in timings) return timings;
+    return timings.map((timing) => polynomialsOf(field, openedLoopOver(linearisation, timing, evaluation)));
   }
 
   /** The loop's expressions at the point of linearisation, as for one plant: readings and the injection follow from it. */

@@ -103,14 +103,18 @@ function startsOutside(
 /** The variable that moves the polynomials most across the box, for where to cut it. */
 export function mostMoving(
   box: readonly Interval[],
-  { denominator, numerator }: LoopPolynomials,
+  loops: readonly LoopPolynomials[],
   claim: LoopClaim,
 ): number {
   const own = ownVariable(claim);
   const moves = box.map(([low, high], i) => {
     const width = high - low;
     if (own && i === box.length - 1) return claim.kind === 'gain_margin' ? (2 * width) / (low + high) : width;
-    return Math.max(...denominator.map((entry, k) => relativeMove([entry, numerator[k]], i, width)));
+    return Math.max(
+      ...loops.flatMap(({ denominator, numerator }) =>
+        denominator.map((entry, k) => relativeMove([entry, numerator[k]], i, width)),
+      ),
+    );
   });
   return moves.reduce((best, move, i) => (move > moves[best] ? i : best), 0);
 }

@@ -1,8 +1,10 @@
 import type { ColumnGroup, Linearisation, RowGroup } from '../../linear/linearise.js';
-import { instantsBetween, type Schedule } from '../../loop/schedule.js';
+import type { Schedule } from '../../loop/schedule.js';
+import { isZero } from './interval.js';
 import { isNothing, type Slope } from './slope.js';
 import type { SlopeEvaluation } from './slope_evaluation.js';
 import { combined, exponentialOver, zeroMatrix } from './slope_matrix.js';
+import type { SlopeTiming } from './slope_timing.js';
 
 /** State equations of a sampled loop transfer over a box: as `StateEquations`, each entry a quantity over the box. */
 export interface SlopeLoop {
@@ -16,37 +18,34 @@ type Row = Slope[];
 type Known = 'state' | 'held' | 'memory' | 'reading' | 'injected';
 
 /**
- * The loop transfer over one cycle of the schedule, as `openedLoop` gives it for one plant, for every plant of a box at once.
- * The loop is opened at one signal.
- * @returns undefined where the opened signal changes more than once in a cycle.
+ * The loop transfer over one cycle of the schedule, as `openedLoop` gives it for one plant, for every plant of a box at once
+ * whose things happen in one order. The loop is opened at one signal, which changes once in the cycle.
  */
 export function openedLoopOver(
   linearisation: Linearisation,
-  schedule: Schedule,
+  timing: SlopeTiming,
   evaluation: SlopeEvaluation,
-): SlopeLoop | undefined {
-  if (schedule.cycle !== schedule.period[linearisation.loop.openings[0].task]) return undefined;
-  return new SlopeCycle(linearisation, schedule, evaluation).run();
+): SlopeLoop {
+  return new SlopeCycle(linearisation, timing, evaluation).run();
 }
 
 class SlopeCycle {
-  private readonly start: number;
+  private readonly schedule: Schedule;
   private readonly known: number;
   private readonly rows: Record<Known, Row[]>;
   private readonly queues: Row[][][];
   private returned: Row = [];
   private readonly groups = new Map<string, Slope[][]>();
-  private readonly moves = new Map<number, Slope[][]>();
+  private readonly moves = new Map<string, Slope[][]>();
 
   constructor(
     private readonly linearisation: Linearisation,
-    private readonly schedule: Schedule,
+    private readonly timing: SlopeTiming,
     private readonly evaluation: SlopeEvaluation,
   ) {
     const { loop } = linearisation;
-    const settled = Math.max(0, ...schedule.channels.map(({ task, delay }) => schedule.phase[task] + delay));
-    this.start = Math.ceil(settled / schedule.cycle) * schedule.cycle;
-    const underWay = schedule.channels.map((_, channel) => this.resultsUnderWay(channel));
+    this.schedule = timing.schedule;
+    const underWay = this.schedule.channels.map((_, channel) => this.resultsUnderWay(channel));
     const heldBy = loop.channels.map((_, at) => loop.held.filter(({ channel }) => channel === at).length);
     this.known =
       loop.states.length +
@@ -69,26 +68,25 @@ class SlopeCycle {
   }
 
   run(): SlopeLoop {
-    const { schedule, start } = this;
-    let tick = start;
-    for (const instant of instantsBetween(schedule, start, start + schedule.cycle)) {
-      this.move(instant.tick - tick);
-      tick = instant.tick;
-      this.sample(instant.compute);
-      for (const channel of instant.deliver) this.deliver(channel, this.queues[channel].shift()!);
-      for (const task of instant.compute) this.compute(task);
-    }
-    this.move(start + schedule.cycle - tick);
+    const { instants, gaps } = this.timing;
+    instants.forEach(({ compute, deliver }, i) => {
+      this.move(gaps[i]);
+      this.sample(compute);
+      for (const channel of deliver) this.deliver(channel, this.queues[channel].shift()!);
+      for (const task of compute) this.compute(task);
+    });
+    this.move(gaps[instants.length]);
     return this.result();
   }
 
   /** Results that are computed before the start of the cycle and delivered at or after it. */
   private resultsUnderWay(channel: number): number {
-    const { period, phase, channels } = this.schedule;
+    const { start, schedule } = this.timing;
+    const { period, phase, channels } = schedule;
     const { task, delay } = channels[channel];
     if (delay === 0) return 0;
-    const computed = Math.ceil((this.start - phase[task]) / period[task]);
-    return computed - Math.ceil((this.start - phase[task] - delay) / period[task]);
+    const computed = Math.ceil((start - phase[task]) / period[task]);
+    return computed - Math.ceil((start - phase[task] - delay) / period[task]);
   }
 
   private nothing(): Row {
@@ -112,20 +110,22 @@ class SlopeCycle {
     return matrix;
   }
 
-  private move(ticks: number): void {
+  private move(seconds: Slope): void {
     const { state, held, injected } = this.rows;
-    if (ticks === 0 || state.length === 0) return;
+    if (isNothing(seconds) || state.length === 0) return;
     const known = [...state, ...held, ...injected];
-    let transition = this.moves.get(ticks);
+    // Gaps of like bounds are the same one where nothing moves them, and may be different ones else.
+    const key = seconds.slopes.every(isZero) ? seconds.range.join() : `${this.moves.size}`;
+    let transition = this.moves.get(key);
     if (!transition) {
-      transition = this.transition(ticks / this.schedule.ticksPerSecond, known.length);
-      this.moves.set(ticks, transition);
+      transition = this.transition(seconds, known.length);
+      this.moves.set(key, transition);
     }
     this.rows.state = state.map((_, i) => combined(this.evaluation.field, transition[i], known));
   }
 
   /** exp of [[A, B], [0, 0]]·seconds: the states' rows give states from states, held values and the injection. */
-  private transition(seconds: number, size: number): Slope[][] {
+  private transition(seconds: Slope, size: number): Slope[][] {
     const { field } = this.evaluation;
     const { state, held, injected } = this.rows;
     const parts = [
@@ -133,10 +133,10 @@ class SlopeCycle {
       this.slopes('derivative', 'held', held.length),
       this.slopes('derivative', 'injected', injected.length),
     ];
-    // The quotient of two whole numbers is known to a rounding.
-    const time = field.between([seconds * (1 - 2 ** -52), seconds * (1 + 2 ** -52)]);
     const matrix = zeroMatrix(field, size, size).map((row, i) =>
-      i < state.length ? parts.flatMap((part) => part[i].map((entry) => field.multiply(entry, time))) : row,
+      i < state.length
+        ? parts.flatMap((part) => part[i].map((entry) => field.multiply(entry, seconds)))
+        : row,
     );
     return exponentialOver(field, matrix);
   }

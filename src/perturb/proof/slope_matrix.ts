@@ -41,7 +41,7 @@ const terms = 14;
  * squaring back.
  */
 export function exponentialOver(field: SlopeField, matrix: SlopeMatrix): Slope[][] {
-  const norm = normOf(matrix.map((row) => row.map(({ range }) => size(range))));
+  const norm = normOf(matrix.map((row) => row.map(largest)));
   const halvings = Math.max(0, Math.ceil(Math.log2(norm)) + 1);
   if (!Number.isFinite(halvings) || halvings > 60)
     return matrix.map((row) => row.map(() => field.between(everything)));
@@ -68,7 +68,7 @@ function plusIdentity(field: SlopeField, matrix: Slope[][]): Slope[][] {
  * for its slopes ‖dM‖·‖M‖^terms/terms! times the same.
  */
 function withRest(field: SlopeField, matrix: SlopeMatrix, result: Slope[][]): Slope[][] {
-  const norm = normOf(matrix.map((row) => row.map(({ range }) => size(range))));
+  const norm = normOf(matrix.map((row) => row.map(largest)));
   const tail = up(up(norm ** terms / factorial(terms)) * 2.1);
   const rest = up(tail * norm);
   const restOfSlopes = field.box.map((_, i) =>
@@ -87,6 +87,11 @@ function withRest(field: SlopeField, matrix: SlopeMatrix, result: Slope[][]): Sl
           },
     ),
   );
+}
+
+/** The bounds may hold for a part of the box alone, in which the centre does not lie; the series must hold for both. */
+function largest({ range, centre }: Slope): number {
+  return Math.max(size(range), size(centre));
 }
 
 /** The largest sum of sizes in a row. */
