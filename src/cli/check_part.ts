@@ -1,9 +1,11 @@
 import { resolve } from 'node:path';
+import { LoopError } from '../loop/loop.js';
 import { counted } from '../report/format_value.js';
-import { type Share, tryShare } from '../verdict/parts.js';
+import type { Watch } from '../verdict/crew.js';
+import { type PartialRound, type Share, tryShare } from '../verdict/parts.js';
 import type { CheckOptions } from './check.js';
-import { eachBuild } from './each_build.js';
-import { setupOf } from './latched_reference.js';
+import { eachBuild, type Target } from './each_build.js';
+import { latchedSetupOf, setupOf } from './latched_reference.js';
 import { digestOf, type PartTarget, writePart } from './part_file.js';
 import { shownPath } from './read_spec.js';
 import { type ExitStatus, Fault, type Surroundings } from './surroundings.js';
@@ -38,6 +40,7 @@ export async function checkPart(
       specDigest: digestOf(target),
       read: target.build,
       rounds: await tryShare(setupOf(target), target.saved, share, watch),
+      latchedRounds: await latchedShare(target, share, watch),
     }),
   );
   if (faults.length > 0) {
@@ -50,10 +53,21 @@ export async function checkPart(
     targets: results,
   });
   const plants = results
-    .flatMap(({ rounds }) => rounds)
+    .flatMap(({ rounds, latchedRounds = [] }) => [...rounds, ...latchedRounds])
     .reduce((sum, { answers }) => sum + answers.length, 0);
   around.print(
     `part ${part} of ${of}: ${counted(plants, 'plant')} measured, nothing judged yet; 'pawl join' judges all parts together\n${shownPath(around.cwd, path)}\n`,
   );
   return 0;
+}
+
+/** Whoever joins the parts finds that the latched coefficients cannot be run, and says why. */
+async function latchedShare(target: Target, share: Share, watch: Watch): Promise<PartialRound[] | undefined> {
+  const setup = latchedSetupOf(target);
+  try {
+    return setup && (await tryShare(setup, target.saved, share, watch));
+  } catch (error) {
+    if (error instanceof LoopError) return undefined;
+    throw error;
+  }
 }

@@ -1,5 +1,6 @@
 import type { Fault as SpecFault } from '../report/index.js';
 import { JoiningCrew, PartsDisagree } from '../verdict/parts.js';
+import type { PlantSetup } from '../verdict/plant_answers.js';
 import { report, statusOf } from './check.js';
 import type { Target } from './each_build.js';
 import { type JudgedTarget, judgedFiles, judgeTarget } from './judge_files.js';
@@ -62,7 +63,13 @@ async function joinTarget(
   const rounds = parts.map((part) => part.rounds);
   const watch = { signal: around.interrupted };
   const crew = new JoiningCrew(setupOf(target), rounds, watch);
-  return judgeTarget(target, { crew, watch }, around.today);
+  const latchedCrew = (setup: PlantSetup) =>
+    new JoiningCrew(
+      setup,
+      parts.map(({ latchedRounds = [] }) => latchedRounds),
+      watch,
+    );
+  return judgeTarget(target, { crew, latchedCrew, watch }, around.today);
 }
 
 async function readParts(paths: readonly string[], cwd: string): Promise<PartFile[]> {

@@ -4,7 +4,12 @@ import { formatSpecError } from '../spec/index.js';
 import type { Spec } from '../spec/spec.js';
 import type { JudgedSpec, JudgeOptions } from '../verdict/judge_spec.js';
 import { againstReference } from '../verdict/latched/against_reference.js';
-import { coefficientUnits, latchedNumbers } from '../verdict/latched/coefficient_changes.js';
+import {
+  coefficientChanges,
+  coefficientUnits,
+  latchedNumbers,
+  withLatched,
+} from '../verdict/latched/coefficient_changes.js';
 import { mergeFault } from '../verdict/latched/merge_fault.js';
 import { type Reference, readReference } from '../verdict/latched/reference.js';
 import { referencePlants } from '../verdict/latched/reference_plants.js';
@@ -81,6 +86,19 @@ export function setupOf({
   return { spec, coefficients, latched: new Map([...coefficients.keys()].map((name) => [name, why])) };
 }
 
+/** What the plants are measured with where the latched coefficients stand in today's place; undefined where they are the same. */
+export function latchedSetupOf({
+  spec,
+  coefficients,
+  latched,
+}: Pick<Target, 'spec' | 'coefficients' | 'latched'>): PlantSetup | undefined {
+  const reference = latched?.reference;
+  if (!reference) return undefined;
+  const changes = coefficientChanges(reference, coefficients, coefficientUnits(spec));
+  const numbers = withLatched(coefficients, reference, changes);
+  return numbers && { spec, coefficients: numbers };
+}
+
 /**
  * What the latched reference leaves of a judged build's verdicts, and what changed since.
  * @param today the day on which waivers must still count, YYYY-MM-DD.
@@ -90,13 +108,13 @@ export async function heldAgainstLatched(
   { spec, build, coefficients, saved, latched }: Target,
   judged: JudgedSpec,
   today: string,
-  { workers, watch }: JudgeOptions,
+  { workers, watch, latchedCrew }: JudgeOptions,
 ): Promise<Pick<SpecRun, 'requirements' | 'sinceLatched'>> {
   if (!latched) return { requirements: judged.requirements };
   const { path, reference } = latched;
   const [law, compilers] = [build?.law ?? [], build?.provenance.compilers ?? []];
   return againstReference(
     { spec, judged, coefficients, reference, path, law, compilers, today },
-    { workers, watch, saved },
+    { workers, watch, saved, latchedCrew },
   );
 }

@@ -23,6 +23,8 @@ export interface PartTarget {
   specDigest: string;
   read: BuildRead | undefined;
   rounds: PartialRound[];
+  /** The same plants with the latched coefficients; undefined where these are today's, or cannot be run. */
+  latchedRounds: PartialRound[] | undefined;
 }
 
 /** SHA-256 of a checked spec, the saved counterexamples and the latched reference, so that parts of different ones are told apart. */

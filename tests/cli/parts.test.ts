@@ -12,7 +12,13 @@ describe('a run in three parts', () => {
   let place: Workplace;
   let joined: Ended;
   beforeAll(async () => {
-    place = new Workplace((text) => text.replace(/^ {2}- \{ name: AZ-[23467].*\n/gm, ''));
+    place = new Workplace((text) =>
+      text
+        .replace(/^ {2}- \{ name: AZ-[23467].*\n/gm, '')
+        .replace('../../reference/latched/heliostat.json', 'latched/axis.json'),
+    );
+    const latched = await place.pawl('latch', place.spec, '--skip-build', '--reason', 'first release');
+    expect(latched).toMatchObject({ status: 0, errors: '' });
     for (const part of ['1', '2', '3']) {
       const ended = await place.pawl(
         'check',
@@ -49,18 +55,27 @@ describe('a run in three parts', () => {
     );
   });
 
-  it('shares the plants: no part has measured more than a third of them and a few', () => {
-    const counts = parts.map((path) =>
-      JSON.parse(place.read(path)).targets[0].rounds.map(
-        ({ plants, answers }: { plants: number; answers: unknown[] }) => ({ plants, own: answers.length }),
-      ),
-    );
-    counts[0].forEach(({ plants }: { plants: number }, round: number) => {
-      const own = counts.map((rounds) => rounds[round].own);
-      expect(own.reduce((sum, one) => sum + one)).toBe(plants);
-      for (const one of own) expect(one).toBeLessThanOrEqual(Math.ceil(plants / 3));
-    });
+  it('compares with the latched coefficients, as one machine does', () => {
+    const { requirements } = JSON.parse(place.read('joined/run.json')).specs[0];
+    expect(requirements[0].since_latched.lost).toBeGreaterThan(0);
+    expect(requirements[0].since_latched.rerun).not.toEqual(requirements[0].since_latched.today);
   });
+
+  it.each(['rounds', 'latchedRounds'])(
+    'shares the plants: no part has measured more than a third of them and a few: %s',
+    (rounds) => {
+      const counts = parts.map((path) =>
+        JSON.parse(place.read(path)).targets[0][rounds].map(
+          ({ plants, answers }: { plants: number; answers: unknown[] }) => ({ plants, own: answers.length }),
+        ),
+      );
+      counts[0].forEach(({ plants }: { plants: number }, round: number) => {
+        const own = counts.map((rounds) => rounds[round].own);
+        expect(own.reduce((sum, one) => sum + one)).toBe(plants);
+        for (const one of own) expect(one).toBeLessThanOrEqual(Math.ceil(plants / 3));
+      });
+    },
+  );
 
   it('does not depend on the order in which the parts are named', async () => {
     await place.pawl('join', ...parts.toReversed(), '--out', 'turned');
@@ -111,6 +126,13 @@ describe('a run in three parts', () => {
       'plants that are left out',
       (part) => {
         part.targets[0].rounds[1].answers.pop();
+      },
+      /lacks plants/,
+    ],
+    [
+      'plants of the latched coefficients that are left out',
+      (part) => {
+        part.targets[0].latchedRounds[1].answers.pop();
       },
       /lacks plants/,
     ],

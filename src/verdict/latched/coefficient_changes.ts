@@ -58,12 +58,16 @@ export function coefficientUnits({ firmware }: Spec): Map<string, string | undef
   return new Map(firmware?.coefficients.map(({ name, unit }) => [name, unit?.text]));
 }
 
-/** Today's numbers with the latched ones in their place, for the coefficients of these changes. */
+/**
+ * Today's numbers with the latched ones in their place, for the coefficients of these changes; undefined where today's spec would
+ * run with the same numbers.
+ */
 export function withLatched(
   today: CoefficientValues,
   reference: Reference,
   changes: readonly CoefficientChange[],
-): CoefficientValues {
+): CoefficientValues | undefined {
+  if (!changes.some((change) => isLike(change) && change.today !== undefined)) return undefined;
   const latched = latchedValues(reference);
   const replaced = new Set(changes.filter(isLike).map(({ name }) => name));
   return new Map([...today].map(([name, now]) => [name, replaced.has(name) ? latched.get(name)! : now]));

@@ -30,8 +30,7 @@ export async function compareRequirements(
 ): Promise<(Comparison | undefined)[]> {
   const { spec, reference, today, changes, judged } = task;
   const latched = withLatched(today, reference, changes);
-  const isSame = !changes.some((change) => isLike(change) && change.today !== undefined);
-  const reruns = isSame ? undefined : await rerunOrWhy(task, latched, options);
+  const reruns = latched && (await rerunOrWhy(task, latched, options));
   const comparisons = judged.requirements.map((requirement, index): Comparison => {
     const now = todayOf(requirement);
     const rerun =
@@ -47,7 +46,8 @@ export async function compareRequirements(
       attribution: [],
     };
   });
-  const found = Array.isArray(reruns) ? attributed(task, latched, reruns, comparisons) : comparisons;
+  const found =
+    latched && Array.isArray(reruns) ? attributed(task, latched, reruns, comparisons) : comparisons;
   return found.map((comparison, index) => (isOfTheChange(spec.requirements[index]) ? undefined : comparison));
 }
 

@@ -26,9 +26,10 @@ export async function rerunLatched(
   spec: Spec,
   latched: CoefficientValues,
   today: JudgedSpec,
-  { workers, saved = [], watch }: JudgeOptions,
+  { workers, saved = [], watch, latchedCrew }: JudgeOptions,
 ): Promise<Rerun[]> {
-  const crew = new Crew({ spec, coefficients: latched }, workers, watch);
+  const setup = { spec, coefficients: latched };
+  const crew = latchedCrew?.(setup) ?? new Crew(setup, workers, watch);
   try {
     const space = new ParameterSpace(spec.parameters, spec.perturbation);
     const { tallies, halvings } = await tryPlants(spec, space, crew, saved);
