@@ -144,6 +144,15 @@ describe('the loop of all plants of a box', () => {
     expect(numerator.some(({ slopes }) => slopes[0][1] !== 0)).toBe(true);
   });
 
+  it('takes any point of rest of a loop that is affine, since it linearises the same everywhere', () => {
+    const atRest = (value: string): string => {
+      const spec = motorWith(['goal: { unit: rad/s }', `goal: { unit: rad/s, rest: ${value} }`]);
+      const family = new LoopFamily(pointOf(spec), new ParameterSpace(spec.parameters));
+      return JSON.stringify(polynomialsOf(family, family.box));
+    };
+    expect(atRest('3 rad/s')).toBe(atRest('0 rad/s'));
+  });
+
   it('says why there is no proof: timing of several controllers that moves, a point that may move', () => {
     const timing = motorWith(
       declare('clock: { nominal: 0 %, from: -4 %, to: 5 % }'),
