@@ -1,8 +1,8 @@
 """Margins of sampled loops that are opened at all actuators at once, by methods of their own: the loop is discretised by
 SciPy's matrix exponential, the factors and phases on all signals alike are sought as changes of sign of the spectral radius
-less one, and peaks of singular values on a dense grid of frequencies, polished by a bounded search. Reads a list of loops
-{a, b, k, period, delay, widths} from standard input: x' = a x + b u, u = -k x of the sampling instant, from `delay` s after it
-on; `widths` are what counts as one of each u. Writes a list of results to standard output."""
+less one, and peaks of singular values and eigenvalues of size one on a dense grid of frequencies, polished within its steps.
+Reads a list of loops {a, b, k, period, delay, widths} from standard input: x' = a x + b u, u = -k x of the sampling instant,
+from `delay` s after it on; `widths` are what counts as one of each u. Writes a list of results to standard output."""
 import json
 import sys
 
@@ -61,6 +61,37 @@ def phase_margin(system):
 GRID = np.concatenate([np.geomspace(1e-5, 0.05, 100), np.linspace(0.05, np.pi, 1000)])
 
 
+def delay_margin(system, period):
+    """The smallest angle ahead of -1 over the frequency, of eigenvalues of size one; they are joined from one to the next."""
+    phi, gamma, out = system
+
+    def values(angle):
+        return linalg.eigvals(out @ linalg.solve(np.exp(1j * angle) * np.eye(len(phi)) - phi, gamma))
+
+    angles = np.concatenate([GRID, [np.pi]])
+    found = [np.inf]
+    before = values(angles[0])
+    for low, high in zip(angles, angles[1:]):
+        after = values(high)
+        _, matched = optimize.linear_sum_assignment(np.abs(before[:, None] - after[None, :]))
+        for start, end in zip(before, after[matched]):
+            if (abs(start) - 1) * (abs(end) - 1) >= 0:
+                continue
+
+            def nearest(angle):
+                expected = start + (end - start) * (angle - low) / (high - low)
+                here = values(angle)
+                return here[np.argmin(np.abs(here - expected))]
+
+            at = optimize.brentq(lambda angle: abs(nearest(angle)) - 1, low, high, xtol=1e-15, rtol=1e-14)
+            found.append(np.angle(-nearest(at)) % (2 * np.pi) / at * period)
+        before = after
+    # At half the sampling frequency a sine is its own image, and the cosine of its turn is left.
+    real = before[(np.abs(before.imag) < 1e-9 * np.abs(before)) & (np.abs(before) >= 1)].real
+    best = min([*found, *(np.arccos(-1 / real) / np.pi * period)])
+    return float(best) if np.isfinite(best) else None
+
+
 def peak(system, widths, response):
     phi, gamma, out = system
     unit, weights = np.eye(len(phi)), np.divide.outer(1 / np.array(widths), 1 / np.array(widths))
@@ -90,6 +121,7 @@ def results(loop):
         'stable': True,
         'gain': gain_margin(system),
         'phase': phase_margin(system),
+        'delay': delay_margin(system, loop['period']),
         'sensitivity': peak(system, widths, sensitivity),
         'complementary': peak(system, widths, lambda l: np.linalg.solve(one + l, l)),
         'balanced': peak(system, widths, lambda l: sensitivity(l) - one / 2),
