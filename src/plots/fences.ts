@@ -1,10 +1,12 @@
 import type { TargetStep } from '../measure/measure.js';
 import type { Fence } from '../report/index.js';
-import type { Limit, Requirement } from '../spec/spec.js';
-import type { BoundPoint } from '../spec/statement.js';
+import type { Expression, Limit, Requirement } from '../spec/spec.js';
+import type { BoundPoint, Statement } from '../spec/statement.js';
 
 /** What a limit in the plane of a trace depends on besides the requirement. */
 export interface FenceContext {
+  /** The signal that is drawn. */
+  signal: string;
   /** The step of the target of the requirement, where it makes one. */
   step: TargetStep | undefined;
   /** The target at a time, where there is one, SI. */
@@ -18,7 +20,7 @@ type Side = Fence['forbidden'];
 
 /** The limits of a requirement that can be drawn as lines over its signal; none for those that say something else of it. */
 export function fencesOf(requirement: Requirement, context: FenceContext): Fence[] {
-  const { measure, limit, quantities, bounds } = requirement;
+  const { measure, limit, quantities, bounds, statement } = requirement;
   const { from, until, step } = context;
   const level = (value: number, forbidden: Side, start = from): Fence =>
     line(requirement, start, value, until, value, forbidden);
@@ -49,6 +51,10 @@ export function fencesOf(requirement: Requirement, context: FenceContext): Fence
         ...corners(requirement, bounds?.upper, 'above'),
         ...corners(requirement, bounds?.lower, 'below'),
       ];
+    case 'over_time':
+      return statement && 'at_least' in limit
+        ? statementFences(requirement, statement, context, limit.at_least)
+        : [];
     default:
       return [];
   }
@@ -103,6 +109,33 @@ function limitLevels(limit: Limit): { value: number; forbidden: Side }[] {
     { value: high, forbidden: 'above' },
     { value: low, forbidden: 'below' },
   ];
+}
+
+/**
+ * What a statement keeps the drawn signal above or below throughout a window: the levels at which its margin is the limit. Other
+ * statements, and comparisons of several signals, are no lines.
+ */
+function statementFences(
+  requirement: Requirement,
+  statement: Statement,
+  context: FenceContext,
+  least: number,
+): Fence[] {
+  if (statement.kind === 'all_of') {
+    return statement.statements.flatMap((one) => statementFences(requirement, one, context, least));
+  }
+  if (statement.kind !== 'throughout' || statement.that.kind !== 'comparison') return [];
+  const { margin, scale } = statement.that;
+  const until = Math.min(statement.to ?? context.until, context.until);
+  if (margin.kind !== 'operation' || margin.operator !== '-' || !(until > statement.from)) return [];
+  const { left, right } = margin;
+  const isDrawn = (side: Expression): boolean => side.kind === 'name' && side.name === context.signal;
+  const level = (value: number, forbidden: Side): Fence[] => [
+    line(requirement, statement.from, value, until, value, forbidden),
+  ];
+  if (left.kind === 'number' && isDrawn(right)) return level(left.value - least * scale, 'above');
+  if (right.kind === 'number' && isDrawn(left)) return level(right.value + least * scale, 'below');
+  return [];
 }
 
 /** The corridor itself, which the signal must keep clear of by the limit. */

@@ -110,9 +110,9 @@ function onAxis(ratio: number): Complex[] {
   return [1 / ratio, ratio].map((size) => ({ real: -size, imaginary: 0 }));
 }
 
-/** A turn by this angle, either way, brings one of these to −1. */
+/** A turn by this angle, either way, brings one of these to −1; the upper one comes first, for loci have both. */
 function onCircle(angle: number): Complex[] {
-  return [angle, -angle].map((turn) => ({ real: -Math.cos(turn), imaginary: -Math.sin(turn) }));
+  return [-angle, angle].map((turn) => ({ real: -Math.cos(turn), imaginary: -Math.sin(turn) }));
 }
 
 /** That of some places which lies nearest to a locus. */

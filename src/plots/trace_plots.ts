@@ -76,7 +76,10 @@ function plotsOfScenario(
       worst: worstOf.get(requirements[0].name)?.get(signal) ?? none,
       target: target === undefined ? undefined : nominal?.get(target),
       fences: requirements.flatMap((requirement) =>
-        fencesOf(requirement, contextOf(requirement, scenario, traces, nominal, nominalValues)),
+        fencesOf(requirement, {
+          signal,
+          ...contextOf(requirement, scenario, traces, nominal, nominalValues),
+        }),
       ),
     };
   });
@@ -108,7 +111,7 @@ function contextOf(
   traces: ScenarioTraces,
   nominal: Sampled,
   nominalValues: Float64Array,
-): FenceContext {
+): Omit<FenceContext, 'signal'> {
   const target = signals.to === undefined ? undefined : nominal?.get(signals.to);
   return {
     step: signals.to === undefined ? undefined : traces.stepOf(signals.to, nominalValues),

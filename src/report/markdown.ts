@@ -82,7 +82,7 @@ function table(requirements: readonly RequirementRun[]): string {
 
 /** What is asked next of a requirement that blocks: where it is written, why, on which plant, and what it is for. */
 function detail(requirement: RequirementRun, spec: SpecRun): string {
-  const { name, place, verdict, worst, reason } = requirement;
+  const { name, place: written, verdict, worst, reason } = requirement;
   const why = verdict.kind === 'met' ? [] : [verdict.why];
   if (worst.result.kind !== 'value' && !why.includes(worst.result.why)) why.push(worst.result.why);
   if (worst.result.kind === 'value' && worst.result.note !== undefined) why.push(worst.result.note);
@@ -92,14 +92,17 @@ function detail(requirement: RequirementRun, spec: SpecRun): string {
     waiverInWords(requirement),
   ];
   const nearest = shrunkInWords(requirement);
-  const parts = [
-    ...why.map((text) => said(text, 300)),
-    ...since.flatMap((text) => (text === undefined ? [] : [said(text, 300)])),
+  const head = [...why, ...since].flatMap((text) => (text === undefined ? [] : [said(text, 300)]));
+  const below = [
     ...(nearest === undefined ? [] : [said(nearest, 300)]),
     `worst plant: ${said(plantInWords(worst), 400)}`,
     ...(reason === undefined ? [] : [`reason: ${said(reason, 300)}`]),
   ];
-  return `- **${said(name, 60)}** (${said(place.file, 120)}, line ${place.line}): ${parts.join('; ')}`;
+  const place = `${said(written.file, 120)}, line ${written.line}`;
+  return [
+    `- **${said(name, 60)}** (${place}): ${head.join('; ')}`,
+    ...below.map((line) => `  - ${line}`),
+  ].join('\n');
 }
 
 /** What moved of the met requirements since the latched reference. */

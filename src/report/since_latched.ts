@@ -119,6 +119,8 @@ export function comparisonInWords(requirement: RequirementRun): string | undefin
     return `${measureName(measure)} as it was latched${own}`;
   }
   const way = `${measureName(measure)} ${short(latched, requirement)} → ${short(today, requirement)}`;
+  const cameOrWent = (rerun.result.kind === 'value') !== (today.result.kind === 'value');
+  if (cameOrWent && !moved(latched, rerun)) return `${way}, all from the firmware`;
   return `${way}: ${partsOf(requirement, comparison).join(', ')}`;
 }
 
