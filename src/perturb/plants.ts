@@ -55,7 +55,7 @@ export function* plantsToTry(
 ): Generator<Plant> {
   yield { origin: 'nominal', values: space.nominal.slice() };
   if (space.size === 0) return;
-  yield* allowed(space, 'saved', saved);
+  yield* allowed(space, 'saved', savedPlants(space, saved));
   yield* allowed(space, 'single', singleExtremes(space));
   yield* allowed(space, 'corner', corners(space, seed));
   const extras = Math.min(mostExtras, plants);
@@ -66,6 +66,16 @@ export function* plantsToTry(
 
 function* allowed(space: ParameterSpace, origin: PlantOrigin, all: Iterable<Float64Array>): Generator<Plant> {
   for (const values of all) if (space.allows(values)) yield { origin, values };
+}
+
+/** The saved plants as the spec now has them: derived parameters follow, and of a list only its values count. */
+function* savedPlants(space: ParameterSpace, saved: readonly Float64Array[]): Generator<Float64Array> {
+  for (const values of saved) {
+    const isListed = space.parameters.every(
+      ({ distribution }, i) => distribution?.kind !== 'values' || distribution.values.includes(values[i]),
+    );
+    if (isListed) yield space.completed(values.slice());
+  }
 }
 
 function* singleExtremes(space: ParameterSpace): Generator<Float64Array> {

@@ -69,6 +69,17 @@ describe('the plants to try', () => {
     expect(from('independent', plantsOf(space, 80)).slice(0, 50)).toEqual(from('independent', plants));
   });
 
+  it('let derived parameters follow in saved counterexamples too, and leave out values that are no longer listed', () => {
+    const values = [2, 3, 4];
+    const listed = new ParameterSpace([
+      parameter('gear', 2, 4, { nominal: 3, distribution: { kind: 'values', values } }),
+      parameter('torque', 30, 30, { nominal: 30, derived: operation(name('gear'), '*', number(10)) }),
+    ]);
+    const saved = [Float64Array.of(4, 30), Float64Array.of(2.5, 30)];
+    const plants = [...plantsToTry(listed, { ...run, plants: 1 }, saved)];
+    expect(from('saved', plants)).toEqual([[4, 40]]);
+  });
+
   it('try saved counterexamples right after the nominal plant', () => {
     const saved = Float64Array.of(2.5, 5, 4);
     const [, second] = plantsToTry(space, { ...run, plants: 1 }, [saved]);
