@@ -11,6 +11,7 @@ import {
   shapeExamples,
   statements,
 } from './examples/index.js';
+import { headroomExamples, headroomOf, shareClaimed, shareExample } from './examples/judging.js';
 import { worthTelling } from './examples/written_examples.js';
 import { examplesOf } from './vocabulary_tables.js';
 
@@ -55,6 +56,17 @@ test.each(named(Object.values(sectionExamples).flat()))('the section %s', (_, ex
 
 test.each(named(patterns))('the %s', (_, example) => {
   expectOutcomes(example);
+});
+
+test.each(headroomExamples.map((one) => [one.limit, one] as const))('the headroom of %s', (_, example) => {
+  expect(headroomOf(example)).toBeCloseTo(valueOfFormula(example.formula), 9);
+});
+
+test('the share of plants that random ones can claim', () => {
+  const { claimed, needed } = shareClaimed(shareExample);
+  expect(claimed).toBeCloseTo(valueOfFormula(shareExample.formula), 9);
+  expect(claimed).toBeGreaterThanOrEqual(shareExample.share);
+  expect(needed).toBe(shareExample.plants);
 });
 
 test('the statements over time', () => {

@@ -18,6 +18,7 @@ import {
   shapeExamples,
   statements,
 } from './examples/index.js';
+import { headroomTable, shareText } from './examples/judging.js';
 import { exampleText, measureGroupText, patternText, shapeExampleText } from './examples/written_examples.js';
 
 const cell = (text: string): string => text.replaceAll('|', '\\|');
@@ -243,6 +244,7 @@ export const written = (): Record<string, string> => ({
   blocks: vocabulary.blocks.map(blockText).join('\n\n'),
   measures: measureText(),
   statements: measureGroupText(statements),
+  headroom: `${headroomTable()}\n\n${shareText()}`,
   patterns: patterns.map(patternText).join('\n\n'),
   ...Object.fromEntries(
     Object.entries(sectionExamples).map(([name, examples]) => [name, examples.map(exampleText).join('\n\n')]),
