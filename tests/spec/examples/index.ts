@@ -9,6 +9,7 @@ import {
   actuatorExamples,
   arithmeticExamples,
   controllerExamples,
+  scenarioExamples,
   sensorExamples,
   signalExamples,
 } from './section_examples.js';
@@ -35,4 +36,5 @@ export const sectionExamples: Record<string, readonly Example[]> = {
   'examples of controllers': controllerExamples,
   'examples of number formats': arithmeticExamples,
   'examples of actuators': actuatorExamples,
+  'examples of scenarios': scenarioExamples,
 };

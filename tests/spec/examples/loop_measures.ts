@@ -108,5 +108,37 @@ actuators:
   ],
 };
 
+/** A fan whose drag grows with the square of its speed: L has another pole at each working point. */
+const fan: MeasureGroup = {
+  title: 'a working point',
+  shows:
+    'a fan with drag c·speed², c = 0.1 mN·m·s²/rad², J = 0.002 kg·m²: around a speed v its pole is at 2·c·v/J, 10 /s at 100 rad/s, and the gain of a pulse of T = 20 ms is (1 − e^(−0.2))/10/J',
+  shown: `plant:
+  speed: { integral: (torque - (1e-4 N*m*s^2/rad^2)*speed^2)/(2 g*m^2), unit: rad/s }
+sensors:
+  tacho: { of: speed, unit: rad/s }
+controllers:
+  drive: { every: 20 ms, signals: { push: { value: (0.05 N*m*s/rad)*(wanted - tacho), unit: N*m } } }
+actuators:
+  torque: { of: push, unit: N*m }`,
+  hidden: 'inputs: { wanted: { unit: rad/s } }',
+  outcomes: [
+    of(
+      'N-1',
+      'stability, at: torque, around: { speed: 100 rad/s }, at_least: 10 1/s',
+      '1/s',
+      '−ln(e^(−0.2) − 0.05·(1 − e^(−0.2))/10/0.002)/0.02',
+      'the mode z = e^(−0.2) − 0.05·gain',
+    ),
+    of(
+      'N-2',
+      'stability, at: torque, at_least: 10 1/s',
+      '1/s',
+      '−ln(1 − 0.05·0.02/0.002)/0.02',
+      'at rest: no drag, and a gain of T/J',
+    ),
+  ],
+};
+
 /** Measures of the loop. */
-export const loopMeasures: readonly MeasureGroup[] = [motor];
+export const loopMeasures: readonly MeasureGroup[] = [motor, fan];

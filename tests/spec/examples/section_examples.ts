@@ -208,6 +208,42 @@ scenarios:
   },
 ];
 
+/** What the keys of a scenario do. */
+export const scenarioExamples: readonly Example[] = [
+  {
+    of: 'scenarios',
+    shows:
+      'a wheel that coasts from 3 rad/s, and a tank that is filled from empty after a power-up, though it rests half full',
+    shown: `plant:
+  speed: { integral: -speed/(2 s), unit: rad/s }
+  level: { lag: 2 s, of: inflow, unit: m }
+scenarios:
+  coast:    { lasts: 4 s, start: { speed: 3 rad/s } }
+  power_up: { lasts: 4 s, start: zero }`,
+    hidden: 'inputs: { inflow: { unit: m } }',
+    rests: { inflow: '1.5 m' },
+    outcomes: [
+      {
+        requirement:
+          '{ name: slow, measure: smallest_value, of: speed, in: coast, at_least: 0 rad/s, scale: 1 rad/s }',
+        unit: 'rad/s',
+        formula: '3·e^(−2)',
+      },
+      {
+        requirement: '{ name: level, measure: largest_value, of: level, in: power_up, at_most: 2 m }',
+        unit: 'm',
+        formula: '1.5·(1 − e^(−2))',
+      },
+      {
+        requirement: '{ name: rest, measure: smallest_value, of: level, in: coast, at_least: 1 m }',
+        unit: 'm',
+        formula: '1.5',
+        why: 'from rest but for the speed',
+      },
+    ],
+  },
+];
+
 const numbers = (arithmetic: string, ...signals: string[]): string =>
   `controllers:
   law:
