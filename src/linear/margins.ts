@@ -21,7 +21,11 @@ export interface LoopMargins {
   gainMargin: GainMargin;
   /** Smallest size of the phase margin over all gain crossings, in rad. */
   phaseMargin: number;
-  /** Smallest delay in s that brings a gain crossing to −1, over all of them. */
+  /**
+   * Smallest delay in s that brings a gain crossing to −1, over all of them. Where a sampled |L| is one or more still at half
+   * the sampling frequency, also the delay that brings L to −1 there: a sine and its own image are turned both ways, which
+   * leaves the cosine of the turn.
+   */
   delayMargin: number;
   /** Least distance of L from −1, which is one over the sensitivity peak. */
   modulusMargin: number;
@@ -65,7 +69,10 @@ export function marginsOfLoop(loop: StateEquations, deadTime = 0): LoopMargins {
     stable,
     gainMargin: gainMarginOf(crossings.phaseCrossings),
     phaseMargin: smallest(crossings.gainCrossings, ({ phaseMargin }) => Math.abs(phaseMargin)),
-    delayMargin: smallest(crossings.gainCrossings, delayMarginAt),
+    delayMargin: Math.min(
+      smallest(crossings.gainCrossings, delayMarginAt),
+      delayAtHighestFrequency(sweep, loop.period),
+    ),
     modulusMargin: 1 / sensitivityPeak.value,
     sensitivityPeak,
     complementaryPeak: peakOfLoop(analysis, COMPLEMENTARY),
@@ -110,6 +117,14 @@ export function gainMarginOf(crossings: readonly { factor: number }[]): GainMarg
 
 function delayMarginAt({ frequency, phaseMargin }: GainCrossing): number {
   return (phaseMargin < 0 ? phaseMargin + 2 * Math.PI : phaseMargin) / frequency;
+}
+
+/** The τ with L·cos(πτ/T) = −1, L being real at half the sampling frequency π/T. */
+function delayAtHighestFrequency({ parts }: FrequencySweep, period: number | undefined): number {
+  if (period === undefined) return Number.POSITIVE_INFINITY;
+  const [dr, di, nr, ni] = parts.subarray(parts.length - 4);
+  const inverse = (dr * nr + di * ni) / (nr * nr + ni * ni);
+  return Math.abs(inverse) <= 1 ? (period / Math.PI) * Math.acos(-inverse) : Number.POSITIVE_INFINITY;
 }
 
 function smallest<T>(items: readonly T[], of: (item: T) => number): number {

@@ -117,6 +117,14 @@ def climbed(s, low, high):
     return -found.fun, found.x
 
 
+def delay(above, gain, at_pi, period):
+    """Smallest delay at a crossing, or at half the sampling frequency, where cos(pi*delay/period) is left of the turn."""
+    found = [p % (2 * np.pi) / x * period for p, x in zip(above, gain)]
+    if abs(at_pi) >= 1:
+        found.append(np.arccos(-1 / at_pi) / np.pi * period)
+    return min(found) if found else None
+
+
 def margins(loop):
     a, b, c, d = (np.atleast_2d(np.array(loop[k], dtype=float)) for k in 'abcd')
     s = (a, b, c, d)
@@ -146,7 +154,7 @@ def margins(loop):
         'up': min(up) if up else None,
         'down': max(down) if down else 0,
         'phase': min(map(abs, above)) if above else None,
-        'delay': min(p % (2 * np.pi) / x * period for p, x in zip(above, gain)) if above else None,
+        'delay': delay(above, gain, response(s, np.pi).real, period),
         'crossovers': [x / period for x in gain],
         'sensitivity': sensitivity[0],
         'complementary': complementary[0],
