@@ -10,10 +10,16 @@ interface Spectrum {
   values: Complex[];
 }
 
+/** One eigenvalue at one frequency (rad/s). */
+export interface LocusPoint {
+  frequency: number;
+  value: Complex;
+}
+
 /** One eigenvalue at two neighbouring frequencies. */
 export interface LocusStep {
-  from: { frequency: number; value: Complex };
-  to: { frequency: number; value: Complex };
+  from: LocusPoint;
+  to: LocusPoint;
 }
 
 /** Neighbouring values of a locus differ by less than this share of their size, or are as near as the depth allows. */
@@ -59,7 +65,7 @@ export class GainLoci {
    * The frequency within a step at which a real function of the locus is zero; it has different signs at the ends. The bracket
    * is narrowed together with the values at its ends, so that what is followed stays the same locus where others are near.
    */
-  zeroWithin({ from, to }: LocusStep, of: (value: Complex) => number): { frequency: number; value: Complex } {
+  zeroWithin({ from, to }: LocusStep, of: (value: Complex) => number): LocusPoint {
     let [low, high] = [from, to];
     for (let round = 0; round < mostRounds; round++) {
       const [below, above] = [of(low.value), of(high.value)];
@@ -76,6 +82,14 @@ export class GainLoci {
       if (high.frequency - low.frequency <= narrowest * high.frequency) break;
     }
     return Math.abs(of(low.value)) < Math.abs(of(high.value)) ? low : high;
+  }
+
+  /** Where an eigenvalue is of size one. */
+  ofSizeOne(): LocusPoint[] {
+    const excess = ({ real, imaginary }: Complex): number => Math.hypot(real, imaginary) - 1;
+    return this.steps
+      .filter(({ from, to }) => excess(from.value) * excess(to.value) < 0)
+      .map((step) => this.zeroWithin(step, excess));
   }
 
   private spectrum(frequency: number): Spectrum {

@@ -2,30 +2,35 @@ import type { Complex } from './complex.js';
 import { prepareLevelFrequencies } from './level_frequencies.js';
 import type { Peak } from './peak.js';
 import { areStable, frequencyNear, polesOf } from './poles.js';
-import { type GainProbe, polished, provenPeak } from './proven_peak.js';
+import { type Band, type GainProbe, polished, provenPeak } from './proven_peak.js';
 import { rootBetween } from './root_finding.js';
 import { largestSingularValue } from './singular_value.js';
 import type { StateEquations } from './state_equations.js';
 import { prepareTransfer, type Transfer } from './transfer.js';
 
 /**
- * The largest gain over all frequencies, from any direction of the inputs to the outputs (the largest singular value of
- * the response), proved to a share of 1e-10. Inputs and outputs count in the units they have.
+ * The largest gain over frequency, from any direction of the inputs to the outputs (the largest singular value of the
+ * response), proved to a share of 1e-10. Inputs and outputs count in the units they have.
+ * @param within rad/s, both ends included; all frequencies unless given.
  * @returns Infinity for a system that is not stable.
  * @throws NumericFailure when an entry is not finite or a search meets its cap.
  */
-export function largestGain(system: StateEquations): Peak {
+export function largestGain(system: StateEquations, within?: Band): Peak {
   const { period } = system;
   const poles = polesOf(system.a, period);
   if (!areStable(poles, period)) return { value: Number.POSITIVE_INFINITY, frequency: undefined };
+  const highest = period === undefined ? Number.POSITIVE_INFINITY : Math.PI / period;
+  const band = within ?? { low: 0, high: highest };
   const probe = gainProbe(system);
-  const end = period === undefined ? Number.POSITIVE_INFINITY : Math.PI / period;
-  let start: Peak = { value: probe.gainAt(0), frequency: 0 };
-  for (const frequency of [...poles.flatMap((pole) => frequenciesNear(pole, period)), end]) {
-    const value = frequency === Number.POSITIVE_INFINITY ? feedthroughGain(system) : probe.gainAt(frequency);
-    if (value > start.value) start = { value, frequency };
-  }
-  const band = { low: 0, high: end };
+  const near = poles.flatMap((pole) => frequenciesNear(pole, period));
+  const inside = near.filter((frequency) => frequency > band.low && frequency < band.high);
+  const start = [band.low, ...inside, band.high]
+    .map((frequency) => ({
+      value: frequency === Number.POSITIVE_INFINITY ? feedthroughGain(system) : probe.gainAt(frequency),
+      frequency,
+    }))
+    .reduce((best, peak) => (peak.value > best.value ? peak : best));
+  if (band.low === band.high) return start;
   return polished(provenPeak(prepareLevelFrequencies(system), start, probe, band), probe, band);
 }
 

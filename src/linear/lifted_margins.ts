@@ -2,12 +2,15 @@ import type { Complex } from './complex.js';
 import { magnitude } from './complex.js';
 import { GainLoci } from './gain_loci.js';
 import { largestGain } from './largest_gain.js';
+import { smallestDelay } from './lifted_delay.js';
+import { liftedResponse, liftedSensitivity } from './lifted_response.js';
+import { BALANCED, COMPLEMENTARY } from './loop_response.js';
 import { type GainMargin, gainMarginOf } from './margins.js';
-import { add, identity, multiply, scale } from './matrix.js';
 import { modesOf } from './modes.js';
 import { polesOf, stabilityReserve } from './poles.js';
-import { solve } from './solve.js';
 import type { StateEquations } from './state_equations.js';
+
+export { liftedSensitivity } from './lifted_response.js';
 
 /** The margins of a loop whose signal changes several times in a cycle. As `LoopMargins`, an unstable loop has none. */
 export interface LiftedMargins {
@@ -17,6 +20,8 @@ export interface LiftedMargins {
   gainMargin: GainMargin;
   /** Smallest φ in rad for which e^{jφ} on every change of the signal brings the loop to the edge of stability. */
   phaseMargin: number;
+  /** Smallest delay in s of all changes of a signal that brings the loop to the edge of stability; see `smallestDelay`. */
+  delayMargin: number;
   /** 1/‖S‖∞: by how much the returned may differ from what it is, over energy, whatever changes at whatever instant. */
   modulusMargin: number;
   /** ‖S‖∞ with S = (I + L)⁻¹: the largest ratio of energies over all signals. */
@@ -42,17 +47,14 @@ export function liftedMargins(loop: StateEquations): LiftedMargins {
   const decayRate = modesOf(sensitivity.a, loop.period)[0]?.decayRate ?? Number.POSITIVE_INFINITY;
   if (!(stabilityReserve(poles, loop.period) > 0)) return { ...unstable, decayRate };
   const features = [...poles, ...polesOf(loop.a, loop.period)];
-  const one = identity(loop.b.columns);
   const loci = once(() => new GainLoci(sensitivity, features));
   const margins = {
     gainMargin: once(() => gainMarginOf(negativeCrossings(loci()))),
     phaseMargin: once(() => smallestPhase(loci())),
+    delayMargin: once(() => smallestDelay(loop, loci())),
     sensitivityPeak: once(() => largestGain(sensitivity).value),
-    complementaryPeak: once(() => {
-      const complementary = { c: scale(sensitivity.c, -1), d: add(one, sensitivity.d, -1) };
-      return largestGain({ ...sensitivity, ...complementary }).value;
-    }),
-    discMargin: once(() => 1 / largestGain({ ...sensitivity, d: add(sensitivity.d, one, -0.5) }).value),
+    complementaryPeak: once(() => largestGain(liftedResponse(loop, COMPLEMENTARY)).value),
+    discMargin: once(() => 1 / largestGain(liftedResponse(loop, BALANCED)).value),
   };
   return {
     stable: true,
@@ -62,6 +64,9 @@ export function liftedMargins(loop: StateEquations): LiftedMargins {
     },
     get phaseMargin() {
       return margins.phaseMargin();
+    },
+    get delayMargin() {
+      return margins.delayMargin();
     },
     get modulusMargin() {
       return 1 / margins.sensitivityPeak();
@@ -91,28 +96,12 @@ const unstable = {
   stable: false,
   gainMargin: { up: 1, down: 1, ratio: 1 },
   phaseMargin: 0,
+  delayMargin: 0,
   modulusMargin: 0,
   sensitivityPeak: Number.POSITIVE_INFINITY,
   complementaryPeak: Number.POSITIVE_INFINITY,
   discMargin: 0,
 };
-
-/**
- * (I + L)⁻¹ = I − (I + L)⁻¹·L in state equations, of a lifted L.
- * @throws NumericFailure when the loop cannot be closed.
- */
-export function liftedSensitivity(loop: StateEquations): StateEquations {
-  const { a, b, c, d, period } = loop;
-  const closing = solve(add(identity(d.rows), d), identity(d.rows));
-  const entered = multiply(b, closing);
-  return {
-    a: add(a, multiply(entered, c), -1),
-    b: entered,
-    c: scale(multiply(closing, c), -1),
-    d: closing,
-    period,
-  };
-}
 
 /** Beyond this gain, or below one over it, the sign of a small part is rounding and nothing counts as a crossing. */
 const largestCounted = 1e8;
@@ -136,12 +125,8 @@ function counted(value: Complex): { factor: number }[] {
 }
 
 function smallestPhase(loci: GainLoci): number {
-  const excess = (value: Complex): number => magnitude(value) - 1;
-  let least = Number.POSITIVE_INFINITY;
-  for (const step of loci.steps) {
-    if (!(excess(step.from.value) * excess(step.to.value) < 0)) continue;
-    const { real, imaginary } = loci.zeroWithin(step, excess).value;
-    least = Math.min(least, Math.abs(Math.atan2(-imaginary, -real)));
-  }
-  return least;
+  const phases = loci
+    .ofSizeOne()
+    .map(({ value: { real, imaginary } }) => Math.abs(Math.atan2(-imaginary, -real)));
+  return Math.min(Number.POSITIVE_INFINITY, ...phases);
 }

@@ -17,7 +17,7 @@ export interface Mode {
 /** The modes of a state matrix, slowest decay first. @param period sampling period in s, or undefined when continuous. */
 export function modesOf(a: Matrix, period: number | undefined): Mode[] {
   return polesOf(a, period)
-    .map((pole) => modeOf(period === undefined ? pole : logarithm(pole, period)))
+    .map((pole) => modeOf(period === undefined ? pole : exponentOf(pole, period)))
     .sort((one, other) => one.decayRate - other.decayRate);
 }
 
@@ -42,14 +42,19 @@ export function closedLoopDecay(loop: StateEquations): ClosedLoopDecay {
 }
 
 function modeOf(pole: Complex): Mode {
-  const { real, imaginary } = pole;
-  const size = Math.hypot(real, imaginary);
-  const dampingRatio = size === 0 ? 0 : size === Number.POSITIVE_INFINITY ? 1 : -real / size;
-  return { pole, decayRate: -real, dampingRatio };
+  return { pole, decayRate: -pole.real, dampingRatio: dampingRatioOf(pole) };
 }
 
-/** ln(1 + x)/T for complex x, without loss of digits for small x. */
-function logarithm({ real, imaginary }: Complex, period: number): Complex {
+/** −Re s/|s|. */
+export function dampingRatioOf({ real, imaginary }: Complex): number {
+  const size = Math.hypot(real, imaginary);
+  return size === 0 ? 0 : size === Number.POSITIVE_INFINITY ? 1 : -real / size;
+}
+
+/**
+ * s = ln(z)/T, in 1/s and rad/s, with the angle of z in (−π, π]. @param pole z − 1: slow motions keep their digits.
+ */
+export function exponentOf({ real, imaginary }: Complex, period: number): Complex {
   return {
     real: Math.log1p(Math.max(-1, 2 * real + real * real + imaginary * imaginary)) / (2 * period),
     imaginary: Math.atan2(imaginary, 1 + real) / period,

@@ -1,7 +1,7 @@
 import { rateDimension } from '../spec/dimension.js';
 import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
-import { ofSingleRate, ofStableLoop } from './stable_loop.js';
+import { ofStableLoop } from './stable_loop.js';
 
 /** Up to which frequency the closed loop follows. */
 export const bandwidth: LoopMeasure = {
@@ -16,7 +16,7 @@ export const bandwidth: LoopMeasure = {
     window: undefined,
     takesHertz: true,
     meaning:
-      'first frequency at which |L/(1 + L)| falls to 1/√2 of its value at zero frequency; rad/s or Hz; infinite where it never does up to half the sampling frequency, 0 when the closed loop is unstable',
+      'first frequency at which |L/(1 + L)| falls to 1/√2 of its value at zero frequency (of several rates: the part of L(I + L)⁻¹ that has the frequency of the sine put in); rad/s or Hz; infinite where it never does up to half the sampling frequency, 0 when the closed loop is unstable',
   },
-  measure: ({ loop }) => ofStableLoop(loop, 0, () => ofSingleRate(loop, () => measured(loop.bandwidth()))),
+  measure: ({ loop }) => ofStableLoop(loop, 0, () => measured(loop.bandwidth())),
 };

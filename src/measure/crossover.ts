@@ -1,7 +1,6 @@
 import { rateDimension } from '../spec/dimension.js';
 import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
-import { ofSingleRate } from './stable_loop.js';
 
 /** The highest frequency at which the loop gain is one. */
 export const crossover: LoopMeasure = {
@@ -15,8 +14,8 @@ export const crossover: LoopMeasure = {
     least: 0,
     window: undefined,
     takesHertz: true,
-    meaning: 'highest frequency with |L| = 1; rad/s or Hz; 0 without one',
+    meaning:
+      'highest frequency with |L| = 1 (of several rates: L as it is seen at one frequency of the closed loop, 1/S − 1 with S the part of the signal that has the frequency of a sine added to it); rad/s or Hz; 0 without one',
   },
-  measure: ({ loop }) =>
-    ofSingleRate(loop, () => measured(loop.margins().gainCrossings.at(-1)?.frequency ?? 0)),
+  measure: ({ loop }) => measured(loop.crossovers().at(-1) ?? 0),
 };

@@ -2,9 +2,9 @@ import { smallestCommonDelay } from '../linear/common_delay.js';
 import { timeDimension } from '../spec/dimension.js';
 import { loopPointsKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
-import { ofSingleRate, ofStableLoop } from './stable_loop.js';
+import { ofStableLoop } from './stable_loop.js';
 
-/** The delay (s) that brings the loop to the edge of stability: the smallest phase/ω over all gain crossovers. */
+/** The delay (s) that brings the loop to the edge of stability. */
 export const delayMargin: LoopMeasure = {
   description: {
     name: 'delay_margin',
@@ -16,12 +16,12 @@ export const delayMargin: LoopMeasure = {
     least: 0,
     window: undefined,
     meaning:
-      'smallest (π + arg L)/ω, counted from 0 to 2π, over all frequencies with |L| = 1 (of several signals, each of which must change once in a cycle of all controllers: with the same delay on all at once, arg L and |L| those of an eigenvalue of the matrix L); s; infinite without a crossover, 0 when the closed loop is unstable',
+      'smallest delay τ that brings the loop to the edge of stability: the smallest (π + arg L)/ω, counted from 0 to 2π, over all frequencies with |L| = 1, and where |L| ≥ 1 at half the sampling frequency π/T the τ with L·cos(πτ/T) = −1 there (of several rates: the smallest τ for which e^{−jωτ} on each frequency of the cycle gives the lifted L the eigenvalue −1) (of several signals, each of which must change once in a cycle of all controllers: with the same delay on all at once, arg L and |L| those of an eigenvalue of the matrix L); s; infinite without a crossover, 0 when the closed loop is unstable',
   },
   measure: ({ loop }) =>
     ofStableLoop(loop, 0, () =>
       loop.periods.length > 1
         ? measured(smallestCommonDelay(loop.equations, loop.periods.length))
-        : ofSingleRate(loop, () => measured(loop.margins().delayMargin)),
+        : measured(loop.delayMargin()),
     ),
 };

@@ -3,7 +3,7 @@ import { plainNumber } from '../spec/dimension.js';
 import { frequencyRangeKeys, loopPointKey } from './keys.js';
 import type { LoopView } from './loop_view.js';
 import { type LoopContext, type LoopMeasure, type MeasureResult, measured, unformed } from './measure.js';
-import { ofSingleRate, ofStableLoop } from './stable_loop.js';
+import { ofStableLoop } from './stable_loop.js';
 
 /** What one measure of the size of a response over a range of frequencies has of its own. */
 interface SizeOverRange {
@@ -30,7 +30,7 @@ export function sizeOverRange({ name, response, which, meaning }: SizeOverRange)
     },
     // A response of the closed loop has no size where that is unstable; the loop itself has.
     measure: ({ loop, quantity }) => {
-      const extreme = () => ofSingleRate(loop, () => extremeOverRange(loop, response, which, quantity));
+      const extreme = () => extremeOverRange(loop, response, which, quantity);
       return response.open ? extreme() : ofStableLoop(loop, Number.POSITIVE_INFINITY, extreme);
     },
   };

@@ -1,7 +1,6 @@
 import { plainNumber } from '../spec/dimension.js';
 import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
-import { ofSingleRate } from './stable_loop.js';
 
 /** The phase that holding the actuator between samples costs at the crossover. */
 export const holdPhaseLoss: LoopMeasure = {
@@ -15,10 +14,7 @@ export const holdPhaseLoss: LoopMeasure = {
     least: 0,
     window: undefined,
     meaning:
-      'ω·T/2 at the highest frequency ω with |L| = 1, T being the sampling period at the loop point; an angle; 0 without a crossover',
+      'ω·T/2 at the `crossover` ω, T being the time between two changes of the signal at the loop point; an angle; 0 without a crossover',
   },
-  measure: ({ loop }) =>
-    ofSingleRate(loop, () =>
-      measured(((loop.margins().gainCrossings.at(-1)?.frequency ?? 0) * loop.period) / 2),
-    ),
+  measure: ({ loop }) => measured(((loop.crossovers().at(-1) ?? 0) * loop.period) / 2),
 };

@@ -7,5 +7,5 @@ export const largestFollowingGain = sizeOverRange({
   response: COMPLEMENTARY,
   which: 'largest',
   meaning:
-    'max |L/(1 + L)| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB; infinite when the closed loop is unstable',
+    'max |L/(1 + L)| from `from_frequency` to `to_frequency`, or at `frequency` (of several rates: root-mean-square of all that returns of a sine added to the signal, at whatever frequencies, over that of the sine); a ratio or dB; infinite when the closed loop is unstable',
 });

@@ -6,5 +6,6 @@ export const largestLoopGain = sizeOverRange({
   name: 'largest_loop_gain',
   response: LOOP_GAIN,
   which: 'largest',
-  meaning: 'max |L| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB',
+  meaning:
+    'max |L| from `from_frequency` to `to_frequency`, or at `frequency` (of several rates: L as for `crossover`); a ratio or dB',
 });

@@ -1,7 +1,6 @@
 import { plainNumber } from '../spec/dimension.js';
 import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
-import { ofSingleRate } from './stable_loop.js';
 
 /** The damping ratio of the least damped mode of the closed loop. */
 export const leastDamping: LoopMeasure = {
@@ -15,7 +14,7 @@ export const leastDamping: LoopMeasure = {
     most: 1,
     window: undefined,
     meaning:
-      'least −Re s/|s| over the modes of the closed loop, s = ln(z)/T; a plain number from 1 (no oscillation) to 0; negative when unstable',
+      'least −Re s/|s| over the modes of the closed loop, s = ln(z)/T (of several rates: z over a cycle, ω = Im s that of the sine which is strongest in the signal); a plain number from 1 (no oscillation) to 0; negative when unstable',
   },
-  measure: ({ loop }) => ofSingleRate(loop, () => measured(loop.closedLoopDecay().dampingRatio)),
+  measure: ({ loop }) => measured(loop.leastDamping()),
 };

@@ -1,7 +1,6 @@
 import { rateDimension } from '../spec/dimension.js';
 import { loopPointKey } from './keys.js';
 import { type LoopMeasure, measured } from './measure.js';
-import { ofSingleRate } from './stable_loop.js';
 
 /** The lowest frequency at which the loop gain is one. */
 export const lowestCrossover: LoopMeasure = {
@@ -15,7 +14,8 @@ export const lowestCrossover: LoopMeasure = {
     least: 0,
     window: undefined,
     takesHertz: true,
-    meaning: 'lowest frequency with |L| = 1; rad/s or Hz; 0 without one',
+    meaning:
+      'lowest frequency with |L| = 1 (of several rates: L as for `crossover`); rad/s or Hz; 0 without one',
   },
-  measure: ({ loop }) => ofSingleRate(loop, () => measured(loop.margins().gainCrossings[0]?.frequency ?? 0)),
+  measure: ({ loop }) => measured(loop.crossovers()[0] ?? 0),
 };

@@ -6,5 +6,6 @@ export const smallestLoopGain = sizeOverRange({
   name: 'smallest_loop_gain',
   response: LOOP_GAIN,
   which: 'smallest',
-  meaning: 'min |L| from `from_frequency` to `to_frequency`, or at `frequency`; a ratio or dB',
+  meaning:
+    'min |L| from `from_frequency` to `to_frequency`, or at `frequency` (of several rates: L as for `crossover`); a ratio or dB',
 });

@@ -4,30 +4,10 @@ import { complexEigenvalues } from '../../src/linear/complex_eigenvalues.js';
 import { discMarginOfLoop } from '../../src/linear/disc_margin.js';
 import { liftedMargins } from '../../src/linear/lifted_margins.js';
 import { marginsOfLoop } from '../../src/linear/margins.js';
-import { add, identity, multiply, place, zeros } from '../../src/linear/matrix.js';
+import { add, identity } from '../../src/linear/matrix.js';
 import { closedLoopDecay } from '../../src/linear/modes.js';
 import type { StateEquations } from '../../src/linear/state_equations.js';
-import { loopOf, randomLoop, repeatable, systemOf } from './loops.js';
-
-/** The same loop seen over a cycle of so many samples: one input and one output for each. */
-function lifted(loop: StateEquations, samples: number): StateEquations {
-  const n = loop.a.rows;
-  let a = identity(n);
-  const b = zeros(n, samples);
-  const c = zeros(samples, n);
-  const d = zeros(samples, samples);
-  for (let i = 0; i < samples; i++) {
-    place(c, multiply(loop.c, a), i, 0);
-    // What earlier inputs have left in the states by sample i.
-    place(d, multiply(loop.c, b), i, 0);
-    d.data[i * samples + i] = loop.d.data[0];
-    const moved = multiply(loop.a, b);
-    place(b, moved, 0, 0);
-    place(b, loop.b, 0, i);
-    a = multiply(loop.a, a);
-  }
-  return { a, b, c, d, period: samples * loop.period! };
-}
+import { lifted, loopOf, randomLoop, repeatable, systemOf } from './loops.js';
 
 describe('a loop of one rate seen over a longer cycle', () => {
   // Lifting keeps norms, and the eigenvalues of the lifted response are the responses at the frequencies that fold onto one

@@ -78,6 +78,37 @@ export function times(system: StateEquations, factor: number): StateEquations {
   return { ...system, c: scale(system.c, factor), d: scale(system.d, factor) };
 }
 
+/** The same loop seen over a cycle of so many samples: one input and one output for each. */
+export function lifted(loop: StateEquations, samples: number): StateEquations {
+  const n = loop.a.rows;
+  let a = identity(n);
+  const b = zeros(n, samples);
+  const c = zeros(samples, n);
+  const d = zeros(samples, samples);
+  for (let i = 0; i < samples; i++) {
+    place(c, multiply(loop.c, a), i, 0);
+    // What earlier inputs have left in the states by sample i.
+    place(d, multiply(loop.c, b), i, 0);
+    d.data[i * samples + i] = loop.d.data[0];
+    const moved = multiply(loop.a, b);
+    place(b, moved, 0, 0);
+    place(b, loop.b, 0, i);
+    a = multiply(loop.a, a);
+  }
+  return { a, b, c, d, period: samples * loop.period! };
+}
+
+/** A random loop of the given order over a cycle of so many samples, its gain another one at each: from 0.3 to 1.7 times. */
+export function alternating(order: number, samples: number, random: () => number): StateEquations {
+  const loop = lifted(randomLoop(order, random), samples);
+  const gains = Array.from({ length: samples }, () => 0.3 + 1.4 * random());
+  const scaled = (matrix: Matrix): Matrix => ({
+    ...matrix,
+    data: matrix.data.map((entry, at) => entry * gains[at % samples]),
+  });
+  return { ...loop, b: scaled(loop.b), d: scaled(loop.d) };
+}
+
 /** State equations from plain rows. */
 export function systemOf(
   a: number[][],
