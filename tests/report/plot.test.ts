@@ -337,27 +337,41 @@ describe('gainDrawing', () => {
 
 describe('fenceLines', () => {
   const box = { left: 0, right: 400, top: 0, bottom: 300 };
-  const feet = (heights: number[]): number[] =>
+  const names = (lines: { from: [number, number]; to: [number, number] }[]) =>
     fenceLines(
-      heights.map((height, at) => ({
-        requirement: `R${at}`,
-        from: [0, height],
-        to: [400, height],
-        forbidden: 'above',
-      })),
+      lines.map((line, at) => ({ requirement: `R${at}`, ...line, forbidden: 'above' })),
       box,
-    ).map(({ text }) => Number(text.match(/<text[^>]* y="([-\d.]+)"/)![1]));
+    ).map(({ text }) => {
+      const [, anchor, x, y] = text.match(
+        /<text class="fence-name" text-anchor="(\w+)" x="([-\d.]+)" y="([-\d.]+)"/,
+      )!;
+      return { anchor, x: Number(x), foot: Number(y) };
+    });
+  const across = (height: number): { from: [number, number]; to: [number, number] } => ({
+    from: [0, height],
+    to: [400, height],
+  });
 
-  it('name each line on its broken side, and never over another name or line', () => {
-    expect(feet([100])).toEqual([92]);
+  it('name each line at its end on its broken side', () => {
+    expect(names([across(100)])).toEqual([{ anchor: 'end', x: 400, foot: 92 }]);
+  });
+
+  it('name a line at its start where its end is crowded', () => {
+    const crowded = [across(100), { from: [150, 106], to: [400, 106] }, { from: [300, 112], to: [400, 112] }];
+    const [, between] = names(crowded as ReturnType<typeof across>[]);
+    expect(between).toEqual({ anchor: 'start', x: 154, foot: 120 });
+  });
+
+  it('never put a name over another name or line', () => {
     fc.assert(
       fc.property(fc.array(fc.integer({ min: 20, max: 200 }), { minLength: 1, maxLength: 4 }), (heights) => {
-        const all = feet(heights);
-        all.forEach((foot, at) => {
-          for (const other of all.filter((_, i) => i !== at))
-            expect(Math.abs(other - foot)).toBeGreaterThan(12);
-          const lines = heights.filter((height) => Math.abs(height - heights[at]) > 1);
-          for (const line of lines) expect(line < foot - 10 || line > foot + 3).toBe(true);
+        const all = names(heights.map(across));
+        all.forEach(({ anchor, foot }, at) => {
+          for (const [i, other] of all.entries()) {
+            if (i !== at && other.anchor === anchor) expect(Math.abs(other.foot - foot)).toBeGreaterThan(12);
+          }
+          const lines = heights.filter((_, i) => i !== at);
+          for (const line of lines) expect(line <= foot - 11 || line >= foot + 4).toBe(true);
         });
       }),
       { seed: 54, numRuns: 200 },
