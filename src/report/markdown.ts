@@ -67,7 +67,7 @@ function specPart(spec: SpecRun): string {
     claimsInWords(spec)
       .map(({ names, claim }) => `- ${said(names.join(', '), 120)}: ${said(claim, 300)}`)
       .join('\n'),
-    merge === undefined ? '' : `Merge: ${said(merge, 300)}.`,
+    merge === undefined ? '' : `Merge: ${said(merge, 800)}.`,
     movedButMet(spec),
     improvements === undefined ? '' : said(improvements, 300),
     `${said(spec.file, 120)}, ${image}, ${counted(plantsTried(spec), 'plant')} tried, seed ${spec.seed}, judged in ${formatNumber(spec.seconds, 3)} s`,

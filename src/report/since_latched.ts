@@ -1,11 +1,12 @@
-import type {
-  CoefficientChange,
-  CoefficientRead,
-  ComparedResult,
-  Comparison,
-  LossShare,
-  RequirementRun,
-  SpecRun,
+import {
+  type CoefficientChange,
+  type CoefficientRead,
+  type ComparedResult,
+  type Comparison,
+  type LossShare,
+  letsMergeThrough,
+  type RequirementRun,
+  type SpecRun,
 } from '../verdict/run.js';
 import { storedNumber } from './coefficient_table.js';
 import {
@@ -20,6 +21,8 @@ import {
 import { oneLine, shortened } from './plain_text.js';
 import { limitNumbers, measureName } from './requirement_in_words.js';
 
+/** More changed coefficients are counted, not listed. */
+const mostChanges = 8;
 /** More numbers of one array are counted, not listed. */
 const mostElements = 4;
 /** Smaller changes of headroom than this are not worth a line: a tenth of a point. */
@@ -31,15 +34,19 @@ const leastShare = 0.1;
 export function mergeInWords({
   merge,
   sinceLatched,
-}: Pick<SpecRun, 'merge' | 'sinceLatched'>): string | undefined {
+  coefficients: read,
+}: Pick<SpecRun, 'merge' | 'sinceLatched' | 'coefficients'>): string | undefined {
   if (!sinceLatched) return merge;
   const { path, reference, coefficients, spec, law } = sinceLatched;
   if (!reference) {
     const lawToo = law.length > 0 ? '; the control law needs one' : '';
     return `there is no latched reference ${oneLine(path)} yet, so nothing is compared${lawToo}: pawl latch writes it`;
   }
-  const changes = [...coefficients.map(({ name }) => name), ...spec, ...law].map((text) => oneLine(text));
-  const since = changes.length === 0 ? 'nothing changed' : `changed since: ${changes.join(', ')}`;
+  const numbers = coefficients.slice(0, mostChanges).map((change) => changeInWords(change, read));
+  const left = coefficients.length - numbers.length;
+  if (left > 0) numbers.push(`${left} more coefficients`);
+  const changes = [...numbers, ...[...spec, ...law].map((text) => oneLine(text))];
+  const since = changes.length === 0 ? 'nothing changed' : `changed since: ${changes.join('; ')}`;
   return `compared with the latched reference ${oneLine(path)} (${shortened(oneLine(reference.reason), 120)}); ${since}`;
 }
 
@@ -111,6 +118,7 @@ export function comparisonInWords(requirement: RequirementRun): string | undefin
   if (!rerun) return `${measureName(measure)}: latched ${short(latched, requirement)}; ${oneLine(why ?? '')}`;
   const blocks = verdict.kind === 'slipped' || verdict.kind === 'broken';
   if (!blocks && !moved(latched, rerun) && !moved(rerun, today)) return undefined;
+  if (!blocks && !isSeen(requirement, latched, rerun, today)) return undefined;
   if (!moved(latched, rerun) && !moved(rerun, today)) {
     const own =
       fromSpec.length === 0
@@ -131,8 +139,12 @@ export function headroomChange({ comparison }: Pick<RequirementRun, 'comparison'
   return `${lost > 0 ? 'lost' : 'gained'} ${formatNumber(Math.abs(lost) * 100, 3)} points of headroom`;
 }
 
-/** Requirements whose headroom grew by more than a change may cost: their reference can be tightened. */
+/**
+ * Requirements whose headroom grew by more than a change may cost: their reference can be tightened. Nothing is said where a
+ * requirement is broken or unjudged, for then there is no more to keep than the mistake.
+ */
 export function improvementsInWords({ requirements }: Pick<SpecRun, 'requirements'>): string | undefined {
+  if (requirements.some((one) => !letsMergeThrough(one) && one.verdict.kind !== 'slipped')) return undefined;
   const gained = requirements.filter(({ comparison }) => {
     return comparison?.lost !== undefined && comparison.lost < -comparison.maySlip;
   });
@@ -166,13 +178,17 @@ function step(from: ComparedResult, to: ComparedResult, written: WrittenUnit): s
   if (from.result.kind === 'value' && to.result.kind === 'value') {
     if (from.result.value === to.result.value || isRounding(from, to)) return 'nothing';
     const change = inWrittenUnit(to.result.value, written) - inWrittenUnit(from.result.value, written);
-    const unit = unitText(written);
-    if (Number.isFinite(change)) {
-      return `${change > 0 ? '+' : ''}${formatNumber(change, 3)}${unit === '' ? '' : ` ${unit}`}`;
-    }
+    if (Number.isFinite(change))
+      return `${change > 0 ? '+' : ''}${formatNumber(change, 3)}${unitOfChange(written)}`;
   }
   if (from.result.kind !== 'value' && to.result.kind !== 'value') return 'nothing';
   return `${plain(from, written)} → ${plain(to, written)}`;
+}
+
+/** The difference of two shares is no share of anything: "+27.9 percentage points". */
+function unitOfChange(written: WrittenUnit): string {
+  const unit = unitText(written);
+  return unit === '%' ? ' percentage points' : unit === '' ? '' : ` ${unit}`;
 }
 
 function plain({ result }: ComparedResult, written: WrittenUnit): string {
@@ -181,6 +197,11 @@ function plain({ result }: ComparedResult, written: WrittenUnit): string {
 
 function short({ result }: ComparedResult, requirement: RequirementRun): string {
   return oneLine(formatResultShort(result, requirement, limitNumbers(requirement.limit)));
+}
+
+/** Whether any of the results that would be printed looks different from another one. */
+function isSeen(requirement: RequirementRun, ...results: readonly ComparedResult[]): boolean {
+  return new Set(results.map((one) => short(one, requirement))).size > 1;
 }
 
 /** Whether two results differ by less than a hundredth of a point of headroom: other plants were searched, nothing changed. */

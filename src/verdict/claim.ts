@@ -12,6 +12,8 @@ export function claimOf(
   const plants = `${tried.toLocaleString('en')} independent plants`;
   const found =
     failed === 0 ? `in ${plants} none failed` : `${failed.toLocaleString('en')} of ${plants} failed`;
+  // Where all failed, nothing more can be said of the others.
+  if (bound >= 1) return found;
   return `${found}: with ${percent(confidence)} confidence fewer than ${percent(bound)} do`;
 }
 

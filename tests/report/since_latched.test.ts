@@ -40,6 +40,24 @@ describe('a requirement against the reference', () => {
     expect(comparisonInWords(requirement())).toBeUndefined();
   });
 
+  it('calls the difference of two shares what it is', () => {
+    const share = (of: number): ComparedResult => ({ result: value(of), headroom: 1 - of });
+    const changes = { latched: share(0.02), rerun: share(0.02), today: share(0.3), lost: 0.28 };
+    const words = comparisonInWords({
+      ...margin({ ...changes, fromSpec: [] }),
+      ...{ measure: 'overshoot', unit: units.percent, limit: { at_most: 1 } },
+    });
+    expect(words).toBe(
+      'overshoot 2 % → 30 %: +28 percentage points from the firmware, nothing from the spec',
+    );
+  });
+
+  it('is silent of a change that no printed digit shows', () => {
+    const changes = { latched: degrees(44, 1), rerun: degrees(44, 1), today: degrees(44.000001, 1), lost: 0 };
+    expect(comparisonInWords(margin(changes, 'met'))).toBeUndefined();
+    expect(comparisonInWords(margin(changes, 'slipped'))).toBeDefined();
+  });
+
   it('subtracts decibels as decibels', () => {
     const gain = (ratio: number): ComparedResult => ({ result: value(ratio), headroom: 0.5 - ratio / 100 });
     const words = comparisonInWords({
@@ -124,20 +142,20 @@ describe('a changed coefficient', () => {
 describe('the merge section', () => {
   it('says what was compared, and what changed', () => {
     expect(mergeInWords(run())).toBe(
-      'compared with the latched reference reference/latched/heliostat.json (the first release); changed since: kd, notch, kp, the bounds of friction',
+      'compared with the latched reference reference/latched/heliostat.json (the first release); changed since: kd 0.3 → 0.21 s; notch[1] -0.25 → -0.5; kp 2 → 2.5; the bounds of friction',
     );
     const nothing = { ...run().sinceLatched!, coefficients: [], spec: [] };
-    expect(mergeInWords({ merge: undefined, sinceLatched: nothing })).toMatch(
+    expect(mergeInWords({ ...run(), sinceLatched: nothing })).toMatch(
       /\(the first release\); nothing changed$/,
     );
   });
 
   it('says that there is no reference, and that a law needs one', () => {
     const none = { ...run().sinceLatched!, reference: undefined, coefficients: [], spec: [] };
-    expect(mergeInWords({ merge: undefined, sinceLatched: none })).toMatch(
+    expect(mergeInWords({ ...run(), sinceLatched: none })).toMatch(
       /^there is no latched reference reference\/latched\/heliostat\.json yet, so nothing is compared: pawl latch/,
     );
-    expect(mergeInWords({ merge: undefined, sinceLatched: { ...none, law: ['x'] } })).toContain(
+    expect(mergeInWords({ ...run(), sinceLatched: { ...none, law: ['x'] } })).toContain(
       'the control law needs one',
     );
   });
@@ -148,6 +166,14 @@ describe('the merge section', () => {
       'AZ-5 gained 12 points of headroom: pawl latch keeps what was gained',
     );
     expect(improvementsInWords({ requirements: [margin({ lost: -0.05 }, 'met')] })).toBeUndefined();
+    expect(improvementsInWords({ requirements: [gained, margin()] })).toContain('AZ-5 gained');
+    for (const verdict of [
+      { kind: 'broken', headroom: -0.1, why: 'w' },
+      { kind: 'unjudged', why: 'w' },
+    ] as const) {
+      // Nothing can be latched, so that nothing is to be kept.
+      expect(improvementsInWords({ requirements: [gained, requirement({ verdict })] })).toBeUndefined();
+    }
   });
 });
 

@@ -21,6 +21,10 @@ describe('what may be claimed, in words', () => {
     expect(claimOf(independent(9, 0, 'w'), 0.95)).toMatch(/^1 of 10 independent plants failed/);
   });
 
+  it('says no more than what was found where every plant failed', () => {
+    expect(claimOf(independent(0, 4), 0.95)).toBe('4 of 4 independent plants failed');
+  });
+
   it('claims nothing without independent plants', () => {
     expect(claimOf(independent(0, 0), 0.95)).toBeUndefined();
   });
