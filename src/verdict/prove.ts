@@ -1,5 +1,4 @@
 import type { CoefficientValues } from '../loop/parts.js';
-import { LoopPoint } from '../measure/loop_point.js';
 import type { ParameterSpace } from '../perturb/parameter_space.js';
 import { LoopFamily } from '../perturb/proof/loop_family.js';
 import type { LoopClaim } from '../perturb/proof/margin_statement.js';
@@ -48,7 +47,7 @@ export function proofOf(
     return space.allows(plant) && breaks(plant);
   };
   try {
-    return proveFamily(new LoopFamily(new LoopPoint(spec, coefficients, requirement), space), claim, {
+    return proveFamily(new LoopFamily(spec, coefficients, requirement, space), claim, {
       nominal: space.free.map((i) => space.nominal[i]),
       failsAt,
       plantAt,

@@ -11,6 +11,7 @@ export type SlopeLeaves = (leaf: LeafKind, index: number) => Slope;
 /** Evaluates expressions of the loop over a box; quanta and number formats count as gain one, as in all linear analysis. */
 export class SlopeEvaluation {
   private readonly known = new Map<Node, Slope>();
+  private readonly failed = new Map<Node, Unprovable>();
 
   constructor(
     readonly field: SlopeField,
@@ -21,9 +22,16 @@ export class SlopeEvaluation {
   of(node: Node): Slope {
     const found = this.known.get(node);
     if (found) return found;
-    const value = this.fresh(node);
-    this.known.set(node, value);
-    return value;
+    const failure = this.failed.get(node);
+    if (failure) throw failure;
+    try {
+      const value = this.fresh(node);
+      this.known.set(node, value);
+      return value;
+    } catch (error) {
+      if (error instanceof Unprovable) this.failed.set(node, error);
+      throw error;
+    }
   }
 
   private fresh(node: Node): Slope {
@@ -41,7 +49,7 @@ export class SlopeEvaluation {
       case 'subtract':
         return field.subtract(at(0), at(1));
       case 'multiply':
-        return field.multiply(at(0), at(1));
+        return this.product(of[0], of[1]);
       case 'divide':
         return field.divide(at(0), at(1));
       case 'negate':
@@ -64,6 +72,22 @@ export class SlopeEvaluation {
         return at(0);
       default:
         return this.call(name, at(0));
+    }
+  }
+
+  /** What is not known may be multiplied by nothing: as of two conditions one that does not hold and one that may. */
+  private product(left: Node, right: Node): Slope {
+    const known = [left, right].map((node) => this.knownOf(node));
+    const nothing = known.find((value) => value && isNothing(value));
+    return nothing ?? this.field.multiply(known[0] ?? this.of(left), known[1] ?? this.of(right));
+  }
+
+  private knownOf(node: Node): Slope | undefined {
+    try {
+      return this.of(node);
+    } catch (error) {
+      if (error instanceof Unprovable) return undefined;
+      throw error;
     }
   }
 

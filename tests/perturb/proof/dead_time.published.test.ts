@@ -1,7 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { PlantEvaluator } from '../../../src/measure/evaluate_plant.js';
-import { LoopPoint } from '../../../src/measure/loop_point.js';
 import { ParameterSpace } from '../../../src/perturb/parameter_space.js';
 import { LoopFamily } from '../../../src/perturb/proof/loop_family.js';
 import { proveClaim } from '../../../src/perturb/proof/prove_claim.js';
@@ -76,7 +75,9 @@ describe('an integrator with a dead time between bounds', () => {
         const atLeast = 10 + 70 * x;
         const spec = loopOf(gain, late, `measure: phase_margin, at_least: ${atLeast} deg`);
         const family = new LoopFamily(
-          new LoopPoint(spec, new Map(), spec.requirements[0]),
+          spec,
+          new Map(),
+          spec.requirements[0],
           new ParameterSpace(spec.parameters),
         );
         const fails = failuresOf(spec);

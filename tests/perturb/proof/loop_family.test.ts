@@ -35,6 +35,15 @@ const clockError: Change[] = [
   ['every: 2 ms', 'every: (2 ms)*(1 + clock)'],
 ];
 
+const restingAt = (value: string): Change => [
+  'goal: { unit: rad/s }',
+  `goal: { unit: rad/s, rest: ${value} }`,
+];
+const drivenWithin = (most: string): Change => [
+  'of: command, unit: V',
+  `of: command, range: [-${most}, ${most}], unit: V`,
+];
+
 function polynomialsOf(family: LoopFamily, box: Interval[]): LoopPolynomials[] {
   const loops = family.polynomials(new SlopeField(box));
   if ('cut' in loops) throw new Error('the box is too wide for one look');
@@ -55,6 +64,10 @@ function holds(over: SlopeLoop, one: StateEquations): boolean {
     over.c.every((entry, i) => between(entry, one.c.data[i])) &&
     between(over.d, one.d.data[0])
   );
+}
+
+function familyOf(spec: Spec): LoopFamily {
+  return new LoopFamily(spec, new Map(), spec.requirements[1], new ParameterSpace(spec.parameters));
 }
 
 const share = fc.double({ min: 0, max: 1, noNaN: true });
@@ -107,7 +120,7 @@ describe('the loop of all plants of a box', () => {
 
   it('has one order of deliveries after another where a dead time moves over sampling instants', () => {
     const spec = motorWith(...movingDeadTime);
-    const family = new LoopFamily(pointOf(spec), new ParameterSpace(spec.parameters));
+    const family = familyOf(spec);
     const [[low], ...others] = family.box;
     const statesOver = (box: Interval): number[] => {
       const loops = family.polynomials(new SlopeField([box, ...others]));
@@ -123,7 +136,7 @@ describe('the loop of all plants of a box', () => {
 
   it('is as narrow as its box', () => {
     const spec = motorWith();
-    const family = new LoopFamily(pointOf(spec), new ParameterSpace(spec.parameters));
+    const family = familyOf(spec);
     const width = (size: number): number => {
       const box = family.box.map(([low, high]): Interval => [low, low + size * (high - low)]);
       const [{ denominator, numerator }] = polynomialsOf(family, box);
@@ -138,7 +151,7 @@ describe('the loop of all plants of a box', () => {
       '  gain: { nominal: 2 rad/(V*s), from: 1.2 rad/(V*s), to: 3 rad/(V*s) }',
       '  gain: { value: lag*(40 rad/(V*s^2)), unit: rad/(V*s) }',
     ]);
-    const family = new LoopFamily(pointOf(spec), new ParameterSpace(spec.parameters));
+    const family = familyOf(spec);
     expect(family.box).toHaveLength(1);
     const [{ numerator }] = polynomialsOf(family, family.box);
     expect(numerator.some(({ slopes }) => slopes[0][1] !== 0)).toBe(true);
@@ -147,13 +160,13 @@ describe('the loop of all plants of a box', () => {
   it('takes any point of rest of a loop that is affine, since it linearises the same everywhere', () => {
     const atRest = (value: string): string => {
       const spec = motorWith(['goal: { unit: rad/s }', `goal: { unit: rad/s, rest: ${value} }`]);
-      const family = new LoopFamily(pointOf(spec), new ParameterSpace(spec.parameters));
+      const family = familyOf(spec);
       return JSON.stringify(polynomialsOf(family, family.box));
     };
     expect(atRest('3 rad/s')).toBe(atRest('0 rad/s'));
   });
 
-  it('says why there is no proof: timing of several controllers that moves, a point that may move', () => {
+  it('says why there is no proof where the timing of several controllers moves', () => {
     const timing = motorWith(
       declare('clock: { nominal: 0 %, from: -4 %, to: 5 % }'),
       [
@@ -163,14 +176,17 @@ describe('the loop of all plants of a box', () => {
       ['goal - tacho', 'kept - tacho'],
     );
     expect(() => {
-      const family = new LoopFamily(pointOf(timing), new ParameterSpace(timing.parameters));
+      const family = familyOf(timing);
       family.polynomials(new SlopeField(family.box));
     }).toThrow(Unprovable);
-    const curved = motorWith([
-      'of: drive, gain: gain',
-      'of: drive + (0.1 V)*exp(speed*(1 s/rad)), gain: gain',
-    ]);
-    const family = new LoopFamily(pointOf(curved), new ParameterSpace(curved.parameters));
-    expect(() => family.polynomials(new SlopeField(family.box))).toThrow('linearisation may move');
+  });
+
+  it('cannot be proved at once on a box where a range acts in some plants and not in others', () => {
+    const spec = motorWith(restingAt('3 rad/s'), drivenWithin('2 V'));
+    const family = familyOf(spec);
+    const [lag, [low, high]] = family.box;
+    // 3 rad/s needs 2.5 V at the least gain and 1 V at the greatest.
+    expect(family.polynomials(new SlopeField([lag, [low, high]]))).toHaveProperty('cut');
+    expect(polynomialsOf(family, [lag, [2.4, 2.6]])).toHaveLength(1);
   });
 });

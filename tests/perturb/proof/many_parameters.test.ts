@@ -1,6 +1,5 @@
 import { describe, expect, it } from 'vitest';
 import { PlantEvaluator } from '../../../src/measure/evaluate_plant.js';
-import { LoopPoint } from '../../../src/measure/loop_point.js';
 import { ParameterSpace } from '../../../src/perturb/parameter_space.js';
 import { LoopFamily } from '../../../src/perturb/proof/loop_family.js';
 import { proveClaim } from '../../../src/perturb/proof/prove_claim.js';
@@ -50,7 +49,7 @@ describe('proofs with more than three parameters', () => {
   it('end open, with the share of the bounds that is left, where the budget is spent', () => {
     const spec = loopOf(5, 'measure: gain_margin, at_least: 3');
     const { requirement, space } = partsOf(spec);
-    const family = new LoopFamily(new LoopPoint(spec, new Map(), requirement), space);
+    const family = new LoopFamily(spec, new Map(), requirement, space);
     const openShare = (budget: number): number => {
       const result = proveClaim(family, { kind: 'gain_margin', atLeast: 3 }, () => false, budget);
       return result.kind === 'open' ? result.openShare : 0;
@@ -64,7 +63,7 @@ describe('proofs with more than three parameters', () => {
   it('halve the bounds of those alone that move the loop', () => {
     const spec = loopOf(10, 'measure: gain_margin, at_least: 3');
     const { requirement, space } = partsOf(spec);
-    const family = new LoopFamily(new LoopPoint(spec, new Map(), requirement), space);
+    const family = new LoopFamily(spec, new Map(), requirement, space);
     const asked: number[] = [];
     const failsAt = (plant: readonly number[]): boolean => {
       asked.push(plant[5]);
