@@ -1,12 +1,11 @@
-import {
-  type CoefficientChange,
-  type CoefficientRead,
-  type ComparedResult,
-  type Comparison,
-  type LossShare,
-  letsMergeThrough,
-  type RequirementRun,
-  type SpecRun,
+import type {
+  CoefficientChange,
+  CoefficientRead,
+  ComparedResult,
+  Comparison,
+  LossShare,
+  RequirementRun,
+  SpecRun,
 } from '../verdict/run.js';
 import { storedNumber } from './coefficient_table.js';
 import {
@@ -20,6 +19,7 @@ import {
 } from './format_value.js';
 import { oneLine, shortened } from './plain_text.js';
 import { limitNumbers, measureName } from './requirement_in_words.js';
+import { blocksMerge } from './verdict_words.js';
 
 /** More changed coefficients are counted, not listed. */
 const mostChanges = 8;
@@ -144,7 +144,7 @@ export function headroomChange({ comparison }: Pick<RequirementRun, 'comparison'
  * requirement is broken or unjudged, for then there is no more to keep than the mistake.
  */
 export function improvementsInWords({ requirements }: Pick<SpecRun, 'requirements'>): string | undefined {
-  if (requirements.some((one) => !letsMergeThrough(one) && one.verdict.kind !== 'slipped')) return undefined;
+  if (requirements.some((one) => blocksMerge(one) && one.verdict.kind !== 'slipped')) return undefined;
   const gained = requirements.filter(({ comparison }) => {
     return comparison?.lost !== undefined && comparison.lost < -comparison.maySlip;
   });

@@ -19,15 +19,15 @@ const masks = [
 ];
 
 /** A lag of 1 s under an integrating controller with a period of 50 ms and gains of the build. */
-const axis = (requirements: string[], others = ''): Spec =>
+const axis = (requirements: string[], others = '', driven = 'output'): Spec =>
   smallSpecOf({
     coefficients: 'kp: kp\nki: { at: ki, unit: 1/s }',
     parameters: 'gain: { nominal: 1, spread: 40 % }\nsluggish: { nominal: 1 s, spread: 30 % }',
     inputs: 'target: { unit: V }',
-    plant: `speed: { lag: sluggish, of: drive, gain: gain, unit: V }${others && '\nother: { lag: 1 s, of: speed, unit: V }'}`,
+    plant: `speed: { lag: sluggish, of: ${driven === 'output' ? 'drive' : 'drive + help'}, gain: gain, unit: V }${others && '\nother: { lag: 1 s, of: speed, unit: V }'}`,
     sensors: `seen: { of: speed, unit: V }${others && '\nside: { of: other, unit: V }'}`,
     controllers: `law:\n  every: 50 ms\n  signals:\n    output: { pid: { kp: kp, ki: ki }, of: 'target - seen', unit: V }${others}`,
-    actuators: 'drive: { of: output, unit: V }',
+    actuators: `drive: { of: output, unit: V }${driven === 'output' ? '' : '\nhelp: { of: aside, unit: V }'}`,
     scenarios: 'step:\n  lasts: 6 s\n  inputs: { target: { step: 2 V, at: 1 s } }',
     requirements: [
       ...requirements,
@@ -270,6 +270,31 @@ describe('a signal that changes several times in a cycle', () => {
     const [peak, plainPeak] = [three, one].map(({ tightest }) => tightest[0].value);
     expect(peak).toBeCloseTo(plainPeak, 5);
   });
+});
+
+/** Here the second controller is part of the loop, so that a sine makes other frequencies too. */
+it('draws bands of a truly lifted loop as they are judged: mark and measure agree', async () => {
+  const { plots, requirements } = await drawn(
+    axis(
+      [
+        '{ name: B1, measure: largest_sensitivity, at: output, to_frequency: 2 rad/s, at_most: 3 }',
+        '{ name: B2, measure: largest_following_gain, at: output, from_frequency: 4 rad/s, to_frequency: 30 rad/s, at_most: 2 }',
+        '{ name: B3, measure: largest_loop_gain, at: output, from_frequency: 4 rad/s, to_frequency: 30 rad/s, at_most: 2 }',
+      ],
+      '\nslow:\n  every: 150 ms\n  signals:\n    aside: { value: -0.5*side, unit: V }',
+      'output + aside',
+    ),
+  );
+  expect(plots.gains.map(({ meaning, changes }) => [meaning, changes])).toEqual([
+    ['sine', 3],
+    ['sine', 3],
+    ['sine', 3],
+  ]);
+  for (const { tightest } of plots.gains) {
+    const [{ requirement, value }] = tightest;
+    const { result } = requirements.find(({ name }) => name === requirement)!.worst;
+    expect(result.kind === 'value' && value / result.value).toBeCloseTo(1, 6);
+  }
 });
 
 it('says in words why loops opened at several signals at once have no curve', async () => {
