@@ -93,9 +93,10 @@ const commands: Record<string, Command> = {
   },
   replay: {
     meaning: 'run the counterexample of one requirement again, alone',
-    usage: 'pawl replay REPORT REQUIREMENT [--spec SPEC] [--image PATH] [--out DIR] [--keep]',
+    usage: 'pawl replay REPORT REQUIREMENT [--spec SPEC] [--build NAME] [--image PATH] [--out DIR] [--keep]',
     options: {
       spec: { type: 'string' },
+      build: { type: 'string' },
       image: { type: 'string' },
       out: { type: 'string' },
       keep: { type: 'boolean' },
@@ -103,6 +104,7 @@ const commands: Record<string, Command> = {
     optionMeanings: {
       REPORT: 'the run.json of a check, or the folder that holds it',
       '--spec SPEC': 'the spec, where several in the report have a requirement of this name',
+      '--build NAME': 'the build, where the spec has several',
       '--image PATH': 'another image than the one of the report',
       '--out DIR': 'write the traces into DIR instead of this folder',
       '--keep': 'save the counterexample: every later check tries it first',
@@ -113,9 +115,10 @@ const commands: Record<string, Command> = {
           `'pawl replay' takes a report and a requirement, but got ${positionals.length} words`,
         ]);
       const { replay } = await import('./replay.js');
-      const { spec, image, out } = values as Record<string, string | undefined>;
+      const { spec, build, image, out } = values as Record<string, string | undefined>;
       const [report, requirement] = positionals;
-      return replay({ report, requirement, spec, image, out, keep: values.keep === true }, around);
+      const keep = values.keep === true;
+      return replay({ report, requirement, spec, build, image, out, keep }, around);
     },
   },
   start: {

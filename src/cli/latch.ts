@@ -87,7 +87,10 @@ async function toWrite(
     text: referenceJson(referenceOf({ spec, run, coefficients, law, reason, pawl: version })),
     said: `latched ${counts} in ${shownPath(cwd, path)}`,
     obstacles: latchObstacles(spec, run, withUnjudged, today).map((message) =>
-      formatSpecError({ place: merge.place, message }),
+      formatSpecError({
+        place: merge.place,
+        message: name === undefined ? message : `build ${name}: ${message}`,
+      }),
     ),
   };
 }

@@ -62,7 +62,7 @@ async function textOf(path: string, shown: string, spec: Spec): Promise<string |
   } catch (error) {
     const { code, message } = error as NodeJS.ErrnoException;
     if (code === 'ENOENT') return undefined;
-    throw unreadable(shown, message.split(',')[0], spec);
+    throw unreadable(shown, code === 'EISDIR' ? 'it is a folder' : message.split(',')[0], spec);
   }
 }
 

@@ -22,6 +22,8 @@ export interface ReplayOptions {
   report: string;
   requirement: string;
   spec: string | undefined;
+  /** Of several builds in one spec the one to run. */
+  build: string | undefined;
   image: string | undefined;
   out: string | undefined;
   keep: boolean;
@@ -37,6 +39,7 @@ const shape = z.object({
   specs: z.array(
     z.object({
       file: z.string(),
+      build: z.string().optional(),
       halvings: z.number(),
       provenance: z.object({ image: z.string(), sha256: z.string() }).nullable(),
       requirements: z.array(requirementShape),
@@ -55,7 +58,7 @@ const instants = 4000;
 export async function replay(options: ReplayOptions, around: Surroundings): Promise<ExitStatus> {
   const { cwd } = around;
   const { reported, entry } = find(await readReport(cwd, options.report), options);
-  const spec = await readSpec(cwd, reported.file);
+  const spec = buildOf(await readSpec(cwd, reported.file), reported.build);
   const index = spec.requirements.findIndex(({ name }) => name === options.requirement);
   if (index < 0) {
     throw new Fault([
@@ -68,7 +71,7 @@ export async function replay(options: ReplayOptions, around: Surroundings): Prom
   const isSame = build?.provenance.sha256 === reported.provenance?.sha256;
   const values = plantOf(spec, entry.shrunk?.plant ?? entry.plant);
   const coefficients = valuesOf(build);
-  const setup = setupOf({ spec, coefficients, latched: await readLatched(cwd, spec, undefined) });
+  const setup = setupOf({ spec, coefficients, latched: await readLatched(cwd, spec, reported.build) });
   const task = { plants: [values], halvings: reported.halvings, settle: true, wanted: [index] };
   const [{ results, halvings }] = new PlantMeasurer(setup).answers(task);
   const requirement = spec.requirements[index];
@@ -95,6 +98,14 @@ export async function replay(options: ReplayOptions, around: Surroundings): Prom
     ),
   );
   return judgement.kind === 'met' ? 0 : 1;
+}
+
+/** @throws {Fault} where the spec has no build of this name any more. */
+function buildOf(spec: Spec, name: string | undefined): Spec {
+  if (name === undefined) return spec;
+  const build = spec.builds?.find((one) => one.name === name);
+  if (build) return { ...spec, firmware: build.firmware };
+  throw new Fault([`${spec.file}: has no build '${name}' any more; run 'pawl check' again`]);
 }
 
 /** The image to run: none where the spec has its numbers from a command, which is run again. */
@@ -128,26 +139,30 @@ async function readReport(cwd: string, report: string): Promise<Reported[]> {
   ]);
 }
 
-function find(specs: Reported[], { requirement, spec }: ReplayOptions) {
-  const among = specs.filter(({ file }) => spec === undefined || file === spec);
-  if (among.length === 0) {
-    throw new Fault([
-      `the report holds no spec '${spec}'${nearestOf(
-        spec ?? '',
-        specs.map(({ file }) => file),
-      )}`,
-    ]);
-  }
+function find(specs: Reported[], { requirement, spec, build }: ReplayOptions) {
+  const files = specs.map(({ file }) => file);
+  if (spec !== undefined && !files.includes(spec))
+    throw new Fault([`the report holds no spec '${spec}'${nearestOf(spec, files)}`]);
+  const ofSpec = specs.filter(({ file }) => spec === undefined || file === spec);
+  const builds = ofSpec.flatMap((one) => one.build ?? []);
+  if (build !== undefined && !builds.includes(build))
+    throw new Fault([`the report holds no build '${build}'${nearestOf(build, builds)}`]);
+  const among = ofSpec.filter((one) => build === undefined || one.build === build);
   const found = among.flatMap((reported) =>
     reported.requirements.filter(({ name }) => name === requirement).map((entry) => ({ reported, entry })),
   );
   if (found.length === 1) return found[0];
-  if (found.length > 1) {
-    const files = found.map(({ reported }) => reported.file).join(', ');
-    throw new Fault([`several specs have a requirement '${requirement}': ${files}; name one with --spec`]);
-  }
+  if (found.length > 1) throw new Fault([severalHave(requirement, found)]);
   const names = among.flatMap(({ requirements }) => requirements.map(({ name }) => name));
   throw new Fault([`the report holds no requirement '${requirement}'${nearestOf(requirement, names)}`]);
+}
+
+function severalHave(requirement: string, found: readonly { reported: Reported }[]): string {
+  const files = new Set(found.map(({ reported }) => reported.file));
+  if (files.size > 1)
+    return `several specs have a requirement '${requirement}': ${[...files].join(', ')}; name one with --spec`;
+  const builds = found.map(({ reported }) => reported.build).join(', ');
+  return `several builds have the requirement '${requirement}': ${builds}; name one with --build`;
 }
 
 /** @throws {Fault} where a parameter of the spec is not in the report. */

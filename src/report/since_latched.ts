@@ -163,8 +163,10 @@ export function waiverInWords({ waiver }: Pick<RequirementRun, 'waiver'>): strin
 
 function partsOf(requirement: RequirementRun, comparison: Comparison): string[] {
   const { latched, rerun, today, fromSpec } = comparison;
-  const named = fromSpec.slice(0, 3).map((text) => shortened(oneLine(text), 80));
-  const left = fromSpec.length - named.length;
+  // A limit moves headroom, and no result.
+  const moving = fromSpec.filter((text) => text !== 'its limit');
+  const named = moving.slice(0, 3).map((text) => shortened(oneLine(text), 80));
+  const left = moving.length - named.length;
   const causes = named.join(' and ') + (left > 0 ? ` and ${left} more` : '');
   const spec = causes === '' ? 'plants found since' : causes;
   return [

@@ -104,6 +104,32 @@ describe('several builds in one spec', () => {
     expect(new Set([...xml.matchAll(/classname="([^"]*)"/g)].map(([, name]) => name)).size).toBe(2);
   });
 
+  it('are replayed by their names', async () => {
+    await folder.run(['check', '--out', 'reports']);
+    const replay = (...more: string[]) => folder.run(['replay', 'reports', 'R2', ...more]);
+    expect((await replay()).errors).toBe(
+      "several builds have the requirement 'R2': shipped, regressed; name one with --build",
+    );
+    expect((await replay('--build', 'shiped')).errors).toContain(
+      "no build 'shiped'; did you mean 'shipped'?",
+    );
+    expect(await replay('--build', 'shipped')).toMatchObject({ status: 0, output: /R2 met/ });
+    const regressed = await replay('--build', 'regressed');
+    expect(regressed).toMatchObject({ status: 1, output: /R2 broken/ });
+    expect(regressed.output).not.toContain('another image');
+    folder.write('axis.pawl.yaml', withBuilds('  shipped: azimuth.elf\n  other: azimuth-regressed.elf'));
+    expect((await replay('--build', 'regressed')).errors).toContain(
+      "axis.pawl.yaml: has no build 'regressed' any more; run 'pawl check' again",
+    );
+  });
+
+  it('are named where one of them may not be latched', async () => {
+    const text = withBuilds('  shipped: azimuth.elf\n  regressed: azimuth-regressed.elf');
+    folder.write('axis.pawl.yaml', `${text}merge: { reference: kept.json, may_slip: 5 % }\n`);
+    const { errors } = await folder.run(['latch', '--reason', 'r']);
+    expect(errors).toMatch(/^nothing was latched:\naxis\.pawl\.yaml:\d+:1: build regressed: R2 is broken/);
+  });
+
   it('go on where one of them cannot be read', async () => {
     folder.write('axis.pawl.yaml', withBuilds('  lost: lost.elf\n  shipped: azimuth.elf'));
     const { status, output, errors } = await folder.run(['check']);

@@ -161,6 +161,16 @@ describe('pawl check against a reference', () => {
     expect(folder.read('out/junit.xml')).toMatch(/<error /);
   });
 
+  it('ends with status 2 where it is a folder', async () => {
+    mkdirSync(join(folder.path, 'latched/axis.json'), { recursive: true });
+    expect(await check()).toMatchObject({
+      ...{
+        status: 2,
+        errors: /the latched reference latched\/axis\.json cannot be read: it is a folder; take it/,
+      },
+    });
+  });
+
   it('tells a tightened limit, and lets a waiver through for its time only', async () => {
     folder.write('axis.pawl.yaml', axis('0.5', waiver('2027-03-01')));
     await folder.run(['latch', '--reason', 'known']);

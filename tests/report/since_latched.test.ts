@@ -40,6 +40,14 @@ describe('a requirement against the reference', () => {
     expect(comparisonInWords(requirement())).toBeUndefined();
   });
 
+  it('does not hold a limit responsible for what was measured', () => {
+    const both = margin({ fromSpec: ['its limit', 'the bounds of friction'] });
+    expect(comparisonInWords(both)).toMatch(/\+1 deg from the bounds of friction$/);
+    expect(comparisonInWords(margin({ fromSpec: ['its limit'] }))).toMatch(
+      /\+1 deg from plants found since$/,
+    );
+  });
+
   it('calls the difference of two shares what it is', () => {
     const share = (of: number): ComparedResult => ({ result: value(of), headroom: 1 - of });
     const changes = { latched: share(0.02), rerun: share(0.02), today: share(0.3), lost: 0.28 };
