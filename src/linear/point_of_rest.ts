@@ -1,7 +1,8 @@
 import { Matrix as LibraryMatrix, SingularValueDecomposition } from 'ml-matrix';
 import { Evaluation } from '../loop/evaluate.js';
 import type { Loop } from '../loop/loop.js';
-import { type Linearisation, type RowGroup, withReadings } from './linearise.js';
+import { withoutRanges } from '../loop/without_ranges.js';
+import { Linearisation, type RowGroup, withReadings } from './linearise.js';
 import { add, blockOf, identity, type Matrix, multiply, place, toRows, zeros } from './matrix.js';
 
 /** Everything in a loop that keeps a value, where nothing changes any more. */
@@ -16,6 +17,8 @@ export interface PointOfRest {
 export type RestResult = { kind: 'rest'; point: PointOfRest } | { kind: 'none'; why: string };
 
 const mostRounds = 60;
+/** A search that comes back to where it was so many rounds ago, or fewer, runs from one end of a range to the other. */
+const longestCircle = 4;
 const mostModeChanges = 20;
 
 /**
@@ -46,18 +49,46 @@ export function pointOfRest(
   };
 }
 
-/** Newton's method with the least move (pseudo-inverse), so that free integrators stay where they start. */
-function restWithModes(
-  linearisation: Linearisation,
-  given: { parameter: ArrayLike<number>; input: ArrayLike<number>; mode: number[] },
-): RestResult {
-  const { loop } = linearisation;
-  let unknowns = [
-    ...loop.states.map(({ start }) => start),
-    ...loop.memories.map(({ start }) => start),
-    ...loop.held.map(() => 0),
+interface Given {
+  parameter: ArrayLike<number>;
+  input: ArrayLike<number>;
+  mode: number[];
+}
+
+const freed = new WeakMap<Linearisation, Linearisation>();
+
+/** The loop without its ranges, for a point to search from: beyond a range nothing tells which way to go. */
+function withoutItsRanges(linearisation: Linearisation): Linearisation {
+  const found = freed.get(linearisation) ?? new Linearisation(withoutRanges(linearisation.loop));
+  freed.set(linearisation, found);
+  return found;
+}
+
+/** A search from where everything starts; where that does not end, one from the rest of the loop without its ranges. */
+function restWithModes(linearisation: Linearisation, given: Given): RestResult {
+  const { states, memories, held } = linearisation.loop;
+  const start = [
+    ...states.map((one) => one.start),
+    ...memories.map((one) => one.start),
+    ...held.map(() => 0),
   ];
+  const first = searchFrom(linearisation, given, start);
+  if (first.kind === 'rest') return first;
+  const free = searchFrom(withoutItsRanges(linearisation), given, start);
+  if (free.kind === 'rest') {
+    const { state, memory, held: kept } = free.point;
+    const second = searchFrom(linearisation, given, [...state, ...memory, ...kept]);
+    if (second.kind === 'rest') return second;
+  }
+  return first;
+}
+
+/** Newton's method with the least move (pseudo-inverse), so that free integrators stay where they start. */
+function searchFrom(linearisation: Linearisation, given: Given, start: readonly number[]): RestResult {
+  const { loop } = linearisation;
+  let unknowns = [...start];
   let residual: number[] = [];
+  const past: number[][] = [];
   for (let round = 0; round < mostRounds; round++) {
     const point = { ...split(loop, unknowns), mode: given.mode };
     const evaluation = new Evaluation(withReadings(loop, { ...given, ...point }), 'off');
@@ -67,9 +98,11 @@ function restWithModes(
     const slopes = slopesOfResiduals(linearisation, evaluation);
     if (isSmall(residual, slopes, unknowns)) return { kind: 'rest', point };
     const move = leastSquares(slopes, residual);
+    past.push(unknowns);
     unknowns = unknowns.map((value, i) => value - move[i]);
+    if (past.slice(-longestCircle, -1).some((one) => isSame(one, unknowns))) break;
   }
-  return { kind: 'none', why: whyNone(loop, residual) };
+  return { kind: 'none', why: whyNone(loop, residual, past.length) };
 }
 
 function split(loop: Loop, unknowns: number[]): Omit<PointOfRest, 'mode'> {
@@ -134,6 +167,10 @@ function isSmall(residual: number[], slopes: Matrix, unknowns: number[]): boolea
   return residual.every((value, i) => Math.abs(value) <= 1e-12 * scales[i]);
 }
 
+function isSame(a: readonly number[], b: readonly number[]): boolean {
+  return a.every((value, i) => Math.abs(value - b[i]) <= 1e-9 * Math.abs(value));
+}
+
 /** The least move that solves slopes · move = residual; rows are brought to one size first, since their units differ. */
 function leastSquares(slopes: Matrix, residual: number[]): number[] {
   const sizes = toRows(slopes).map((row) => Math.max(...row.map(Math.abs)) || 1);
@@ -143,7 +180,7 @@ function leastSquares(slopes: Matrix, residual: number[]): number[] {
   return decomposition.solve(LibraryMatrix.columnVector(scaled)).to1DArray();
 }
 
-function whyNone(loop: Loop, residual: number[]): string {
+function whyNone(loop: Loop, residual: number[], rounds: number): string {
   const names = [
     ...loop.states.map(({ name }) => `the rate of '${name}'`),
     ...loop.memories.map(({ name }) => `'${name}'`),
@@ -154,5 +191,5 @@ function whyNone(loop: Loop, residual: number[]): string {
     0,
   );
   const value = residual[worst];
-  return `no point of rest was found in ${mostRounds} rounds: ${names[worst]} still changes by ${value.toPrecision(3)}`;
+  return `no point of rest was found in ${rounds} rounds: ${names[worst]} still changes by ${value.toPrecision(3)}`;
 }

@@ -46,7 +46,7 @@ function expanded(
   const node = block.keepsRange ? value : bounded(value);
   if (!definition.slew) return node;
   if (workshop.room === 'controller') {
-    return slewed(definition.name, node, lower(definition.slew, around), bounded, workshop);
+    return slewed(definition.name, node, lower(definition.slew, around), bounded, workshop, parts);
   }
   return block.keepsSlew ? node : rateLimited(definition.name, node, () => use.slew()!, workshop, parts);
 }

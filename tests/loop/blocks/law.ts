@@ -65,6 +65,10 @@ export function stepper(law: Law, signals = ['out']): (row: Row) => number[] {
   loop.memories.forEach(({ start }, at) => {
     m[layout.memory + at] = start;
   });
+  // A slew acts from the start of a scenario on.
+  loop.inputs.forEach((name, at) => {
+    if (name.endsWith(' slew')) m[layout.input + at] = 1;
+  });
   return (row) => {
     const [x, ...others] = typeof row === 'number' ? [row] : row;
     m[layout.reading] = x;

@@ -1,4 +1,6 @@
 import { describe, expect, it } from 'vitest';
+import { measured } from '../measured.js';
+import { traceOf } from '../trace_of.js';
 import { noise, outputs, responses } from './law.js';
 
 const period = 0.1;
@@ -41,6 +43,57 @@ describe('slew of a controller’s signal', () => {
       expect(re).toBeCloseTo(wantedRe, 13);
       expect(im).toBeCloseTo(wantedIm, 13);
     });
+  });
+});
+
+describe('rest of a loop with a slewed signal', () => {
+  // A tank with a level of 40 mm held by an opening of 0.4: so many steps of slew·period away from where the search starts.
+  const held = (more: string): string => `
+inputs: { target: { unit: mm, rest: 40 mm }, leak: { unit: mm } }
+plant: { level: { lag: 20 s, of: valve*(100 mm) + leak, unit: mm } }
+sensors: { float: { of: level, filter: 1 s, unit: mm } }
+controllers:
+  tank:
+    every: 1 s
+    delay: 0.2 s
+    signals:
+      error: { value: target - float, unit: mm }
+      opening: { pid: { kp: 0.04 1/mm, ki: 0.002 1/(mm*s), anti_windup: hold_integral }, of: error, range: [-1, 1] }
+      eased: { value: opening${more} }
+actuators: { valve: { of: eased } }
+scenarios: { run: { lasts: 60 s, inputs: { leak: { step: 0.01 mm, at: 30 s } } } }
+`;
+
+  it('is found 100,000 steps away, where it is without one, and the trace starts there', () => {
+    const free = traceOf(held(''), ['level']).level;
+    // A step of the slew in one period is 4e-6, and the leak asks for less than 1e-3 in all.
+    const slow = traceOf(held(', slew: 4e-6 1/s'), ['level', 'eased']);
+    slow.level.forEach(({ time, value }, i) => {
+      if (time <= 30) expect(value).toBeCloseTo(free[i].value, 12);
+      expect(value).toBeCloseTo(0.04, 4);
+    });
+    const steps = slow.eased.slice(1).map(({ value }, i) => Math.abs(value - slow.eased[i].value));
+    expect(Math.max(...steps)).toBeCloseTo(4e-6, 12);
+  });
+
+  it('counts no hits of a limit, which belong to a range', () => {
+    const text = `${held(', slew: 4e-6 1/s')}requirements:
+  - { name: hits, measure: limit_hit_count, of: tank, in: run, at_most: 0 }
+  - { name: rate, measure: slew_rate, of: eased, in: run, at_most: 1 1/s }`;
+    const { hits, rate } = measured(text);
+    expect(hits).toBe(0);
+    expect(rate).toBeCloseTo(4e-6, 12);
+  });
+
+  it('changes nothing in the first instants of a trace that moves at once', () => {
+    const at = (event: string, more: string): number[] =>
+      traceOf(held(more).replace('leak: { step: 0.01 mm, at: 30 s }', event), ['eased']).eased.map(
+        ({ value }) => value,
+      );
+    const moved = at('target: { step: 20 mm, at: 0 s }', ', slew: 0.01 1/s');
+    // From 0.4 by 0.01 an instant while the law asks for more: in closed form.
+    for (const k of [0, 1, 2, 3, 4]) expect(moved).toContainEqual(expect.closeTo(0.4 + 0.01 * (k + 1), 12));
+    expect(moved[0]).toBeCloseTo(0.41, 12);
   });
 });
 
