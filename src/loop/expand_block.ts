@@ -8,6 +8,7 @@ import { placed } from './number_rules.js';
 import type { Parts } from './parts.js';
 import { rateLimited } from './rate_limiter.js';
 import { slewed } from './slew.js';
+import { startingWorkshop } from './starting_workshop.js';
 
 const blockByKey = new Map(
   blocks.flatMap((block) =>
@@ -30,7 +31,9 @@ export function expandBlock(
     ...workshop,
     addMemory: (name, next, start) => workshop.addMemory(name, () => placed(definition.place, next), start),
   };
-  return placed(definition.place, () => arithmetic.keep(expanded(definition, around, placedWorkshop, parts)));
+  return placed(definition.place, () =>
+    arithmetic.keep(expanded(definition, around, startingWorkshop(definition, placedWorkshop, parts), parts)),
+  );
 }
 
 function expanded(

@@ -155,6 +155,11 @@ export class Parts {
     return this.graph.leaf('noise', this.noises.push(task) - 1);
   }
 
+  /** Looks at the finished equations. */
+  whenFinished(work: () => void): void {
+    this.late.push(work);
+  }
+
   /** Does the deferred work, and what it defers in turn. */
   finish(): void {
     const next = (): (() => void) | undefined => this.deferred.shift() ?? this.late.shift();

@@ -65,6 +65,8 @@ interface AxisUnit {
 interface AxisUnits {
   units: AxisUnit[];
   counted: boolean;
+  /** The list that is missing, whose entries would be the axis. */
+  missing?: string;
 }
 
 function readMatrix(
@@ -103,7 +105,7 @@ function axisUnits(axis: Axis, { block, entry, unit, scale, input, around, readi
   if (axis === 'output') return { counted: false, units: [{ dimension: unit?.dimension, scale }] };
   if (axis === 'input') return { counted: false, units: [input ?? { dimension: undefined, scale: 1 }] };
   const list = childOf(childOf(entry.value, block.key), axis.of);
-  if (list === undefined) return { counted: true, units: [] };
+  if (list === undefined) return { counted: true, units: [], missing: axis.of };
   const units = partsOf(list).map((item): AxisUnit => {
     const free = readFree(item, around, reading);
     return { dimension: free?.dimension, scale: free?.scale ?? 1 };
@@ -129,6 +131,8 @@ function fits(trees: Tree[][], rows: AxisUnits, columns: AxisUnits): boolean {
 
 function wrongSize(what: string, trees: Tree[][], rows: AxisUnits, columns: AxisUnits): string {
   const counted = (count: number, word: string): string => `${count} ${word}${count === 1 ? '' : 's'}`;
+  const missing = rows.missing ?? columns.missing;
+  if (missing) return `${what} needs \`${missing}\`, since it has a number for each of its entries`;
   const widths = [...new Set(trees.map((row) => row.length))].join(' or ');
   const height = rows.counted ? counted(rows.units.length, 'row') : 'rows';
   const width = columns.counted ? ` of ${counted(columns.units.length, 'number')}` : '';

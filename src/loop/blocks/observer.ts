@@ -21,10 +21,10 @@ function matrix(
 
 /**
  * A model of the plant that runs beside it and is corrected by what is measured (Luenberger 1964; Kalman 1960). x̄ is what
- * was predicted for this instant, y what is measured, u what drives the plant from now on. Each line of a matrix is one sum
- * from left to right, as in y₁ − c₁₁·x̄₁ − c₁₂·x̄₂:
+ * was predicted for this instant, y what is measured, u what drives the plant from now on and u₁ what drove it up to now, as
+ * the sample was taken. Each line of a matrix is one sum from left to right, as in y₁ − c₁₁·x̄₁ − c₁₂·x̄₂:
  *
- *     e = y − C·x̄
+ *     e = y − C·x̄ − D·u₁
  *     this_sample   x̂ = x̄ + L·e,  predicted next: A·x̂ + B·u
  *     last_sample   x̂ = x̄,        predicted next: A·x̄ + B·u + L·e
  *
@@ -55,6 +55,12 @@ export const observer: Block = {
       matrix('state_matrix', states, states, 'A: from one instant to the next', 'ratio', false),
       matrix('input_matrix', states, { of: 'driven_by' }, 'B: what u adds from one instant to the next'),
       matrix('output_matrix', measured, states, 'C: what is measured of the states', 'ratio', false),
+      matrix(
+        'feedthrough',
+        measured,
+        { of: 'driven_by' },
+        'D: what is measured of u₁, u at the last instant; 0 by default',
+      ),
       matrix('gain', states, measured, 'L, for the rule that uses says'),
       matrix(
         'process_covariance',
@@ -88,7 +94,7 @@ export const observer: Block = {
       },
     ],
     meaning:
-      'its value is e = y − C·x̄ of the first measured; x̂ = x̄ + L·e and next A·x̂ + B·u with this_sample, x̂ = x̄ and next A·x̄ + B·u + L·e with last_sample; each line one sum from left to right',
+      'its value is e = y − C·x̄ − D·u₁ of the first measured; x̂ = x̄ + L·e and next A·x̂ + B·u with this_sample, x̂ = x̄ and next A·x̄ + B·u + L·e with last_sample; each line one sum from left to right',
   },
   keepsRange: false,
   expand: (use, workshop) => {
@@ -100,8 +106,15 @@ export const observer: Block = {
       workshop.addMemory(`${name} predicted`, () => next(row), starts[row]),
     );
     const { arithmetic } = workshop;
+    const drove = model.through
+      ? use.signals('driven_by').map((u, at) => workshop.addMemory(`${use.name} driven by ${at + 1}`, u, 0))
+      : [];
     const surprise = valuesOf(use, 'measured').map((seen, row) =>
-      arithmetic.sum([{ value: seen }, ...terms(model.output[row], predicted, true)]),
+      arithmetic.sum([
+        { value: seen },
+        ...terms(model.output[row], predicted, true),
+        ...terms(model.through?.[row] ?? [], drove, true),
+      ]),
     );
     const estimate = predicted.map((value, row) =>
       atOnce ? arithmetic.sum([{ value }, ...terms(model.gain[row], surprise)]) : value,
@@ -131,6 +144,7 @@ interface Model {
   state: Node[][];
   input: Node[][] | undefined;
   output: Node[][];
+  through: Node[][] | undefined;
   gain: Node[][];
 }
 
@@ -141,15 +155,23 @@ function modelOf(use: BlockUse, order: number, workshop: Workshop): Model {
   const output = sized(use, 'output_matrix', outputs, order)!;
   const input = inputs > 0 ? sized(use, 'input_matrix', order, inputs) : undefined;
   if (inputs > 0 && !input) fail(use, 'has driven_by and needs an input_matrix');
+  if (use.has('feedthrough') && inputs === 0) fail(use, 'has a feedthrough and needs driven_by');
+  const through = use.has('feedthrough') ? sized(use, 'feedthrough', outputs, inputs) : undefined;
   const gain = sized(use, 'gain', order, outputs);
   const disturbed = sized(use, 'process_covariance', order, order);
   const noise = sized(use, 'measurement_covariance', outputs, outputs);
   if (gain && (disturbed || noise)) fail(use, 'has both a gain and covariances; expected one of them');
-  if (gain) return { state, input, output, gain };
+  if (gain) return { state, input, output, through, gain };
   if (!disturbed || !noise) {
     fail(use, 'needs a gain, or process_covariance and measurement_covariance to work it out from');
   }
-  return { state, input, output, gain: workedOut(use, { state, output, disturbed, noise }, workshop) };
+  return {
+    state,
+    input,
+    output,
+    through,
+    gain: workedOut(use, { state, output, disturbed, noise }, workshop),
+  };
 }
 
 function sized(use: BlockUse, name: string, rows: number, columns: number): Node[][] | undefined {

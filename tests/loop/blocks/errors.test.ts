@@ -19,6 +19,39 @@ const observer = (settings: string): string[] => [
 describe('the blocks of controllers say what is wrong with', () => {
   const cases: [string, string[], RegExp][] = [
     [
+      'a start of an estimate',
+      [
+        observer('state_matrix: 1, output_matrix: 1, gain: 1')[0].replace(' }', ', start: 2 }'),
+        observer('state_matrix: 1, output_matrix: 1, gain: 1')[1],
+      ],
+      /'start' of 'out' does nothing: 'estimate' has no single value to start; give its observer `starts_at`, one number/,
+    ],
+    [
+      'a start of an observer',
+      [
+        observer('')[0],
+        `${observer('state_matrix: 1, output_matrix: 1, gain: 1')[1].slice(0, -1)}, start: 2 }`,
+      ],
+      /'start' of 'model' does nothing: 'observer' has no single value to start; give it `starts_at`/,
+    ],
+    [
+      'a start of what keeps nothing',
+      ['out: { value: x, start: 2 }'],
+      /'start' of 'out' does nothing: 'value' has no single value to start; leave it out, or give it to a signal that keeps a value/,
+    ],
+    [
+      'a feedthrough of nothing',
+      observer('state_matrix: 1, output_matrix: 1, feedthrough: 1, gain: 1'),
+      /`feedthrough` needs `driven_by`, since it has a number for each of its entries/,
+    ],
+    [
+      'a feedthrough of another size',
+      observer(
+        'driven_by: x, state_matrix: 1, input_matrix: 1, output_matrix: 1, feedthrough: [1, 2], gain: 1',
+      ),
+      /`feedthrough` has 1 row of 2; expected 1 row of 1 number/,
+    ],
+    [
       'a pid without gains',
       ['out: { pid: { anti_windup: hold_integral }, of: x, range: [-1, 1] }'],
       /pid of 'out' has no gain: give at least one of kp, ki, kd/,

@@ -153,6 +153,51 @@ describe('an observer with state feedback', () => {
     expect(outputs(law, [1, 0.5, 0.25, 0.5])).toEqual([1, 0, 0, 0.375]);
   });
 
+  it('has none of a plant whose drive reaches the sensor at once, sampled before the drive changes', () => {
+    // x' = −x + u, y = x + u/2, exactly discretised; the sample is taken while the last u still acts.
+    const fall = Math.exp(-period);
+    const model = `state_matrix: ${fall}, input_matrix: ${1 - fall}, output_matrix: 1, feedthrough: 0.5`;
+    for (const [use, gain, after] of [
+      ['this_sample', '1', 1],
+      ['last_sample', `${fall}`, 1],
+    ] as const) {
+      const law: Law = {
+        signals: [
+          'level: { estimate: surprise }',
+          `surprise: { observer: { states: [level], measured: x, driven_by: out, ${model}, gain: ${gain}, uses: ${use} } }`,
+          'out: { value: wanted - 2*level }',
+        ],
+        inputs: { wanted: '1' },
+      };
+      const step = stepper(law, ['out', 'surprise', 'level']);
+      let [x, u] = [0.8, 0];
+      noise(12).forEach((wanted, k) => {
+        const [drive, surprise, level] = step([x + 0.5 * u, wanted]);
+        if (k >= after) {
+          expect(Math.abs(surprise)).toBeLessThan(1e-14);
+          expect(level).toBeCloseTo(x, 13);
+        }
+        x = fall * x + (1 - fall) * drive;
+        u = drive;
+      });
+    }
+  });
+
+  it('has the steady gain of its covariances with a feedthrough or without', () => {
+    const steady = (more: string): number[] =>
+      outputs(
+        {
+          signals: [
+            'out: { estimate: model }',
+            `model: { observer: { states: [out], measured: x, driven_by: wanted, state_matrix: 0.9, input_matrix: 1, output_matrix: 2, process_covariance: 0.3, measurement_covariance: 0.2, uses: this_sample${more} } }`,
+          ],
+          inputs: { wanted: '1' },
+        },
+        noise(10).map((x) => [x, 0]),
+      );
+    expect(steady(', feedthrough: 0.7')).toEqual(steady(''));
+  });
+
   it('takes targets for its states', () => {
     const law: Law = {
       signals: ['out: { state_feedback: { states: [x, 2*x], gains: [3, 4], targets: [wanted, 1] } }'],

@@ -243,6 +243,24 @@ export const controllerBlocks: readonly Example[] = [
   },
   {
     of: 'observer',
+    shows: 'a sensor that feels 0.1 K per kW of the heater at once',
+    shown: law(
+      'surprise: { observer: { states: [wall], measured: seen, driven_by: heat, state_matrix: [[0.9]],',
+      '                        input_matrix: [0.2 K/kW], output_matrix: [1], feedthrough: [0.1 K/kW], gain: [0.5],',
+      '                        uses: last_sample }, unit: K }',
+      'wall:     { estimate: surprise, unit: K }',
+    ),
+    hidden: 'inputs: { seen: { unit: K }, heat: { unit: kW } }',
+    rests: { seen: '3 K', heat: '2 kW' },
+    start: 'zero',
+    outcomes: [
+      { signal: 'surprise', at: '0 s', unit: 'K', formula: '3', why: 'nothing has driven it yet' },
+      { signal: 'wall', at: '10 ms', unit: 'K', formula: '0.2·2 + 0.5·3' },
+      { signal: 'surprise', at: '10 ms', unit: 'K', formula: '3 − 1.9 − 0.1·2' },
+    ],
+  },
+  {
+    of: 'observer',
     shows: 'its steady gain worked out from the noise',
     shown: law(
       'surprise: { observer: { states: [wall], measured: seen, state_matrix: [[1]], output_matrix: [1],',
