@@ -107,8 +107,9 @@ def delay(s, changes, longest):
         m = response(s, np.exp(1j * angle))
         return np.linalg.det(m + (np.eye(changes) - m) @ turn)
 
+    near = np.abs(np.angle(np.linalg.eigvals(s[0])))
     angle, tau = (x.ravel() for x in np.meshgrid(
-        np.concatenate([np.geomspace(1e-3, np.pi, 12), np.linspace(0.05, np.pi, 12)]), np.linspace(0, longest, 25)))
+        np.concatenate([near, np.geomspace(1e-3, np.pi, 12), np.linspace(0.05, np.pi, 12)]), np.linspace(0, longest, 25)))
     for _ in range(14):
         h = 1e-7
         f = determinant(angle, tau)
