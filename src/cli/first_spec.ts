@@ -23,6 +23,7 @@ loop: ${scalar(name)}
 firmware:
   image: ${scalar(image)}
   # build: [make]                  # a command that makes the image, run in this file's folder
+  # law: [control_step]            # functions whose machine code must be the latched one; needs merge
   coefficients:                    # symbol, members, [indices] in the build
 ${coefficientLines(law)}
 ${otherLines(others)}
@@ -65,6 +66,10 @@ requirements:
 perturbation:
   plants: 100
   seed: 1
+
+# merge:                           # what later changes are held against; pawl latch --reason "…" writes it
+#   reference: latched/${name.replace(/[^\w.-]+/g, '_')}.json
+#   may_slip: 5 %                  # headroom that a change may cost
 `;
 }
 

@@ -57,6 +57,26 @@ describe('pawl start on its own', () => {
   });
   afterEach(() => folder.remove());
 
+  it('shows where its reference and the law would stand: without the hashes both work', async () => {
+    await folder.run(['start', 'azimuth.elf']);
+    const lines = folder.read('azimuth.pawl.yaml').split('\n');
+    const merge = lines.findIndex((line) => line.startsWith('# merge:'));
+    const quick = lines.map((line, at) =>
+      at >= merge ? line.replace(/^# ?/, '') : line.replace('plants: 100', 'plants: 4\n  search: 4'),
+    );
+    const text = quick.join('\n').replace('# law: [control_step]  ', 'law: [azimuth_step] # ');
+    folder.write('azimuth.pawl.yaml', text);
+    expect((await folder.run(['check'])).status).toBe(1);
+    expect(await folder.run(['latch', '--reason', 'first'])).toMatchObject({
+      ...{
+        status: 0,
+        errors: '',
+        output: 'latched 3 requirements and 4 coefficients in latched/azimuth.json\n',
+      },
+    });
+    expect(await folder.run(['check'])).toMatchObject({ status: 0, errors: '' });
+  });
+
   it('writes over nothing', async () => {
     folder.write('azimuth.pawl.yaml', 'mine');
     const { status, errors } = await folder.run(['start', 'azimuth.elf']);
