@@ -1,8 +1,18 @@
 import type { Complex } from './complex.js';
-import { complexEigenvalues } from './complex_eigenvalues.js';
 import { applied, oneLess, product, realForm, scaled, sum, wave } from './complex_matrix.js';
+import { determinantOf } from './determinant.js';
 import type { LocusPoint } from './gain_loci.js';
-import { euclideanNorm, type Matrix, place, scale, zeros } from './matrix.js';
+import {
+  add,
+  euclideanNorm,
+  fromRows,
+  identity,
+  type Matrix,
+  multiply,
+  place,
+  scale,
+  zeros,
+} from './matrix.js';
 import { NumericFailure } from './numeric_failure.js';
 import { prepareResponseMatrix } from './response.js';
 import { rootBetween } from './root_finding.js';
@@ -54,18 +64,13 @@ export class DelayCurves {
   }
 
   private atRealFrequency(frequency: number): number {
-    const sensitivity = this.response(frequency);
+    const real = (matrix: readonly (readonly Complex[])[]): Matrix =>
+      fromRows(matrix.map((row) => row.map((entry) => entry.real)));
+    const sensitivity = real(this.response(frequency));
+    const complementary = add(identity(this.changes), sensitivity, -1);
     // Real, but for half the sampling frequency, where the imaginary part is the way from one sense of turning to the other.
-    const determinant = (delay: number): number => {
-      const turned = oneLess(
-        sensitivity,
-        this.turn(frequency, delay, () => ({ real: 1, imaginary: 0 })),
-      );
-      const both = sensitivity.map((row, i) =>
-        row.map(({ real }, j) => ({ real: real + turned[i][j].real, imaginary: 0 })),
-      );
-      return complexEigenvalues(both).reduce<Complex>(product, { real: 1, imaginary: 0 }).real;
-    };
+    const determinant = (delay: number): number =>
+      determinantOf(add(sensitivity, multiply(complementary, real(this.turn(frequency, delay, once)))));
     const step = this.spacing / partsOfChange;
     let before = determinant(0);
     for (let k = 1; k <= 2 * this.changes * partsOfChange; k++) {
@@ -217,10 +222,7 @@ export class DelayCurves {
     const [ahead, frequency, delay] = this.numbersOf(here);
     const y = complexOf(here, n);
     const s = this.response(frequency);
-    const turned = oneLess(
-      s,
-      this.turn(frequency, delay, () => ({ real: 1, imaginary: 0 })),
-    );
+    const turned = oneLess(s, this.turn(frequency, delay, once));
     const forward = wave(ahead);
     const m = s.map((row, i) => row.map((entry, j) => sum(product(forward, entry), turned[i][j])));
     const seen = applied(s, y).map((z) => product(forward, z));
@@ -258,10 +260,7 @@ export class DelayCurves {
     const h = 1e-6 * Math.max(Math.abs(frequency), 1e-6 / this.period);
     const [after, before] = [frequency + h, frequency - h].map((omega) => {
       const s = this.response(omega);
-      const turned = oneLess(
-        s,
-        this.turn(omega, delay, () => ({ real: 1, imaginary: 0 })),
-      );
+      const turned = oneLess(s, this.turn(omega, delay, once));
       const seen = applied(s, y).map((z) => product(wave(ahead), z));
       return applied(turned, y).map((z, i) => sum(z, seen[i]));
     });
@@ -292,10 +291,7 @@ export class DelayCurves {
   /** Of length one, for an eigenvalue λ of L·X: λ·S·y = (I − S)·X·y; by inverse iteration (Wielandt, 1944). */
   private eigenvector(frequency: number, value: Complex, delay: number): Matrix {
     const s = this.response(frequency);
-    const turned = oneLess(
-      s,
-      this.turn(frequency, delay * this.spacing, () => ({ real: 1, imaginary: 0 })),
-    );
+    const turned = oneLess(s, this.turn(frequency, delay * this.spacing, once));
     // Beside the eigenvalue itself, where the matrix would be singular.
     const beside = { real: -value.real + 1e-13, imaginary: -value.imaginary };
     const shifted = s.map((row, i) => row.map((entry, j) => sum(turned[i][j], product(entry, beside))));
@@ -310,6 +306,9 @@ export class DelayCurves {
     return x;
   }
 }
+
+/** The weight of every sine in X itself. */
+const once = (): Complex => ({ real: 1, imaginary: 0 });
 
 /** A place is found when Newton's method moves it by less than this share. */
 const settled = 1e-13;

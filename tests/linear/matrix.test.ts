@@ -1,5 +1,6 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
+import { determinantOf } from '../../src/linear/determinant.js';
 import {
   add,
   blockOf,
@@ -9,6 +10,7 @@ import {
   multiply,
   place,
   scale,
+  toRows,
   transpose,
   zeros,
 } from '../../src/linear/matrix.js';
@@ -106,6 +108,46 @@ describe('linear equations', () => {
         expect(columnSumNorm(add(multiply(a, solve(a, b)), b, -1))).toBeLessThan(1e-14 * n);
       }),
     );
+  });
+});
+
+describe('determinants', () => {
+  const size = 4;
+  const entry = fc.double({ min: -3, max: 3, noNaN: true });
+  const square = fc
+    .array(fc.array(entry, { minLength: size, maxLength: size }), { minLength: size, maxLength: size })
+    .map((rows) => fromRows(rows));
+
+  it('are those of products, and change sign where two rows change places', () => {
+    fc.assert(
+      fc.property(square, square, (a, b) => {
+        expect(determinantOf(multiply(a, b))).toBeCloseTo(determinantOf(a) * determinantOf(b), 6);
+        const rows = toRows(a);
+        const swapped = fromRows([rows[1], rows[0], rows[2], rows[3]]);
+        expect(determinantOf(swapped)).toBeCloseTo(-determinantOf(a), 9);
+      }),
+    );
+  });
+
+  it('are one of the identity, zero where a row is one of the others, and none where a matrix is not square', () => {
+    expect(determinantOf(identity(3))).toBe(1);
+    expect(
+      determinantOf(
+        fromRows([
+          [1, 2],
+          [2, 4],
+        ]),
+      ),
+    ).toBe(0);
+    expect(
+      determinantOf(
+        fromRows([
+          [0, 2],
+          [3, 4],
+        ]),
+      ),
+    ).toBe(-6);
+    expect(() => determinantOf(zeros(2, 3))).toThrow('2 x 3 has no determinant');
   });
 });
 
