@@ -224,6 +224,44 @@ describe('an interrupt while plants run', () => {
     folder.remove();
   });
 
+  it('while the latched numbers run, or a loss is shared out, leaves what is broken, and nothing as met', async () => {
+    const folder = new Folder();
+    const spec = uncertain('merge: { reference: kept.json, may_slip: 5 % }\n')
+      .replace('inputs:', 'firmware: { command: [node, numbers.mjs], coefficients: { gain: gain } }\ninputs:')
+      .replace('target - seen', 'gain * (target - seen)');
+    folder.write('axis.pawl.yaml', spec.replace('at_most: 0.7', 'at_most: 0.9'));
+    folder.write('numbers.mjs', 'console.log(\'{ "gain": 1 }\')');
+    expect((await folder.run(['latch', '--reason', 'r'])).status).toBe(0);
+    folder.write('axis.pawl.yaml', spec.replace('at_most: 20 %', 'at_most: 30 %'));
+    folder.write('numbers.mjs', 'console.log(\'{ "gain": 1.5 }\')');
+    const runs = (line: string): number => Number(/: ([\d,]+) runs/.exec(line)?.[1].replace(',', '') ?? 0);
+    let all = 0;
+    await interruptedAt(
+      folder,
+      (line) => {
+        all = Math.max(all, runs(line));
+        return false;
+      },
+      'check',
+    );
+    expect(found(folder).requirements[1].since_latched.attribution).toHaveLength(1);
+    // The last runs are those of the latched numbers with and without the change.
+    for (const before of [3, 12]) {
+      const ended = await interruptedAt(folder, runsFrom(all - before), 'check');
+      expect(ended.status).toBe(2);
+      const { partial, requirements } = found(folder);
+      expect(partial).toBe(true);
+      expect(requirements).toMatchObject([
+        {
+          verdict: 'unjudged',
+          why: expect.stringContaining('before it was held against the latched reference'),
+        },
+        { verdict: 'broken' },
+      ]);
+    }
+    folder.remove();
+  });
+
   it('latches nothing', async () => {
     const folder = new Folder();
     folder.write('axis.pawl.yaml', uncertain('merge: { reference: kept.json, may_slip: 5 % }\n'));

@@ -1,6 +1,7 @@
 import { LoopError } from '../../loop/loop.js';
 import type { CoefficientValues } from '../../loop/parts.js';
 import type { Spec } from '../../spec/spec.js';
+import type { Watch } from '../crew.js';
 import { judge } from '../judge.js';
 import { PlantMeasurer } from '../plant_answers.js';
 import type { LossShare } from '../run.js';
@@ -25,32 +26,33 @@ const leastHeadroom = -10;
 /** Smaller losses are of rounding, not of a coefficient. */
 const leastLoss = 1e-9;
 
+/** What losses are shared out over. */
+export interface SharingTask {
+  spec: Spec;
+  latched: CoefficientValues;
+  today: CoefficientValues;
+  /** Names of the coefficients that differ. */
+  changed: readonly string[];
+  losses: readonly LossToShare[];
+  /** Of the steps, as they were settled for all plants. */
+  halvings: number;
+}
+
 /**
  * Shares out what each loss of headroom has to do with each changed coefficient: exact Shapley shares up to ten changes,
  * sampled beyond. An array is one coefficient.
- *
- * @param changed names of the coefficients that differ in `latched` and `today`.
- * @param halvings of the steps, as they were settled for all plants.
  */
-export function shareLosses(
-  spec: Spec,
-  { latched, today }: Record<'latched' | 'today', CoefficientValues>,
-  changed: readonly string[],
-  losses: readonly LossToShare[],
-  halvings: number,
-): SharedLoss[] {
+export async function shareLosses(task: SharingTask, watch: Watch = {}): Promise<SharedLoss[]> {
+  const { spec, changed, losses } = task;
   const none = losses.map((): SharedLoss => ({ attribution: [], sampledOrders: undefined }));
   if (changed.length === 0 || losses.length === 0) return none;
-  const worthOf = (members: readonly boolean[]): number[] => {
-    const values = new Map(latched);
-    changed.forEach((name, at) => {
-      if (members[at]) values.set(name, today.get(name)!);
-    });
-    const measurer = new PlantMeasurer({ spec, coefficients: values });
-    return losses.map((loss) => -headroomOf(spec, measurer, loss, halvings));
-  };
   try {
-    const { shares, sampledOrders } = shapleyShares(changed.length, worthOf, spec.perturbation.seed);
+    const worths = await worthsOf(task, watch);
+    const { shares, sampledOrders } = shapleyShares(
+      changed.length,
+      (members) => worths.get(members.join())!,
+      spec.perturbation.seed,
+    );
     return losses.map((_, game) => ({
       attribution: rowsOf(
         changed,
@@ -63,6 +65,39 @@ export function shareLosses(
     if (error instanceof LoopError) return none;
     throw error;
   }
+}
+
+/** What the changes of each coalition that is asked for lose in every game, worked out one by one, so that an interrupt is heard. */
+async function worthsOf(task: SharingTask, { signal, done }: Watch): Promise<Map<string, number[]>> {
+  const { spec, changed, losses } = task;
+  const asked: (readonly boolean[])[] = [];
+  const nothing = losses.map(() => 0);
+  const ask = (members: readonly boolean[]): number[] => {
+    asked.push(members);
+    return nothing;
+  };
+  shapleyShares(changed.length, ask, spec.perturbation.seed);
+  const worths = new Map<string, number[]>();
+  for (const members of asked) {
+    await new Promise((resolve) => setImmediate(resolve));
+    signal?.throwIfAborted();
+    worths.set(members.join(), worthOf(task, members));
+    done?.(losses.reduce((sum, { plants }) => sum + plants.length, 0));
+  }
+  return worths;
+}
+
+/** The loss of each game with today's numbers of the members alone. */
+function worthOf(
+  { spec, latched, today, changed, losses, halvings }: SharingTask,
+  members: readonly boolean[],
+): number[] {
+  const coefficients = new Map(latched);
+  changed.forEach((name, at) => {
+    if (members[at]) coefficients.set(name, today.get(name)!);
+  });
+  const measurer = new PlantMeasurer({ spec, coefficients });
+  return losses.map((loss) => -headroomOf(spec, measurer, loss, halvings));
 }
 
 /** The smallest headroom on the plants, as a share of the limit. */

@@ -2,6 +2,7 @@ import { LoopError } from '../../loop/loop.js';
 import type { CoefficientValues } from '../../loop/parts.js';
 import { measureNamed } from '../../measure/index.js';
 import type { Requirement, Spec } from '../../spec/spec.js';
+import type { Watch } from '../crew.js';
 import type { JudgedSpec, JudgeOptions } from '../judge_spec.js';
 import type { CoefficientChange, ComparedResult, Comparison, RequirementRun } from '../run.js';
 import { type LossToShare, shareLosses } from './attribution.js';
@@ -47,7 +48,9 @@ export async function compareRequirements(
     };
   });
   const found =
-    latched && Array.isArray(reruns) ? attributed(task, latched, reruns, comparisons) : comparisons;
+    latched && Array.isArray(reruns)
+      ? await attributed(task, latched, reruns, comparisons, options.watch)
+      : comparisons;
   return found.map((comparison, index) => (isOfTheChange(spec.requirements[index]) ? undefined : comparison));
 }
 
@@ -68,12 +71,13 @@ async function rerunOrWhy(
   }
 }
 
-function attributed(
+async function attributed(
   { spec, today, changes, judged }: ToCompare,
   latched: CoefficientValues,
   reruns: readonly Rerun[],
   comparisons: readonly Comparison[],
-): Comparison[] {
+  watch: Watch | undefined,
+): Promise<Comparison[]> {
   const changed = changes.filter((change) => isLike(change)).map(({ name }) => name);
   const losing = [...comparisons.keys()].filter(
     (index) => hasLost(comparisons[index]) && !isOfTheChange(spec.requirements[index]),
@@ -84,7 +88,8 @@ function attributed(
     const more = holdsFor === 'nominal' ? [] : [reruns[index].plant];
     return { requirement: index, plants: [...plants.map(plantValues), ...more] };
   });
-  const shared = shareLosses(spec, { latched, today }, changed, losses, judged.halvings);
+  const { halvings } = judged;
+  const shared = await shareLosses({ spec, latched, today, changed, losses, halvings }, watch);
   return comparisons.map((comparison, index) => {
     const at = losing.indexOf(index);
     if (at < 0) return comparison;

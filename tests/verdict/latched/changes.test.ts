@@ -84,7 +84,7 @@ describe('changed coefficients', () => {
       { name: 'b', latched: [2], today: [2.5], elements: [0] },
       { name: 'taps', latched: [1, 2, 3], today: [1, 3, 2], elements: [1, 2] },
     ]);
-    expect(withLatched(today, reference, changes).get('b')).toEqual(stored(2));
+    expect(withLatched(today, reference, changes)!.get('b')).toEqual(stored(2));
   });
 
   it('tell zero from minus zero, which a controller may', () => {
@@ -108,7 +108,7 @@ describe('changed coefficients', () => {
       ['young', 'it is new'],
       ['old', 'the spec no longer names it'],
     ]);
-    expect([...withLatched(today, reference, changes)]).toEqual([...today]);
+    expect(withLatched(today, reference, changes)).toBeUndefined();
   });
 
   it('are there where only the number format is another', () => {
