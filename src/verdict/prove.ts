@@ -2,17 +2,14 @@ import type { CoefficientValues } from '../loop/parts.js';
 import type { ParameterSpace } from '../perturb/parameter_space.js';
 import { LoopFamily } from '../perturb/proof/loop_family.js';
 import type { LoopClaim } from '../perturb/proof/margin_statement.js';
-import { proveClaim, provenStableAt, statesAt } from '../perturb/proof/prove_claim.js';
+import { proveClaim, provenStableAt, workAt } from '../perturb/proof/prove_claim.js';
 import { Unprovable } from '../perturb/proof/slope_evaluation.js';
 import type { Requirement, Spec } from '../spec/spec.js';
 import type { Proof } from './run.js';
 
-/**
- * Boxes that a proof may look at: fewer where each costs more, which grows with the cube of the number of states and with the
- * number of parameters.
- */
-function budgetOf(states: number, parameters: number): number {
-  return Math.max(50, Math.min(1000, Math.floor(6e5 / (states ** 3 * (parameters + 3)))));
+/** Boxes that a proof may look at: fewer where each costs more, by the products of quantities that one takes and their parameters. */
+function budgetOf(products: number, parameters: number): number {
+  return Math.max(20, Math.min(1000, Math.floor(2.5e6 / ((300 + products) * (parameters + 3)))));
 }
 
 /** A proof, with the plant that refutes it where there is one. */
@@ -73,12 +70,12 @@ function proveFamily(
   if (!provenStableAt(family, nominal)) {
     throw new Unprovable('rounding leaves the bounds too wide even for the nominal plant alone');
   }
-  const budget = budgetOf(statesAt(family, nominal), nominal.length);
+  const budget = budgetOf(workAt(family, nominal), nominal.length);
   const result = proveClaim(family, claim, failsAt, budget);
   if (result.kind === 'refuted') {
     return { proof: { kind: 'refuted', boxes: result.boxes }, counterexample: plantAt(result.at) };
   }
-  const why = `the budget of ${budget} boxes ended`;
+  const why = `more is left than a budget of ${budget} boxes allows`;
   return { proof: result.kind === 'open' ? { ...result, why } : result, counterexample: undefined };
 }
 

@@ -22,7 +22,7 @@ export interface BoxStatement {
 
 /**
  * Proves a statement on a box by halving what cannot be proved at once (branch and bound; Moore 1966), the largest box
- * first, until all is proved, a point is found where it is false, or the budget is spent.
+ * first, until all is proved, a point is found where it is false, or what is left is more than the budget allows.
  * @param budget how many plain boxes may be looked at; the result depends on nothing else.
  */
 export function proveOn(box: readonly Interval[], statement: BoxStatement, budget: number): ProofResult {
@@ -32,7 +32,8 @@ export function proveOn(box: readonly Interval[], statement: BoxStatement, budge
   while (open.length > 0) {
     const next: typeof open = [];
     for (const [at, one] of open.entries()) {
-      if (spent >= budget) {
+      // Each box that is left takes a look at least.
+      if (spent + (open.length - at) + next.length > budget) {
         const left = [...open.slice(at), ...next];
         return { kind: 'open', boxes, openShare: left.reduce((sum, { share }) => sum + share, 0) };
       }

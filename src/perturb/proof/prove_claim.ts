@@ -72,8 +72,10 @@ export function provenStableAt(family: PolynomialFamily, parameters: readonly nu
   return !('cut' in loops) && loops.every((loop) => claimHolds(field, loop, { kind: 'stable' }));
 }
 
-/** Number of states of the loop of one plant, on which the cost of a box depends. */
-export function statesAt(family: PolynomialFamily, parameters: readonly number[]): number {
-  const loops = family.polynomials(new SlopeField(parameters.map((value): Interval => [value, value])));
-  return 'cut' in loops ? 1 : Math.max(...loops.map(({ denominator }) => denominator.length - 1));
+/** Products of quantities that one look at the loop takes, on which the cost of a box depends. */
+export function workAt(family: PolynomialFamily, parameters: readonly number[]): number {
+  const field = new SlopeField(parameters.map((value): Interval => [value, value]));
+  const loops = family.polynomials(field);
+  if (!('cut' in loops)) for (const loop of loops) claimHolds(field, loop, { kind: 'stable' });
+  return field.products;
 }

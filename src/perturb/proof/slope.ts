@@ -27,6 +27,8 @@ const none: Interval = [0, 0];
 
 /** Arithmetic over one box. */
 export class SlopeField {
+  /** How many products were formed: what the work of a look at a box grows with. */
+  products = 0;
   private readonly offsets: Interval[];
   private readonly flat: readonly Interval[];
 
@@ -82,6 +84,7 @@ export class SlopeField {
     if (isNothing(a) || isNothing(b)) return this.constant(0);
     if (isOne(a)) return b;
     if (isOne(b)) return a;
+    this.products++;
     return this.tight(
       product(a.range, b.range),
       product(a.centre, b.centre),

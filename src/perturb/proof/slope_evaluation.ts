@@ -1,4 +1,5 @@
-import type { LeafKind, Node, OperationName } from '../../loop/graph.js';
+import { counting } from '../../loop/fixed_point.js';
+import { firstTerm, type LeafKind, type Node, type OperationName } from '../../loop/graph.js';
 import { everything, type Interval, isZero, size, widened } from './interval.js';
 import { isNothing, type Slope, type SlopeField } from './slope.js';
 
@@ -65,14 +66,38 @@ export class SlopeEvaluation {
       case 'max':
         return this.less(at(0), at(1)) ? at(1) : at(0);
       case 'less':
-      case 'less_or_equal':
         return field.constant(this.less(at(0), at(1)) ? 1 : 0);
+      case 'less_or_equal':
+        return field.constant(this.less(at(1), at(0)) ? 0 : 1);
+      case 'equal':
+        return field.constant(this.equals(at(0), at(1)) ? 1 : 0);
+      case 'unequal':
+        return field.constant(this.equals(at(0), at(1)) ? 0 : 1);
       case 'quantise':
       case 'single':
         return at(0);
+      case 'fused_multiply_add':
+        return field.add(this.product(of[0], of[1]), at(2));
+      case 'fit':
+        return this.isCounting(of[5]) ? field.constant(0) : at(0);
+      case 'fit_quotient':
+        return this.isCounting(of[5]) ? field.constant(0) : field.divide(at(0), at(1));
+      case 'fit_sum':
+        return this.isCounting(of[4]) ? field.constant(0) : this.sumOfProducts(of.slice(firstTerm));
       default:
         return this.call(name, at(0));
     }
+  }
+
+  /** Whether a format's operation counts what overflows, beside the equations. */
+  private isCounting(overflow: Node): boolean {
+    return overflow.kind === 'number' && overflow.value >= counting;
+  }
+
+  private sumOfProducts(of: readonly Node[]): Slope {
+    let sum = this.field.constant(0);
+    for (let at = 0; at < of.length; at += 2) sum = this.field.add(sum, this.product(of[at], of[at + 1]));
+    return sum;
   }
 
   /** What is not known may be multiplied by nothing: as of two conditions one that does not hold and one that may. */
@@ -99,8 +124,15 @@ export class SlopeEvaluation {
 
   private less(a: Slope, b: Slope): boolean {
     if (a.range[1] < b.range[0]) return true;
-    if (a.range[0] > b.range[1]) return false;
+    if (a.range[0] >= b.range[1]) return false;
     throw new Unprovable('a comparison in the loop goes both ways within the bounds');
+  }
+
+  private equals(a: Slope, b: Slope): boolean {
+    const ends = [...a.range, ...b.range];
+    if (ends.every((end) => end === ends[0])) return true;
+    if (a.range[1] < b.range[0] || a.range[0] > b.range[1]) return false;
+    throw new Unprovable('an equality in the loop goes both ways within the bounds');
   }
 
   private limited(x: Slope, low: Slope, high: Slope): Slope {

@@ -1,12 +1,22 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { Evaluation } from '../../../src/loop/evaluate.js';
+import { counting } from '../../../src/loop/fixed_point.js';
 import { Graph, type Node } from '../../../src/loop/graph.js';
 import type { Interval } from '../../../src/perturb/proof/interval.js';
 import { SlopeField } from '../../../src/perturb/proof/slope.js';
 import { SlopeEvaluation, Unprovable } from '../../../src/perturb/proof/slope_evaluation.js';
 
 type Build = (graph: Graph, x: Node, y: Node) => Node;
+
+const [step, nearest, low, size] = [2 ** -15, 0, -1, 2];
+const numbers = (g: Graph, ...of: number[]): Node[] => of.map((one) => g.number(one));
+const fitted = (g: Graph, name: 'fit', overflow: number, x: Node): Node =>
+  g.apply(name, x, ...numbers(g, step, nearest, low, size, overflow));
+const quotient = (g: Graph, overflow: number, x: Node, y: Node): Node =>
+  g.apply('fit_quotient', x, y, ...numbers(g, step, low, size, overflow));
+const fittedSum = (g: Graph, overflow: number, ...terms: Node[]): Node =>
+  g.apply('fit_sum', ...numbers(g, step, nearest, low, size, overflow, step, low, size), ...terms);
 
 const expressions: [string, Build][] = [
   [
@@ -42,6 +52,11 @@ const expressions: [string, Build][] = [
     '|x + 9| limited below 100',
     (g, x) => g.apply('limit', g.apply('abs', g.apply('add', x, g.number(9))), g.number(-1), g.number(100)),
   ],
+  ['x·y + x rounded once', (g, x, y) => g.apply('fused_multiply_add', x, y, x)],
+  ['x in a fixed-point format, times y', (g, x, y) => g.apply('multiply', fitted(g, 'fit', 0, x), y)],
+  ['x·y + y·y in a fixed-point format', (g, x, y) => fittedSum(g, 0, x, y, y, y)],
+  ['x/(y + 9) in a fixed-point format', (g, x, y) => quotient(g, 0, x, g.apply('add', y, g.number(9)))],
+  ['a count of what overflows, which is no part of the equations', (g, x, y) => fittedSum(g, counting, x, y)],
   [
     '1 − tanh²',
     (g, x, y) =>
@@ -59,7 +74,7 @@ function over(build: Build, box: Interval[]) {
   const node = build(graph, graph.leaf('parameter', 0), graph.leaf('parameter', 1));
   const field = new SlopeField(box);
   const slope = new SlopeEvaluation(field, (_, index) => field.variable(index)).of(node);
-  const value = (x: number, y: number): number => new Evaluation({ parameter: [x, y] }).of(node);
+  const value = (x: number, y: number): number => new Evaluation({ parameter: [x, y] }, 'off').of(node);
   return { slope, value };
 }
 
@@ -105,6 +120,25 @@ describe('quantities over a box', () => {
       return slope.range[1] - slope.range[0] - (0.11 + 0.33) * size;
     };
     expect(width(0.02)).toBeLessThan(0.4 * width(0.04) + 1e-4);
+  });
+
+  it('settles a comparison of equals, and a product with nothing whatever the other factor', () => {
+    const graph = new Graph();
+    const [x, y] = [graph.leaf('parameter', 0), graph.leaf('parameter', 1)];
+    const field = new SlopeField([
+      [0, 1],
+      [1, 2],
+    ]);
+    const evaluation = new SlopeEvaluation(field, (_, index) => field.variable(index));
+    expect(evaluation.of(graph.apply('less', y, x)).range).toEqual([0, 0]);
+    expect(evaluation.of(graph.apply('less_or_equal', x, y)).range).toEqual([1, 1]);
+    expect(evaluation.of(graph.apply('equal', x, graph.number(3))).range).toEqual([0, 0]);
+    expect(evaluation.of(graph.apply('unequal', y, graph.number(3))).range).toEqual([1, 1]);
+    expect(() => evaluation.of(graph.apply('equal', x, y))).toThrow('both ways');
+    const either = graph.apply('less', x, graph.apply('multiply', y, graph.number(0.5)));
+    expect(() => evaluation.of(either)).toThrow(Unprovable);
+    const never = graph.apply('less', y, x);
+    expect(evaluation.of(graph.apply('multiply', either, never)).range).toEqual([0, 0]);
   });
 
   it('does not guess where a choice goes both ways', () => {
