@@ -52,8 +52,8 @@ function settledVerdict(verdict: Verdict, comparison: Comparison | undefined, ta
 }
 
 function lawWhy(law: readonly string[], compilers: string): string {
-  const flags = compilers === '' ? '' : `; in how the compilers were called ${compilers}`;
-  return `${law.join(', ')}${flags}: the spec's model of the law may not be the law any more; hold it against the source, then accept it with pawl latch`;
+  const flags = compilers === '' ? '' : `; of the compilers' versions and flags are ${compilers}`;
+  return `${law.join('; ')}${flags}: the spec's model of the law may not be the law any more; hold it against the source, then accept it with pawl latch`;
 }
 
 function slipWhy(lost: number | undefined, maySlip: number): string {

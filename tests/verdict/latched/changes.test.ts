@@ -243,14 +243,20 @@ describe('the law', () => {
     expect(lawChanges(referenceWith(), [code('a')])).toEqual([
       'the latched reference knows no machine code of step',
     ]);
+    const other = { name: 'init', size: 4, digest: 'c' };
+    expect(lawChanges(reference, [code('b'), other, { ...other, name: 'act' }])).toEqual([
+      'the machine code of step is not the latched one (still 10 bytes)',
+      'the latched reference knows no machine code of init, act',
+    ]);
     expect(lawChanges(undefined, [code('a')])).toHaveLength(1);
     expect(lawChanges(undefined, [])).toEqual([]);
   });
 
   it('comes with what changed in how the compilers were called', () => {
     expect(compilerChanges(['GNU C11 12.2.1 -Os -g'], ['GNU C11 13.1.0 -O2 -g'])).toBe(
-      '12.2.1 is gone, -Os is gone, 13.1.0 is new, -O2 is new',
+      'gone 12.2.1 -Os, new 13.1.0 -O2',
     );
+    expect(compilerChanges(['a'], ['a 1 2 3 4 5 6 7 8 9 10'])).toBe('new 1 2 3 4 5 6 7 8 and 2 more');
     expect(compilerChanges(['a -Os'], ['a -Os'])).toBe('');
   });
 
