@@ -9,8 +9,6 @@ import { rootBetween } from './root_finding.js';
 import type { StateEquations } from './state_equations.js';
 import { prepareTransfer } from './transfer.js';
 
-export { LOOP_GAIN, type LoopResponse } from './loop_response.js';
-
 /**
  * The largest or the smallest size of a response of a loop transfer L over a band of frequencies, its ends included, proved
  * to a share of 1e-10 by the frequencies at which the size is a level (see `provenPeak`). A size below 1e-13 counts as zero,

@@ -1,5 +1,6 @@
 import { analyseLoop } from './loop_analysis.js';
-import { BALANCED, peakOfLoop } from './loop_peaks.js';
+import { peakOfLoop } from './loop_peaks.js';
+import { BALANCED } from './loop_response.js';
 import type { StateEquations } from './state_equations.js';
 
 /** By how much gain and phase may change at the same time. */

@@ -6,8 +6,6 @@ import type { Peak } from './peak.js';
 import { provenPeak } from './proven_peak.js';
 import { rootBetween } from './root_finding.js';
 
-export { BALANCED, COMPLEMENTARY, SENSITIVITY } from './loop_response.js';
-
 /**
  * The largest size of a closed-loop response of a stable loop: the best of the sweep, then proved to be the largest.
  * With a dead time the sweep alone stands, because the proof needs a rational response.

@@ -7,7 +7,8 @@ import {
 } from './crossings.js';
 import type { FrequencySweep } from './frequency_sweep.js';
 import { analyseLoop } from './loop_analysis.js';
-import { COMPLEMENTARY, peakOfLoop, SENSITIVITY } from './loop_peaks.js';
+import { peakOfLoop } from './loop_peaks.js';
+import { COMPLEMENTARY, SENSITIVITY } from './loop_response.js';
 import type { Peak } from './peak.js';
 import type { StateEquations } from './state_equations.js';
 
