@@ -108,6 +108,26 @@ describe('a cascade of two rates', () => {
     },
   );
 
+  it('has no margin, a negative damping and still its crossovers where it is unstable', () => {
+    const loop = cascade(4, 0.5);
+    loop.controllers = loop.controllers!.replace('(6 s)', '(90 s)');
+    const values = Object.fromEntries(smallValues(loop).map((value, i) => [measures[i], value]));
+    expect(values[measures[2]]).toBe(0);
+    for (const name of measures.filter((text) => /^(bandwidth|sampling_ratio)/.test(text))) {
+      expect(values[name], name).toBe(0);
+    }
+    for (const name of measures.filter((text) => /^largest_(sensitivity|following)/.test(text))) {
+      expect(values[name], name).toBe(Number.POSITIVE_INFINITY);
+    }
+    for (const name of measures.filter((text) => /^(stability|least_damping)/.test(text))) {
+      expect(values[name], name).toBeLessThan(0);
+    }
+    for (const name of measures.filter((text) => /crossover|loop_gain|hold/.test(text))) {
+      expect(values[name], name).toBeGreaterThan(0);
+      expect(values[name], name).toBeLessThan(Number.POSITIVE_INFINITY);
+    }
+  });
+
   it('has the damping of its oscillation after a step', () => {
     // One pair of poles rules the response: the logarithmic decrement of the speed is 2πζ/√(1 − ζ²) a period.
     const loop = cascade(4, 0.5, ['least_damping, at_least: 0.01']);
