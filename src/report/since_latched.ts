@@ -35,7 +35,8 @@ export function mergeInWords({
   merge,
   sinceLatched,
   coefficients: read,
-}: Pick<SpecRun, 'merge' | 'sinceLatched' | 'coefficients'>): string | undefined {
+  requirements,
+}: Pick<SpecRun, 'merge' | 'sinceLatched' | 'coefficients' | 'requirements'>): string | undefined {
   if (!sinceLatched) return merge;
   const { path, reference, coefficients, spec, law } = sinceLatched;
   if (!reference) {
@@ -47,7 +48,11 @@ export function mergeInWords({
   if (left > 0) numbers.push(`${left} more coefficients`);
   const changes = [...numbers, ...[...spec, ...law].map((text) => oneLine(text))];
   const since = changes.length === 0 ? 'nothing changed' : `changed since: ${changes.join('; ')}`;
-  return `compared with the latched reference ${oneLine(path)} (${shortened(oneLine(reference.reason), 120)}); ${since}`;
+  const compared = `compared with the latched reference ${oneLine(path)} (${shortened(oneLine(reference.reason), 120)}); ${since}`;
+  const idle = requirements.filter(({ waiver, verdict }) => waiver && verdict.kind === 'met');
+  if (idle.length === 0) return compared;
+  const names = idle.map(({ name }) => shortened(oneLine(name), 48));
+  return `${compared}; no longer needed: the waiver of ${names.join(', ')}`;
 }
 
 /** A changed coefficient with its numbers: "kd 1.2 → 0.8 s", of an array those that differ: "notch[1] -1.73 → -1.69, …". */

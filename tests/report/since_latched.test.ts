@@ -158,6 +158,12 @@ describe('the merge section', () => {
     );
   });
 
+  it('points out a waiver of what is met, so that it is taken away', () => {
+    const waiver = { reason: 'r', until: '2027-03-01', letsThrough: false, why: 'it is met' };
+    const requirements = [requirement({ name: 'AZ-2', waiver }), requirement()];
+    expect(mergeInWords({ ...run(), requirements })).toMatch(/; no longer needed: the waiver of AZ-2$/);
+  });
+
   it('says that there is no reference, and that a law needs one', () => {
     const none = { ...run().sinceLatched!, reference: undefined, coefficients: [], spec: [] };
     expect(mergeInWords({ ...run(), sinceLatched: none })).toMatch(
