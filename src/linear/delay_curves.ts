@@ -43,14 +43,22 @@ const partsOfChange = 16;
  */
 export class DelayCurves {
   private readonly response: (frequency: number) => Complex[][];
+  /** Of each signal in a cycle. */
   private readonly changes: number;
+  /** Of all signals. */
+  private readonly size: number;
   private readonly period: number;
   /** Time between two changes, s. */
   private readonly spacing: number;
 
-  constructor(sensitivity: StateEquations) {
+  /** @param signals how many there are, which change equally often and one after the other. */
+  constructor(
+    sensitivity: StateEquations,
+    private readonly signals: number,
+  ) {
     this.response = prepareResponseMatrix(sensitivity);
-    this.changes = sensitivity.b.columns;
+    this.size = sensitivity.b.columns;
+    this.changes = this.size / signals;
     this.period = sensitivity.period!;
     this.spacing = this.period / this.changes;
   }
@@ -67,7 +75,7 @@ export class DelayCurves {
     const real = (matrix: readonly (readonly Complex[])[]): Matrix =>
       fromRows(matrix.map((row) => row.map((entry) => entry.real)));
     const sensitivity = real(this.response(frequency));
-    const complementary = add(identity(this.changes), sensitivity, -1);
+    const complementary = add(identity(this.size), sensitivity, -1);
     // Real, but for half the sampling frequency, where the imaginary part is the way from one sense of turning to the other.
     const determinant = (delay: number): number =>
       determinantOf(add(sensitivity, multiply(complementary, real(this.turn(frequency, delay, once)))));
@@ -218,7 +226,7 @@ export class DelayCurves {
    */
   private rowsAt(here: Place, from: Place, kept: Place): { matrix: Matrix; residual: Float64Array } {
     const size = here.length;
-    const n = this.changes;
+    const n = this.size;
     const [ahead, frequency, delay] = this.numbersOf(here);
     const y = complexOf(here, n);
     const s = this.response(frequency);
@@ -268,11 +276,14 @@ export class DelayCurves {
   }
 
   private numbersOf(here: Place): [number, number, number] {
-    const n = 2 * this.changes;
+    const n = 2 * this.size;
     return [here[n], here[n + 1] / this.period, here[n + 2] * this.spacing];
   }
 
-  /** X, each of its sines weighed: entry (i, k) is the mean over them of weight(ω)·e^{jω((i − k)T − τ)}. */
+  /**
+   * X, each of its sines weighed: entry (i, k) of a signal is the mean over them of weight(ω)·e^{jω((i − k)T − τ)}, and it has
+   * none from one signal to another.
+   */
   private turn(frequency: number, delay: number, weight: (omega: number) => Complex): Complex[][] {
     const n = this.changes;
     const cycle = (2 * Math.PI) / this.period;
@@ -285,7 +296,13 @@ export class DelayCurves {
         })
         .reduce(sum),
     );
-    return Array.from({ length: n }, (_, i) => Array.from({ length: n }, (_, k) => byShift[i - k + n - 1]));
+    const nothing = { real: 0, imaginary: 0 };
+    const { signals } = this;
+    return Array.from({ length: this.size }, (_, row) =>
+      Array.from({ length: this.size }, (_, column) =>
+        (row - column) % signals === 0 ? byShift[(row - column) / signals + n - 1] : nothing,
+      ),
+    );
   }
 
   /** Of length one, for an eigenvalue λ of L·X: λ·S·y = (I − S)·X·y; by inverse iteration (Wielandt, 1944). */
@@ -296,7 +313,7 @@ export class DelayCurves {
     const beside = { real: -value.real + 1e-13, imaginary: -value.imaginary };
     const shifted = s.map((row, i) => row.map((entry, j) => sum(turned[i][j], product(entry, beside))));
     const matrix = realForm(shifted);
-    let x = zeros(2 * this.changes, 1);
+    let x = zeros(2 * this.size, 1);
     // Entries without a pattern, so that no eigenvector lies across.
     for (let i = 0; i < x.rows; i++) x.data[i] = 1 + ((i * 0.6180339887498949) % 1);
     for (let round = 0; round < 3; round++) {

@@ -1,13 +1,15 @@
+import { smallestCommonDelay } from './common_delay.js';
 import { DelayCurves } from './delay_curves.js';
 import { GainLoci } from './gain_loci.js';
 import { liftedSensitivity } from './lifted_response.js';
 import { identity, multiply, place, zeros } from './matrix.js';
 import { NumericFailure } from './numeric_failure.js';
 import { areStable, polesOf } from './poles.js';
+import { separateLoops } from './separate_loops.js';
 import type { StateEquations } from './state_equations.js';
 
 /**
- * The smallest delay τ in s of all changes of a signal that brings the loop to the edge of stability. With a delay, each of
+ * The smallest delay τ in s of all changes of a signal, or of several signals alike, that brings the loop to the edge of stability. With a delay, each of
  * the frequencies ω = θ + 2πm/(KT) that are the same at the ends of a cycle, |ω| ≤ π/T, is turned by e^{−jωτ}, so that a delay of
  * whole changes is exact; the edge is where L(θ)·X(θ, τ) has the eigenvalue −1, X being that turn. At π/T itself, where a sine
  * is its own image and turned both ways, cos(πτ/T) is left of it. Of a loop that is the same at every sample the smallest τ is
@@ -15,21 +17,30 @@ import type { StateEquations } from './state_equations.js';
  *
  * From every place where an eigenvalue of L is of size one the curve is followed on which one of L·X is. Poles then tell
  * whether the loop is stable with less delay, of whole changes; where it is not, curves are followed from those delays too.
- * @param loop L, lifted, of a stable closed loop; its inputs are the values of one signal.
+ * @param loop L, lifted, of a stable closed loop; its inputs are the values of one signal, or of several that change equally
+ * often in a cycle, one after the other.
  * @param loci of its eigenvalues.
+ * @param signals how many there are.
  * @throws NumericFailure when a curve cannot be followed, or the loop is found unstable with less delay all the same.
  */
-export function smallestDelay(loop: StateEquations, loci: GainLoci): number {
-  const curves = new DelayCurves(liftedSensitivity(loop));
-  let least = firstEdge(curves, loci, 0, [1], curves.atRealFrequencies());
-  if (unstableWithLess(loop, least) === undefined) return least;
-  for (let delay = 1; delay <= loop.b.columns; delay++) {
-    least = firstEdge(curves, lociOf(delayedLoop(loop, delay)), delay, [1, -1], least);
+export function smallestDelay(loop: StateEquations, loci: GainLoci, signals: number): number {
+  if (loop.b.columns === signals) return smallestCommonDelay(loci, loop.period!);
+  const changes = loop.b.columns / signals;
+  // Equal loops that know nothing of one another have equal eigenvalues, whose curves could not be told apart.
+  const parts = separateLoops(loop, signals);
+  if (parts.length > 1) {
+    return Math.min(...parts.map((part) => smallestDelay(part, lociOf(part), part.b.columns / changes)));
   }
-  const unstable = unstableWithLess(loop, least);
+  const curves = new DelayCurves(liftedSensitivity(loop), signals);
+  let least = firstEdge(curves, loci, 0, [1], curves.atRealFrequencies());
+  if (unstableWithLess(loop, least, signals) === undefined) return least;
+  for (let delay = 1; delay <= changes; delay++) {
+    least = firstEdge(curves, lociOf(delayedLoop(loop, delay * signals)), delay, [1, -1], least);
+  }
+  const unstable = unstableWithLess(loop, least, signals);
   if (unstable === undefined) return least;
   throw new NumericFailure(
-    `the delay that brings the loop to the edge of stability was not proved: ${least} s was found, but the loop is unstable with ${(unstable * loop.period!) / loop.b.columns} s already`,
+    `the delay that brings the loop to the edge of stability was not proved: ${least} s was found, but the loop is unstable with ${(unstable * loop.period!) / changes} s already`,
   );
 }
 
@@ -60,22 +71,22 @@ const mostKept = 150;
 const fewer = 4;
 
 /**
- * A number of whole changes by which the signal may be late before a delay is reached, but with which the loop is unstable:
+ * A number of whole changes by which each signal may be late before a delay is reached, but with which the loop is unstable:
  * of all up to a cycle, and of some more up to the delay.
  */
-function unstableWithLess(loop: StateEquations, delay: number): number | undefined {
-  const changes = loop.b.columns;
+function unstableWithLess(loop: StateEquations, delay: number, signals: number): number | undefined {
+  const changes = loop.b.columns / signals;
   // At the edge itself poles may tell either.
   const whole = Math.min(Math.ceil((delay * changes * (1 - 1e-9)) / loop.period!) - 1, mostKept);
   const first = Array.from({ length: Math.max(0, Math.min(changes, whole)) }, (_, k) => k + 1);
   const later = Array.from({ length: fewer }, (_, k) => Math.round(((k + 1) * whole) / fewer));
   return [...first, ...later.filter((k) => k > changes)].find((k) => {
-    const { a, period } = liftedSensitivity(delayedLoop(loop, k));
+    const { a, period } = liftedSensitivity(delayedLoop(loop, k * signals));
     return !areStable(polesOf(a, period), period);
   });
 }
 
-/** A lifted loop with every change of its signal delayed by so many changes, at least one. */
+/** A lifted loop with every change delayed by so many of all changes, at least one. */
 export function delayedLoop({ a, b, c, d, period }: StateEquations, delay: number): StateEquations {
   const n = a.rows;
   const changes = b.columns;

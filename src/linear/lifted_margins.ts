@@ -20,7 +20,7 @@ export interface LiftedMargins {
   gainMargin: GainMargin;
   /** Smallest φ in rad for which e^{jφ} on every change of the signal brings the loop to the edge of stability. */
   phaseMargin: number;
-  /** Smallest delay in s of all changes of a signal that brings the loop to the edge of stability; see `smallestDelay`. */
+  /** Smallest delay in s of all changes of the signals that brings the loop to the edge of stability; see `smallestDelay`. */
   delayMargin: number;
   /** 1/‖S‖∞: by how much the returned may differ from what it is, over energy, whatever changes at whatever instant. */
   modulusMargin: number;
@@ -39,9 +39,10 @@ export interface LiftedMargins {
  * the signal the loop is at the edge of stability where an eigenvalue of L is −1/c, so gain and phase margins are read from
  * the loci of the eigenvalues; peaks are the largest singular values of the closed loop over frequency. Each is worked out
  * when it is asked for, since loci and peaks take long.
+ * @param signals how many signals the inputs are the changes of; a delay margin asks that all change equally often.
  * @throws NumericFailure when the loop cannot be closed or an entry is not finite.
  */
-export function liftedMargins(loop: StateEquations): LiftedMargins {
+export function liftedMargins(loop: StateEquations, signals = 1): LiftedMargins {
   const sensitivity = liftedSensitivity(loop);
   const poles = polesOf(sensitivity.a, loop.period);
   const decayRate = modesOf(sensitivity.a, loop.period)[0]?.decayRate ?? Number.POSITIVE_INFINITY;
@@ -51,7 +52,7 @@ export function liftedMargins(loop: StateEquations): LiftedMargins {
   const margins = {
     gainMargin: once(() => gainMarginOf(negativeCrossings(loci()))),
     phaseMargin: once(() => smallestPhase(loci())),
-    delayMargin: once(() => smallestDelay(loop, loci())),
+    delayMargin: once(() => smallestDelay(loop, loci(), signals)),
     sensitivityPeak: once(() => largestGain(sensitivity).value),
     complementaryPeak: once(() => largestGain(liftedResponse(loop, COMPLEMENTARY)).value),
     discMargin: once(() => 1 / largestGain(liftedResponse(loop, BALANCED)).value),

@@ -1,7 +1,7 @@
-import { smallestCommonDelay } from '../linear/common_delay.js';
 import { timeDimension } from '../spec/dimension.js';
 import { loopPointsKey } from './keys.js';
-import { type LoopMeasure, measured } from './measure.js';
+import type { LoopView } from './loop_view.js';
+import { type LoopMeasure, type MeasureResult, measured, unformed } from './measure.js';
 import { ofStableLoop } from './stable_loop.js';
 
 /** The delay (s) that brings the loop to the edge of stability. */
@@ -16,12 +16,16 @@ export const delayMargin: LoopMeasure = {
     least: 0,
     window: undefined,
     meaning:
-      'smallest delay τ that brings the loop to the edge of stability: the smallest (π + arg L)/ω, counted from 0 to 2π, over all frequencies with |L| = 1, and where |L| ≥ 1 at half the sampling frequency π/T the τ with L·cos(πτ/T) = −1 there (of several rates: the smallest τ for which e^{−jωτ} on each frequency of the cycle gives the lifted L the eigenvalue −1) (of several signals, each of which must change once in a cycle of all controllers: with the same delay on all at once, arg L and |L| those of an eigenvalue of the matrix L); s; infinite without a crossover, 0 when the closed loop is unstable',
+      'smallest delay τ that brings the loop to the edge of stability: the smallest (π + arg L)/ω, counted from 0 to 2π, over all frequencies with |L| = 1, and where |L| ≥ 1 at half the sampling frequency π/T the τ with L·cos(πτ/T) = −1 there (of several rates: the smallest τ for which e^{−jωτ} on each frequency of the cycle gives the lifted L the eigenvalue −1) (of several signals, which must change equally often: the same τ on all at once, L being an eigenvalue of the matrix L); s; infinite without a crossover, 0 when the closed loop is unstable',
   },
-  measure: ({ loop }) =>
-    ofStableLoop(loop, 0, () =>
-      loop.periods.length > 1
-        ? measured(smallestCommonDelay(loop.equations, loop.periods.length))
-        : measured(loop.delayMargin()),
-    ),
+  measure: ({ loop }) => ofStableLoop(loop, 0, () => delayMarginOf(loop)),
 };
+
+function delayMarginOf(loop: LoopView): MeasureResult {
+  const [first, ...others] = loop.periods;
+  const other = others.find((period) => period !== first);
+  if (other === undefined) return measured(loop.delayMargin());
+  return unformed(
+    `the opened signals change at different rates, every ${first} s and every ${other} s, so that one delay turns them differently; open the loop at signals of one rate, or at one of them`,
+  );
+}

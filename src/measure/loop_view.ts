@@ -63,7 +63,7 @@ export class LoopView {
 
   /** Of a loop with several changes a cycle. @throws NumericFailure as `liftedMargins`. */
   liftedMargins(): LiftedMargins {
-    this.lifted ??= liftedMargins(this.equations);
+    this.lifted ??= liftedMargins(this.equations, this.periods.length);
     return this.lifted;
   }
 
@@ -86,7 +86,7 @@ export class LoopView {
       : leastLiftedDamping(liftedSensitivity(this.equations));
   }
 
-  /** Of one signal, s. @throws NumericFailure as `smallestDelay`. */
+  /** Of one signal, or of several that change equally often, s. @throws NumericFailure as `smallestDelay`. */
   delayMargin(): number {
     return this.changes === 1 ? this.margins().delayMargin : this.liftedMargins().delayMargin;
   }

@@ -96,43 +96,6 @@ describe('two loops that act upon one another, opened at once', () => {
     );
   });
 
-  it('are at the edge of stability with their delay margin on both', () => {
-    // A delay of whole periods is one also between the instants, so that a gain with which it is the margin can be sought.
-    const late = (factor: number, periods: number): SmallLoop => {
-      const loop = axes([
-        [0.1 * factor, 0.04 * factor],
-        [-0.06 * factor, 0.08 * factor],
-      ]);
-      const delay = `every: 10 ms${periods > 0 ? `\n  delay: ${10 * periods} ms` : ''}`;
-      return { ...loop, controllers: loop.controllers!.replace('every: 10 ms', delay) };
-    };
-    for (const periods of [1, 2]) {
-      const [factor] = opened(late(1, periods), both, ['gain_margin']);
-      expect(factor).toBeGreaterThan(2);
-      expectNear(opened(late(factor, 0), both, ['delay_margin']), [periods * T], 1e-8);
-    }
-  });
-
-  it('has none where the signals change at different rates, and says so', () => {
-    const slower = 'slower:\n  every: 20 ms\n  signals:\n    more: { value: u - seen_x }';
-    const loop = axes([
-      [0.5, 0.2],
-      [-0.3, 0.4],
-    ]);
-    const [result] = measureSmall({
-      ...loop,
-      plant: `${loop.plant}\nx: { integral: third*(1 1/s) }`,
-      sensors: `${loop.sensors}\nseen_x: { of: x }`,
-      controllers: `${loop.controllers}\n${slower}`,
-      actuators: `${loop.actuators}\nthird: { of: more }`,
-      requirements: ['{ name: A, at: [duty_pan, third], measure: delay_margin, at_least: 1 ms }'],
-    });
-    expect(result).toMatchObject({
-      kind: 'unformed',
-      why: expect.stringContaining('the 2 opened signals change 3 times together in a cycle'),
-    });
-  });
-
   it('may be near the edge together where each alone is far from it', () => {
     // A coupling one way only is part of no single loop, so that none of them feels it: 1 − 0.2/2 each.
     const loop = axes([
@@ -160,6 +123,76 @@ describe('two loops that act upon one another, opened at once', () => {
       }),
       { numRuns: 25 },
     );
+  });
+});
+
+describe('the delay margin of two signals', () => {
+  const coupled = (factor: number): SmallLoop =>
+    axes([
+      [0.1 * factor, 0.04 * factor],
+      [-0.06 * factor, 0.08 * factor],
+    ]);
+  /** Beside them a slower controller, which is no part of the loop or, with a gain, closes another one around the first axis. */
+  const withSlower = (loop: SmallLoop, every: string, gain: number): SmallLoop => ({
+    ...loop,
+    plant: `${loop.plant}\nx: { integral: third*(1 1/s) }`,
+    sensors: `${loop.sensors}\nseen_x: { of: x }\nslow_y: { of: y }`,
+    controllers: `${loop.controllers!.replace('u - seen_y', `wanted - seen_y`)}\nslower:\n  every: ${every}\n  signals:\n    more: { value: u - seen_x }\n    wanted: { value: u - ${gain}*slow_y }`,
+    actuators: `${loop.actuators}\nthird: { of: more }`,
+  });
+  const late = (loop: SmallLoop, periods: number): SmallLoop => {
+    const delay = periods > 0 ? `\n  delay: ${10 * periods} ms` : '';
+    return { ...loop, controllers: loop.controllers!.replace('every: 10 ms', `every: 10 ms${delay}`) };
+  };
+  const delayMargin = (loop: SmallLoop): number[] => opened(loop, both, ['delay_margin']);
+
+  // A delay of whole periods is one also between the instants, so that a gain with which it is the margin can be sought.
+  it.each<[string, (factor: number) => SmallLoop]>([
+    ['of one rate', coupled],
+    [
+      'with a loop of half their rate around one of them',
+      (factor) => withSlower(coupled(factor), '20 ms', 0.8),
+    ],
+    ['with a loop of a third of their rate', (factor) => withSlower(coupled(factor), '30 ms', 0.4)],
+  ])('brings them to the edge of stability, %s', (_, loop) => {
+    for (const periods of [1, 2]) {
+      const [factor] = opened(late(loop(1), periods), both, ['gain_margin']);
+      expect(factor).toBeGreaterThan(2);
+      expectNear(delayMargin(loop(factor)), [periods * T], 1e-7);
+    }
+  });
+
+  it('does not know of a controller that is no part of the loop', () => {
+    const alone = delayMargin(coupled(3));
+    for (const every of ['20 ms', '30 ms', '40 ms'])
+      expectNear(delayMargin(withSlower(coupled(3), every, 0)), alone, 1e-8);
+  });
+
+  it('is that of each of two equal axes that know nothing of one another, whatever is around them', () => {
+    const equal = axes([
+      [0.3, 0],
+      [0, 0.3],
+    ]);
+    const cascades = (every: string): SmallLoop => {
+      const loop = withSlower(equal, every, 0.3);
+      const outer = '    wanted_z: { value: v - 0.3*slow_z }';
+      return {
+        ...loop,
+        sensors: `${loop.sensors}\nslow_z: { of: z }`,
+        controllers: `${loop.controllers!.replace('v - seen_z', 'wanted_z - seen_z')}\n${outer}`,
+      };
+    };
+    for (const every of ['10 ms', '20 ms', '50 ms'])
+      expectNear(delayMargin(cascades(every)), opened(cascades(every), 'duty_tilt', ['delay_margin']), 1e-9);
+  });
+
+  it('is none where they change at different rates, and says so', () => {
+    const requirements = ['{ name: A, at: [duty_pan, third], measure: delay_margin, at_least: 1 ms }'];
+    const [result] = measureSmall({ ...withSlower(coupled(1), '20 ms', 0), requirements });
+    expect(result).toMatchObject({
+      kind: 'unformed',
+      why: expect.stringContaining('change at different rates, every 0.01 s and every 0.02 s'),
+    });
   });
 });
 
