@@ -1,3 +1,4 @@
+import { type Cycle, settledStart } from '../../linear/cycle_walk.js';
 import { dependsOn } from '../../loop/graph.js';
 import type { Loop } from '../../loop/loop.js';
 import { type Instant, instantsBetween, type Schedule } from '../../loop/schedule.js';
@@ -5,13 +6,8 @@ import { size } from './interval.js';
 import type { Slope, SlopeField } from './slope.js';
 import { type SlopeEvaluation, Unprovable } from './slope_evaluation.js';
 
-/** One order in which things happen in a cycle of all controllers, and after what times, over the plants that have it. */
-export interface SlopeTiming {
-  /** The order, as one of these plants has it. */
-  schedule: Schedule;
-  /** Where the cycle begins, in ticks of the schedule. */
-  start: number;
-  instants: Instant[];
+/** One order in which things happen in a cycle, as one plant has it, and after what times, over all plants that have it. */
+export interface SlopeTiming extends Cycle {
   /** From the start to the first instant, on to the next ones, and from the last to the end, s. */
   gaps: Slope[];
 }
@@ -124,8 +120,7 @@ function cellsOf({ schedule, delays }: Clock, channel: number): Cell[] {
     ...schedule,
     channels: channels.map((one, i) => (delays.has(i) ? { ...one, delay: 0 } : one)),
   };
-  const settled = Math.max(0, ...fixed.channels.map((one) => phase[one.task] + one.delay));
-  const start = Math.ceil(settled / cycle) * cycle;
+  const start = settledStart(fixed);
   const within = instantsBetween(fixed, start, start + cycle).map(
     ({ tick }) => (((tick - phase[task]) % every) + every) % every,
   );
@@ -167,8 +162,7 @@ function timingOf(field: SlopeField, clock: Clock, cells: readonly Cell[], delay
   });
   const schedule = { ...clock.schedule, channels };
   const { cycle, phase, period } = schedule;
-  const settled = Math.max(0, ...channels.map(({ task, delay }) => phase[task] + delay));
-  const start = Math.ceil(settled / cycle) * cycle;
+  const start = settledStart(schedule);
   const instants = instantsBetween(schedule, start, start + cycle);
   const timeOf = ({ tick, deliver }: Instant): Slope => {
     const at = moving.indexOf(deliver[0]);
