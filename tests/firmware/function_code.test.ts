@@ -141,6 +141,19 @@ describe('the digest of a function', () => {
     expect(of(0x20000010, 4)).not.toBe(of(0x20000000, 0));
   });
 
+  it('comes with the functions that are called: of the demo drives those of the source and of the library', () => {
+    const callsOf = (file: string, name: string) =>
+      functionCode(imageOf(fileURLToPath(new URL(`../../specs/${file}`, import.meta.url))), name).calls;
+    // arm-none-eabi-objdump 2.40: bl to 8000784, 80002ac and 8000878, whose names nm gives.
+    expect(callsOf('heliostat/firmware/azimuth.elf', 'azimuth_init')).toEqual([
+      '__aeabi_d2f',
+      '__aeabi_dmul',
+      '__aeabi_ui2d',
+    ]);
+    expect(callsOf('grain-conveyor/firmware/conveyor.elf', 'act')).toEqual(['saturated']);
+    expect(callsOf('heliostat/firmware/azimuth.elf', 'azimuth_step')).toEqual([]);
+  });
+
   it('counts every other byte', () => {
     fc.assert(
       fc.property(fc.integer({ min: 0, max: 7 }), fc.integer({ min: 1, max: 255 }), (at, change) => {

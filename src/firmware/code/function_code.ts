@@ -19,6 +19,11 @@ export interface FunctionCode {
    * On other processors every byte counts as it is.
    */
   digest: string;
+  /**
+   * Names of the functions that it calls or jumps to directly, in alphabetical order; empty on processors other than 32-bit Arm.
+   * Their code is no part of the digest.
+   */
+  calls: string[];
 }
 
 /** Larger than any function of a control law. */
@@ -40,7 +45,17 @@ export function functionCode(image: FirmwareImage, name: string): FunctionCode {
   const bytes = readMemory(elf.elf, address, symbol.size, { what });
   if (elf.flash) checkFlashed(elf.flash, elf.elf, address, bytes, what);
   const places = isArm ? armPlaces(elf.elf, bytes, address, mark === 1) : [];
-  return { name, size: symbol.size, digest: digestOf(bytes, outside(places, address, bytes.length), elf) };
+  const landmarks = new Landmarks(elf.symbolTable);
+  const leaving = outside(places, address, bytes.length);
+  const calls = new Set(leaving.filter(isCall).flatMap((place) => landmarks.nameOf(place.address) ?? []));
+  return {
+    ...{ name, size: symbol.size, digest: digestOf(bytes, leaving, landmarks) },
+    calls: [...calls].sort(),
+  };
+}
+
+function isCall({ kind }: AddressPlace): boolean {
+  return kind.startsWith('call') || kind === 'jump' || kind.startsWith('branch');
 }
 
 function elfOf(image: FirmwareImage, name: string): ElfImage {
@@ -99,8 +114,7 @@ function outside(places: readonly AddressPlace[], start: number, size: number): 
   return places.filter(({ kind, address }) => kind === 'word' || address < start || address >= start + size);
 }
 
-function digestOf(bytes: Uint8Array, places: readonly AddressPlace[], image: ElfImage): string {
-  const landmarks = new Landmarks(image.symbolTable);
+function digestOf(bytes: Uint8Array, places: readonly AddressPlace[], landmarks: Landmarks): string {
   const hash = createHash('sha256');
   let done = 0;
   for (const { at, size, kind, address } of places) {
