@@ -87,7 +87,7 @@ describe('extremes of a response over a band', () => {
           expect(size).toBeGreaterThanOrEqual(smallest(loop, responses[which], low, high).value / slack);
         },
       ),
-      { numRuns: 200 },
+      { numRuns: 100 },
     );
   });
 

@@ -38,7 +38,7 @@ describe('a loop of one rate seen over a longer cycle', () => {
   it('has the delay margin of the loop itself', () => {
     const random = repeatable(5);
     let judged = 0;
-    for (let k = 0; k < 50; k++) {
+    for (let k = 0; k < 30; k++) {
       const loop = randomLoop(1 + (k % 6), random);
       const own = marginsOfLoop(loop);
       if (!own.stable) continue;
@@ -47,7 +47,7 @@ describe('a loop of one rate seen over a longer cycle', () => {
       if (delayMargin === own.delayMargin) continue;
       expect(Math.abs(delayMargin / own.delayMargin - 1), `loop ${k}`).toBeLessThan(1e-9);
     }
-    expect(judged).toBeGreaterThan(20);
+    expect(judged).toBeGreaterThan(12);
   });
 
   it('has no delay margin where it is unstable', () => {
@@ -58,7 +58,7 @@ describe('a loop of one rate seen over a longer cycle', () => {
 describe('a loop whose gain differs from sample to sample', () => {
   it('has a delay margin of whole changes where a delay of so many brings it to the edge, as poles say', () => {
     let [judged, exactly] = [0, 0];
-    for (let seed = 0; seed < 200; seed++) {
+    for (let seed = 0; seed < 150; seed++) {
       const changes = 2 + (seed % 4);
       const loop = alternating(1 + (seed % 4), changes, repeatable(seed));
       const delay = 1 + (seed % 3);
@@ -77,7 +77,7 @@ describe('a loop whose gain differs from sample to sample', () => {
       expect(found, `seed ${seed}`).toBeLessThan(delay * (1 + 1e-6));
       if (Math.abs(found / delay - 1) < 1e-6) exactly++;
     }
-    expect(judged).toBeGreaterThan(10);
+    expect(judged).toBeGreaterThan(8);
     expect(exactly / judged).toBeGreaterThan(0.6);
   });
 
@@ -90,7 +90,7 @@ describe('a loop whose gain differs from sample to sample', () => {
         const whole = Math.min(20, Math.ceil((delayMargin / loop.period!) * changes) - 1);
         for (let delay = 1; delay <= whole; delay++) expect(largestPole(loop, delay)).toBeLessThan(1);
       }),
-      { numRuns: 30 },
+      { numRuns: 15 },
     );
   });
 });
