@@ -91,9 +91,9 @@ describe('an integrator with a dead time between bounds', () => {
         for (const k of between(gain))
           for (const delay of between(late)) expect(failsAt([k, delay])).toBe(false);
       }),
-      { seed: 82, numRuns: 60 },
+      { seed: 82, numRuns: 40 },
     );
-    expect(counts.proved).toBeGreaterThan(10);
-    expect(counts.refuted).toBeGreaterThan(10);
+    expect(counts.proved).toBeGreaterThan(6);
+    expect(counts.refuted).toBeGreaterThan(6);
   });
 });
