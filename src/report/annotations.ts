@@ -27,7 +27,7 @@ const longest = 2000;
 
 /**
  * An error on the spec's line for each requirement that blocks the merge, one on the line of each changed coefficient
- * that did it, and one for each cause why a spec could not be run; a warning for what is broken but waived. Paths below `root`, the repository's folder, are written relative to it.
+ * that did it, and one for each cause why a spec could not be run; a warning for what is broken but waived, and for what guards nothing. Paths below `root`, the repository's folder, are written relative to it.
  */
 export function annotationsOf(run: FinishedRun, faults: readonly Fault[] = [], root?: string): Annotation[] {
   const findings = run.specs.flatMap((spec) =>
@@ -47,11 +47,18 @@ export function annotationsOf(run: FinishedRun, faults: readonly Fault[] = [], r
         };
       }),
   );
+  const idle = run.specs.flatMap(({ requirements }) =>
+    requirements.flatMap(({ name, place, guardsNothing }): Annotation[] => {
+      if (guardsNothing === undefined) return [];
+      const at = { file: portablePath(place.file, root), line: place.line, column: place.column };
+      return [{ level: 'warning', ...at, title: `${name} guards nothing`, message: guardsNothing }];
+    }),
+  );
   const causes = faults.flatMap(({ specFile, messages }) =>
     messages.map((message) => ofFault(specFile, message, root)),
   );
   const coefficients = run.specs.flatMap((spec) => coefficientAnnotations(spec, root));
-  return [...causes, ...findings, ...coefficients];
+  return [...causes, ...findings, ...coefficients, ...idle];
 }
 
 /** Changes with a smaller part of a loss get no annotation. */

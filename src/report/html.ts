@@ -14,7 +14,7 @@ import { summaryTable } from './html/summary.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantsTried } from './plants_in_words.js';
 import type { ReportPlots, SpecPlots } from './plots.js';
-import { remarksInWords } from './remarks_in_words.js';
+import { warningsInWords } from './remarks_in_words.js';
 import { blockingFirst, mayMerge, runInWords } from './verdict_words.js';
 
 /** What stands beside a run in its report. */
@@ -84,7 +84,7 @@ ${provenanceSection(spec, version)}
 function coefficients(spec: SpecRun): Markup | undefined {
   if (spec.coefficients.length === 0) return undefined;
   const rows = spec.coefficients.flatMap(coefficientRows);
-  const warnings = remarksInWords(spec.coefficients).map((text) => html`<p>${text}</p>`);
+  const warnings = warningsInWords(spec).map((text) => html`<p>${text}</p>`);
   return html`<h3>Coefficients of the build</h3>
 ${warnings}
 ${dataTable('As stored in the build', coefficientHeadings, rows, [2])}`;

@@ -7,7 +7,7 @@ import { parameterTable } from './parameter_table.js';
 import { oneLine, visible } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
-import { remarksInWords } from './remarks_in_words.js';
+import { warningsInWords } from './remarks_in_words.js';
 import {
   evidenceInWords,
   findingOnOneLine,
@@ -79,7 +79,7 @@ function addProperties(suite: TestSuite, spec: SpecRun, version: string): void {
     'image SHA-256': provenance?.sha256,
     'build id': provenance?.buildId,
     'build skipped': provenance?.buildSkipped ? 'yes' : undefined,
-    warnings: remarksInWords(spec.coefficients).join('; ') || undefined,
+    warnings: warningsInWords(spec).join('; ') || undefined,
     compilers: provenance?.compilers.join('; ') || undefined,
     seed: String(spec.seed),
     plants: String(plantsTried(spec)),

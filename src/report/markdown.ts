@@ -7,7 +7,7 @@ import { originWord } from './origin_in_words.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
-import { remarksInWords } from './remarks_in_words.js';
+import { warningsInWords } from './remarks_in_words.js';
 import { claimsInWords, limitInWords, limitNumbers, measureWithSignal } from './requirement_in_words.js';
 import { shrunkInWords } from './scrutiny_in_words.js';
 import {
@@ -61,7 +61,7 @@ function specPart(spec: SpecRun): string {
     `### ${said(spec.loop, 120)}`,
     blocking.length > 0 ? `${table(blocking)}\n\n${blocking.map((one) => detail(one, spec)).join('\n')}` : '',
     met.length > 0 ? folded(`${counted(met.length, 'requirement')} met`, table(met)) : '',
-    remarksInWords(spec.coefficients)
+    warningsInWords(spec)
       .map((text) => `- ${said(text, 200)}`)
       .join('\n'),
     claimsInWords(spec)

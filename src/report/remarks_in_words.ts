@@ -1,5 +1,5 @@
 import type { StoredRemark } from '../firmware/coefficient.js';
-import type { CoefficientRead } from '../verdict/run.js';
+import type { CoefficientRead, SpecRun } from '../verdict/run.js';
 import { indexText } from './coefficient_table.js';
 import { counted } from './format_value.js';
 import { oneLine, shortened } from './plain_text.js';
@@ -17,6 +17,21 @@ const words: Record<StoredRemark, [one: string, several: string]> = {
   ],
   erased: ['is the pattern of erased flash, all ones', 'are the pattern of erased flash, all ones'],
 };
+
+/** What is odd about a spec's run though nothing of it is broken: about its stored numbers, and requirements that guard nothing. */
+export function warningsInWords({
+  coefficients,
+  requirements,
+}: Pick<SpecRun, 'coefficients' | 'requirements'>): string[] {
+  const idle = requirements.flatMap(({ name, guardsNothing }) =>
+    guardsNothing === undefined
+      ? []
+      : [`warning: ${shortened(oneLine(name), mostOfAName)} guards nothing: ${oneLine(guardsNothing)}`],
+  );
+  const left = idle.length - mostWarnings;
+  const shown = left > 0 ? [...idle.slice(0, mostWarnings), `warning: and ${left} more guard nothing`] : idle;
+  return [...remarksInWords(coefficients), ...shown];
+}
 
 /** A line for each coefficient, and each thing that is odd about its stored bits: hardly any of them is meant. */
 export function remarksInWords(coefficients: readonly CoefficientRead[]): string[] {

@@ -61,6 +61,7 @@ function requirementJson(requirement: RequirementRun, root: string | undefined):
     evidence: evidenceJson(evidence),
     counts: { ...counts },
     claim: requirement.claim ?? null,
+    ...(requirement.guardsNothing === undefined ? {} : { guards_nothing: requirement.guardsNothing }),
     nominal: resultJson(nominal.result),
     ...(nominal.result.kind === 'value'
       ? notes('nominal', nominal.result)

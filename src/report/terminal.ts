@@ -6,7 +6,7 @@ import { originWord } from './origin_in_words.js';
 import { oneLine, shortened } from './plain_text.js';
 import { plantInWords } from './plant_in_words.js';
 import { plantsTried } from './plants_in_words.js';
-import { remarksInWords } from './remarks_in_words.js';
+import { warningsInWords } from './remarks_in_words.js';
 import { claimsInWords, evidenceInWords, holdsForInWords, limitNumbers } from './requirement_in_words.js';
 import { effortInWords, scrutinyLines, shrunkInWords } from './scrutiny_in_words.js';
 import {
@@ -62,7 +62,7 @@ function specLines(spec: SpecRun, width: number, paint: Painter): string[] {
   return [
     paint('strong', shortened(oneLine(spec.loop), width)),
     ...about(spec).flatMap((text) => wrapText(text, width, 0, 2).map((line) => paint('quiet', line))),
-    ...remarksInWords(spec.coefficients)
+    ...warningsInWords(spec)
       .flatMap((text) => wrapText(text, width, 0, 2))
       .map((line) => paint('strong', line)),
     '',

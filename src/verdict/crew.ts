@@ -64,6 +64,11 @@ export class Crew {
     return this.measurer.answers({ plants: [plant], halvings, settle: false, wanted })[0];
   }
 
+  /** For each requirement whether every signal that it follows stays as it is in its scenario, on this plant. */
+  stayStill(plant: Float64Array): boolean[] {
+    return this.measurer.stayStill(plant);
+  }
+
   /** Ends the workers. */
   async dismiss(): Promise<void> {
     await this.pool?.destroy();

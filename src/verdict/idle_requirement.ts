@@ -26,7 +26,8 @@ export function idleRequirement(
     const verb = signals.length === 0 ? 'moves' : signals.length === 1 ? 'never moves' : 'never move';
     return `${moving} ${verb} in scenario '${requirement.in}'`;
   }
-  return farAway(limit, measure, results);
+  // How much a change stays below what it may be says nothing of the next one.
+  return measure.againstLatched ? undefined : farAway(limit, measure, results);
 }
 
 function beyondTheMeasure(limit: Limit, { name, least, most }: MeasureDescription): string | undefined {

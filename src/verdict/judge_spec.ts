@@ -1,10 +1,12 @@
 import type { CoefficientValues } from '../loop/parts.js';
+import { measureNamed } from '../measure/index.js';
 import type { LatchedNumbers } from '../measure/measure.js';
 import { ParameterSpace } from '../perturb/parameter_space.js';
 import type { Effect } from '../perturb/screening.js';
-import type { Spec } from '../spec/spec.js';
+import type { Requirement, Spec } from '../spec/spec.js';
 import { claimOf } from './claim.js';
 import { Crew, type Watch } from './crew.js';
+import { idleRequirement } from './idle_requirement.js';
 import { interruptedRequirement } from './interrupted.js';
 import { parameterValues } from './parameter_values.js';
 import type { PlantSetup } from './plant_answers.js';
@@ -71,9 +73,14 @@ export async function judgeSpec(
         }),
       ),
     );
+    const still = crew.stayStill(Float64Array.from(space.nominal));
     return {
-      requirements: spec.requirements.map((_, i) =>
-        requirementRun(spec, i, tallies[i], scrutinies[i], effectsInNames(spec, space, effects[i])),
+      requirements: spec.requirements.map((one, i) =>
+        withWarning(
+          requirementRun(spec, i, tallies[i], scrutinies[i], effectsInNames(spec, space, effects[i])),
+          one,
+          still[i],
+        ),
       ),
       plants,
       halvings,
@@ -86,6 +93,14 @@ export async function judgeSpec(
   } finally {
     await crew.dismiss();
   }
+}
+
+/** A requirement that holds, with the reason why it guards nothing where it does not: its worst plant tells that of all. */
+function withWarning(run: RequirementRun, requirement: Requirement, still: boolean): RequirementRun {
+  if (run.verdict.kind !== 'met') return run;
+  const { description } = measureNamed(requirement.measure);
+  const guardsNothing = idleRequirement(requirement, description, [run.worst.result], still);
+  return guardsNothing === undefined ? run : { ...run, guardsNothing };
 }
 
 function interruptedSpec(spec: Spec, { tallies, counts, halvings }: Trying): JudgedSpec {

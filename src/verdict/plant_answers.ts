@@ -49,6 +49,11 @@ export class PlantMeasurer {
     );
   }
 
+  /** For each requirement whether every signal that it follows stays as it is in its scenario, on this plant. */
+  stayStill(plant: Float64Array): boolean[] {
+    return this.part(undefined).evaluator.staysStill(plant);
+  }
+
   private part(wanted: readonly number[] | undefined) {
     const key = wanted?.join() ?? 'all';
     let part = this.parts.get(key);

@@ -99,6 +99,8 @@ export interface RequirementRun {
   reach?: Reach;
   /** The parameters, what matters most first. */
   effects?: ParameterEffect[];
+  /** Why it guards nothing, in words for a warning; undefined where it does guard something, or does not hold. */
+  guardsNothing?: string;
   /** Undefined where a proof was not tried: traces, or loops for which there is none. */
   proof?: Proof;
   effort?: Effort;

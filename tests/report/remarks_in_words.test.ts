@@ -1,11 +1,12 @@
 import { marked } from 'marked';
 import { describe, expect, it } from 'vitest';
 import type { StoredElement, StoredRemark } from '../../src/firmware/coefficient.js';
+import { annotationsOf } from '../../src/report/annotations.js';
 import { htmlReport } from '../../src/report/html.js';
 import { junitOf } from '../../src/report/junit.js';
 import { markdownSummary } from '../../src/report/markdown.js';
 import { originWord } from '../../src/report/origin_in_words.js';
-import { remarksInWords } from '../../src/report/remarks_in_words.js';
+import { remarksInWords, warningsInWords } from '../../src/report/remarks_in_words.js';
 import { runJson } from '../../src/report/run_json.js';
 import { terminalReport } from '../../src/report/terminal.js';
 import type { CoefficientRead, Provenance } from '../../src/verdict/run.js';
@@ -74,6 +75,35 @@ describe('remarksInWords', () => {
     const lines = remarksInWords([odd(['infinite', undefined], name)]);
     expect(lines).toHaveLength(1);
     expect(lines[0]).not.toMatch(harmful);
+  });
+});
+
+describe('a requirement that guards nothing', () => {
+  const idle = (name: string) =>
+    requirement({ name, guardsNothing: "'angle' never moves in scenario 'slew'" });
+
+  it('is named in every report, at its line in the spec, and lets the merge through', () => {
+    const run = { version: '0.1.0', specs: [specRun({ requirements: [idle('AZ-9')] })] };
+    const said = "AZ-9 guards nothing: 'angle' never moves in scenario 'slew'";
+    expect(warningsInWords(run.specs[0])).toEqual([`warning: ${said}`]);
+    expect(terminalReport(run, { colour: false, width: 200 })).toContain(`warning: ${said}`);
+    expect(terminalReport(run, { colour: false, width: 200 })).toContain('merge may go through');
+    expect(junitOf(run)).toMatch(/<property name="warnings" value="[^"]*AZ-9 guards nothing/);
+    expect(markdownSummary(run)).toContain('AZ-9 guards nothing');
+    expect(htmlReport(run)).toContain('AZ-9 guards nothing');
+    expect(JSON.parse(runJson(run)).specs[0].requirements[0].guards_nothing).toContain('never moves');
+    expect(annotationsOf(run)).toMatchObject([{ level: 'warning', title: 'AZ-9 guards nothing' }]);
+  });
+
+  it.each(Object.entries(hostileNames))('does no harm by a hostile name: %s', (_, name) => {
+    const [line] = warningsInWords(specRun({ coefficients: [], requirements: [idle(name)] }));
+    expect(line).not.toMatch(harmful);
+    expect(line).not.toContain('\n');
+  });
+
+  it('does not fill the screen', () => {
+    const requirements = Array.from({ length: 14 }, (_, at) => idle(`R${at}`));
+    expect(warningsInWords(specRun({ coefficients: [], requirements }))).toHaveLength(11);
   });
 });
 

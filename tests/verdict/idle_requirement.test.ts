@@ -3,6 +3,7 @@ import { PlantEvaluator } from '../../src/measure/evaluate_plant.js';
 import { measureNamed } from '../../src/measure/index.js';
 import type { MeasureResult } from '../../src/measure/measure.js';
 import { idleRequirement } from '../../src/verdict/idle_requirement.js';
+import { judgeSpec } from '../../src/verdict/judge_spec.js';
 import { smallSpecOf } from '../small_loop.js';
 
 const values = (...of: number[]): MeasureResult[] => of.map((value) => ({ kind: 'value', value }));
@@ -96,5 +97,44 @@ describe('a scenario in which the signal never moves', () => {
     expect(idleRequirement(statement, measure, values(1), true)).toBe(
       "no signal in its statement moves in scenario 'run'",
     );
+  });
+});
+
+describe('a judged spec', () => {
+  it('says of what holds whether it guards nothing, and nothing of what is broken', async () => {
+    const spec = smallSpecOf({
+      inputs: 'u: {}\nd: {}',
+      plant: 'y: { lag: 1 s, of: u }\nother: { lag: 1 s, of: d }',
+      scenarios: 'run: { lasts: 9 s, inputs: { u: { step: 1, at: 1 s } } }',
+      requirements: [
+        `{ name: STILL, measure: peak_deviation, of: other, to: d, in: run, at_most: 1 }`,
+        '{ name: FAR, measure: largest_value, of: y, in: run, at_most: 5000 }',
+        '{ name: NEAR, measure: largest_value, of: y, in: run, at_most: 1.1 }',
+        '{ name: BROKEN, measure: smallest_value, of: other, in: run, at_least: 1 }',
+      ],
+    });
+    const { requirements } = await judgeSpec(spec, new Map(), { workers: 1 });
+    expect(requirements.map(({ guardsNothing }) => guardsNothing)).toEqual([
+      "'other' and 'd' never move in scenario 'run'",
+      expect.stringMatching(/^the largest 'largest_value' of all plants, 1, is 5,\d00 times below/),
+      undefined,
+      undefined,
+    ]);
+    expect(requirements[3].verdict.kind).toBe('broken');
+  });
+
+  it('does not count a small change since the latched build against its bound', () => {
+    const bound = 'measure: change_since_latched, of: kp, at_most: 10 %';
+    const spec = smallSpecOf({
+      inputs: 'u: {}',
+      plant: 'y: { integral: drive*(1 1/s) }',
+      sensors: 'seen: { of: y }',
+      controllers: 'law: { every: 100 ms, signals: { command: { value: kp*(u - seen) } } }',
+      actuators: 'drive: { of: command }',
+      coefficients: 'kp: drive.kp',
+      requirements: [`{ name: R, ${bound} }`],
+    });
+    const { description } = measureNamed('change_since_latched');
+    expect(idleRequirement(spec.requirements[0], description, values(1e-6), false)).toBeUndefined();
   });
 });
