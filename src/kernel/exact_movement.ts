@@ -42,7 +42,7 @@ export class ExactMovement {
   }
 
   /** Moves the states by a share of h (s): a sum of halves, quarters … of the step, whose tables serve every jump in it. */
-  move(m: Float64Array, h: number, share: number): void {
+  move(m: Float64Array, h: number, share: number): number {
     this.compiled.readSources(m, this.values);
     const piece = this.pieceAt(m);
     for (let left = share, part = 1; left > 0; part /= 2) {
@@ -50,6 +50,7 @@ export class ExactMovement {
       this.moveBy(m, tableOf(piece, h * part));
       left -= part;
     }
+    return share;
   }
 
   private moveBy(m: Float64Array, table: Float64Array): void {

@@ -32,20 +32,21 @@ export class JumpFinder {
   move(m: Float64Array, h: number, most: number): number {
     const { compiled } = this;
     this.keep(m);
-    this.go(m, h, most);
+    const moved = this.movement.move(m, h, most);
+    compiled.follow?.(m);
     this.beyond = 0;
-    if (this.found >= mostJumps || compiled.jumps!(m) === 0) return most;
+    if (this.found >= mostJumps || compiled.jumps!(m) === 0) return moved;
     this.found++;
     this.goBack(m);
     let free = 0;
     for (let part = 0.5; part >= finestShare; part /= 2) {
-      if (free + part < most && this.isFree(m, h, part)) free += part;
+      if (free + part < moved && this.isFree(m, h, part)) free += part;
     }
     this.beyond = finestShare;
     // Rounding may put the jump a little later on this way than on the one that found it.
-    while (free + this.beyond < most && this.isFree(m, h, this.beyond)) {
+    while (free + this.beyond < moved && this.isFree(m, h, this.beyond)) {
       this.goBack(m);
-      this.beyond = Math.min(2 * this.beyond, most - free);
+      this.beyond = Math.min(2 * this.beyond, moved - free);
     }
     return free + this.beyond;
   }
@@ -72,7 +73,7 @@ export class JumpFinder {
   }
 
   private go(m: Float64Array, h: number, share: number): void {
-    this.movement.move(m, h, share);
+    for (let left = share; left > 0; ) left -= this.movement.move(m, h, left);
     this.compiled.follow?.(m);
   }
 

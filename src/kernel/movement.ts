@@ -3,13 +3,17 @@ import { eigenvalues } from '../linear/eigenvalues.js';
 import { type Matrix, zeros } from '../linear/matrix.js';
 import type { CompiledLoop } from './compile.js';
 import { ExactMovement } from './exact_movement.js';
+import { IntegratedMovement } from './integrated_movement.js';
 
 /** How the continuous states of one plant move: steps for each duration, and the movement of one step. */
 export interface Movement {
   /** Lengths (s) of the steps in a segment of this duration (s), in order; few are different. */
   steps: (duration: number) => number[];
-  /** Moves the states in `m` by a share of one step of h (s): 1, or a multiple of `finestShare` below it. */
-  move: (m: Float64Array, h: number, share: number) => void;
+  /**
+   * Moves the states in `m` by at most a share of one step of h (s): 1, or a multiple of `finestShare` below it.
+   * @returns the share by which it moved: less where so long a step would not be safe.
+   */
+  move: (m: Float64Array, h: number, most: number) => number;
 }
 
 /** To this share of a step the time of a jump is found. */
@@ -41,7 +45,7 @@ export function movementOf(
     const modes = modesOf(exact.rates(start));
     const steps = (duration: number): number[] =>
       halved(gradedSteps(duration, modes, exactStep, mostSteps.exact), halvings);
-    return { steps, move: (m, h, share) => exact.move(m, h, share) };
+    return { steps, move: (m, h, most) => exact.move(m, h, most) };
   }
   const n = compiled.loop.states.length;
   const slopes = zeros(n, n);
@@ -49,13 +53,14 @@ export function movementOf(
   const modes = modesOf(slopes);
   const fastest = Math.max(0, ...modes.map(({ speed }) => speed));
   const stepsNeeded = (duration: number): number => Math.max(1, Math.ceil((duration * fastest) / firstStep));
-  if (stepsNeeded(longest) > mostSteps.integrated) {
-    const steps = (duration: number): number[] =>
-      halved(gradedSteps(duration, modes, firstStep, mostSteps.stiff), halvings);
-    return { steps, move: (m, h, share) => compiled.stiffStep(m, h * share) };
-  }
-  const steps = (duration: number): number[] => halved(equal(duration, stepsNeeded(duration)), halvings);
-  return { steps, move: (m, h, share) => compiled.step(m, h * share) };
+  const stiff = stepsNeeded(longest) > mostSteps.integrated;
+  const integrated = new IntegratedMovement(compiled, start, slopes, { stiff, halvings });
+  const first = (duration: number): number[] =>
+    stiff ? gradedSteps(duration, modes, firstStep, mostSteps.stiff) : equal(duration, stepsNeeded(duration));
+  return {
+    steps: (duration) => halved(first(duration), halvings),
+    move: (m, h, share) => integrated.move(m, h, share),
+  };
 }
 
 /** How fast a natural motion of the plant is, and how fast it dies out; 1/s. */

@@ -105,10 +105,7 @@ type Advance = (m: Float64Array, h: number, most: number) => number;
 function advanceOf(compiled: CompiledLoop, movement: Movement, finder: JumpFinder | undefined): Advance {
   if (compiled.loop.states.length === 0) return (_, __, most) => most;
   if (!finder) {
-    return (m, h, most) => {
-      movement.move(m, h, most);
-      return most;
-    };
+    return (m, h, most) => movement.move(m, h, most);
   }
   return (m, h, most) => {
     if (most === 1) finder.newStep();

@@ -19,6 +19,8 @@ export type RestResult = { kind: 'rest'; point: PointOfRest } | { kind: 'none'; 
 const mostRounds = 60;
 /** A search that comes back to where it was so many rounds ago, or fewer, runs from one end of a range to the other. */
 const longestCircle = 4;
+/** The smallest number that a float64 holds in full: what is below is nothing. */
+const nothing = 2 ** -1022;
 const mostModeChanges = 20;
 
 /**
@@ -164,7 +166,7 @@ function isSmall(residual: number[], slopes: Matrix, unknowns: number[]): boolea
     }, Math.abs(value)),
   );
   const scales = weighed(sizes);
-  return residual.every((value, i) => Math.abs(value) <= 1e-12 * scales[i]);
+  return residual.every((value, i) => Math.abs(value) <= Math.max(1e-12 * scales[i], nothing));
 }
 
 function isSame(a: readonly number[], b: readonly number[]): boolean {

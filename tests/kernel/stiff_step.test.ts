@@ -22,7 +22,7 @@ function followed(
     0,
     1,
   );
-  for (let k = 0; k < steps; k++) step(m, time / steps);
+  for (let k = 0; k < steps; k++) step(m, time / steps, new Float64Array(1));
   return m[0];
 }
 
@@ -51,6 +51,24 @@ it.each([
     const ratio = error(steps) / error(2 * steps);
     expect(ratio).toBeGreaterThan(13);
     expect(ratio).toBeLessThan(19);
+  }
+});
+
+it('knows its error: that of a method of third order, a sixteenth for half the step', () => {
+  const errorOf = (h: number): number => {
+    const error = new Float64Array(1);
+    const rates = (m: Float64Array, to: Float64Array): void => {
+      to[0] = -m[0] * m[0];
+    };
+    const slopes = (m: Float64Array, to: Float64Array): void => {
+      to[0] = -2 * m[0];
+    };
+    stiffStep({ rates, slopes }, 0, 1)(Float64Array.of(1), h, error);
+    return Math.abs(error[0]);
+  };
+  for (const h of [0.05, 0.025]) {
+    expect(errorOf(h) / errorOf(h / 2)).toBeGreaterThan(13);
+    expect(errorOf(h) / errorOf(h / 2)).toBeLessThan(19);
   }
 });
 
