@@ -102,7 +102,10 @@ function searchFrom(linearisation: Linearisation, given: Given, start: readonly 
     const move = leastSquares(slopes, residual);
     past.push(unknowns);
     unknowns = unknowns.map((value, i) => value - move[i]);
-    if (past.slice(-longestCircle, -1).some((one) => isSame(one, unknowns))) break;
+    if (past.slice(-longestCircle, -1).some((one) => isSame(one, unknowns))) {
+      if (residual.every((value) => Math.abs(value) < nothing)) return { kind: 'rest', point };
+      break;
+    }
   }
   return { kind: 'none', why: whyNone(loop, residual, past.length) };
 }
@@ -166,7 +169,7 @@ function isSmall(residual: number[], slopes: Matrix, unknowns: number[]): boolea
     }, Math.abs(value)),
   );
   const scales = weighed(sizes);
-  return residual.every((value, i) => Math.abs(value) <= Math.max(1e-12 * scales[i], nothing));
+  return residual.every((value, i) => Math.abs(value) <= 1e-12 * scales[i]);
 }
 
 function isSame(a: readonly number[], b: readonly number[]): boolean {
