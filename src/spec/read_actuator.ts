@@ -15,12 +15,14 @@ const setting: Surroundings = { room: settingRoom, convertsFreely: true };
 export function readActuator(entry: MapEntry, reading: Reading): ActuatorDefinition {
   const unit = declaredUnit(entry, reading);
   const slot = (what: string): Slot => ({ dimension: unit?.dimension, scale: 1, what });
+  const size = (what: string): Slot => ({ ...slot(what), size: true, sign: 'not_negative' });
   const part = (key: string) => childOf(entry.value, key);
   const perSecond: Slot = {
     dimension: unit && quotientOf(unit.dimension, timeDimension),
     scale: 1,
     what: '`slew`',
     size: true,
+    sign: 'above_zero',
   };
   const of = textOf(childOf(entry.value, 'of'));
   checkActuatorSource(entry, reading);
@@ -30,13 +32,13 @@ export function readActuator(entry: MapEntry, reading: Reading): ActuatorDefinit
     of: of?.text ?? '',
     ofPlace: of?.place ?? entry.keyPlace,
     unit: unit!,
-    resolution: readExpression(part('resolution'), { ...slot('`resolution`'), size: true }, setting, reading),
-    deadBand: readExpression(part('dead_band'), { ...slot('`dead_band`'), size: true }, setting, reading),
+    resolution: readExpression(part('resolution'), size('`resolution`'), setting, reading),
+    deadBand: readExpression(part('dead_band'), size('`dead_band`'), setting, reading),
     range: readRange(part('range'), slot('`range`'), setting, reading),
     slew: readExpression(part('slew'), perSecond, setting, reading),
     effect: readExpression(
       part('effect'),
-      { dimension: plainNumber, scale: 1, what: '`effect`' },
+      { dimension: plainNumber, scale: 1, what: '`effect`', sign: 'not_negative' },
       setting,
       reading,
     ),

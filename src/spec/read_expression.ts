@@ -4,6 +4,7 @@ import { isPlain, sameDimension } from './dimension.js';
 import { formatMismatch } from './format_dimension.js';
 import type { Room } from './names.js';
 import { parseExpression } from './parse_expression.js';
+import type { Problems } from './problems.js';
 import { missing, type Reading } from './reading.js';
 import { type Checked, toScale } from './scales.js';
 import type { Dimension, Expression, Range } from './spec.js';
@@ -21,6 +22,10 @@ export interface Slot {
   what: string;
   /** A size and not a point on its scale: a temperature in degC is refused. */
   size?: boolean;
+  /** What a number must be that stands here by itself; parameters have bounds of their own. */
+  sign?: 'above_zero' | 'not_negative';
+  /** For errors of dimension: where the dimension comes from. */
+  since?: string;
 }
 
 /** A room and whether conversions may be inserted in it. */
@@ -96,7 +101,23 @@ export function fit(free: Free, slot: Slot): Expression {
     context.problems.add(startOf(free.text), mismatch(free, dimension, slot, slot.dimension));
     return missing(expression.place);
   }
-  return toScale(free, slot.scale, expression.place, context).expression;
+  const fitted = toScale(free, slot.scale, expression.place, context).expression;
+  checkSign(fitted, slot, free.text, context.problems);
+  return fitted;
+}
+
+/** Reports a number whose sign makes no sense where it stands. */
+export function checkSign(
+  of: Expression,
+  { what, sign }: Pick<Slot, 'what' | 'sign'>,
+  text: TextTree,
+  problems: Problems,
+): void {
+  const value = numberOf(of);
+  if (value === undefined || sign === undefined || value > 0 || (value === 0 && sign === 'not_negative'))
+    return;
+  const wanted = sign === 'above_zero' ? 'above 0' : '0 or more';
+  problems.add(startOf(text), `${what} must be ${wanted}, but is ${text.source.trim()}`);
 }
 
 /** Reads `[low, high]`. */
@@ -119,7 +140,8 @@ function reportOrder(tree: ListTree, reading: Reading): void {
   reading.problems.add(tree.place, 'the lower bound comes first and must be below the upper one');
 }
 
-function numberOf(of: Expression): number | undefined {
+/** The value of what is a number and nothing else. */
+export function numberOf(of: Expression): number | undefined {
   if (of.kind === 'number') return Number.isNaN(of.value) ? undefined : of.value;
   if (of.kind !== 'negate') return undefined;
   const inner = numberOf(of.of);
@@ -129,7 +151,8 @@ function numberOf(of: Expression): number | undefined {
 function mismatch(free: Free, found: Dimension, slot: Slot, expected: Dimension): string {
   const hint = free.withUnit ? prefixHint(free.withUnit, expected) : '';
   const cure = hint === '' && isPlain(found) && usesBareCoefficient(free.expression) ? coefficientHint : hint;
-  return `${slot.what} ${formatMismatch(found, expected)}${cure}`;
+  const since = cure === '' && slot.since !== undefined ? `; ${slot.since}` : '';
+  return `${slot.what} ${formatMismatch(found, expected)}${cure}${since}`;
 }
 
 const coefficientHint = '; a coefficient without `unit:` counts as a plain number in an expression';

@@ -1,6 +1,6 @@
 import { frequencyDimension, rateDimension, sameDimension, timeDimension } from './dimension.js';
 import { formatDimension } from './format_dimension.js';
-import { type Free, readFree, type Surroundings } from './read_expression.js';
+import { checkSign, type Free, readFree, type Surroundings } from './read_expression.js';
 import { missing, type Reading } from './reading.js';
 import { inverted, multiplied } from './scales.js';
 import type { Dimension, Expression } from './spec.js';
@@ -27,7 +27,8 @@ export function readTimeConstant(
     [frequencyDimension, inverseOfTwoPi],
     [rateDimension, inverse],
   ];
-  return readTurned(tree, `${what} must be a time, or a corner in Hz or rad/s`, turns, around, reading);
+  const read = readTurned(tree, `${what} must be a time, or a corner in Hz or rad/s`, turns, around, reading);
+  return notNegative(read, what, tree, reading);
 }
 
 /** Reads a corner in rad/s: an angular frequency, or a frequency in Hz (2π f). */
@@ -36,7 +37,18 @@ export function readCorner(tree: Tree | undefined, what: string, around: Surroun
     [rateDimension, asIs],
     [frequencyDimension, timesTwoPi],
   ];
-  return readTurned(tree, `${what} must be a corner in Hz or rad/s`, turns, around, reading);
+  const read = readTurned(tree, `${what} must be a corner in Hz or rad/s`, turns, around, reading);
+  return notNegative(read, what, tree, reading);
+}
+
+function notNegative(
+  read: Expression | undefined,
+  what: string,
+  tree: Tree | undefined,
+  reading: Reading,
+): Expression | undefined {
+  if (read && tree?.kind === 'text') checkSign(read, { what, sign: 'not_negative' }, tree, reading.problems);
+  return read;
 }
 
 /** Reads a sampling period in s: a time, or a rate in Hz (1/f). */

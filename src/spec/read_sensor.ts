@@ -3,6 +3,7 @@ import { plantRoom, settingRoom } from './names.js';
 import {
   type Free,
   fit,
+  numberOf,
   readExpression,
   readFree,
   readRange,
@@ -48,11 +49,16 @@ export function readSensor(entry: MapEntry, reading: Reading): SensorDefinition 
     offset: readExpression(part('offset'), size('offset'), setting, reading),
     filter: readTimeConstant(part('filter'), '`filter`', setting, reading),
     drift: readExpression(part('drift'), perSecond('drift'), setting, reading),
-    deadTime: readExpression(part('dead_time'), time('dead_time'), setting, reading),
-    noise: readExpression(noise.deviation, size('noise'), setting, reading),
+    deadTime: readExpression(
+      part('dead_time'),
+      { ...time('dead_time'), sign: 'not_negative' },
+      setting,
+      reading,
+    ),
+    noise: readExpression(noise.deviation, { ...size('noise'), sign: 'not_negative' }, setting, reading),
     noiseCorner: readCorner(noise.corner, '`corner`', setting, reading),
     range: readRange(part('range'), own('range'), setting, reading),
-    quantum: readExpression(part('quantum'), size('quantum'), setting, reading),
+    quantum: readExpression(part('quantum'), { ...size('quantum'), sign: 'not_negative' }, setting, reading),
     drops: readDrops(part('drops'), reading),
     stuck: readStuck(part('stuck'), time, reading),
   };
@@ -94,6 +100,10 @@ function readStuck(
   const [from, to] = ['from', 'to'].map((key) =>
     readExpression(childOf(tree, key), time(key), setting, reading),
   );
+  const times = [from, to].map((time) => time && numberOf(time));
+  if (times[0] !== undefined && times[1] !== undefined && times[0] >= times[1]) {
+    reading.problems.add(tree.place, '`stuck` ends before it begins: `to` must be later than `from`');
+  }
   return { from: from ?? missing(tree.place), to: to ?? missing(tree.place) };
 }
 

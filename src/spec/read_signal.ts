@@ -1,4 +1,5 @@
 import { plainNumber, quotientOf, timeDimension } from './dimension.js';
+import { formatDimension } from './format_dimension.js';
 import { suggestion } from './nearest.js';
 import { readCoefficientName } from './read_coefficient_name.js';
 import {
@@ -133,11 +134,19 @@ function gainSlot({ unit, input, scale }: Workplace): Slot {
     dimension: known ? quotientOf(unit.dimension, input.dimension!) : undefined,
     scale: scale / (input?.scale ?? 1),
     what: '`gain`',
+    since: known
+      ? `it is in the unit of the signal over that of \`of\`: ${formatDimension(unit.dimension)} over ${formatDimension(input.dimension!)}`
+      : undefined,
   };
 }
 
 function slewSlot({ unit, scale }: Workplace): Slot {
-  return { dimension: unit && quotientOf(unit.dimension, timeDimension), scale, what: '`slew`' };
+  return {
+    dimension: unit && quotientOf(unit.dimension, timeDimension),
+    scale,
+    what: '`slew`',
+    sign: 'above_zero',
+  };
 }
 
 function readSettings(place: Workplace): Record<string, Setting> {

@@ -5,6 +5,45 @@ import { type Pieces, smallSpec } from './small_spec.js';
 /** What is wrong, the piece of the spec that has it, and every line that is said: nothing more and nothing less. */
 const cases: [title: string, pieces: Pieces, errors: string[]][] = [
   [
+    'a gain in a wrong unit, which says where its unit comes from',
+    { plant: 'out: { lag: 1 s, of: drive, gain: 3 A, unit: V }' },
+    [
+      '14:37: `gain` must be a plain number, but this is A; it is in the unit of the signal over that of `of`: V over V',
+    ],
+  ],
+  [
+    'signs that make no sense in the plant',
+    { plant: 'out: { lag: -1 s, of: drive, slew: -2 V/s, unit: V }' },
+    ['14:15: `lag` must be 0 or more, but is -1 s', '14:38: `slew` must be above 0, but is -2 V/s'],
+  ],
+  [
+    'signs that make no sense in a sensor',
+    {
+      sensors:
+        'seen: { of: out, noise: -3 V, quantum: -1 V, filter: -3 ms, dead_time: -1 ms, stuck: { from: 2 s, to: 1 s }, unit: V }',
+    },
+    [
+      '16:27: `noise` must be 0 or more, but is -3 V',
+      '16:42: `quantum` must be 0 or more, but is -1 V',
+      '16:56: `filter` must be 0 or more, but is -3 ms',
+      '16:74: `dead_time` must be 0 or more, but is -1 ms',
+      '16:88: `stuck` ends before it begins: `to` must be later than `from`',
+    ],
+  ],
+  [
+    'signs that make no sense in an actuator',
+    {
+      actuators:
+        'drive: { of: command, resolution: -1 V, dead_band: -1 V, slew: 0 V/s, effect: -50 %, unit: V }',
+    },
+    [
+      '23:37: `resolution` must be 0 or more, but is -1 V',
+      '23:54: `dead_band` must be 0 or more, but is -1 V',
+      '23:66: `slew` must be above 0, but is 0 V/s',
+      '23:81: `effect` must be 0 or more, but is -50 %',
+    ],
+  ],
+  [
     'no defining key',
     { signals: 'command: { unit: V }' },
     ['21:7: signal `command` has no defining key; expected one of value, pid, biquads'],
