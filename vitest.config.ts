@@ -9,5 +9,7 @@ export default defineConfig({
     hookTimeout: 120_000,
     // Tests keep no state of their own, so that files may share what they load: half the processor time.
     isolate: false,
+    // By itself it would leave one core to a watcher whom nobody runs.
+    maxWorkers: '100%',
   },
 });

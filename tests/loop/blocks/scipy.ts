@@ -1,7 +1,6 @@
 import { createInterface } from 'node:readline';
 import { fileURLToPath } from 'node:url';
 import { execa } from 'execa';
-import { afterAll } from 'vitest';
 
 const PYTHON = '/usr/bin/python3';
 const script = fileURLToPath(new URL('./reference_blocks.py', import.meta.url));
@@ -19,32 +18,22 @@ export const scipyAvailable = process.env.CI === 'true' || (await hasScipy());
 /** Something that the script knows: its name and what it takes. */
 export type Question = { ask: string } & Record<string, unknown>;
 
-let asked: { ask: (line: string) => Promise<string>; end: () => Promise<unknown> } | undefined;
+let ask: ((line: string) => Promise<string>) | undefined;
 
-/** Starting Python takes longer than any answer: one process serves a file of tests. */
-function start() {
+/** Starting Python takes longer than any answer: one process serves all files of tests, and ends with the one that asks. */
+function start(): (line: string) => Promise<string> {
   const python = execa(PYTHON, [script], { env });
   const lines = createInterface({ input: python.stdout })[Symbol.asyncIterator]();
-  return {
-    ask: async (line: string) => {
-      python.stdin.write(`${line}\n`);
-      const { value, done } = await lines.next();
-      if (done) throw new Error((await python.catch((error) => error)).message);
-      return value;
-    },
-    end: () => {
-      python.stdin.end();
-      return python;
-    },
+  return async (line) => {
+    python.stdin.write(`${line}\n`);
+    const { value, done } = await lines.next();
+    if (done) throw new Error((await python.catch((error) => error)).message);
+    return value;
   };
 }
 
 /** The answers of scipy (Virtanen and others, 2020) in the order of the questions. */
 export async function answersOf<Answer = number[]>(questions: readonly Question[]): Promise<Answer[]> {
-  asked ??= start();
-  return JSON.parse(await asked.ask(JSON.stringify(questions)));
+  ask ??= start();
+  return JSON.parse(await ask(JSON.stringify(questions)));
 }
-
-afterAll(async () => {
-  await asked?.end();
-});
