@@ -3,6 +3,7 @@ import { tmpdir } from 'node:os';
 import { join, resolve } from 'node:path';
 import { execa } from 'execa';
 import { afterAll, beforeAll, describe, expect, it } from 'vitest';
+import { quickDemo } from '../cli/workplace.js';
 
 const readme = readFileSync('README.md', 'utf8');
 const blocks = (language: string): string[] =>
@@ -17,9 +18,7 @@ describe('the README', () => {
     folder = mkdtempSync(join(tmpdir(), 'pawl-readme-'));
     cpSync('specs/heliostat', join(folder, 'specs/heliostat'), { recursive: true });
     cpSync('reference/latched', join(folder, 'reference/latched'), { recursive: true });
-    const spec = join(folder, 'specs/heliostat/heliostat.pawl.yaml');
-    // As the demo, but quick.
-    writeFileSync(spec, readFileSync(spec, 'utf8').replace('plants: 1000', 'plants: 8\n  search: 8'));
+    writeFileSync(join(folder, 'specs/heliostat/heliostat.pawl.yaml'), quickDemo());
     mkdirSync(join(folder, 'bin'));
     const built = resolve('dist/cli/main.js');
     writeFileSync(join(folder, 'bin/npx'), `#!/bin/sh\nshift\nexec node '${built}' "$@"\n`, { mode: 0o755 });
