@@ -1,11 +1,10 @@
 import { resolve } from 'node:path';
-import { terminalReport } from '../report/index.js';
+import { terminalReport } from '../report/terminal.js';
 import { allMet } from '../verdict/run.js';
 import type { SpecChoice } from './each_build.js';
 import { type JudgedFiles, judgeFiles } from './judge_files.js';
 import type { ExitStatus, Surroundings } from './surroundings.js';
 import { tellGitHub } from './tell_github.js';
-import { writeReports } from './write_reports.js';
 
 export interface CheckOptions extends SpecChoice {
   /** Folder for the reports, relative to the working folder. */
@@ -28,7 +27,11 @@ export async function report(
   const { run, faults } = judged;
   if (run.specs.length > 0) around.print(terminalReport(run, around, faults));
   for (const { messages } of faults) for (const line of messages) around.complain(`${line}\n`);
-  if (out !== undefined) await writeReports(resolve(around.cwd, out), judged, around.cwd);
+  if (out !== undefined) {
+    // What writes them takes long to load.
+    const { writeReports } = await import('./write_reports.js');
+    await writeReports(resolve(around.cwd, out), judged, around.cwd);
+  }
   await tellGitHub(judged, around);
 }
 

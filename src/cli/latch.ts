@@ -1,6 +1,6 @@
 import { mkdir, rename, rm, writeFile } from 'node:fs/promises';
 import { basename, dirname, join } from 'node:path';
-import { referenceJson } from '../report/index.js';
+import { referenceJson } from '../report/reference_json.js';
 import { formatSpecError } from '../spec/index.js';
 import { judgeSpec } from '../verdict/judge_spec.js';
 import { asLatched } from '../verdict/latched/coefficient_changes.js';

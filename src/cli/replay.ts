@@ -4,7 +4,7 @@ import { z } from 'zod';
 import { expandLoop } from '../loop/expand.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import { ScenarioTraces } from '../plots/scenario_traces.js';
-import { replayText, tracesInCsv } from '../report/index.js';
+import { replayText, tracesInCsv } from '../report/replay_text.js';
 import type { Requirement, Spec, Unit } from '../spec/spec.js';
 import { judge } from '../verdict/judge.js';
 import { parameterValues } from '../verdict/parameter_values.js';

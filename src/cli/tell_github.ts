@@ -1,6 +1,7 @@
 import { appendFile } from 'node:fs/promises';
 import { resolve } from 'node:path';
-import { annotationLines, markdownSummary } from '../report/index.js';
+import { annotationLines } from '../report/annotations.js';
+import { markdownSummary } from '../report/markdown.js';
 import type { JudgedFiles } from './judge_files.js';
 import { shownPath } from './read_spec.js';
 import type { Surroundings } from './surroundings.js';
