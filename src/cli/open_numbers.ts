@@ -75,15 +75,15 @@ async function openImageOf(origin: ImageOrigin, folders: Folders): Promise<Firmw
   const isElf = await beginsLikeElf(path);
   if (!replaced) refuseMisfits(origin, isElf, name);
   if (isElf) {
-    const debugPath = debugFile && fromHere(resolve(folders.folder, debugFile.value));
-    return placed(place, folders, () => openImageFile(fromHere(path), { name, debugFile: debugPath }));
+    const debugPath = debugFile && resolve(folders.folder, debugFile.value);
+    return placed(place, folders, () => openImageFile(path, { name, debugFile: debugPath }));
   }
   const options = { baseAddress: baseAddress?.value, byteOrder: byteOrder?.value };
-  const image = await placed(place, folders, () => openImageFile(fromHere(path), { name, ...options }));
+  const image = await placed(place, folders, () => openImageFile(path, { name, ...options }));
   if (!symbols) return image;
   const symbolsPath = resolve(folders.folder, symbols.value);
   return placed(symbols.place, folders, async () => {
-    const named = await openImageFile(fromHere(symbolsPath), { name: shownPath(folders.cwd, symbolsPath) });
+    const named = await openImageFile(symbolsPath, { name: shownPath(folders.cwd, symbolsPath) });
     return openImage(image.bytes, name, { ...options, symbols: named });
   });
 }
@@ -159,9 +159,4 @@ function withRelativePlaces(values: ValuesImage['values'], folder: string): Valu
       return [name, { node, declaredAt: at }];
     }),
   );
-}
-
-/** The path as messages of the firmware reader shall name it. */
-function fromHere(path: string): string {
-  return relative(process.cwd(), path);
 }

@@ -8,8 +8,10 @@ export function nearestName(mistyped: string, valid: Iterable<string>): string |
   let best: { name: string; edits: number } | undefined;
   const plain = withoutStyle(mistyped);
   for (const name of valid) {
+    const allowed = allowedEdits(mistyped, name);
+    if (allowed < 0) continue;
     const edits = Math.min(distance(mistyped, name), distance(plain, withoutStyle(name)) + 0.5);
-    if (edits > allowedEdits(mistyped, name)) continue;
+    if (edits > allowed) continue;
     if (best === undefined || edits < best.edits) best = { name, edits };
   }
   return best?.name;

@@ -133,7 +133,7 @@ describe('bad input ends with status 2 and one clear line at its place', () => {
   for (const { name, change, at, line } of cases) {
     it(name, async () => {
       const place = new Workplace(change);
-      const ended = await place.pawl('check', place.spec, '--skip-build', '--out', 'reports');
+      const ended = await place.here('check', place.spec, '--skip-build', '--out', 'reports');
       expect(ended.status).toBe(2);
       expect(ended.output).toBe('');
       const lines = ended.errors.split('\n').filter((text) => text.startsWith(place.placeOf(at)));
@@ -148,7 +148,7 @@ describe('bad input ends with status 2 and one clear line at its place', () => {
   it('an image that is not ELF', async () => {
     const place = new Workplace();
     place.write('firmware/azimuth.elf', 'not an image');
-    const ended = await place.pawl('check', place.spec, '--skip-build');
+    const ended = await place.here('check', place.spec, '--skip-build');
     expect(ended.status).toBe(2);
     expect(ended.errors).toMatch(new RegExp(`^${place.placeOf('firmware/azimuth.elf')}: .*azimuth\\.elf`));
     expect(ended.errors.split('\n')).toHaveLength(1);
@@ -157,7 +157,7 @@ describe('bad input ends with status 2 and one clear line at its place', () => {
 
   it('an image that is not there, and a build that fails', async () => {
     const place = new Workplace();
-    const missing = await place.pawl('check', place.spec, '--image', 'nowhere.elf');
+    const missing = await place.here('check', place.spec, '--image', 'nowhere.elf');
     expect(missing).toMatchObject({
       status: 2,
       errors: 'image “nowhere.elf”: there is no such file; build it first, or correct the path',
@@ -165,7 +165,7 @@ describe('bad input ends with status 2 and one clear line at its place', () => {
     const failing = new Workplace((text) =>
       text.replace('[make, -s, -C, firmware]', '[node, --eval, process.exit(3)]'),
     );
-    const ended = await failing.pawl('check', failing.spec);
+    const ended = await failing.here('check', failing.spec);
     expect(ended.status).toBe(2);
     expect(ended.errors).toMatch(/^axis\.pawl\.yaml:\d+:\d+: the build .* ended with status 3/);
     place.remove();

@@ -41,13 +41,13 @@ afterEach(() => place.remove());
 
 /** Reads the spec as a user does; what it printed, or its complaint with status 2 and nothing on standard output. */
 async function table(): Promise<string> {
-  const { status, output, errors } = await place.pawl('read', place.spec);
+  const { status, output, errors } = await place.here('read', place.spec);
   expect({ status, errors }).toEqual({ status: 0, errors: '' });
   return output;
 }
 
 async function complaint(): Promise<string> {
-  const { status, output, errors } = await place.pawl('read', place.spec);
+  const { status, output, errors } = await place.here('read', place.spec);
   expect({ status, output }).toEqual({ status: 2, output: '' });
   expect(errors).not.toMatch(/^ {4}at /m);
   expect(errors).not.toContain(place.folder);

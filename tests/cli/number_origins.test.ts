@@ -33,7 +33,7 @@ afterEach(() => place.remove());
 
 async function table(origin: string, k: string): Promise<string> {
   place.write(place.spec, small(origin, k));
-  const { status, output, errors } = await place.pawl('read', place.spec);
+  const { status, output, errors } = await place.here('read', place.spec);
   expect({ status, errors }).toEqual({ status: 0, errors: '' });
   return output.split('\n').slice(1).join('\n');
 }
@@ -41,7 +41,7 @@ async function table(origin: string, k: string): Promise<string> {
 /** What a spec that cannot be read complains of: one line, nothing on standard output, no folder of this machine. */
 async function complaint(origin: string, k: string): Promise<string> {
   place.write(place.spec, small(origin, k));
-  const { status, output, errors } = await place.pawl('read', place.spec);
+  const { status, output, errors } = await place.here('read', place.spec);
   expect({ status, output }).toEqual({ status: 2, output: '' });
   expect(errors.split('\n')).toHaveLength(1);
   expect(errors).not.toContain(place.folder);
@@ -98,7 +98,7 @@ describe('numbers of a C header', () => {
   it('may come from another file named on the command line', async () => {
     place.write(place.spec, small(source, 'KP'));
     place.write('other.h', '#define KP 7.0f\n');
-    const { output } = await place.pawl('read', place.spec, '--image', 'other.h');
+    const { output } = await place.here('read', place.spec, '--image', 'other.h');
     expect(output).toMatch(/^k +KP +7 +float +0x40e00000 +other\.h:1$/m);
   });
 });
@@ -147,7 +147,7 @@ describe('numbers that a command prints', () => {
     expect(coefficients[0]).toMatchObject({ value: 2, declared_at: null });
     // The largest value tends to k/(k + 1): 2/3 is met and 5/6 is not.
     place.write(place.spec, small(command.replace('"2"', '"5"'), 'kp'));
-    expect(await place.pawl('check', place.spec)).toMatchObject({ status: 1 });
+    expect(await place.here('check', place.spec)).toMatchObject({ status: 1 });
   });
 });
 
@@ -164,7 +164,7 @@ describe('a coefficient with a scale and an offset', () => {
 
   it('is judged with that value', async () => {
     place.write(place.spec, small(elf, '{ at: azimuth.gains.kp, scale: 2, offset: 3.4 }'));
-    const { output } = await place.pawl('check', place.spec, '--out', 'out');
+    const { output } = await place.here('check', place.spec, '--out', 'out');
     // k is 2·2.7 + 3.4 = 8.8, so the largest value is near 8.8/9.8, above the 0.7 of the limit.
     expect(output).toMatch(/broken +R1/);
     const [{ coefficients, requirements }] = JSON.parse(place.read('out/run.json')).specs;
@@ -224,7 +224,7 @@ describe('several builds', () => {
       place.spec,
       small('# none', 'azimuth.gains.kp').replace('inputs:', `${builds}inputs:`).replace('0.7 }', '0.75 }'),
     );
-    const { status, output } = await place.pawl('check', place.spec, '--out', 'out');
+    const { status, output } = await place.here('check', place.spec, '--out', 'out');
     expect(status).toBe(1);
     const { specs } = JSON.parse(place.read('out/run.json'));
     const told = specs.map(
@@ -249,14 +249,14 @@ describe('a number that is hardly meant', () => {
     const origin = 'image: blank.bin\nbase_address: 0x1000';
     const k = '{ address: 0x1004, format: int32 }';
     expect(await table(origin, k)).toMatch(/^k +0x1004 +-1 \(erased\) +int32 +0xffffffff/m);
-    const { output } = await place.pawl('check', place.spec);
+    const { output } = await place.here('check', place.spec);
     expect(output).toContain('warning: k is the pattern of erased flash, all ones (stored 0xffffffff)');
   });
 
   it('never lets a merge through where it is no number', async () => {
     place.write('gains.bin', Uint8Array.from([0, 0, 0xc0, 0x7f]));
     place.write(place.spec, small('image: gains.bin\nbase_address: 0', '{ address: 0, format: float32 }'));
-    const { status, output } = await place.pawl('check', place.spec);
+    const { status, output } = await place.here('check', place.spec);
     expect(status).not.toBe(0);
     expect(output).toContain('warning: k is not a number (stored 0x7fc00000)');
   });

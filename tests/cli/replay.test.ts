@@ -38,15 +38,15 @@ describe('pawl replay', () => {
   });
 
   it('judges a requirement on the loop without a trace', async () => {
-    const { status, output } = await folder.pawl('replay', 'out/run.json', 'M-4');
+    const { status, output } = await folder.here('replay', 'out/run.json', 'M-4');
     expect([0, 1]).toContain(status);
     expect(output).toContain('no trace: the requirement is about the loop');
   });
 
   it('keeps a counterexample, which every later check tries first', async () => {
-    const { output } = await folder.pawl('replay', 'out', 'M-1', '--keep', '--out', 'out');
+    const { output } = await folder.here('replay', 'out', 'M-1', '--keep', '--out', 'out');
     expect(output).toContain('kept in motor.counterexamples.json');
-    await folder.pawl('replay', 'out', 'M-1', '--keep', '--out', 'out');
+    await folder.here('replay', 'out', 'M-1', '--keep', '--out', 'out');
     const saved = JSON.parse(folder.read('motor.counterexamples.json'));
     expect(saved.counterexamples).toHaveLength(1);
     expect(Object.keys(saved.counterexamples[0].plant).sort()).toEqual(['gain', 'lag']);
@@ -65,7 +65,7 @@ describe('pawl replay', () => {
     [['replay', 'out', 'M-1', '--spec', 'motr.pawl.yaml'], "the report holds no spec 'motr.pawl.yaml'"],
     [['replay', 'out'], "'pawl replay' takes a report and a requirement"],
   ])('tells what is wrong: %j', async (words, message) => {
-    const { status, errors } = await folder.pawl(...(words as string[]));
+    const { status, errors } = await folder.here(...(words as string[]));
     expect(status).toBe(2);
     expect(errors).toContain(message);
   });
@@ -74,7 +74,7 @@ describe('pawl replay', () => {
     const other = new Workplace();
     other.write('motor.pawl.yaml', spec);
     other.write('motor.counterexamples.json', '{"pawl": 1, "counterexamples": [{"plant": 3}]}');
-    const { status, errors } = await other.pawl('check', 'motor.pawl.yaml');
+    const { status, errors } = await other.here('check', 'motor.pawl.yaml');
     other.remove();
     expect(status).toBe(2);
     expect(errors).toContain('motor.counterexamples.json: holds no saved counterexamples');

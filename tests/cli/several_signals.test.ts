@@ -52,15 +52,15 @@ describe('the example of a loop that is opened at several signals', () => {
     const merge = 'merge: { reference: latched.json, may_slip: 5 % }\n';
     const text = place.read(place.spec) + merge;
     place.write(place.spec, text);
-    expect((await place.pawl('latch', place.spec, '--reason', 'first')).errors).toBe('');
+    expect((await place.here('latch', place.spec, '--reason', 'first')).errors).toBe('');
     const same = text.replace(
       'PT-2, measure: gain_margin,    at: [duty_pan, duty_tilt]',
       'PT-2, measure: gain_margin, at: [duty_tilt, duty_pan]',
     );
     expect(same).not.toBe(text);
     place.write(place.spec, same);
-    expect(unwrapped((await place.pawl('check', place.spec)).output)).not.toContain('what it measures');
+    expect(unwrapped((await place.here('check', place.spec)).output)).not.toContain('what it measures');
     place.write(place.spec, same.replace('[duty_tilt, duty_pan]', '[duty_tilt, seen_pan]'));
-    expect(unwrapped((await place.pawl('check', place.spec)).output)).toContain('PT-2 (what it measures)');
+    expect(unwrapped((await place.here('check', place.spec)).output)).toContain('PT-2 (what it measures)');
   });
 });

@@ -19,6 +19,7 @@ requirements:
 interface Reported {
   success: boolean;
   testResults: {
+    name: string;
     message: string;
     assertionResults: { title: string; status: string; failureMessages: string[] }[];
   }[];
@@ -27,7 +28,8 @@ interface Reported {
 /** vitest itself runs a test file as a user writes it, with the built package. */
 describe('pawl/vitest', () => {
   let folder: Folder;
-  beforeAll(() => {
+  let reported: Reported;
+  beforeAll(async () => {
     folder = new Folder();
     folder.write('drive.pawl.yaml', spec);
     folder.write('broken.pawl.yaml', spec.replace('lag: 1 s', 'lag: 1 m'));
@@ -38,30 +40,27 @@ describe('pawl/vitest', () => {
         `import { testRequirements } from ${JSON.stringify(entry)};\ntestRequirements('${name}.pawl.yaml');\n`,
       );
     }
+    const vitest = resolve('node_modules/vitest/vitest.mjs');
+    const words = [vitest, 'run', '--root', folder.path, '--reporter', 'json'];
+    const { stdout } = await execa('node', words, { cwd: folder.path, reject: false });
+    reported = JSON.parse(stdout);
   });
   afterAll(() => folder.remove());
 
-  const run = async (name: string): Promise<Reported> => {
-    const vitest = resolve('node_modules/vitest/vitest.mjs');
-    const words = [vitest, 'run', '--root', folder.path, '--reporter', 'json', `${name}.test.mjs`];
-    const { stdout } = await execa('node', words, { cwd: folder.path, reject: false });
-    return JSON.parse(stdout);
-  };
+  const resultOf = (file: string) => reported.testResults.find(({ name }) => name.endsWith(`/${file}`))!;
 
-  it('makes each requirement a test, which fails with the finding at its line in the spec', async () => {
-    const { success, testResults } = await run('drive');
-    expect(success).toBe(false);
-    const [first, second] = testResults[0].assertionResults;
+  it('makes each requirement a test, which fails with the finding at its line in the spec', () => {
+    expect(reported.success).toBe(false);
+    const [first, second] = resultOf('drive.test.mjs').assertionResults;
     expect([first.title, first.status]).toEqual(['R1 overshoot', 'passed']);
     expect([second.title, second.status]).toEqual(['R2 largest_value', 'failed']);
     expect(second.failureMessages[0]).toMatch(/^broken: R2.*largest value.*0\.1/);
     expect(second.failureMessages[0]).toContain(`${resolve(folder.path, 'drive.pawl.yaml')}:11:`);
   });
 
-  it('passes nothing where the spec is wrong', async () => {
-    const { success, testResults } = await run('broken');
-    expect(success).toBe(false);
-    expect(testResults[0].assertionResults.filter(({ status }) => status === 'passed')).toEqual([]);
-    expect(testResults[0].message).toContain('broken.pawl.yaml:4:');
+  it('passes nothing where the spec is wrong', () => {
+    const { message, assertionResults } = resultOf('broken.test.mjs');
+    expect(assertionResults.filter(({ status }) => status === 'passed')).toEqual([]);
+    expect(message).toContain('broken.pawl.yaml:4:');
   });
 });
