@@ -117,6 +117,9 @@ function stateOfMotion(a: Matrix, pole: Complex): Matrix | undefined {
   return Math.hypot(1 + pole.real, pole.imaginary) > plainly * doubt ? state : undefined;
 }
 
+/** Farther beside an eigenvalue it is not found any more. */
+const mostRoundings = 1e3;
+
 /** wᴴ·x of two states of length one. */
 function productOf(w: Matrix, x: Matrix): [number, number] {
   let [real, imaginary] = [0, 0];
@@ -128,11 +131,23 @@ function productOf(w: Matrix, x: Matrix): [number, number] {
   return [real, imaginary];
 }
 
-/** An eigenvector of length one by inverse iteration (Wielandt, 1944), next to an eigenvalue. */
-function stateFor(a: Matrix, { real, imaginary }: Complex): Matrix {
+/**
+ * An eigenvector of length one by inverse iteration (Wielandt, 1944), next to an eigenvalue.
+ * @param roundings how far beside it, in roundings of the matrix; more where that hits the eigenvalue itself.
+ */
+function stateFor(a: Matrix, pole: Complex, roundings = 1): Matrix {
+  const beside = roundings * Math.max(Number.EPSILON * euclideanNorm(a.data), Number.MIN_VALUE ** 0.5);
+  try {
+    return stateBeside(a, { ...pole, real: pole.real + beside });
+  } catch (error) {
+    if (!(error instanceof NumericFailure) || roundings > mostRoundings) throw error;
+    return stateFor(a, pole, 8 * roundings);
+  }
+}
+
+function stateBeside(a: Matrix, { real, imaginary }: Complex): Matrix {
   const n = a.rows;
-  const beside = Math.max(Number.EPSILON * euclideanNorm(a.data), Number.MIN_VALUE ** 0.5);
-  const shifted = add(a, identity(n), -(real + beside));
+  const shifted = add(a, identity(n), -real);
   const both = zeros(2 * n, 2 * n);
   place(both, shifted, 0, 0);
   place(both, shifted, n, n);

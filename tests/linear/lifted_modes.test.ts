@@ -36,6 +36,11 @@ describe('damping of a closed loop over a cycle of several samples', () => {
     );
   });
 
+  it('is found where the search for a mode hits its multiplier to the last bit', () => {
+    const loop = randomLoop(1 + (95742 % 8), repeatable(95742));
+    expect(dampingOf(lifted(loop, 7)) / closedLoopDecay(loop).dampingRatio).toBeCloseTo(1, 8);
+  });
+
   it('counts the true frequency of a motion, also where that is folded in the multiplier of the cycle', () => {
     // Closed form: s = ln(r) ± jφ a sample.
     for (const angle of [0.2, 1, 1.7, 2.4, 3.1]) {
