@@ -3,6 +3,7 @@ import { beforeAll, describe, it } from 'vitest';
 import { check } from './check.js';
 import { readSpec } from './cli/read_spec.js';
 import { findingOnOneLine } from './report/requirement_in_words.js';
+import { specOfBuild } from './spec/for_builds.js';
 import { letsMergeThrough, type RequirementRun, type SpecRun } from './verdict/run.js';
 
 /** How requirements are tested. */
@@ -29,15 +30,15 @@ const usualTimeout = 600_000;
 export function testRequirements(specFile: string, options: RequirementTestOptions = {}): void {
   const { folder = '.', image, skipBuild, timeout = usualTimeout } = options;
   describe(specFile, async () => {
-    const { requirements, builds } = await readSpec(resolve(folder), specFile);
+    const spec = await readSpec(resolve(folder), specFile);
     let judged: SpecRun[] = [];
     beforeAll(async () => {
       const { run, faults } = await check({ specs: [specFile], folder, image, skipBuild });
       if (faults.length > 0) throw new Error(faults.flatMap(({ messages }) => messages).join('\n'));
       judged = run.specs;
     }, timeout);
-    for (const [at, build] of (builds ?? [undefined]).entries()) {
-      for (const { name, measure } of requirements) {
+    for (const [at, build] of (spec.builds ?? [undefined]).entries()) {
+      for (const { name, measure } of specOfBuild(spec, build?.name)!.requirements) {
         const title = build === undefined ? `${name} ${measure}` : `${build.name}: ${name} ${measure}`;
         it(title, () => {
           mustHold(judged[at].requirements.find((one) => one.name === name)!, resolve(folder));

@@ -3,6 +3,7 @@ import { join } from 'node:path';
 import { LoopError } from '../loop/loop.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import type { Fault as SpecFault } from '../report/index.js';
+import { specOfBuild } from '../spec/for_builds.js';
 import { formatSpecError } from '../spec/index.js';
 import type { Spec } from '../spec/spec.js';
 import type { Watch } from '../verdict/crew.js';
@@ -107,7 +108,7 @@ function buildsOf(spec: Spec, { image }: SpecChoice): { spec: Spec; name: string
     const names = spec.builds.map(({ name }) => name).join(', ');
     throw new Fault([`${spec.file}: has several builds (${names}), so --image means none of them`]);
   }
-  return spec.builds.map(({ name, firmware }) => ({ spec: { ...spec, firmware }, name }));
+  return spec.builds.map(({ name }) => ({ spec: specOfBuild(spec, name)!, name }));
 }
 
 async function workOn<T>(

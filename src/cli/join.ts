@@ -1,4 +1,5 @@
 import type { Fault as SpecFault } from '../report/index.js';
+import { specOfBuild } from '../spec/for_builds.js';
 import { JoiningCrew, PartsDisagree } from '../verdict/parts.js';
 import type { PlantSetup } from '../verdict/plant_answers.js';
 import { report, statusOf } from './check.js';
@@ -49,8 +50,7 @@ async function joinTarget(
   around: Surroundings,
 ): Promise<JudgedTarget> {
   const whole = await readSpec(around.cwd, file);
-  const build = whole.builds?.find((one) => one.name === name);
-  const spec = build ? { ...whole, firmware: build.firmware } : whole;
+  const spec = specOfBuild(whole, name) ?? whole;
   const latched = await readLatched(around.cwd, spec, name);
   const saved = [...(await savedPlants(around.cwd, spec)), ...(latched?.plants ?? [])];
   if (digestOf({ spec, saved, latched }) !== specDigest)

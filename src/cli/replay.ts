@@ -5,6 +5,7 @@ import { expandLoop } from '../loop/expand.js';
 import type { CoefficientValues } from '../loop/parts.js';
 import { ScenarioTraces } from '../plots/scenario_traces.js';
 import { replayText, tracesInCsv } from '../report/replay_text.js';
+import { specOfBuild } from '../spec/for_builds.js';
 import type { Requirement, Spec, Unit } from '../spec/spec.js';
 import { judge } from '../verdict/judge.js';
 import { parameterValues } from '../verdict/parameter_values.js';
@@ -102,9 +103,8 @@ export async function replay(options: ReplayOptions, around: Surroundings): Prom
 
 /** @throws {Fault} where the spec has no build of this name any more. */
 function buildOf(spec: Spec, name: string | undefined): Spec {
-  if (name === undefined) return spec;
-  const build = spec.builds?.find((one) => one.name === name);
-  if (build) return { ...spec, firmware: build.firmware };
+  const found = specOfBuild(spec, name);
+  if (found) return found;
   throw new Fault([`${spec.file}: has no build '${name}' any more; run 'pawl check' again`]);
 }
 

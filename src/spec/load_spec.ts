@@ -2,6 +2,7 @@ import { checkCycles } from './check_cycles.js';
 import { checkSkeleton } from './check_skeleton.js';
 import { checkControllersHear, checkUse } from './check_use.js';
 import { checkWindows } from './check_windows.js';
+import { checkEachBuildJudged } from './for_builds.js';
 import { gatherParts, type Includes, joined } from './include.js';
 import { newProblems, type Problems } from './problems.js';
 import { readFirmware } from './read_firmware.js';
@@ -103,7 +104,7 @@ function readSpec(root: MapTree, file: string, reading: Reading): Spec {
   const scenarios = readScenarios(childOf(root, 'scenarios'), reading);
   const requirements = readRequirements(
     childOf(root, 'requirements'),
-    { scenarios, sensors, controllers, actuators },
+    { scenarios, sensors, controllers, actuators, builds },
     reading,
   );
   const perturbation = readPerturbation(childOf(root, 'perturbation'), parameters, reading);
@@ -134,6 +135,7 @@ function checkWhole(spec: Spec, reading: Reading): void {
   checkControllersHear(spec.controllers, reading);
   checkCycles(spec, reading);
   checkWindows(spec.requirements, spec.scenarios, reading);
+  checkEachBuildJudged(spec.builds, spec.requirements, reading);
 }
 
 /** A block in the wrong room. */

@@ -1,4 +1,5 @@
 import { plainNumber } from './dimension.js';
+import { readForBuilds } from './for_builds.js';
 import { suggestion } from './nearest.js';
 import { readAngularFrequency } from './read_angular_frequency.js';
 import { readAround } from './read_around.js';
@@ -9,7 +10,7 @@ import { readQuantity, readShare } from './read_quantity.js';
 import { readSignalKeys } from './read_signal_keys.js';
 import { readStatement } from './read_statement.js';
 import type { Reading } from './reading.js';
-import type { Dimension, HoldsFor, Requirement, Scenario } from './spec.js';
+import type { Dimension, HoldsFor, NamedBuild, Requirement, Scenario } from './spec.js';
 import {
   childOf,
   entriesOf,
@@ -26,6 +27,8 @@ import type { MeasureDescription } from './vocabulary.js';
 /** What requirements refer to. */
 export interface Referred extends Openable {
   scenarios: Scenario[];
+  /** Where there are several. */
+  builds: readonly NamedBuild[] | undefined;
 }
 
 /** `requirements:` each one measure with one limit. */
@@ -93,6 +96,7 @@ function readRequirement(
     : readQuantity(childOf(item, 'scale'), dimension, '`scale`', reading);
   if (scale !== undefined && scale.value <= 0) reading.problems.add(scale.place, '`scale` must be above 0');
   const place = textOf(childOf(item, 'name'))?.place ?? item.place;
+  const forBuilds = readForBuilds(entryOf(item, 'builds'), referred.builds, reading);
   return {
     name: textOf(childOf(item, 'name'))?.text ?? '',
     place,
@@ -108,6 +112,7 @@ function readRequirement(
     unit: limit?.unit ?? plainUnit,
     inDecibels: limit?.inDecibels ?? false,
     holdsFor: readHoldsFor(entryOf(item, 'holds_for'), measure, reading),
+    ...(forBuilds && { forBuilds }),
     scale: scale?.value,
     reason: textOf(childOf(item, 'reason'))?.text,
   };

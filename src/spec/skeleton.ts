@@ -345,6 +345,10 @@ function requirement(vocabulary: Vocabulary) {
         .tuple([text('a limit'), text('a limit')])
         .describe('two limits in brackets, such as [1 V, 2 V]')
         .optional(),
+      builds: z
+        .union([text('the name of a build'), z.array(text('the name of a build')).min(1)])
+        .describe('the builds that it is for: a name, or a list such as [left, right]')
+        .optional(),
       holds_for: text('nominal, all, or a share such as 99 %').optional(),
       scale: text('a quantity').optional(),
       reason: text('plain words').optional(),

@@ -283,6 +283,8 @@ export interface Requirement {
   /** True where the limit was written in dB. */
   inDecibels: boolean;
   holdsFor: HoldsFor;
+  /** Of several builds the names of those that it is for; all of them where not given. */
+  forBuilds?: string[];
   /** Stands for |limit| in the headroom where the limit is zero, SI. */
   scale: number | undefined;
   reason: string | undefined;

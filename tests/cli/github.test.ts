@@ -104,6 +104,33 @@ describe('several builds in one spec', () => {
     expect(new Set([...xml.matchAll(/classname="([^"]*)"/g)].map(([, name]) => name)).size).toBe(2);
   });
 
+  it('may have requirements of their own: each is judged by those that are for it', async () => {
+    const text = folder.read('axis.pawl.yaml').replace('{ name: R2,', '{ name: R2, builds: shipped,');
+    folder.write(
+      'axis.pawl.yaml',
+      `${text}  - { name: R3, builds: [regressed], measure: largest_value, of: speed, in: step, at_most: 2 }\n`,
+    );
+    expect((await folder.run(['check', '--out', 'reports'])).status).toBe(0);
+    const { specs } = JSON.parse(folder.read('reports/run.json'));
+    const judged = (at: number): string[] => specs[at].requirements.map(({ name }: { name: string }) => name);
+    expect(judged(0)).toContain('R2');
+    expect(judged(0)).not.toContain('R3');
+    expect(judged(1)).toContain('R3');
+    expect(judged(1)).not.toContain('R2');
+    for (const part of ['1', '2']) {
+      await folder.run(['check', '--part', part, '--of', '2', '--out', 'parts']);
+    }
+    const joined = await folder.run([
+      'join',
+      'parts/part-1-of-2.json',
+      'parts/part-2-of-2.json',
+      '--out',
+      'joined',
+    ]);
+    expect(joined.status).toBe(0);
+    expect(folder.read('joined/run.json')).toBe(folder.read('reports/run.json'));
+  });
+
   it('are replayed by their names', async () => {
     await folder.run(['check', '--out', 'reports']);
     const replay = (...more: string[]) => folder.run(['replay', 'reports', 'R2', ...more]);

@@ -167,6 +167,25 @@ describe('several builds', () => {
     expect(specOf(text).builds?.map(({ firmware }) => firmware.build)).toEqual([['make'], undefined]);
   });
 
+  it('may each have requirements of their own', () => {
+    const two = withBuilds('one: a.elf', 'two: b.elf');
+    const of = (builds: string): (string[] | undefined)[] =>
+      specOf(two.replace(', measure:', `, builds: ${builds}, measure:`)).requirements.map(
+        ({ forBuilds }) => forBuilds,
+      );
+    expect(of('[two, one]')[0]).toEqual(['two', 'one']);
+    expect(specOf(two).requirements[0].forBuilds).toBeUndefined();
+    expect(errorsOf(two.replace(', measure:', ', builds: ones, measure:'))[0]).toMatch(
+      /there is no build `ones`; did you mean `one`\?$/,
+    );
+    expect(errorsOf(two.replace(', measure:', ', builds: one, measure:'))[0]).toMatch(
+      /:11:3: no requirement is for the build `two`; leave it out, or name it in a requirement's `builds`$/,
+    );
+    expect(errorsOf(smallSpec().replace(', measure:', ', builds: one, measure:'))[0]).toMatch(
+      /the spec has one build only; leave `builds` out/,
+    );
+  });
+
   const wrong: [what: string, text: string, error: string][] = [
     [
       'one without an origin',
