@@ -3,6 +3,7 @@ import { Linearisation, withReadings } from '../linear/linearise.js';
 import { NoisePath } from '../linear/noise_path.js';
 import { openedLoop } from '../linear/opened_loop.js';
 import type { PointOfRest } from '../linear/point_of_rest.js';
+import type { StateEquations } from '../linear/state_equations.js';
 import { Evaluation, type LeafValues } from '../loop/evaluate.js';
 import { expandLoop } from '../loop/expand.js';
 import { LoopError } from '../loop/loop.js';
@@ -78,6 +79,13 @@ export class LoopPoint {
     const found = this.sizes.at(new Evaluation(leaves, 'off'));
     if (found.kind === 'unformed') return found;
     const equations = openedLoop(this.linearisation, schedule, leaves, found.sizes);
+    if (!noise && isNothing(equations)) {
+      const signals = this.linearisation.loop.openings.map(({ at }) => `'${at}'`).join(' and ');
+      return {
+        kind: 'unformed',
+        why: `nothing of what goes out at ${signals} returns: the loop is open at the point of linearisation, as inside a dead band or with a gain of 0; where it closes elsewhere, say so with \`around\``,
+      };
+    }
     const periods = this.linearisation.loop.openings.map(
       ({ task }) => equations.period! / (schedule.cycle / schedule.period[task]),
     );
@@ -127,6 +135,11 @@ export function openingsOf(spec: Spec, requirement: Requirement): string[] {
   return openedAt(requirement)
     .map((name) => sensorFedBy(spec, name) ?? name)
     .sort();
+}
+
+/** A transfer of nothing at all: margins of it would be infinite, and would pass. */
+function isNothing({ a, d }: StateEquations): boolean {
+  return a.rows === 0 && d.data.every((entry) => entry === 0);
 }
 
 /** A continuous signal that feeds exactly one sensor means that sensor. */

@@ -92,8 +92,7 @@ describe('a sensor', () => {
 });
 
 /** A loop with a given actuator and delay; its margins and the largest and smallest felt value after a step. */
-function acting(actuator: string, delay: string): Record<string, number> {
-  return measured(`
+const withActuator = (actuator: string, delay: string): string => `
 inputs: { target: { unit: rad } }
 plant:
   speed: { integral: (30 1/s^2)*drive - (2 1/s)*speed, unit: rad/s }
@@ -108,8 +107,10 @@ requirements:
   - { name: rate, measure: slew_rate, of: drive, in: jump, at_most: 90 rad/s }
   - { name: overshoot, measure: overshoot, of: angle, to: target, in: jump, at_most: 90 % }
   - { name: when, measure: time_of_largest_value, of: drive, in: jump, at_most: 9 s }
-`);
-}
+`;
+
+const acting = (actuator: string, delay: string): Record<string, number> =>
+  measured(withActuator(actuator, delay));
 
 describe('an actuator', () => {
   it('updated at the middle or the start of a period is as late as the next one', () => {
@@ -141,8 +142,10 @@ describe('an actuator', () => {
   });
 
   it('does nothing inside its dead band', () => {
-    expect(acting('dead_band: 0.9 rad', '0 s').top).toBe(0);
-    expect(acting('dead_band: 0.3 rad', '0 s').top).toBeCloseTo(0.5, 12);
+    expect(resultsOf(withActuator('dead_band: 0.9 rad', '0 s')).top).toMatchObject({ value: 0 });
+    const { top, gain } = resultsOf(withActuator('dead_band: 0.3 rad', '0 s'));
+    expect((top as { value: number }).value).toBeCloseTo(0.5, 12);
+    expect(gain).toMatchObject({ kind: 'unformed', why: expect.stringContaining('as inside a dead band') });
   });
 });
 
