@@ -29,8 +29,9 @@ describe('damping of a closed loop over a cycle of several samples', () => {
         const own = closedLoopDecay(loop).dampingRatio;
         // Of a motion that is nearly over within the cycle the multiplier has few digits left.
         const fastest = modesOf(closedLoopMatrix(loop), loop.period).at(-1)!.decayRate;
-        fc.pre(Math.exp(fastest * loop.period! * samples) < 1e6);
-        expect(Math.abs(dampingOf(lifted(loop, samples)) / own - 1)).toBeLessThan(1e-8);
+        const lost = Math.exp(fastest * loop.period! * samples);
+        fc.pre(lost < 1e6);
+        expect(Math.abs(dampingOf(lifted(loop, samples)) / own - 1)).toBeLessThan(1e-8 + 1e-11 * lost);
       }),
       { numRuns: 150 },
     );

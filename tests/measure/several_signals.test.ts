@@ -275,17 +275,18 @@ describe('where the loop is opened', () => {
     );
   });
 
-  it('one at a time never gives a smaller modulus margin, or another decay, than all at once', () => {
+  it('one at a time never gives a smaller modulus margin than all at once, and the slowest of their modes is its', () => {
     // S of one signal with the others closed is an entry on the diagonal of S of all.
     fc.assert(
       fc.property(coupled, (loop) => {
         const [together, decay] = opened(loop, both, ['modulus_margin', 'stability']);
-        for (const at of ['duty_pan', 'duty_tilt']) {
-          const [single, itsDecay] = opened(loop, at, ['modulus_margin', 'stability']);
-          expect(single).toBeGreaterThanOrEqual(together * (1 - 1e-9));
-          // Equal modes are told apart by the root of a rounding.
-          expectNear([itsDecay], [decay], 1e-6);
-        }
+        const singles = ['duty_pan', 'duty_tilt'].map((at) =>
+          opened(loop, at, ['modulus_margin', 'stability']),
+        );
+        for (const [single] of singles) expect(single).toBeGreaterThanOrEqual(together * (1 - 1e-9));
+        // Where one axis knows nothing of the other its loop has the modes of its own alone. Equal modes are told apart by the
+        // root of a rounding.
+        expectNear([Math.min(...singles.map(([, own]) => own))], [decay], 1e-6);
       }),
       { numRuns: 20 },
     );
