@@ -70,6 +70,7 @@ export async function readBuild(
     provenance: {
       ...provenanceOf(image, build),
       buildSkipped: firmware.build !== undefined && !wanted,
+      ...(origin.replaced && { insteadOfSpecs: true }),
     },
   };
 }

@@ -135,6 +135,8 @@ export interface Provenance {
   build: { command: string[]; seconds: number; output: string } | undefined;
   /** Said where the build command of the spec was not run. */
   buildSkipped: boolean;
+  /** Said where the image stands in for the one that the spec names. */
+  insteadOfSpecs?: boolean;
 }
 
 /** Everything found for one spec. */

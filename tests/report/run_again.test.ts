@@ -11,19 +11,40 @@ function wordsOf(line: string): string[] {
   return execFileSync('bash', ['-c', script], { encoding: 'utf8' }).split('\0').slice(0, -1);
 }
 
+const again = ({ file }: { file: string }): string => runAgain({ file, provenance: undefined });
+
+/** A file as it is named to a shell: what begins with a dash would be an option. */
+const named = (file: string): string => (file.startsWith('-') ? `./${file}` : file);
+
 describe('runAgain', () => {
+  it('takes the same image', () => {
+    const provenance = {
+      image: 'out/new axis.elf',
+      bytes: 1,
+      sha256: '00',
+      buildId: undefined,
+      compilers: [],
+      build: undefined,
+      buildSkipped: true,
+    };
+    expect(runAgain({ file: 'a.yaml', provenance })).toBe('pawl check a.yaml --skip-build');
+    expect(runAgain({ file: 'a.yaml', provenance: { ...provenance, insteadOfSpecs: true } })).toBe(
+      "pawl check a.yaml --image 'out/new axis.elf'",
+    );
+  });
+
   it('leaves plain paths as they are and quotes the others', () => {
-    expect(runAgain({ file: 'specs/heliostat/azimuth.pawl.yaml' })).toBe(
+    expect(again({ file: 'specs/heliostat/azimuth.pawl.yaml' })).toBe(
       'pawl check specs/heliostat/azimuth.pawl.yaml',
     );
-    expect(runAgain({ file: 'my spec.yaml' })).toBe("pawl check 'my spec.yaml'");
-    expect(runAgain({ file: "it's.yaml" })).toBe("pawl check 'it'\\''s.yaml'");
-    expect(runAgain({ file: '-rf' })).toBe("pawl check '-rf'");
-    expect(runAgain({ file: 'a\nb' })).toBe("pawl check $'a\\012b'");
+    expect(again({ file: 'my spec.yaml' })).toBe("pawl check 'my spec.yaml'");
+    expect(again({ file: "it's.yaml" })).toBe("pawl check 'it'\\''s.yaml'");
+    expect(again({ file: '-rf' })).toBe('pawl check ./-rf');
+    expect(again({ file: 'a\nb' })).toBe("pawl check $'a\\012b'");
   });
 
   it.each(Object.entries(hostileNames))('stays one harmless line for a hostile name: %s', (_, file) => {
-    const line = runAgain({ file });
+    const line = again({ file });
     expect(line).not.toMatch(harmful);
     expect(line).not.toContain('\n');
   });
@@ -31,12 +52,12 @@ describe('runAgain', () => {
   it.runIf(hasTool('bash', 'bash'))('names the very same file to bash', () => {
     for (const file of Object.values(hostileNames)) {
       if (file.includes('\0') || !file.isWellFormed()) continue;
-      expect(wordsOf(runAgain({ file }))).toEqual(['check', file]);
+      expect(wordsOf(again({ file }))).toEqual(['check', named(file)]);
     }
     fc.assert(
       fc.property(fc.string({ minLength: 1, unit: 'binary' }), (file) => {
         fc.pre(!file.includes('\0') && file.isWellFormed());
-        expect(wordsOf(runAgain({ file }))).toEqual(['check', file]);
+        expect(wordsOf(again({ file }))).toEqual(['check', named(file)]);
       }),
       { seed: 61, numRuns: 60 },
     );
