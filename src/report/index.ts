@@ -1,6 +1,7 @@
 export { type Annotation, annotationLines, annotationsOf, workflowCommand } from './annotations.js';
 export { caution } from './caution.js';
 export { coefficientTable } from './coefficient_table.js';
+export { type DrawingFile, drawingFiles } from './drawing_files.js';
 export type { Fault } from './fault.js';
 export { htmlReport, type ReportExtras } from './html.js';
 export { junitOf, junitOfFault } from './junit.js';

@@ -1,5 +1,6 @@
 import type { FinishedRun, RequirementRun, SpecRun } from '../verdict/run.js';
 import { caution } from './caution.js';
+import type { DrawingFile } from './drawing_files.js';
 import type { Fault } from './fault.js';
 import { counted, formatHeadroom, formatNumber, formatResultShort } from './format_value.js';
 import { markdownTable, markdownText } from './markdown_text.js';
@@ -26,10 +27,19 @@ const mostMessages = 10;
 /**
  * The run for a comment on a pull request or a job's summary: the verdict, what blocks the merge with the plant it
  * breaks on, the met requirements folded away, what may be claimed, and the caution.
+ * @param drawn files that stand beside it, one list for each spec.
  */
-export function markdownSummary(run: FinishedRun, faults: readonly Fault[] = []): string {
+export function markdownSummary(
+  run: FinishedRun,
+  faults: readonly Fault[] = [],
+  drawn: readonly DrawingFile[][] = [],
+): string {
   const head = `## pawl: ${runInWords(run, faults.length)}`;
-  const parts = [head, ...faults.map(faultPart), ...run.specs.map(specPart)];
+  const parts = [
+    head,
+    ...faults.map(faultPart),
+    ...run.specs.map((spec, at) => specPart(spec, drawn[at] ?? [])),
+  ];
   const foot = `<sub>${markdownText(caution)}</sub>\n`;
   let room = mostCharacters - foot.length;
   const shown = parts.filter((part) => {
@@ -48,7 +58,7 @@ function faultPart({ specFile, messages }: Fault): string {
   return `### ${said(specFile, 120)} could not be run\n\n${lines.join('\n')}`;
 }
 
-function specPart(spec: SpecRun): string {
+function specPart(spec: SpecRun, drawn: readonly DrawingFile[]): string {
   const { provenance } = spec;
   const blocking = blockingFirst(spec.requirements).filter(({ verdict }) => verdict.kind !== 'met');
   const merge = mergeInWords(spec);
@@ -59,7 +69,9 @@ function specPart(spec: SpecRun): string {
     : 'no image';
   return [
     `### ${said(spec.loop, 120)}`,
-    blocking.length > 0 ? `${table(blocking)}\n\n${blocking.map((one) => detail(one, spec)).join('\n')}` : '',
+    blocking.length > 0
+      ? `${table(blocking)}\n\n${blocking.map((one) => detail(one, spec, drawn)).join('\n')}`
+      : '',
     met.length > 0 ? folded(`${counted(met.length, 'requirement')} met`, table(met)) : '',
     warningsInWords(spec)
       .map((text) => `- ${said(text, 200)}`)
@@ -81,7 +93,7 @@ function table(requirements: readonly RequirementRun[]): string {
 }
 
 /** What is asked next of a requirement that blocks: where it is written, why, on which plant, and what it is for. */
-function detail(requirement: RequirementRun, spec: SpecRun): string {
+function detail(requirement: RequirementRun, spec: SpecRun, drawn: readonly DrawingFile[]): string {
   const { name, place: written, verdict, worst, reason } = requirement;
   const why = verdict.kind === 'met' ? [] : [verdict.why];
   if (worst.result.kind !== 'value' && !why.includes(worst.result.why)) why.push(worst.result.why);
@@ -97,6 +109,9 @@ function detail(requirement: RequirementRun, spec: SpecRun): string {
     ...(nearest === undefined ? [] : [said(nearest, 300)]),
     `worst plant: ${said(plantInWords(worst), 400)}`,
     ...(reason === undefined ? [] : [`reason: ${said(reason, 300)}`]),
+    ...drawn
+      .filter((file) => file.requirement === name)
+      .map(({ path, lines }) => `drawn in \`${path}\`${lines ? `: ${lines}` : ''}`),
   ];
   const place = `${said(written.file, 120)}, line ${written.line}`;
   return [

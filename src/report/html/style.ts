@@ -1,7 +1,33 @@
+/** Petrol and brick on ink and slate, for light and dark. */
+export const palette = `:root{color-scheme:light dark;--ground:#fbfaf7;--sheet:#fff;--ink:#17212b;--slate:#4a5560;--line:#c9ced3;--hair:#e6e8ea;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030}
+@media(prefers-color-scheme:dark){:root{--ground:#10161c;--sheet:#171f27;--ink:#e6ebef;--slate:#a9b4bf;--line:#3c4854;--hair:#27313b;--petrol:#62b6c4;--brick:#e58d72;--band:#a9b4bf38}}`;
+
+/** How drawings look. */
+export const drawingStyle = `.drawing{display:block;width:100%;height:auto;font-size:13px}
+.drawing text{fill:var(--ink)}.drawing .mark,.drawing .axis-name{fill:var(--slate)}
+.drawing .fence-name,.drawing .bracket-name,.drawing .curve-name{font-weight:600;paint-order:stroke;stroke:var(--sheet);stroke-width:4px;stroke-linejoin:round}
+.drawing path,.drawing circle{fill:none}
+.axis{stroke:var(--slate)}.hair{stroke:var(--hair)}.level{stroke:var(--slate);stroke-width:1}
+.fence{stroke:var(--ink);stroke-width:1.3}
+.drawing .band{fill:var(--band)}
+.nominal{stroke:var(--petrol);stroke-width:2.2}.worst{stroke:var(--brick);stroke-width:2;stroke-dasharray:6 3}
+.worst-2{stroke-dasharray:2 3}.worst-3{stroke-dasharray:12 3}
+.latched{stroke:var(--ink);stroke-width:1.5;stroke-dasharray:10 3 2 3}
+.target{stroke:var(--slate);stroke-width:1.2;stroke-dasharray:1.5 3}
+.leader{stroke:var(--slate);stroke-width:.8}.bracket{stroke:var(--ink);stroke-width:1.6}.nominal-bracket{stroke:var(--petrol)}.worst-bracket{stroke:var(--brick)}
+.critical{stroke:var(--ink);stroke-width:2}
+.drawing .bracket-end{fill:var(--sheet);stroke-width:2}.nominal-end{stroke:var(--petrol)}.worst-end{stroke:var(--brick)}
+.drawing .under-point{fill:var(--sheet);stroke:none}.drawing .nominal-point{fill:var(--sheet);stroke:var(--petrol);stroke-width:3}
+.drawing .worst-point{fill:var(--brick);stroke:var(--sheet);stroke-width:1}
+.drawing .latched-point{fill:var(--sheet);stroke:var(--ink);stroke-width:2}
+.drawing .curve-name{font-style:italic;font-weight:400}
+.hover rect{fill:transparent}.hover rect:hover{fill:var(--band)}
+.drawing .cell{fill:var(--petrol);shape-rendering:crispEdges}.drawing .no-cell{fill:var(--hair)}
+.hatch{stroke:var(--slate);stroke-width:1.4}.edge{stroke:var(--ink);stroke-width:1.8}`;
+
 /** The page's only style sheet: petrol and brick on ink and slate, for light, dark, print and narrow screens. */
 export const style = `
-:root{color-scheme:light dark;--ground:#fbfaf7;--sheet:#fff;--ink:#17212b;--slate:#4a5560;--line:#c9ced3;--hair:#e6e8ea;--petrol:#0f6472;--brick:#a4452c;--band:#4a556030}
-@media(prefers-color-scheme:dark){:root{--ground:#10161c;--sheet:#171f27;--ink:#e6ebef;--slate:#a9b4bf;--line:#3c4854;--hair:#27313b;--petrol:#62b6c4;--brick:#e58d72;--band:#a9b4bf38}}
+${palette}
 *{box-sizing:border-box}
 html{scroll-behavior:smooth;-webkit-text-size-adjust:100%}
 body{margin:0;background:var(--ground);color:var(--ink);font:16px/1.5 "Source Sans 3","Segoe UI",Roboto,"Noto Sans",sans-serif;overflow-wrap:anywhere}
@@ -44,27 +70,7 @@ details{margin-top:8px}summary{cursor:pointer;padding:4px 0}
 ul{padding-left:20px}li{margin:4px 0}
 .faults{border-left:6px double var(--brick);padding-left:14px;list-style:none}
 footer{border-top:3px solid var(--ink);margin-top:48px;padding-top:14px;padding-bottom:40px}
-.drawing{display:block;width:100%;height:auto;font-size:13px}
-.drawing text{fill:var(--ink)}.drawing .mark,.drawing .axis-name{fill:var(--slate)}
-.drawing .fence-name,.drawing .bracket-name,.drawing .curve-name{font-weight:600;paint-order:stroke;stroke:var(--sheet);stroke-width:4px;stroke-linejoin:round}
-.drawing path,.drawing circle{fill:none}
-.axis{stroke:var(--slate)}.hair{stroke:var(--hair)}.level{stroke:var(--slate);stroke-width:1}
-.fence{stroke:var(--ink);stroke-width:1.3}
-.drawing .band{fill:var(--band)}
-.nominal{stroke:var(--petrol);stroke-width:2.2}.worst{stroke:var(--brick);stroke-width:2;stroke-dasharray:6 3}
-.worst-2{stroke-dasharray:2 3}.worst-3{stroke-dasharray:12 3}
-.latched{stroke:var(--ink);stroke-width:1.5;stroke-dasharray:10 3 2 3}
-.target{stroke:var(--slate);stroke-width:1.2;stroke-dasharray:1.5 3}
-.leader{stroke:var(--slate);stroke-width:.8}.bracket{stroke:var(--ink);stroke-width:1.6}.nominal-bracket{stroke:var(--petrol)}.worst-bracket{stroke:var(--brick)}
-.critical{stroke:var(--ink);stroke-width:2}
-.drawing .bracket-end{fill:var(--sheet);stroke-width:2}.nominal-end{stroke:var(--petrol)}.worst-end{stroke:var(--brick)}
-.drawing .under-point{fill:var(--sheet);stroke:none}.drawing .nominal-point{fill:var(--sheet);stroke:var(--petrol);stroke-width:3}
-.drawing .worst-point{fill:var(--brick);stroke:var(--sheet);stroke-width:1}
-.drawing .latched-point{fill:var(--sheet);stroke:var(--ink);stroke-width:2}
-.drawing .curve-name{font-style:italic;font-weight:400}
-.hover rect{fill:transparent}.hover rect:hover{fill:var(--band)}
-.drawing .cell{fill:var(--petrol);shape-rendering:crispEdges}.drawing .no-cell{fill:var(--hair)}
-.hatch{stroke:var(--slate);stroke-width:1.4}.edge{stroke:var(--ink);stroke-width:1.8}
+${drawingStyle}
 .key{display:inline-block;margin-right:12px}
 .key::before{content:"";display:inline-block;vertical-align:middle;margin-right:6px;width:20px;height:0}
 .nominal-key::before{width:12px;height:12px;border:3px solid var(--petrol);border-radius:50%}
