@@ -6,15 +6,14 @@ import { textTable } from './text_table.js';
 
 /** The parameters of a plant, one row each: name, value, unit, nominal, and the way gone to the bound in per cent. */
 export function parameterRows({ parameters }: Pick<JudgedPlant, 'parameters'>): string[][] {
-  return parameters.map(({ name, value, unit, nominal, moved }) => {
+  return parameters.map(({ name, value, unit, nominal, moved, derived }) => {
     const written = { unit, inDecibels: false };
     return [
       oneLine(name),
       formatNumber(inWrittenUnit(value, written), 6),
       unitText(written),
       formatNumber(inWrittenUnit(nominal, written), 6),
-      // What is computed from other parameters has no bounds of its own.
-      moved === 0 && value !== nominal ? 'follows from the others' : moveInWords(moved),
+      derived ? 'follows from the others' : moveInWords(moved),
     ];
   });
 }

@@ -23,7 +23,8 @@ export function moveInWords(moved: number): string {
  * the way to its upper bound (191 N*m); nothing else moved". At most `most` parameters are named.
  */
 export function plantInWords({ parameters }: Pick<JudgedPlant, 'parameters'>, most = 8): string {
-  const moved = parameters
+  const own = parameters.filter(({ derived }) => !derived);
+  const moved = own
     .filter((parameter) => parameter.moved !== 0)
     .sort((a, b) => Math.abs(b.moved) - Math.abs(a.moved));
   if (moved.length === 0) return 'the nominal plant';
@@ -31,7 +32,7 @@ export function plantInWords({ parameters }: Pick<JudgedPlant, 'parameters'>, mo
     .slice(0, most)
     .map((one) => `${oneLine(one.name)} ${moveInWords(one.moved)} (${parameterValueText(one)})`)
     .join(', ');
-  return named + rest(moved.length - most, parameters.length - moved.length);
+  return named + rest(moved.length - most, own.length - moved.length);
 }
 
 function rest(unnamed: number, unmoved: number): string {

@@ -10,6 +10,7 @@ export function parameterValues(
     // One that follows from others is not moved by itself.
     const move = derived ? 0 : values[i] - nominal;
     const room = move < 0 ? nominal - low : high - nominal;
-    return { name, unit, nominal, value: values[i], moved: move === 0 ? 0 : move / room };
+    const moved = move === 0 ? 0 : move / room;
+    return { name, unit, nominal, value: values[i], moved, ...(derived && { derived: true as const }) };
   });
 }

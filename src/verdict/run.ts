@@ -25,6 +25,8 @@ export interface ParameterValue {
   nominal: number;
   /** Share of the way from nominal to the lower (negative) or upper (positive) bound; 0 at nominal. */
   moved: number;
+  /** Said where it follows from other parameters and has no bounds of its own. */
+  derived?: true;
 }
 
 /** A plant with what the requirement's measure gave for it. */

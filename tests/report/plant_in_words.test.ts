@@ -1,4 +1,5 @@
 import { describe, expect, it } from 'vitest';
+import { parameterRows } from '../../src/report/parameter_table.js';
 import { moveInWords, plantInWords } from '../../src/report/plant_in_words.js';
 import { movedParameters, nominalParameters, parameter, units } from './sample_run.js';
 
@@ -18,6 +19,13 @@ describe('plantInWords', () => {
     expect(plantInWords({ parameters: movedParameters.slice(0, 1) })).toBe(
       'friction at its lower bound (10 N*m*s/rad)',
     );
+  });
+
+  it('does not count parameters that follow from others: they move with them', () => {
+    const follows = { ...parameter('flow', 3, 2, 0, units.torque), derived: true as const };
+    const parameters = [...movedParameters.slice(0, 1), follows];
+    expect(plantInWords({ parameters })).toBe('friction at its lower bound (10 N*m*s/rad)');
+    expect(parameterRows({ parameters })[1][4]).toBe('follows from the others');
   });
 
   it('tells what moved most first and counts what it leaves out', () => {
