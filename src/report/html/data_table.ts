@@ -1,13 +1,21 @@
 import { html, type Markup } from './markup.js';
 
-/** A table with a caption and headings; the first cell of a row heads it. It scrolls by itself where it is too wide. */
+/**
+ * A table with a caption and headings; the first cell of a row heads it. It scrolls by itself where it is too wide.
+ * @param numeric columns of numbers.
+ * @param spare columns that are left out on a narrow screen.
+ */
 export function dataTable(
   caption: string,
   headings: readonly string[],
   rows: readonly (readonly string[])[],
   numeric: readonly number[] = [],
+  spare: readonly number[] = [],
 ): Markup {
-  const kind = (at: number): Markup | undefined => (numeric.includes(at) ? html` class="number"` : undefined);
+  const kind = (at: number): Markup | undefined => {
+    const kinds = [numeric.includes(at) && 'number', spare.includes(at) && 'wide'].filter(Boolean).join(' ');
+    return kinds === '' ? undefined : html` class="${kinds}"`;
+  };
   const head = headings.map((heading, at) => html`<th scope="col"${kind(at)}>${heading}</th>`);
   const body = rows.map(
     ([first, ...cells]) =>

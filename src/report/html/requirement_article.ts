@@ -105,5 +105,5 @@ function plantDetails(requirement: RequirementRun): Markup {
   const which = evidence.kind === 'nominal_only' ? 'Plant' : 'Worst plant';
   const open = verdict.kind === 'broken' ? html` open` : undefined;
   return html`<details${open}><summary>${which}: ${plantInWords(worst)}</summary>
-${dataTable(`Parameters of the worst plant of ${name}`, parameterHeadings, parameterRows(worst), [1, 3])}</details>`;
+${dataTable(`Parameters of the worst plant of ${name}`, parameterHeadings, parameterRows(worst), [1, 3], [3])}</details>`;
 }
