@@ -26,6 +26,7 @@ import {
   waiverInWords,
 } from './since_latched.js';
 import { blocksMerge } from './verdict_words.js';
+import { whatToDo } from './what_to_do.js';
 
 /** Node loads the library as CommonJS, whose whole export is the builder; its types describe it as an ES module. */
 const junit = library as unknown as Builder;
@@ -135,6 +136,7 @@ function inFull(requirement: RequirementRun, spec: SpecRun): string {
     titled('matters:  ', effectsInWords(requirement)),
     ...sinceThen(requirement, spec),
     requirement.claim ? `claim:    ${visible(requirement.claim)}` : '',
+    titled('to do:    ', whatToDo(requirement, spec)),
     `plant:    ${plantInWords(worst)}`,
     '',
     parameterTable(worst),

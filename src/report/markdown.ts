@@ -19,6 +19,7 @@ import {
   waiverInWords,
 } from './since_latched.js';
 import { blockingFirst, runInWords, verdictSigns } from './verdict_words.js';
+import { whatToDo } from './what_to_do.js';
 
 /** A comment on a pull request holds 65,536 characters; so many leave room for what stands around it. */
 const mostCharacters = 60_000;
@@ -104,11 +105,13 @@ function detail(requirement: RequirementRun, spec: SpecRun, drawn: readonly Draw
     waiverInWords(requirement),
   ];
   const nearest = shrunkInWords(requirement);
+  const todo = whatToDo(requirement, spec);
   const head = [...why, ...since].flatMap((text) => (text === undefined ? [] : [said(text, 300)]));
   const below = [
-    ...(nearest === undefined ? [] : [said(nearest, 300)]),
+    ...(nearest === undefined ? [] : [`nearest to nominal: ${said(nearest, 300)}`]),
     `worst plant: ${said(plantInWords(worst), 400)}`,
     ...(reason === undefined ? [] : [`reason: ${said(reason, 300)}`]),
+    ...(todo === undefined ? [] : [`what to do: ${said(todo, 400)}`]),
     ...drawn
       .filter((file) => file.requirement === name)
       .map(({ path, lines }) => `drawn in \`${path}\`${lines ? `: ${lines}` : ''}`),

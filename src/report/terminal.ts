@@ -19,6 +19,7 @@ import {
 import { type Painter, painter } from './terminal_colour.js';
 import { type RowWidths, rowLines, rowWidths, terminalHeadings, terminalRow } from './terminal_row.js';
 import { blockingFirst, mayMerge, runInWords, verdictSigns } from './verdict_words.js';
+import { whatToDo } from './what_to_do.js';
 import { wrapText } from './wrap_text.js';
 
 /** How a terminal is written to: whether in colour, and how many columns it has. */
@@ -113,6 +114,7 @@ function details(requirement: RequirementRun, spec: SpecRun): string[] {
   const found = withoutNumber(worst, requirement);
   if (found !== undefined && !why.includes(found)) why.push(found);
   const nearest = shrunkInWords(requirement);
+  const todo = whatToDo(requirement, spec);
   return [
     ...why.map((text) => shortened(text, longest)),
     `plant: ${shortened(plantInWords(worst), longest)}`,
@@ -120,6 +122,7 @@ function details(requirement: RequirementRun, spec: SpecRun): string[] {
     evidenceInWords(requirement) + (holdsFor === 'all' ? '' : `; must hold ${holdsForInWords(requirement)}`),
     ...(reason === undefined ? [] : [`reason: ${shortened(oneLine(reason), longest)}`]),
     ...sinceThen(requirement, spec),
+    ...(todo === undefined ? [] : [`what to do: ${shortened(todo, longest)}`]),
     `${shortened(oneLine(place.file), 200)}:${place.line}:${place.column}`,
   ];
 }

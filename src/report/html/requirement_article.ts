@@ -13,6 +13,7 @@ import {
 } from '../requirement_in_words.js';
 import { effectsInWords, proofInWords, reachInWords, shrunkInWords } from '../scrutiny_in_words.js';
 import { comparisonInWords, headroomChange, waiverInWords } from '../since_latched.js';
+import { whatToDo } from '../what_to_do.js';
 import { dataTable, termList } from './data_table.js';
 import { elsewhere, type Figure, plotFigures } from './figures.js';
 import { html, type Markup } from './markup.js';
@@ -31,7 +32,7 @@ export function requirementArticle(
   const { name, verdict, reason, worst } = requirement;
   const columns = twoColumns(
     strip(requirement, id),
-    numbers(requirement),
+    numbers(requirement, spec),
     plotFigures(requirement, id, plots),
   );
   const why = verdict.kind === 'met' ? undefined : html`<p class="why">${verdict.why}</p>`;
@@ -57,8 +58,8 @@ function strip(requirement: RequirementRun, id: string): Figure {
   };
 }
 
-function numbers(requirement: RequirementRun): Figure {
-  const said = terms(requirement);
+function numbers(requirement: RequirementRun, spec: SpecRun): Figure {
+  const said = terms(requirement, spec);
   const rows = said.map(([, text]) =>
     Math.ceil((typeof text === 'string' ? text.length : 0) / charactersOfRow),
   );
@@ -68,7 +69,7 @@ function numbers(requirement: RequirementRun): Figure {
 /** Of a text beside its term. */
 const charactersOfRow = 46;
 
-function terms(requirement: RequirementRun): [string, string | Markup | undefined][] {
+function terms(requirement: RequirementRun, spec: SpecRun): [string, string | Markup | undefined][] {
   const { limit, nominal, worst, claim, place } = requirement;
   const limits = limitNumbers(limit);
   const effects = effectsInWords(requirement);
@@ -90,6 +91,7 @@ function terms(requirement: RequirementRun): [string, string | Markup | undefine
     ['waiver', waiverInWords(requirement)],
     ['evidence', evidenceInWords(requirement)],
     ['claim', claim],
+    ['what to do', whatToDo(requirement, spec)],
     ['written at', html`<code>${place.file}:${place.line}:${place.column}</code>`],
   ];
 }
