@@ -1,4 +1,4 @@
-import type { Arithmetic } from '../spec/spec.js';
+import type { Arithmetic } from '../spec/arithmetic.js';
 import { FixedRules } from './fixed_rules.js';
 import { FloatRules } from './float_rules.js';
 import type { Graph, Node, OperationName, StoredNumber } from './graph.js';

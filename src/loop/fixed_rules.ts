@@ -1,5 +1,5 @@
+import type { FixedArithmetic } from '../spec/arithmetic.js';
 import { overflows, roundings } from '../spec/fixed_formats.js';
-import type { FixedArithmetic } from '../spec/spec.js';
 import type { Graph, Node, OperationName } from './graph.js';
 import { FormatMismatch, type NumberRules, type Term } from './number_rules.js';
 

@@ -1,4 +1,4 @@
-import type { FloatArithmetic } from '../spec/spec.js';
+import type { FloatArithmetic } from '../spec/arithmetic.js';
 import type { Graph, Node, OperationName } from './graph.js';
 import type { NumberRules, Term } from './number_rules.js';
 

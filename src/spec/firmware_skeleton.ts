@@ -1,5 +1,5 @@
 import { z } from 'zod';
-import { command, text, unit } from './skeleton_slots.js';
+import { command, named, text, unit } from './skeleton_slots.js';
 
 const path = (what: string) => text(`the path of ${what}, relative to this file`);
 
@@ -23,10 +23,10 @@ const source = z
   .describe('{ file: gains.h, include_paths: […], defines: { … }, compiler: … }');
 
 /** Path of an image. */
-export const imagePath = path('the image');
+const imagePath = path('the image');
 
 /** Where the numbers of a build stand; which of these go together is checked when they are read. */
-export const originSlots = {
+const originSlots = {
   image: imagePath.optional(),
   base_address: text('an address such as 0x08000000').optional(),
   byte_order: text('little or big').optional(),
@@ -43,7 +43,7 @@ const factor = (what: string) =>
     .optional();
 
 /** A coefficient: its place in the build, or a mapping with more about it. */
-export const coefficient = z
+const coefficient = z
   .union([
     text('where it is in the build, such as drive.gains.kp'),
     z.strictObject({
@@ -58,3 +58,22 @@ export const coefficient = z
     }),
   ])
   .describe('where it is in the build, such as drive.gains.kp, or { at: …, unit: …, format: … }');
+
+/** One of several builds. */
+export const build = z
+  .union([imagePath, z.strictObject({ ...originSlots, build: command })])
+  .describe('the path of an image, or { image: …, build: … }');
+
+/** The section `firmware`. */
+export const firmware = z
+  .strictObject({
+    build: command,
+    ...originSlots,
+    coefficients: named(coefficient, 'coefficients'),
+    law: z
+      .array(text('the name of a function'))
+      .min(1)
+      .describe('a list of functions, such as [control_step]')
+      .optional(),
+  })
+  .describe('a mapping with image, and coefficients by name');

@@ -1,7 +1,7 @@
+import type { Arithmetic, FixedArithmetic, FloatArithmetic } from './arithmetic.js';
 import { overflows, parseFixedFormat, roundings } from './fixed_formats.js';
 import { suggestion } from './nearest.js';
 import type { Reading } from './reading.js';
-import type { Arithmetic, FixedArithmetic, FloatArithmetic } from './spec.js';
 import { childOf, type Tree, textOf } from './tree.js';
 
 const floats: readonly FloatArithmetic[] = ['float64', 'float32', 'float32_fused'];

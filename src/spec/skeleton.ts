@@ -1,10 +1,10 @@
 import { z } from 'zod';
-import { coefficient, imagePath, originSlots } from './firmware_skeleton.js';
+import { build, firmware } from './firmware_skeleton.js';
 import { overflows, roundings } from './fixed_formats.js';
-import { command, text, unit } from './skeleton_slots.js';
+import { requirement } from './requirement_skeleton.js';
+import { bound, mappingOf, named, text, unit } from './skeleton_slots.js';
 import type {
   BlockDescription,
-  MeasureKey,
   Room,
   SettingDescription,
   ShapeDescription,
@@ -16,7 +16,6 @@ const range = z
   .describe('two bounds in brackets, such as [-1, 1]')
   .optional();
 const expression = text('an expression').optional();
-const name = text('a name');
 
 /** The shape of a spec and of a file that it includes. */
 export interface Skeletons {
@@ -71,31 +70,6 @@ function newSkeleton(vocabulary: Vocabulary) {
     })
     .describe('a mapping of sections: pawl, loop, firmware, plant, controllers, requirements …');
 }
-
-function mappingOf(what: string): string {
-  return `a mapping of ${what} by name`;
-}
-
-function named<T extends z.ZodType>(one: T, what: string) {
-  return z.record(z.string(), one).describe(mappingOf(what)).optional();
-}
-
-const build = z
-  .union([imagePath, z.strictObject({ ...originSlots, build: command })])
-  .describe('the path of an image, or { image: …, build: … }');
-
-const firmware = z
-  .strictObject({
-    build: command,
-    ...originSlots,
-    coefficients: named(coefficient, 'coefficients'),
-    law: z
-      .array(text('the name of a function'))
-      .min(1)
-      .describe('a list of functions, such as [control_step]')
-      .optional(),
-  })
-  .describe('a mapping with image, and coefficients by name');
 
 const parameter = z
   .strictObject({
@@ -276,84 +250,6 @@ function scenario(vocabulary: Vocabulary) {
         .optional(),
     })
     .describe('{ lasts: …, inputs: … }');
-}
-
-const statementSlot = () => z.union([text('a comparison such as angle < 2 mrad'), statement]);
-
-/** A statement over time: which keys go together is checked when it is read. */
-const statement = z
-  .strictObject({
-    that: text('a comparison such as angle < 2 mrad').optional(),
-    get throughout() {
-      return statementSlot().optional();
-    },
-    get at_some_time() {
-      return statementSlot().optional();
-    },
-    get holds_up_to() {
-      return statementSlot().optional();
-    },
-    get holds() {
-      return statementSlot().optional();
-    },
-    get when() {
-      return statementSlot().optional();
-    },
-    get all_of() {
-      return z.array(statementSlot()).optional();
-    },
-    get one_of() {
-      return z.array(statementSlot()).optional();
-    },
-    from: text('a time such as 0.5 s').optional(),
-    to: text('a time such as 2 s').optional(),
-    scale: text('a quantity that counts as a headroom of 100 %').optional(),
-  })
-  .describe('a statement such as { throughout: angle < 2 mrad, from: 1 s, to: 3 s, scale: 1 mrad }');
-
-const bound = z
-  .array(z.tuple([text('a time'), text('a value')]).describe('a time and a value, such as [0 s, 1 V]'))
-  .describe('corners in brackets, such as [[0 s, 1 V], [2 s, 1.1 V]]');
-
-/** Which measures take a list is checked when it is read. */
-const loopPoints = z
-  .union([text('a signal'), z.array(text('the name of a signal')).min(1)])
-  .describe('where the loop is opened: a signal, or a list such as [duty_pan, duty_tilt]');
-
-function measureSlot(key: MeasureKey) {
-  if (key.kind === 'statement') return statementSlot().describe(key.meaning);
-  if (key.kind === 'loop_point') return loopPoints;
-  return key.kind === 'bound' ? bound : text(key.meaning);
-}
-
-function requirement(vocabulary: Vocabulary) {
-  const keys = vocabulary.measures.flatMap((measure) => measure.keys);
-  const slots = Object.fromEntries(keys.map((key) => [key.name, measureSlot(key).optional()]));
-  return z
-    .strictObject({
-      ...slots,
-      name,
-      measure: text('the name of a measure'),
-      in: text('the name of a scenario').optional(),
-      around: z
-        .record(z.string(), text('a quantity'))
-        .describe('signal values, such as { speed: 5 rad/s }')
-        .optional(),
-      at_most: text('a limit: a number with its unit').optional(),
-      at_least: text('a limit: a number with its unit').optional(),
-      between: z
-        .tuple([text('a limit'), text('a limit')])
-        .describe('two limits in brackets, such as [1 V, 2 V]')
-        .optional(),
-      builds: z
-        .union([text('the name of a build'), z.array(text('the name of a build')).min(1)])
-        .describe('the builds that it is for: a name, or a list such as [left, right]')
-        .optional(),
-      holds_for: text('nominal, all, or a share such as 99 %').optional(),
-      scale: text('a quantity').optional(),
-      reason: text('plain words').optional(),
-    })
-    .describe('{ name: …, measure: …, at_most: … }');
 }
 
 const perturbation = z

@@ -14,3 +14,18 @@ export const command = z
   .min(1)
   .describe('a list of arguments, such as [make, -C, firmware]')
   .optional();
+
+/** A line by its corners. */
+export const bound = z
+  .array(z.tuple([text('a time'), text('a value')]).describe('a time and a value, such as [0 s, 1 V]'))
+  .describe('corners in brackets, such as [[0 s, 1 V], [2 s, 1.1 V]]');
+
+/** Words for a mapping in which each thing has its name. */
+export function mappingOf(what: string): string {
+  return `a mapping of ${what} by name`;
+}
+
+/** Such a mapping that may be left out. */
+export function named<T extends z.ZodType>(one: T, what: string) {
+  return z.record(z.string(), one).describe(mappingOf(what)).optional();
+}

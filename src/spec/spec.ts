@@ -1,5 +1,4 @@
-import type { FixedFormat, overflows, roundings } from './fixed_formats.js';
-
+import type { Arithmetic } from './arithmetic.js';
 import type { BoundPoint, Statement } from './statement.js';
 
 /** A place in a text file; line and column count from 1. */
@@ -110,22 +109,6 @@ export interface SensorDefinition {
   /** Between these times (s) of every scenario the reading stays as it was. */
   stuck: { from: Expression; to: Expression } | undefined;
 }
-
-/** Floating point: `float32` rounds every operation, `float32_fused` takes x·y + z in one. */
-export type FloatArithmetic = 'float64' | 'float32' | 'float32_fused';
-
-/** Fixed point, or integers where there are no fractional bits. */
-export interface FixedArithmetic extends FixedFormat {
-  /** As written, such as Q1.15 or int32. */
-  format: string;
-  rounding: (typeof roundings)[number];
-  overflow: (typeof overflows)[number];
-  /** Width of the sums of products in bits; without it every product is rounded into the format by itself. */
-  accumulator?: number;
-}
-
-/** How the target computes. */
-export type Arithmetic = FloatArithmetic | FixedArithmetic;
 
 /** A controller: signals computed at its sampling instants. */
 export interface ControllerDefinition {

@@ -1,7 +1,7 @@
 import fc from 'fast-check';
 import { expect, test } from 'vitest';
+import type { Arithmetic } from '../../src/spec/arithmetic.js';
 import { parseFixedFormat } from '../../src/spec/fixed_formats.js';
-import type { Arithmetic } from '../../src/spec/spec.js';
 import { errorsOf, specOf } from './loading.js';
 import { smallSpec } from './small_spec.js';
 

@@ -3,8 +3,8 @@ import { TargetArithmetic } from '../../../src/loop/arithmetic.js';
 import { Evaluation } from '../../../src/loop/evaluate.js';
 import { fit } from '../../../src/loop/fixed_point.js';
 import { Graph, operations } from '../../../src/loop/graph.js';
+import type { FixedArithmetic } from '../../../src/spec/arithmetic.js';
 import { overflows, parseFixedFormat, roundings } from '../../../src/spec/fixed_formats.js';
-import type { FixedArithmetic } from '../../../src/spec/spec.js';
 import { expectPublished, publishedCase } from '../../published.js';
 
 /** reference/published/, group I: two's complement fixed point (common practice) and IEEE Std 754, 2019. */
