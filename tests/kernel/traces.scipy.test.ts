@@ -1,5 +1,3 @@
-import { fileURLToPath } from 'node:url';
-import { execa } from 'execa';
 import { describe, expect, it } from 'vitest';
 import { TraceStore } from '../../src/kernel/run_plant.js';
 import { Linearisation } from '../../src/linear/linearise.js';
@@ -9,13 +7,9 @@ import { scheduleOf } from '../../src/loop/schedule.js';
 import { ScenarioEvents } from '../../src/measure/scenario_events.js';
 import { ScenarioRun } from '../../src/measure/scenario_run.js';
 import { specOf } from '../loop/spec_of.js';
+import { askScipy, scipyAvailable } from '../scipy.js';
 
-const PYTHON = '/usr/bin/python3';
-const script = fileURLToPath(new URL('./reference_traces.py', import.meta.url));
-const { failed } = await execa(PYTHON, ['-c', 'import scipy.integrate'], { reject: false });
-// In CI the reference must be there: a missing one fails instead of passing unseen.
-const available = process.env.CI === 'true' || !failed;
-
+const script = new URL('./reference_traces.py', import.meta.url);
 interface Law {
   period: number;
   delay: number;
@@ -127,16 +121,13 @@ requirements: [{ name: top, measure: largest_value, of: y, in: jump, at_most: 9 
   });
 }
 
-describe.skipIf(!available)('traces against scipy (Virtanen and others, 2020)', () => {
+describe.skipIf(!scipyAvailable)('traces against scipy (Virtanen and others, 2020)', () => {
   const random = repeatable(20261201);
   const linear = Array.from({ length: 60 }, (_, k) => linearCase(random, k));
   const nonlinear = Array.from({ length: 12 }, () => nonlinearCase(random));
 
   async function reference(cases: (LinearCase | NonlinearCase)[]): Promise<number[][]> {
-    // The matrices are small: more than one thread would only wait.
-    const env = { OPENBLAS_NUM_THREADS: '1', OMP_NUM_THREADS: '1' };
-    const { stdout } = await execa(PYTHON, [script], { input: JSON.stringify(cases), env });
-    return JSON.parse(stdout);
+    return askScipy(script, cases);
   }
 
   /** Largest error of a trace against the size that it has reached so far: an unstable loop forgets its small beginnings. */

@@ -1,5 +1,3 @@
-import { fileURLToPath } from 'node:url';
-import { execa } from 'execa';
 import { describe, expect, it } from 'vitest';
 import { bandwidthOf } from '../../src/linear/bandwidth.js';
 import { complementaryOf } from '../../src/linear/closed_loop.js';
@@ -12,6 +10,7 @@ import { analyseLoop } from '../../src/linear/loop_analysis.js';
 import { toRows } from '../../src/linear/matrix.js';
 import { loopSeenAtOneFrequency, sineResponse } from '../../src/linear/sine_response.js';
 import type { StateEquations } from '../../src/linear/state_equations.js';
+import { askScipy, scipyAvailable } from '../scipy.js';
 import { alternating, repeatable } from './loops.js';
 
 interface Reference {
@@ -24,16 +23,7 @@ interface Reference {
   delay: number | null;
 }
 
-const PYTHON = '/usr/bin/python3';
-const script = fileURLToPath(new URL('./reference_lifted.py', import.meta.url));
-
-async function hasScipy(): Promise<boolean> {
-  const { failed } = await execa(PYTHON, ['-c', 'import scipy.linalg'], { reject: false });
-  return !failed;
-}
-
-// In CI the reference must be there: a missing one fails instead of passing unseen.
-const available = process.env.CI === 'true' || (await hasScipy());
+const script = new URL('./reference_lifted.py', import.meta.url);
 
 function stableLoops(count: number): StateEquations[] {
   const found: StateEquations[] = [];
@@ -45,10 +35,11 @@ function stableLoops(count: number): StateEquations[] {
   return found;
 }
 
-describe.skipIf(!available)('loops that differ from sample to sample against scipy', () => {
+describe.skipIf(!scipyAvailable)('loops that differ from sample to sample against scipy', () => {
   it('agree to 1e-6 in every measure that looks at frequencies', async () => {
     const loops = stableLoops(30);
-    const input = JSON.stringify(
+    const references = await askScipy<Reference[]>(
+      script,
       loops.map(({ a, b, c, d, period }) => ({
         a: toRows(a),
         b: toRows(b),
@@ -57,9 +48,6 @@ describe.skipIf(!available)('loops that differ from sample to sample against sci
         period,
       })),
     );
-    const env = { OPENBLAS_NUM_THREADS: '1', OMP_NUM_THREADS: '1' };
-    const { stdout } = await execa(PYTHON, [script], { input, env });
-    const references: Reference[] = JSON.parse(stdout);
     let delays = 0;
     references.forEach((reference, k) => {
       const loop = loops[k];

@@ -1,8 +1,7 @@
-import { fileURLToPath } from 'node:url';
-import { execa } from 'execa';
 import { describe, expect, it } from 'vitest';
 import { marginsOfLoop } from '../../src/linear/margins.js';
 import { toRows } from '../../src/linear/matrix.js';
+import { askScipy, scipyAvailable } from '../scipy.js';
 import { randomLoop, repeatable } from './loops.js';
 
 interface Reference {
@@ -16,22 +15,14 @@ interface Reference {
   complementary: number;
 }
 
-const PYTHON = '/usr/bin/python3';
-const script = fileURLToPath(new URL('./reference_margins.py', import.meta.url));
+const script = new URL('./reference_margins.py', import.meta.url);
 
-async function hasScipy(): Promise<boolean> {
-  const { failed } = await execa(PYTHON, ['-c', 'import scipy.linalg'], { reject: false });
-  return !failed;
-}
-
-// In CI the reference must be there: a missing one fails instead of passing unseen.
-const available = process.env.CI === 'true' || (await hasScipy());
-
-describe.skipIf(!available)('margins against scipy (Virtanen and others, 2020)', () => {
+describe.skipIf(!scipyAvailable)('margins against scipy (Virtanen and others, 2020)', () => {
   it('agree to 1e-6 over 300 random stable and unstable sampled loops of order 1 to 12', async () => {
     const random = repeatable(22);
     const loops = Array.from({ length: 300 }, (_, k) => randomLoop(1 + (k % 12), random));
-    const input = JSON.stringify(
+    const references = await askScipy<Reference[]>(
+      script,
       loops.map(({ a, b, c, d, period }) => ({
         a: toRows(a),
         b: toRows(b),
@@ -40,10 +31,6 @@ describe.skipIf(!available)('margins against scipy (Virtanen and others, 2020)',
         period,
       })),
     );
-    // The matrices are small: more than one thread would only wait.
-    const env = { OPENBLAS_NUM_THREADS: '1', OMP_NUM_THREADS: '1' };
-    const { stdout } = await execa(PYTHON, [script], { input, env });
-    const references: Reference[] = JSON.parse(stdout);
     expect(references.length).toBe(300);
     const stableCount = references.filter(({ stable }) => stable).length;
     expect(stableCount).toBeGreaterThan(100);

@@ -1,14 +1,8 @@
-import { fileURLToPath } from 'node:url';
-import { execa } from 'execa';
 import { describe, expect, it } from 'vitest';
+import { askScipy, scipyAvailable } from '../scipy.js';
 import { type SmallLoop, smallValues } from '../small_loop.js';
 
-const PYTHON = '/usr/bin/python3';
-const script = fileURLToPath(new URL('./reference_several_signals.py', import.meta.url));
-const { failed } = await execa(PYTHON, ['-c', 'import scipy.linalg, scipy.optimize'], { reject: false });
-// In CI the reference must be there: a missing one fails instead of passing unseen.
-const available = process.env.CI === 'true' || !failed;
-
+const script = new URL('./reference_several_signals.py', import.meta.url);
 /** x' = a·x + b·u, u = −k·x of the sampling instant, from `delay` s after it on; each u counts as a share of its width. */
 interface CoupledLoop {
   a: number[][];
@@ -88,15 +82,12 @@ function specOf({ a, b, k, period, delay, widths }: CoupledLoop): SmallLoop {
   };
 }
 
-describe.skipIf(!available)(
+describe.skipIf(!scipyAvailable)(
   'loops opened at all actuators at once, against scipy (Virtanen and others, 2020)',
   () => {
     it('agree to 1e-6 over 36 coupled loops of two and three axes', async () => {
       const loops = Array.from({ length: 36 }, (_, at) => randomLoop(2 + (at % 2)));
-      // The matrices are small: more than one thread would only wait.
-      const env = { OPENBLAS_NUM_THREADS: '1', OMP_NUM_THREADS: '1' };
-      const { stdout } = await execa(PYTHON, [script], { input: JSON.stringify(loops), env });
-      const references: Reference[] = JSON.parse(stdout);
+      const references = await askScipy<Reference[]>(script, loops);
       const stable = references.filter((one) => one.stable).length;
       expect(stable).toBeGreaterThan(15);
       expect(stable).toBeLessThan(34);

@@ -1,16 +1,10 @@
-import { fileURLToPath } from 'node:url';
-import { execa } from 'execa';
 import { describe, expect, it } from 'vitest';
 import { fromRows } from '../../src/linear/matrix.js';
 import { solve } from '../../src/linear/solve.js';
+import { askScipy, scipyAvailable } from '../scipy.js';
 import { smallValues } from '../small_loop.js';
 
-const PYTHON = '/usr/bin/python3';
-const script = fileURLToPath(new URL('./reference_time_measures.py', import.meta.url));
-const { failed } = await execa(PYTHON, ['-c', 'import scipy.signal, scipy.optimize'], { reject: false });
-// In CI the reference must be there: a missing one fails instead of passing unseen.
-const available = process.env.CI === 'true' || !failed;
-
+const script = new URL('./reference_time_measures.py', import.meta.url);
 /** Long against the slowest pole of all, at −0.4 1/s: what is left of it then is e^−16. */
 const lasts = 40;
 
@@ -115,16 +109,13 @@ function measuresOf(plant: Plant): TimeMeasures {
   return Object.fromEntries(names.map((name, i) => [name, values[i]])) as TimeMeasures;
 }
 
-describe.skipIf(!available)('time measures against scipy (Virtanen and others, 2020)', () => {
+describe.skipIf(!scipyAvailable)('time measures against scipy (Virtanen and others, 2020)', () => {
   it('agree to 1e-6 for 40 random step responses of order 2 to 4', async () => {
     const plants = Array.from({ length: 40 }, (_, k) => {
       const order = 2 + (k % 3);
       return k % 2 === 0 ? transferFunction(order) : stateEquations(order);
     });
-    // The matrices are small: more than one thread would only wait.
-    const env = { OPENBLAS_NUM_THREADS: '1', OMP_NUM_THREADS: '1' };
-    const { stdout } = await execa(PYTHON, [script], { input: JSON.stringify(plants), env });
-    const expected: TimeMeasures[] = JSON.parse(stdout);
+    const expected = await askScipy<TimeMeasures[]>(script, plants);
     let overshooting = 0;
     plants.forEach((plant, k) => {
       const actual = measuresOf(plant);

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
+import { scipyAvailable } from '../../scipy.js';
 import { type Law, noise, outputs, type Pair, responses } from './law.js';
-import { answersOf, type Question, scipyAvailable } from './scipy.js';
+import { answersOf, type Question } from './scipy.js';
 
 const structures = ['direct_1', 'direct_2', 'transposed_2'];
 

@@ -1,6 +1,7 @@
 import { describe, expect, it } from 'vitest';
+import { scipyAvailable } from '../../scipy.js';
 import { type Law, noise, outputs, stepper } from './law.js';
-import { answersOf, scipyAvailable } from './scipy.js';
+import { answersOf } from './scipy.js';
 
 const period = 0.1;
 const uses = ['this_sample', 'last_sample'] as const;
