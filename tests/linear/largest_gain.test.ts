@@ -1,6 +1,5 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
-import { holdEquivalent } from '../../src/linear/hold_equivalent.js';
 import { largestGain } from '../../src/linear/largest_gain.js';
 import { add, identity, multiply, transpose } from '../../src/linear/matrix.js';
 import { noiseGain, stateCovariance } from '../../src/linear/noise_gain.js';
@@ -8,6 +7,7 @@ import { prepareResponse, prepareResponseMatrix, responseAt } from '../../src/li
 import { largestSingularValue } from '../../src/linear/singular_value.js';
 import type { StateEquations } from '../../src/linear/state_equations.js';
 import { expectPublished, publishedCase } from '../published.js';
+import { holdEquivalent } from './hold_equivalent.js';
 import { loopOf, product, systemOf } from './loops.js';
 
 function publishedSystem(id: string): StateEquations {

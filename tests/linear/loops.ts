@@ -8,8 +8,8 @@ import {
   scale,
   zeros,
 } from '../../src/linear/matrix.js';
-import { type PolynomialRatio, stateEquationsOf } from '../../src/linear/polynomial_ratio.js';
 import type { StateEquations } from '../../src/linear/state_equations.js';
+import { type PolynomialRatio, stateEquationsOf } from './polynomial_ratio.js';
 
 /** State equations of numerator/denominator in descending powers; sampled when a period is given. */
 export function loopOf(numerator: number[], denominator: number[], period?: number): StateEquations {

@@ -1,7 +1,7 @@
 import { describe, expect, it } from 'vitest';
 import { marginsOfLoop } from '../../src/linear/margins.js';
-import { stateEquationsOf } from '../../src/linear/polynomial_ratio.js';
 import { expectPublished, publishedCase } from '../published.js';
+import { stateEquationsOf } from './polynomial_ratio.js';
 
 const DEGREES = 180 / Math.PI;
 

@@ -1,10 +1,10 @@
 import { describe, expect, it } from 'vitest';
 import { modesOf } from '../../src/linear/modes.js';
 import { areStable, polesOf } from '../../src/linear/poles.js';
-import { stateEquationsOf } from '../../src/linear/polynomial_ratio.js';
 import { responseAt } from '../../src/linear/response.js';
 import { expectPublished, publishedCase } from '../published.js';
 import { loopOf } from './loops.js';
+import { stateEquationsOf } from './polynomial_ratio.js';
 
 function rootsOf(polynomial: number[]) {
   return polesOf(loopOf([1], polynomial).a, undefined);

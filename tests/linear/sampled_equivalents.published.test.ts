@@ -1,31 +1,77 @@
 import { describe, expect, it } from 'vitest';
-import { continuousImage, trapezoidalEquivalent } from '../../src/linear/bilinear.js';
-import { holdEquivalent } from '../../src/linear/hold_equivalent.js';
-import { fromRows, zeros } from '../../src/linear/matrix.js';
+import { continuousImage } from '../../src/linear/bilinear.js';
+import { Linearisation } from '../../src/linear/linearise.js';
+import { openedLoop } from '../../src/linear/opened_loop.js';
+import { pointOfRest } from '../../src/linear/point_of_rest.js';
 import { prepareResponse, responseAt } from '../../src/linear/response.js';
 import type { StateEquations } from '../../src/linear/state_equations.js';
 import { transmissionZeros } from '../../src/linear/transmission_zeros.js';
+import { expandLoop } from '../../src/loop/expand.js';
+import { scheduleOf } from '../../src/loop/schedule.js';
+import { specOf } from '../loop/spec_of.js';
 import { expectPublished, publishedCase } from '../published.js';
+import { holdEquivalent } from './hold_equivalent.js';
 import { loopOf, ratioOf } from './loops.js';
 
-function publishedSystem(id: string): StateEquations {
-  const { state_matrix: a, input_matrix: b, output_matrix: c } = publishedCase(id).given;
-  return {
-    a: fromRows(a),
-    b: fromRows(b),
-    c: fromRows(c),
-    d: zeros(c.length, b[0].length),
-    period: undefined,
-  };
+interface Written {
+  plant: string;
+  period: number;
+  delay?: number;
+  /** The law's signal `back`, of which minus the reading `seen` is a part. */
+  law?: string;
+  at: string;
 }
 
-// Each published case names its own source: reference/published/README.md.
-describe('sampled equivalents behind a zero-order hold', () => {
+/** The opened loop of a spec as margins are read from it. */
+function opened({ plant, period, delay = 0, law = 'value: u - seen', at }: Written): StateEquations {
+  const spec = specOf(`
+inputs: { u: {} }
+plant:
+${plant}
+sensors: { seen: { of: y } }
+controllers:
+  law: { every: ${period} s, delay: ${delay} s, signals: { back: { ${law} } } }
+actuators: { held: { of: back } }
+scenarios: { jump: { lasts: 1 s, inputs: { u: { step: 1, at: 0 s } } } }
+requirements: [{ name: R, measure: gain_margin, at: ${at}, at_least: 1.1 }]
+`);
+  const loop = expandLoop(spec, new Map());
+  const none = new Float64Array(0);
+  const rest = pointOfRest(new Linearisation(loop), none, loop.inputRest);
+  const point = rest.kind === 'rest' ? rest.point : { state: loop.states.map(() => 0), memory: [], held: [] };
+  const linearisation = new Linearisation(expandLoop(spec, new Map(), { openAt: [at] }));
+  return openedLoop(linearisation, scheduleOf(loop, none), {
+    parameter: none,
+    input: loop.inputRest,
+    injected: [0],
+    ...point,
+  });
+}
+
+/** A plant in the state equations of a published case. */
+function plantOf(id: string): string {
+  const { state_matrix: a, input_matrix: b, output_matrix: c } = publishedCase(id).given;
+  const sum = (row: number[], names: string[], unit: string): string =>
+    row.map((x, i) => `(${x}${unit})*${names[i]}`).join(' + ');
+  const states = a.map((_: number[], i: number) => `x${i}`);
+  return [
+    ...a.map(
+      (row: number[], i: number) =>
+        `  x${i}: { integral: "${sum(row, states, ' 1/s')} + (${b[i][0]} 1/s)*held" }`,
+    ),
+    `  y: { value: "${sum(c[0], states, '')}" }`,
+  ].join('\n');
+}
+
+// Opened behind the law, which gives back −y, the loop is the plant as its sampled inputs and outputs see it: held, delayed,
+// and exact at the instants. Each published case names its own source: reference/published/README.md.
+describe('a plant behind a zero-order hold, as margins see it', () => {
   for (const id of ['B01', 'B02', 'B03', 'B04', 'B05']) {
     it(`${id}: ${publishedCase(id).title}, with delays of whole periods and parts of them`, () => {
       const { sampling_period_s: period, input_delays_s: delays } = publishedCase(id).given;
       ['no_delay', 'delayed', 'delayed_2'].forEach((suffix, k) => {
-        const { numerator, denominator } = ratioOf(holdEquivalent(publishedSystem(id), period, delays[k]));
+        const loop = opened({ plant: plantOf(id), period, delay: delays[k], at: 'back' });
+        const { numerator, denominator } = ratioOf(loop);
         expectPublished(id, `numerator_${suffix}`, [...numerator]);
         expectPublished(id, `denominator_${suffix}`, [...denominator]);
       });
@@ -33,7 +79,7 @@ describe('sampled equivalents behind a zero-order hold', () => {
   }
 
   it(`B06: ${publishedCase('B06').title}`, () => {
-    const { numerator, denominator } = ratioOf(holdEquivalent(publishedSystem('B06'), 1));
+    const { numerator, denominator } = ratioOf(opened({ plant: plantOf('B06'), period: 1, at: 'back' }));
     expectPublished('B06', 'leading_numerator', numerator[1]);
     expectPublished('B06', 'trailing_numerator', numerator[2]);
     // The other pole is 1: what is left of the product of both is this one.
@@ -43,7 +89,11 @@ describe('sampled equivalents behind a zero-order hold', () => {
   it(`B07: ${publishedCase('B07').title}`, () => {
     const period = publishedCase('B07').given.sampling_period_s;
     for (const n of [2, 3, 4]) {
-      const sampled = holdEquivalent(loopOf([1], [1, ...new Array(n).fill(0)]), period);
+      const chain = Array.from({ length: n }, (_, i) => {
+        const from = i === n - 1 ? 'held' : `x${i + 1}`;
+        return `  x${i}: { integral: "(1 1/s)*${from}" }`;
+      });
+      const sampled = opened({ plant: [...chain, '  y: { value: x0 }'].join('\n'), period, at: 'back' });
       const zeros = transmissionZeros(sampled, 1).map(({ real }) => real + 1);
       expectPublished(
         'B07',
@@ -59,82 +109,66 @@ describe('sampled equivalents behind a zero-order hold', () => {
     }
   });
 
-  it('has the response of the continuous system, held and delayed, far below the sampling frequency', () => {
-    // Hold and delay together are e^{−jω(T/2 + delay)}·sinc(ωT/2); the images of a second-order lag are small there.
-    const continuous = loopOf([9], [1, 0.6, 9]);
-    const period = 1e-3;
-    const delay = 2.4e-3;
-    const frequency = 3.3;
-    const sampled = responseAt(holdEquivalent(continuous, period, delay), frequency);
-    const plain = responseAt(continuous, frequency);
-    const lag = frequency * (period / 2 + delay);
-    expect(sampled.real).toBeCloseTo(plain.real * Math.cos(lag) + plain.imaginary * Math.sin(lag), 5);
-    expect(sampled.imaginary).toBeCloseTo(plain.imaginary * Math.cos(lag) - plain.real * Math.sin(lag), 5);
-  });
-
-  it('passes a feedthrough on, through its delay', () => {
-    const gain = { ...loopOf([2], [1]), period: undefined };
-    expect(ratioOf(holdEquivalent(gain, 0.1)).numerator).toEqual([2]);
-    expect([...ratioOf(holdEquivalent(gain, 0.1, 0.2)).numerator]).toEqual([0, 0, 2]);
-    expect([...ratioOf(holdEquivalent(gain, 0.1, 0.15)).numerator]).toEqual([0, 0, 2]);
-  });
-
-  it('takes a delay within rounding of a whole number of periods as that number', () => {
-    const lag = loopOf([1], [1, 1]);
-    expect(holdEquivalent(lag, 0.1, 0.3).a.rows).toBe(4);
-    expect(holdEquivalent(lag, 0.1, 0.1 + 0.2).a.rows).toBe(4);
-  });
-
-  it('refuses a sampled system, a period of zero and a negative delay', () => {
-    const lag = loopOf([1], [1, 1]);
-    expect(() => holdEquivalent(holdEquivalent(lag, 0.1), 0.1)).toThrow(/sampled again/);
-    expect(() => holdEquivalent(lag, 0)).toThrow(/period of 0 s/);
-    expect(() => holdEquivalent(lag, 0.1, -1)).toThrow(/delay of -1 s/);
+  it('is what other tests build their loops of', () => {
+    const plant = '  x: { integral: "(3 1/s)*held - (2 1/s)*x" }\n  y: { value: x }';
+    for (const delay of [0, 0.03, 0.24]) {
+      const [written, built] = [
+        opened({ plant, period: 0.1, delay, at: 'back' }),
+        holdEquivalent(loopOf([3], [1, 2]), 0.1, delay),
+      ].map(ratioOf);
+      written.numerator.forEach((x, i) => {
+        expect(x).toBeCloseTo(built.numerator[i], 14);
+      });
+      expect(written.denominator.length).toBe(built.denominator.length);
+    }
   });
 });
 
-describe('trapezoidal equivalents', () => {
+describe('the trapezoid rule in a controller', () => {
   it(`B08: ${publishedCase('B08').title}`, () => {
     const { given } = publishedCase('B08');
-    const period: number = given.sampling_period_s;
-    const lag = loopOf([1], [given.lag_time_constant_s, 1]);
-    const controller = loopOf([given.gain * given.integral_time_s, given.gain], [given.integral_time_s, 0]);
-    const cases: [string, StateEquations][] = [
-      ['lag', trapezoidalEquivalent(lag, period)],
-      ['controller', trapezoidalEquivalent(controller, period)],
-      ['pre_warped', trapezoidalEquivalent(lag, period, given.pre_warp_frequency_rad_per_s)],
+    const lag = `time_constant: ${given.lag_time_constant_s} s, sum_by: trapezoid`;
+    const integral = given.gain / given.integral_time_s;
+    const cases: [string, string][] = [
+      ['lag', `low_pass: { ${lag} }, of: u - seen`],
+      ['controller', `pid: { kp: ${given.gain}, ki: ${integral} 1/s, sum_by: trapezoid }, of: u - seen`],
+      [
+        'pre_warped',
+        `low_pass: { ${lag}, exact_at: ${given.pre_warp_frequency_rad_per_s} rad/s }, of: u - seen`,
+      ],
     ];
-    for (const [name, system] of cases) {
-      const { numerator, denominator } = ratioOf(system);
-      expectPublished('B08', `${name}_numerator`, [...numerator]);
-      expectPublished('B08', `${name}_denominator`, [...denominator]);
+    for (const [name, law] of cases) {
+      const period: number = given.sampling_period_s;
+      const loop = opened({ plant: '  y: { value: held }', period, law, at: 'held' });
+      const { numerator, denominator } = ratioOf(loop);
+      // What is held is read at the next instant: the law is behind a delay, and each memory that is not needed is a factor z.
+      const [above, below] = [numerator, denominator].map((x) => withoutZeros([...x]));
+      expectPublished('B08', `${name}_numerator`, above);
+      expectPublished('B08', `${name}_denominator`, below);
+    }
+  });
+});
+
+/** The coefficients from the first to the last that is more than rounding. */
+function withoutZeros(coefficients: number[]): number[] {
+  const counts = (x: number): boolean => Math.abs(x) > 1e-12;
+  return coefficients.slice(coefficients.findIndex(counts), coefficients.findLastIndex(counts) + 1);
+}
+
+describe('the continuous image of a sampled system', () => {
+  it('has its response at (2/T)·tan(ωT/2) (Tustin, 1947)', () => {
+    const period = 0.2;
+    const sampled = loopOf([1, 0.4, 0.1], [1, -0.7, 0.5], period);
+    const image = prepareResponse(continuousImage(sampled));
+    for (const frequency of [0.01, 1, 5, 12]) {
+      const own = responseAt(sampled, frequency);
+      const found = image((2 / period) * Math.tan((frequency * period) / 2));
+      expect(found.real).toBeCloseTo(own.real, 12);
+      expect(found.imaginary).toBeCloseTo(own.imaginary, 12);
     }
   });
 
-  it('with a match frequency has exactly the continuous response there', () => {
-    const lag = loopOf([3, 1], [0.02, 0.3, 1]);
-    const sampled = prepareResponse(trapezoidalEquivalent(lag, 0.01, 200))(200);
-    const continuous = responseAt(lag, 200);
-    expect(sampled.real).toBeCloseTo(continuous.real, 13);
-    expect(sampled.imaginary).toBeCloseTo(continuous.imaginary, 13);
-  });
-
-  it('are undone by the continuous image', () => {
-    const system = loopOf([1, 2, 3], [1, 0.5, 4, 1]);
-    const back = continuousImage(trapezoidalEquivalent(system, 0.2));
-    const { numerator, denominator } = ratioOf(back);
-    [0, 1, 2, 3].forEach((coefficient, i) => {
-      expect(numerator[i]).toBeCloseTo(coefficient, 12);
-    });
-    [1, 0.5, 4, 1].forEach((coefficient, i) => {
-      expect(denominator[i]).toBeCloseTo(coefficient, 12);
-    });
-  });
-
-  it('refuse what is sampled already or matched beyond half the sampling frequency', () => {
-    const lag = loopOf([1], [1, 1]);
-    expect(() => trapezoidalEquivalent(loopOf([1], [1, 0.5], 1), 1)).toThrow(/sampled again/);
-    expect(() => trapezoidalEquivalent(lag, 0.1, 40)).toThrow(/40 rad\/s is not between 0 and/);
-    expect(() => continuousImage(lag)).toThrow(/no continuous image/);
+  it('is that of a sampled system only', () => {
+    expect(() => continuousImage(loopOf([1], [1, 1]))).toThrow(/no continuous image/);
   });
 });

@@ -1,10 +1,10 @@
 import { describe, expect, it } from 'vitest';
 import { closedLoopMatrix } from '../../src/linear/closed_loop.js';
-import { holdEquivalent } from '../../src/linear/hold_equivalent.js';
 import { marginsOfLoop } from '../../src/linear/margins.js';
 import { areStable, polesOf } from '../../src/linear/poles.js';
 import type { StateEquations } from '../../src/linear/state_equations.js';
 import { expectPublished, publishedCase } from '../published.js';
+import { holdEquivalent } from './hold_equivalent.js';
 import { inSeries, loopOf, product, systemOf, times } from './loops.js';
 
 /** Upward gain margin of a loop taken at a gain small enough to be stable, as a gain. */

@@ -3,7 +3,7 @@ import { loadSpec } from '../../src/spec/index.js';
 import type { Spec } from '../../src/spec/spec.js';
 
 /**
- * A checked spec from the text of its sections; `requirements` may be left out.
+ * A checked spec from the text of its sections.
  * @throws Error with all errors of the spec.
  */
 export function specOf(sections: string): Spec {

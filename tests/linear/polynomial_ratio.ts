@@ -1,6 +1,6 @@
-import { fromRows, zeros } from './matrix.js';
-import { NumericFailure } from './numeric_failure.js';
-import type { StateEquations } from './state_equations.js';
+import { fromRows, zeros } from '../../src/linear/matrix.js';
+import { NumericFailure } from '../../src/linear/numeric_failure.js';
+import type { StateEquations } from '../../src/linear/state_equations.js';
 
 /** A rational transfer function in s, or in z when it has a sampling period (s). */
 export interface PolynomialRatio {

@@ -1,6 +1,6 @@
-import { discretise } from './exponential.js';
-import { identity, multiply, place, zeros } from './matrix.js';
-import type { StateEquations } from './state_equations.js';
+import { discretise } from '../../src/linear/exponential.js';
+import { identity, multiply, place, zeros } from '../../src/linear/matrix.js';
+import type { StateEquations } from '../../src/linear/state_equations.js';
 
 /**
  * The sampled equivalent of a continuous system behind a zero-order hold, exact at the sampling instants, with a delay
